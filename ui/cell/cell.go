@@ -48,12 +48,36 @@ func Short(s string, w int) (string, int) {
 	return s, ansi.StringWidth(s)
 }
 
-// Wrap breaks text into lines of at most w cells, at blanks where it can.
+// Wrap breaks text into lines of at most w cells, at blanks, or within a word that is longer than a line.
 func Wrap(s string, w int) []string {
 	if w <= 0 {
 		return nil
 	}
-	return strings.Split(ansi.Wrap(s, w, ""), "\n")
+	var lines []string
+	line, n := "", 0
+	for _, word := range strings.Fields(s) {
+		for Width(word) > w {
+			head := ansi.Truncate(word, w, "")
+			if head == "" || n > 0 {
+				if n == 0 {
+					return append(lines, Fit(word, w)) // not even its first character fits
+				}
+				lines, line, n = append(lines, line), "", 0
+				continue
+			}
+			lines = append(lines, head)
+			word = strings.TrimPrefix(word, head)
+		}
+		k := Width(word)
+		if n > 0 && n+1+k > w {
+			lines, line, n = append(lines, line), "", 0
+		}
+		if n > 0 {
+			line, n = line+" ", n+1
+		}
+		line, n = line+word, n+k
+	}
+	return append(lines, line)
 }
 
 // Gauge draws value out of full in w cells, rounded to the nearest cell, with something to see for
