@@ -1,0 +1,69 @@
+package sky
+
+import (
+	"math"
+
+	"github.com/soniakeys/meeus/v3/apparent"
+	"github.com/soniakeys/meeus/v3/base"
+	"github.com/soniakeys/meeus/v3/coord"
+	"github.com/soniakeys/meeus/v3/nutation"
+	"github.com/soniakeys/meeus/v3/precess"
+	"github.com/soniakeys/unit"
+)
+
+// This file is the only one that knows the library, and it takes from it only series that were
+// measured to be right: precession, nutation, obliquity, the Earth's velocity. What is left out, and why:
+//
+//   - longitude is positive west and azimuth from the south there; here nothing of it is passed on
+//   - time arguments are Julian years, days of TT, days of UT or centuries; here always a Julian day of TT
+//   - proper motion in right ascension is an hour angle without cos dec; here it is a vector
+//   - package apparent multiplies by tan dec and breaks near the poles; here places are vectors
+//   - coord.EqToHz divides nothing by nothing at the zenith; angle.Sep fails across 0h
+//   - sidereal.Apparent0UT is right only at 0h; deltat is out by seconds today
+//   - rise puts a transit on the wrong day and has one error for "always up" and "never up"
+//   - refraction is optical
+//   - the full solar theory wants data files at run time
+
+// precessionMatrix returns the rotation from the mean equator and equinox of J2000.0 to those of date.
+//
+// Given:    jd, Julian day of TT
+// Returns:  IAU 1976 precession, made by precessing the three axes one by one
+// Source:   Lieske et al. 1977, by way of Meeus, Astronomical Algorithms, eq. 21.2 to 21.4
+// Checked:  TestBookPrecession, TestAzEl
+func precessionMatrix(jd float64) mat {
+	p := precess.NewPrecessor(2000, base.JDEToJulianYear(jd))
+	var m mat
+	for i, axis := range [3]coord.Equatorial{{}, {RA: math.Pi / 2}, {Dec: math.Pi / 2}} {
+		p.Precess(&axis, &axis)
+		d := direction(axis.RA.Rad(), axis.Dec.Rad())
+		for j := range d {
+			m[j][i] = d[j]
+		}
+	}
+	return m
+}
+
+// nutationOf returns the nutation in longitude and in obliquity, and the mean obliquity, in radians.
+//
+// Given:    jd, Julian day of TT
+// Neglects: terms under 0.0003 arcsec of the 1980 theory, and what the theory of 2000 added to it (0.01 arcsec)
+// Source:   IAU 1980 theory, by way of Meeus, chapter 22
+// Checked:  TestBookNutation
+func nutationOf(jd float64) (psi, eps, obliquity float64) {
+	p, e := nutation.Nutation(jd)
+	return p.Rad(), e.Rad(), nutation.MeanObliquity(jd).Rad()
+}
+
+// earthVelocity returns the Earth's barycentric velocity in units of the speed of light, on the axes of J2000.0.
+//
+// The library gives only what the velocity does to a place, so two places are asked for: at
+// α = 0, δ = 0 the shifts are Y and Z, at α = 90° the shift in right ascension is −X.
+//
+// Given:    jd, Julian day of TT
+// Source:   Ron & Vondrák 1986, by way of Meeus, eq. 23.4 and table 23.A
+// Checked:  TestEarthVelocity (against the change of the Earth's place), TestAzEl
+func earthVelocity(jd float64) vec {
+	y, z := apparent.AberrationRonVondrak(0, 0, jd)
+	x, _ := apparent.AberrationRonVondrak(unit.RA(math.Pi/2), 0, jd)
+	return vec{-x.Rad(), y.Rad(), z.Rad()}
+}
