@@ -1,0 +1,65 @@
+package radiometer
+
+import (
+	"math"
+	"testing"
+)
+
+func TestDispersion(t *testing.T) {
+	for _, r := range rows(t, "dispersion.csv", "DIS-001") {
+		r.check(t, DispersionConstant)
+	}
+	for _, r := range rows(t, "dispersion.csv", "DIS-01") {
+		r.check(t, DispersionSec(r.num(t, "DM"), r.num(t, "f_MHz")))
+	}
+}
+
+func TestPairs(t *testing.T) {
+	for _, r := range rows(t, "dispersion.csv", "DIS-030", "DIS-032", "DIS-036") {
+		r.check(t, PairDMError(r.num(t, "f1_MHz"), r.num(t, "s1_us"), r.num(t, "f2_MHz"), r.num(t, "s2_us")))
+	}
+	for _, r := range rows(t, "dispersion.csv", "DIS-031", "DIS-033", "DIS-037") {
+		r.check(t, PairErrorUs(r.num(t, "f1_MHz"), r.num(t, "s1_us"), r.num(t, "f2_MHz"), r.num(t, "s2_us")))
+	}
+	if !math.IsInf(PairErrorUs(1400, 1, 1400, 1), 1) || !math.IsInf(PairDMError(1400, 1, 1400, 1), 1) {
+		t.Error("a receiver paired with itself gives a finite error")
+	}
+}
+
+func TestSolarWind(t *testing.T) {
+	for _, r := range rows(t, "dispersion.csv", "DIS-05", "DIS-06") {
+		if _, ok := r.inputs["elong_deg"]; !ok {
+			continue
+		}
+		dm := SolarWindDM(r.num(t, "n0_cm3"), r.num(t, "elong_deg"))
+		if r.inputs["r_au"] != "" || r.id == "DIS-050" {
+			r.check(t, dm)
+		} else {
+			r.check(t, 1e6*DispersionSec(dm, 1400))
+		}
+	}
+	if dm, near := SolarWindDM(7.9, 180), SolarWindDM(7.9, 179.999); math.Abs(dm/near-1) > 1e-6 {
+		t.Errorf("opposite the Sun %g, beside it %g", dm, near)
+	}
+}
+
+func TestPairSpacing(t *testing.T) {
+	// Days far from the Sun, hours near it, and never more than asked for.
+	last := 0.0
+	for el := 1.0; el <= 180; el++ {
+		d := PairSpacingDays(4, el)
+		if d < last || d > 4 {
+			t.Errorf("%g°: %g d after %g", el, d, last)
+		}
+		last = d
+	}
+	if d := PairSpacingDays(4, 5); d > 0.5 || d < 0.1 {
+		t.Errorf("5° from the Sun: %g d, want hours", d)
+	}
+	if d := PairSpacingDays(4, 60); d != 4 {
+		t.Errorf("60° from the Sun: %g d, want 4", d)
+	}
+	if d := PairSpacingDays(4, 0); d != 0 {
+		t.Errorf("behind the Sun: %g d", d)
+	}
+}

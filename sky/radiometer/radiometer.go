@@ -1,0 +1,219 @@
+// Package radiometer says what a receiver hears of a pulsar: signal-to-noise ratio, error of the pulse
+// arrival time, minutes needed for a wanted error, and what an elevation costs.
+//
+// Most readers need Setup: a Receiver and a Pulsar together, with SNR, TOAErrorUs, MinutesFor and
+// EffectiveWeight. Elevations are in degrees above the horizon, frequencies in MHz, flux densities in
+// mJy, arrival-time errors in µs. Nothing here is NaN: what is not heard has a signal-to-noise ratio
+// of 0 and an infinite error, and MinutesFor says in words why there is no answer.
+package radiometer
+
+import (
+	"errors"
+	"fmt"
+	"math"
+)
+
+// A Receiver is a front end at its telescope.
+type Receiver struct {
+	BandMHz       [2]float64 // lower and upper edge
+	TsysK         float64    // at the zenith, with its atmosphere, without the sky behind
+	ZenithOpacity float64    // nepers; about 0.008 below 2 GHz
+	GainKPerJy    float64
+	Polarizations int // 1 or 2
+}
+
+// CentreMHz is the middle of the band.
+func (r Receiver) CentreMHz() float64 { return (r.BandMHz[0] + r.BandMHz[1]) / 2 }
+
+// BandwidthMHz is the width of the band.
+func (r Receiver) BandwidthMHz() float64 { return r.BandMHz[1] - r.BandMHz[0] }
+
+// A Pulsar is what decides how well it can be timed. Everything not known is 0.
+type Pulsar struct {
+	FluxMJy         float64 // mean flux density at AtMHz
+	AtMHz           float64 // 0: the flux is taken as it is at every frequency
+	SpectralIndex   float64 // flux ∝ frequency^SpectralIndex; −1.6 is typical
+	PeriodS         float64
+	WidthMs         float64 // effective width of the pulse; 0: 5 % of the period
+	JitterUsPerHour float64 // arrival-time error from the pulses' own variation after one hour
+	FloorUs         float64 // arrival-time error that no amount of time goes below
+	Sky408K         float64 // sky temperature at 408 MHz in its direction: SkyAt408, or measured
+}
+
+// usualDuty stands in for an unknown pulse width: published survey limits assume 5 % of the period.
+const usualDuty = 0.05
+
+// EffectiveWidthMs is the pulse width, or 5 % of the period where it is not known.
+func (p Pulsar) EffectiveWidthMs() float64 {
+	if p.WidthMs > 0 {
+		return p.WidthMs
+	}
+	return usualDuty * p.PeriodS * 1e3
+}
+
+// FluxAt returns the flux density at a frequency, mJy.
+//
+//	S = S₀ (f/f₀)^α
+//
+// Source:  power law; mean α about −1.6, Jankowski et al. 2018, MNRAS 473, 4436
+// Checked: TestFluxAt
+func (p Pulsar) FluxAt(mhz float64) float64 {
+	if !(p.AtMHz > 0) || !(mhz > 0) {
+		return p.FluxMJy
+	}
+	return p.FluxMJy * math.Pow(mhz/p.AtMHz, p.SpectralIndex)
+}
+
+// A Setup is a receiver pointed at a pulsar.
+type Setup struct {
+	Receiver Receiver
+	Pulsar   Pulsar
+}
+
+// Check reports everything that keeps a Setup from being used, joined. A Setup that fails it still
+// answers, as if the pulsar were not heard.
+func (s Setup) Check() error { return errors.Join(s.Receiver.Check(), s.Pulsar.Check()) }
+
+// Check reports everything that keeps a receiver from being used, joined.
+func (r Receiver) Check() error {
+	return errors.Join(
+		positive("lower edge of the band", r.BandMHz[0]),
+		positive("bandwidth", r.BandwidthMHz()),
+		positive("system temperature", r.TsysK),
+		positive("gain", r.GainKPerJy),
+		positive("polarizations", float64(r.Polarizations)),
+		notNegative("zenith opacity", r.ZenithOpacity),
+	)
+}
+
+// Check reports everything that keeps the signal of a pulsar from being known, joined.
+func (p Pulsar) Check() error {
+	var wide error
+	if p.PeriodS > 0 && p.EffectiveWidthMs() >= p.PeriodS*1e3 {
+		wide = fmt.Errorf("pulse width: found %g ms; accepted below the period, %g ms", p.WidthMs, p.PeriodS*1e3)
+	}
+	return errors.Join(
+		positive("flux density", p.FluxMJy),
+		notNegative("frequency of the flux density", p.AtMHz),
+		finite("spectral index", p.SpectralIndex),
+		positive("period", p.PeriodS),
+		notNegative("pulse width", p.WidthMs),
+		wide,
+		notNegative("jitter", p.JitterUsPerHour),
+		notNegative("floor", p.FloorUs),
+		notNegative("sky temperature", p.Sky408K),
+	)
+}
+
+func positive(name string, v float64) error {
+	if v > 0 && !math.IsInf(v, 0) {
+		return nil
+	}
+	return fmt.Errorf("%s: found %g; accepted above 0", name, v)
+}
+
+func notNegative(name string, v float64) error {
+	if v >= 0 && !math.IsInf(v, 0) {
+		return nil
+	}
+	return fmt.Errorf("%s: found %g; accepted 0 or more", name, v)
+}
+
+func finite(name string, v float64) error {
+	if !math.IsNaN(v) && !math.IsInf(v, 0) {
+		return nil
+	}
+	return fmt.Errorf("%s: found %g; accepted a finite number", name, v)
+}
+
+// SNR returns the expected signal-to-noise ratio of the folded profile after some minutes at an
+// elevation: 0 below the horizon and for a pulsar of unknown flux.
+//
+//	S/N = S G √(n_p t B)/T · √((P−W)/W)
+//
+// with S the flux density behind the atmosphere at the middle of the band and T the system temperature
+// at that elevation, sky included.
+//
+// Neglects: losses of digitisation (a factor 1 to 1.5), smearing by dispersion, and scintillation
+// Source:   Lorimer & Kramer 2005, Handbook of Pulsar Astronomy
+// Checked:  TestSNR, TestPublishedObservations
+func (s Setup) SNR(minutes, elevationDeg float64) float64 {
+	if !(minutes > 0) || !(elevationDeg > 0) || s.Check() != nil {
+		return 0
+	}
+	flux := s.Pulsar.FluxAt(s.Receiver.CentreMHz()) * transmission(s.Receiver.ZenithOpacity, elevationDeg)
+	snr := SNR(flux, s.Receiver.GainKPerJy, s.SystemK(elevationDeg), s.Receiver.Polarizations,
+		60*minutes, s.Receiver.BandwidthMHz(), s.Pulsar.PeriodS*1e3, s.Pulsar.EffectiveWidthMs())
+	if !(snr > 0) {
+		return 0 // also where absurd numbers have overflowed
+	}
+	return snr
+}
+
+// SNR is the radiometer equation for a folded pulse profile.
+//
+//	S/N = S G √(n_p t B)/T · √((P−W)/W)
+//
+// Given:   fluxMJy, gain in K/Jy, tsysK, polarizations, seconds, bandwidthMHz, period and width in ms
+// Returns: 0 when the width does not fit the period or anything is not positive
+// Source:  Lorimer & Kramer 2005, Handbook of Pulsar Astronomy
+// Checked: TestSNR
+func SNR(fluxMJy, gainKPerJy, tsysK float64, polarizations int, seconds, bandwidthMHz, periodMs, widthMs float64) float64 {
+	samples := float64(polarizations) * seconds * bandwidthMHz * 1e6
+	if !(samples > 0) || !(widthMs > 0) || !(periodMs > widthMs) || !(tsysK > 0) {
+		return 0
+	}
+	return fluxMJy * 1e-3 * gainKPerJy * math.Sqrt(samples) / tsysK * math.Sqrt((periodMs-widthMs)/widthMs)
+}
+
+// TOAErrorUs returns the expected error of an arrival time after some minutes at an elevation, µs:
+// infinite when the pulsar is not heard.
+//
+//	σ² = (W/(S/N))² + jitter² + floor²
+//
+// The radiometer's part is the plain W/(S/N). Matching a template to a Gaussian pulse reaches 0.60 of
+// it (MatchedTOAErrorUs); the plain rule is kept because real profiles and receivers lose as much.
+//
+// Source:  Lorimer & Kramer 2005; jitter ∝ t^(−1/2), Parthasarathy et al. 2021, MNRAS 502, 407
+// Checked: TestTOAError, TestPublishedObservations
+func (s Setup) TOAErrorUs(minutes, elevationDeg float64) float64 {
+	hour := s.hourErrorUs(elevationDeg)
+	if !(minutes > 0) || math.IsInf(hour, 1) {
+		return math.Inf(1)
+	}
+	return math.Hypot(hour*math.Sqrt(60/minutes), s.Pulsar.FloorUs)
+}
+
+// hourErrorUs is the part of the error that shrinks with time, after one hour: radiometer and jitter.
+func (s Setup) hourErrorUs(elevationDeg float64) float64 {
+	snr := s.SNR(60, elevationDeg)
+	if !(snr > 0) {
+		return math.Inf(1)
+	}
+	return math.Hypot(1e3*s.Pulsar.EffectiveWidthMs()/snr, s.Pulsar.JitterUsPerHour)
+}
+
+// MatchedTOAErrorUs returns the error that matching a template to a Gaussian pulse reaches, µs.
+//
+//	σ = √2 w/(S/N),  w = FWHM/√(8 ln 2):  0.60 FWHM/(S/N)
+//
+// Given:   the full width at half maximum, µs, and the matched signal-to-noise ratio
+// Source:  the Cramér–Rao bound for a Gaussian pulse
+// Checked: TestMatchedTOAError
+func MatchedTOAErrorUs(fwhmUs, snr float64) float64 {
+	if !(snr > 0) {
+		return math.Inf(1)
+	}
+	return math.Sqrt2 * fwhmUs / math.Sqrt(8*math.Ln2) / snr
+}
+
+// JitterUs returns the arrival-time error from the variation of the pulses themselves after some
+// seconds, where it has not been measured.
+//
+//	σ_J = f_J W/√N_p,  f_J about 1/3
+//
+// Source:  Cordes & Shannon 2010, arXiv:1010.3785
+// Checked: TestJitter
+func JitterUs(widthUs, fraction, periodS, seconds float64) float64 {
+	return fraction * widthUs / math.Sqrt(seconds/periodS)
+}

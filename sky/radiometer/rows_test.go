@@ -1,0 +1,92 @@
+package radiometer
+
+import (
+	"encoding/csv"
+	"math"
+	"os"
+	"strconv"
+	"strings"
+	"testing"
+)
+
+// A row is a line of a table in testdata.
+type row struct {
+	id      string
+	inputs  map[string]string
+	want    float64
+	half    float64 // half of the last digit printed
+	tol     float64
+	tolKind string
+}
+
+func (r row) num(t *testing.T, key string) float64 {
+	t.Helper()
+	v, err := strconv.ParseFloat(r.inputs[key], 64)
+	if err != nil {
+		t.Fatalf("%s: input %q: %v", r.id, key, err)
+	}
+	return v
+}
+
+// check compares and ticks the row off.
+func (r row) check(t *testing.T, got float64) {
+	t.Helper()
+	var ok bool
+	switch r.tolKind {
+	case "abs":
+		ok = math.Abs(got-r.want) <= r.tol+r.half
+	case "rel":
+		ok = math.Abs(got-r.want) <= r.tol*math.Abs(r.want)+r.half
+	case "upper":
+		ok = got < r.want
+	case "ratio":
+		ok = got/r.want <= r.tol && r.want/got <= r.tol
+	}
+	if !ok {
+		t.Errorf("%s: got %.15g, want %.15g (%s %g)", r.id, got, r.want, r.tolKind, r.tol)
+	}
+}
+
+func rows(t *testing.T, file string, prefixes ...string) []row {
+	t.Helper()
+	f, err := os.Open("testdata/" + file)
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	lines, err := csv.NewReader(f).ReadAll()
+	if err != nil {
+		t.Fatal(err)
+	}
+	var out []row
+	for _, l := range lines[1:] {
+		wanted := false
+		for _, p := range prefixes {
+			wanted = wanted || strings.HasPrefix(l[0], p)
+		}
+		if !wanted {
+			continue
+		}
+		r := row{id: l[0], inputs: map[string]string{}, tolKind: l[6]}
+		for _, kv := range strings.Split(l[2], ";") {
+			if k, v, ok := strings.Cut(kv, "="); ok {
+				r.inputs[k] = v
+			}
+		}
+		r.want, err = strconv.ParseFloat(l[3], 64)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if r.tol, err = strconv.ParseFloat(l[5], 64); err != nil {
+			t.Fatal(err)
+		}
+		if _, decimals, ok := strings.Cut(l[3], "."); ok && !strings.Contains(decimals, "e") {
+			r.half = 0.5000001 * math.Pow(10, -float64(len(decimals)))
+		}
+		out = append(out, r)
+	}
+	if len(out) == 0 {
+		t.Fatalf("%s holds no row %v", file, prefixes)
+	}
+	return out
+}

@@ -1,0 +1,107 @@
+package radiometer
+
+import "math"
+
+const (
+	backgroundK = 2.73  // cosmic microwave background
+	airK        = 270   // mean physical temperature of the atmosphere
+	skyIndex    = -2.55 // of the Galaxy's radiation from 408 MHz: published values −2.5 to −2.6
+)
+
+// SkyAt408 returns the sky temperature at 408 MHz towards a Galactic direction, K, by a formula good to
+// a factor 1.5 away from the brightest ridge. A measured value is better.
+//
+//	T = 25 + 275/{[1 + (l/42)²][1 + (b/3)²]}
+//
+// Given:   Galactic longitude (any turn) and latitude, degrees
+// Source:  Narayan 1987, ApJ 319, 162
+// Checked: TestSkyAt408
+func SkyAt408(longitudeDeg, latitudeDeg float64) float64 {
+	l := math.Remainder(longitudeDeg, 360)
+	return 25 + 275/((1+square(l/42))*(1+square(latitudeDeg/3)))
+}
+
+// GalacticDeg returns Galactic longitude (0..360) and latitude of an ICRS direction, degrees.
+//
+//	sin b = sin δ_G sin δ + cos δ_G cos δ cos(α−α_G),  l = l_NCP − atan2(cos δ sin(α−α_G), …)
+//
+// Source:  the IAU 1958 system in ICRS: ESA 1997, The Hipparcos Catalogue, vol. 1, §1.5.3
+// Checked: TestGalactic
+func GalacticDeg(raDeg, decDeg float64) (longitudeDeg, latitudeDeg float64) {
+	const poleRA, poleDec, nodeLongitude = 192.85948, 27.12825, 122.93192
+	sinD, cosD := math.Sincos(decDeg * math.Pi / 180)
+	sinP, cosP := math.Sincos(poleDec * math.Pi / 180)
+	sinA, cosA := math.Sincos((raDeg - poleRA) * math.Pi / 180)
+	z := sinP*sinD + cosP*cosD*cosA
+	y, x := cosD*sinA, cosP*sinD-sinP*cosD*cosA
+	l := math.Mod(nodeLongitude-math.Atan2(y, x)*180/math.Pi+720, 360)
+	return l, math.Atan2(z, math.Hypot(x, y)) * 180 / math.Pi
+}
+
+// SkyK returns the sky temperature at a frequency from that at 408 MHz, with the cosmic background
+// added apart, K.
+//
+//	T = T408 (f/408)^(−2.55) + 2.73
+//
+// Source:  Lawson et al. 1987, MNRAS 225, 307 for the index
+// Checked: TestSkyScales
+func SkyK(sky408K, mhz float64) float64 {
+	return scaleSky(sky408K, 408, mhz, skyIndex) + backgroundK
+}
+
+func scaleSky(k, fromMHz, toMHz, index float64) float64 {
+	return k * math.Pow(toMHz/fromMHz, index)
+}
+
+// AirMass returns how many zenith atmospheres the line of sight crosses.
+//
+//	X = 1/sin el
+//
+// Given:    elevation above 0
+// Neglects: the curvature of the Earth: fine above 15°, 10 % too much at 5°
+func AirMass(elevationDeg float64) float64 {
+	return 1 / math.Sin(math.Min(elevationDeg, 180-elevationDeg)*math.Pi/180)
+}
+
+func transmission(opacity, elevationDeg float64) float64 {
+	return math.Exp(-opacity * AirMass(elevationDeg))
+}
+
+// SystemK returns the system temperature at an elevation, K.
+//
+//	T = Tz + Tsky e^(−τX) + 270 K (e^(−τ) − e^(−τX))
+//
+// Given:   the receiver's figure at the zenith, which holds the zenith atmosphere; the sky behind;
+// opacity in nepers; elevation above 0
+// Checked: TestSystemTemperature
+func SystemK(zenithK, skyK, opacity, elevationDeg float64) float64 {
+	through := transmission(opacity, elevationDeg)
+	return zenithK + skyK*through + airK*(math.Exp(-opacity)-through)
+}
+
+// SystemK returns the system temperature of the receiver towards the pulsar at an elevation, K.
+func (s Setup) SystemK(elevationDeg float64) float64 {
+	r := s.Receiver
+	return SystemK(r.TsysK, SkyK(s.Pulsar.Sky408K, r.CentreMHz()), r.ZenithOpacity, elevationDeg)
+}
+
+// EffectiveWeight returns what a minute at an elevation is worth in minutes at the zenith, 0..1: the
+// ratio of the times in which the same signal-to-noise ratio is reached. 0 at and below the horizon.
+//
+//	[T(90°)/T(el)]² e^(−2τ(X−1))
+//
+// Neglects: the change of the gain with elevation
+// Checked:  TestEffectiveWeight
+func (s Setup) EffectiveWeight(elevationDeg float64) float64 {
+	if !(elevationDeg > 0) || !(elevationDeg < 180) || s.Receiver.Check() != nil || notNegative("", s.Pulsar.Sky408K) != nil {
+		return 0
+	}
+	ratio := s.SystemK(90) / s.SystemK(elevationDeg)
+	weight := ratio * ratio * math.Exp(-2*s.Receiver.ZenithOpacity*(AirMass(elevationDeg)-1))
+	if !(weight > 0) {
+		return 0
+	}
+	return math.Min(1, weight)
+}
+
+func square(x float64) float64 { return x * x }
