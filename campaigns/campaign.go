@@ -18,16 +18,16 @@ type Site struct {
 	LatitudeDeg          float64 // geodetic, −90..90
 	LongitudeDeg         float64 // east positive, −180..360
 	HeightM              float64
-	DUT1Sec              float64 // UT1 − UTC, seconds, within ±0.9
-	TimeZone             *time.Location
-	ElevationLimitsDeg   [2]float64   // lowest and highest
-	AzimuthTravelDeg     [2]float64   // cable wrap of an altazimuth mount: 0 is north, through east
-	HourAngleLimitsDeg   [2]float64   // equatorial and transit mounts, west positive
-	SlewDegPerMin        [2]float64   // azimuth and elevation, or hour angle and declination
-	AccelerationDegPerS2 [2]float64   // likewise
-	SettleSec            float64      // after every move
-	SunLimitDeg          float64      // never point closer to the Sun than this
-	HorizonDeg           [][2]float64 // azimuth, elevation: linear between, wraps round through north
+	DUT1Sec              float64        // UT1 − UTC, seconds, within ±0.9; default 0
+	TimeZone             *time.Location // for showing local times; default UTC
+	ElevationLimitsDeg   [2]float64     // lowest and highest
+	AzimuthTravelDeg     [2]float64     // cable wrap of an altazimuth mount: 0 is north, through east
+	HourAngleLimitsDeg   [2]float64     // equatorial and transit mounts, west positive
+	SlewDegPerMin        [2]float64     // azimuth and elevation, or hour angle and declination
+	AccelerationDegPerS2 [2]float64     // likewise
+	SettleSec            float64        // after every move
+	SunLimitDeg          float64        // never point closer to the Sun than this
+	HorizonDeg           [][2]float64   // azimuth, elevation: linear between, wraps round through north
 	Mount                Mount
 }
 
@@ -59,7 +59,7 @@ type Source struct {
 	RADeg, DecDeg    float64    // ICRS at epoch PositionMJD
 	PMMasPerYr       [2]float64 // in RA (times cos dec) and in Dec
 	PositionMJD      float64    // epoch of the position; J2000.0 unless given
-	Priority         float64    // above 0
+	Priority         float64    // above 0; default 1
 	SigmaPositionMas [2]float64 // error of RA (times cos dec) and Dec
 	ParallaxMas      float64
 	Spin             *Spin
@@ -138,10 +138,10 @@ const (
 type Aim struct {
 	Kind        AimKind
 	Receivers   []string // never empty once loaded: every receiver of the campaign unless given
-	Minutes     float64  // wanted per visit; 0 when ToaUs is given
+	Minutes     float64  // wanted per visit; 0 when ToaUs is given. Default: see Load
 	ToaUs       float64  // wanted TOA error, µs: the minutes follow from the radiometer equation
 	MinFraction float64  // a slot below this share of the wanted is no use; default 0.6
-	MaxMinutes  float64  // longest slot that is wanted; default 2 × the wanted
+	MaxMinutes  float64  // longest slot that is wanted; default 2 × Minutes, 0 when these follow from ToaUs
 
 	// cadence
 	EveryDays  float64
@@ -164,7 +164,7 @@ type Aim struct {
 	MaxPhaseErrorTurns float64
 
 	// calibration
-	PerSession int
+	PerSession int // default 1
 }
 
 // A Ramp makes a cadence's interval grow geometrically, after a discovery or a glitch.

@@ -1,0 +1,162 @@
+package campaigns
+
+import "fmt"
+
+// j2000 is the Modified Julian Date of the epoch J2000.0, at which positions hold unless told otherwise.
+const j2000 = 51544.5
+
+// mjd are the dates that are taken for possible: 1900 to 2200.
+var mjd = between(15020, 124594)
+
+// readSources reads the pulsars and calibrators of one file.
+func (l *loader) readSources(top *table) {
+	for _, t := range top.tables("source") {
+		s := l.source(t)
+		l.once(t, "source", s.Name)
+		l.campaign.Sources = append(l.campaign.Sources, s)
+	}
+}
+
+func (l *loader) source(t *table) Source {
+	s := Source{
+		Name:             t.nameOf("name"),
+		RADeg:            t.ra("ra"),
+		DecDeg:           t.dec("dec"),
+		PMMasPerYr:       t.pair("pm_mas_per_yr", between(-20000, 20000), false, [2]float64{}),
+		PositionMJD:      t.numberOr("position_epoch_mjd", mjd, j2000),
+		Priority:         t.numberOr("priority", above(0, 1000), 1),
+		SigmaPositionMas: t.pair("sigma_position_mas", between(0, 1e8), false, [2]float64{}),
+		ParallaxMas:      t.numberOr("parallax_mas", between(0, 1000), 0),
+		Spin:             t.spin(),
+		DMPcPerCm3:       t.numberOr("dm_pc_per_cm3", between(0, 10000), 0),
+		Flux:             t.flux(),
+		WidthMs:          t.numberOr("width_ms", above(0, 100000), 0),
+		JitterUsPerHour:  t.numberOr("jitter_us_per_hour", between(0, 1e6), 0),
+		FloorUs:          t.numberOr("floor_us", between(0, 1e6), 0),
+		SkyK:             t.numberOr("sky_k", above(0, 1e6), 0),
+		SunLimitDeg:      t.numberOr("sun_limit_deg", between(0, 90), 0),
+		GlitchMJD:        t.numberOr("glitch_mjd", mjd, 0),
+		Orbit:            t.orbit(),
+		File:             t.doc.name,
+		Line:             t.doc.lines[t.place],
+	}
+	l.stricterThanSites(t, s)
+	if s.Spin != nil && s.WidthMs > 0 && t.good("spin", "width_ms") && s.WidthMs*s.Spin.FrequencyHz >= 1000 {
+		t.complain("width_ms", plainNumber(s.WidthMs), fmt.Sprintf("a width below the period, %.6g ms", 1000/s.Spin.FrequencyHz), "")
+	}
+	s.Aims = l.aims(t, &s)
+	t.done(nil)
+	return s
+}
+
+// stricterThanSites refuses a Sun limit that is laxer than that of every site, since it would never count.
+func (l *loader) stricterThanSites(t *table, s Source) {
+	if s.SunLimitDeg == 0 || len(l.campaign.Sites) == 0 || !t.good("sun_limit_deg") {
+		return
+	}
+	least := l.campaign.Sites[0].SunLimitDeg
+	for _, site := range l.campaign.Sites {
+		least = min(least, site.SunLimitDeg)
+	}
+	if s.SunLimitDeg < least {
+		t.complain("sun_limit_deg", plainNumber(s.SunLimitDeg), "a limit stricter than the site's, "+plainNumber(least), "")
+	}
+}
+
+func (t *table) spin() *Spin {
+	s := t.table("spin", "spin", false)
+	if s == nil {
+		return nil
+	}
+	spin := &Spin{
+		FrequencyHz:           s.number("frequency_hz", above(0, 2000)),
+		DerivativeHzPerS:      s.numberOr("derivative_hz_per_s", between(-1e-6, 1e-6), 0),
+		EpochMJD:              s.number("epoch_mjd", mjd),
+		SigmaFrequencyHz:      s.numberOr("sigma_frequency_hz", between(0, 100), 0),
+		SigmaDerivativeHzPerS: s.numberOr("sigma_derivative_hz_per_s", between(0, 1e-6), 0),
+		SigmaPhaseTurns:       s.numberOr("sigma_phase_turns", between(0, 1), 0),
+	}
+	s.done(nil)
+	t.passOn("spin", s)
+	return spin
+}
+
+func (t *table) flux() *Flux {
+	f := t.table("flux", "flux", false)
+	if f == nil {
+		return nil
+	}
+	flux := &Flux{
+		MJy:           f.number("mjy", above(0, 1e7)),
+		AtMHz:         f.number("at_mhz", between(1, 1e6)),
+		SpectralIndex: f.number("spectral_index", between(-10, 10)),
+	}
+	f.done(nil)
+	t.passOn("flux", f)
+	return flux
+}
+
+func (t *table) orbit() *Orbit {
+	o := t.table("orbit", "orbit", false)
+	if o == nil {
+		return nil
+	}
+	orbit := &Orbit{
+		PeriodDays:       o.number("period_days", above(0, 1e5)),
+		AscendingNodeMJD: o.numberOr("ascending_node_mjd", mjd, 0),
+		PeriastronMJD:    o.numberOr("periastron_mjd", mjd, 0),
+		SemimajorLs:      o.number("semimajor_ls", above(0, 1e5)),
+		Eccentricity:     o.numberOr("eccentricity", below(0, 1), 0),
+		PeriastronDeg:    o.numberOr("periastron_deg", between(-360, 360), 0),
+		AdvanceDegPerYr:  o.numberOr("advance_deg_per_yr", between(-1000, 1000), 0),
+		Decay:            o.numberOr("decay", between(-1e-7, 1e-7), 0),
+		CompanionMsun:    o.numberOr("companion_msun", above(0, 100), 0),
+		SinI:             o.numberOr("sin_i", above(0, 1), 0),
+		SigmaPeriodDays:  o.numberOr("sigma_period_days", between(0, 100), 0),
+		SigmaEpochDays:   o.numberOr("sigma_epoch_days", between(0, 1000), 0),
+		Eclipse:          o.eclipse(),
+	}
+	o.epochOfOrbit(orbit)
+	o.done(nil)
+	t.passOn("orbit", o)
+	return orbit
+}
+
+// epochOfOrbit checks that the orbit has one epoch, and its orientation where that tells node and periastron apart.
+func (t *table) epochOfOrbit(o *Orbit) {
+	const accepted = "either ascending_node_mjd or periastron_mjd"
+	node, periastron := t.has("ascending_node_mjd"), t.has("periastron_mjd")
+	switch {
+	case node && periastron:
+		t.complain("periastron_mjd", "both epochs", accepted, "")
+	case !node && !periastron:
+		t.complain("ascending_node_mjd", "no epoch", accepted, t.misspelt("ascending_node_mjd"))
+	case (periastron || o.Eccentricity > 0) && !t.has("periastron_deg"):
+		t.complain("periastron_deg", "nothing", "a number from -360 to 360: an eccentric orbit and one counted from periastron need it", "")
+	}
+}
+
+func (t *table) eclipse() *Eclipse {
+	e := t.table("eclipse", "eclipse", false)
+	if e == nil {
+		return nil
+	}
+	eclipse := &Eclipse{
+		HalfWidthTurns: e.number("half_width_turns", strictly(0, 0.5)),
+		CentreTurns:    e.numberOr("centre_turns", below(0, 1), 0.25),
+		MarginTurns:    e.numberOr("margin_turns", below(0, 0.5), 0),
+	}
+	if e.good("half_width_turns", "margin_turns") && eclipse.HalfWidthTurns+eclipse.MarginTurns >= 0.5 {
+		e.complain("margin_turns", plainNumber(eclipse.MarginTurns), fmt.Sprintf("less than %s: half width and margin stay below half a turn", plainNumber(0.5-eclipse.HalfWidthTurns)), "")
+	}
+	e.done(nil)
+	t.passOn("eclipse", e)
+	return eclipse
+}
+
+// passOn makes a key bad when something in its table is, so that nothing is concluded from it.
+func (t *table) passOn(key string, inner *table) {
+	if len(inner.bad) > 0 {
+		t.bad[key] = true
+	}
+}
