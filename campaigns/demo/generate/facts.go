@@ -84,10 +84,15 @@ func printPassages(w io.Writer, s *source) {
 	if s.orbit.periodDays < 0.5 {
 		return
 	}
+	if o := s.orbit; o.periastronMJD > 0 && o.periodDays > 2 {
+		n := math.Ceil((mjdOf(coming()[0].start) - o.periastronMJD) / o.periodDays)
+		next := observedMJD(s.position, o.periastronMJD+n*o.periodDays)
+		fmt.Fprintf(w, "    next periastron %s UTC\n", timeOf(next).Format("2006-01-02 15:04:05"))
+	}
 	for _, t := range coming() {
-		for _, c := range s.superiorConjunctions(mjdOf(t.start)-0.1, mjdOf(t.end())+0.1) {
+		for _, c := range s.superiorConjunctions(mjdOf(t.start), mjdOf(t.end())) {
 			az, el := azEl(precess(s.position, c), c)
-			fmt.Fprintf(w, "    superior conjunction %s UTC near %s: azimuth %.0f, elevation %.1f (lowest %.1f)\n",
+			fmt.Fprintf(w, "    superior conjunction %s UTC in %s: azimuth %.0f, elevation %.1f (lowest %.1f)\n",
 				timeOf(c).Format("2006-01-02 15:04:05"), t.name(), az, el, lowestDeg(az))
 		}
 	}

@@ -51,6 +51,7 @@ type orbitSketch struct {
 	advanceKnown  bool
 	decayKnown    bool
 	conjunctionAt time.Time // superior conjunction on the observatory's clock; zero: any
+	periastronAt  time.Time // likewise
 	eclipse       *eclipse
 	sigmaPeriod   float64
 	sigmaEpoch    float64
@@ -224,19 +225,24 @@ func (k *orbitSketch) invent(d dice, position vector) *orbit {
 		o.decay = roundFigures(decay(o.periodDays, o.eccentricity, k.m1, k.m2), 4)
 	}
 	epochDecimals := int(math.Round(-math.Log10(k.sigmaEpoch))) + 1
-	epoch := 60950 + d.unit()*k.periodDays
+	epoch := orbitEpochMJD + d.unit()*k.periodDays
+	switch {
+	case !k.conjunctionAt.IsZero():
+		epoch = barycentreMJD(position, mjdOf(k.conjunctionAt)) - o.semimajorLs/secondsDay - o.periodDays/4
+	case !k.periastronAt.IsZero():
+		epoch = barycentreMJD(position, mjdOf(k.periastronAt))
+	}
+	epoch = roundTo(epoch-math.Round((epoch-orbitEpochMJD)/o.periodDays)*o.periodDays, epochDecimals)
 	if k.e > 0.01 {
-		o.periastronMJD = roundTo(epoch, epochDecimals)
-		return o
+		o.periastronMJD = epoch
+	} else {
+		o.nodeMJD = epoch
 	}
-	if !k.conjunctionAt.IsZero() {
-		conjunction := barycentreMJD(position, mjdOf(k.conjunctionAt)) - o.semimajorLs/secondsDay
-		node := conjunction - o.periodDays/4
-		epoch = node - math.Round((node-60950)/o.periodDays)*o.periodDays
-	}
-	o.nodeMJD = roundTo(epoch, epochDecimals)
 	return o
 }
+
+// orbitEpochMJD is near the middle of the campaign so far: there the epochs of orbits are known best.
+const orbitEpochMJD = 61000
 
 // jName names a source after its position: hours and minutes, degrees and minutes, cut off.
 func jName(raDeg, decDeg float64) string {
