@@ -16,7 +16,7 @@ func skyK(l, b, mhz float64) float64 {
 }
 
 // lossesBeta is what digitisation and interference cost in S/N.
-const lossesBeta = 1.15
+const lossesBeta = 1.1
 
 // signal returns the S/N of a source at an elevation after so many minutes.
 //
@@ -38,9 +38,9 @@ func signal(s source, rx receiver, elDeg, minutes float64) float64 {
 
 // toaUs returns the error of a pulse arrival time: radiometer noise, jitter and floor.
 //
-//	σ² = (0.60 W/(S/N))² + σ_1h² (60 min/t) + floor²
+//	σ² = (W/(S/N))² + σ_1h² (60 min/t) + floor²
 func toaUs(s source, snr, minutes float64) float64 {
-	noise := 0.60 * s.widthMs * 1000 / snr
+	noise := s.widthMs * 1000 / snr
 	jitter := s.jitterUs * math.Sqrt(60/minutes)
 	return math.Sqrt(noise*noise + jitter*jitter + s.floorUs*s.floorUs)
 }
