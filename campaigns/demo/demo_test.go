@@ -292,3 +292,35 @@ func TestOrbitsAreConsistent(t *testing.T) {
 		t.Errorf("%d orbits with both masses and %d relativistic ones, at least 3 and 1 are wanted", checked, relativistic)
 	}
 }
+
+// TestCountsOfTurnsRunOut follows the remarks: which session is the first in which the count of a source's turns
+// is no longer sure. Position errors, which come on top, are left out.
+//
+//	σ² = σ0² + (σF t)² + (σF' t²/2)²
+func TestCountsOfTurnsRunOut(t *testing.T) {
+	c := load(t)
+	known := sourcesByName(c)
+	for name, want := range map[string]string{
+		"J0212+1858": "2026-12-07 morning",
+		"J2304+5707": "2026-12-12 evening",
+		"J0755-0913": "2026-12-30 night",
+	} {
+		s := known[name]
+		if s == nil {
+			t.Fatalf("no source is called %s", name)
+		}
+		limit := aimsOf(s, campaigns.Connect)[0].MaxPhaseErrorTurns
+		first := "none"
+		for _, session := range c.Sessions {
+			sec := (float64(session.Start.Unix())/86400 + 40587 - s.Spin.EpochMJD) * 86400
+			sigma := math.Hypot(math.Hypot(s.Spin.SigmaPhaseTurns, s.Spin.SigmaFrequencyHz*sec), s.Spin.SigmaDerivativeHzPerS*sec*sec/2)
+			if sigma > limit {
+				first = session.Name
+				break
+			}
+		}
+		if first != want {
+			t.Errorf("%s: the count of turns is lost by the session %s, its remark says %s", name, first, want)
+		}
+	}
+}

@@ -23,6 +23,7 @@ func printFacts(w io.Writer) {
 	for _, c := range claimsOf(sources) {
 		printClaim(w, c, log, now)
 	}
+	printPressure(w, sources, log, now)
 	for i := range sources {
 		s := &sources[i]
 		if s.orbit != nil {
@@ -59,6 +60,42 @@ func printClaim(w io.Writer, c *claim, log []observation, now time.Time) {
 	snr := signal(*c.s, receiverNamed(c.rx), 60, c.a.minutes)
 	fmt.Fprintf(w, "%-11s %-11s %s %4d visits, last %5.1f d ago (every %g: %.1f); S/N %.0f, TOA %.3g us in %g min at 60 deg\n",
 		c.s.chapter, c.s.name, c.rx, visits, days, c.a.everyDays, days/c.a.everyDays, snr, toaUs(*c.s, snr, c.a.minutes), c.a.minutes)
+}
+
+// printPressure compares, for each coming session, its length with the minutes of all that is due by now and
+// up long enough.
+func printPressure(w io.Writer, sources []source, log []observation, now time.Time) {
+	fmt.Fprintln(w)
+	last := map[string]time.Time{}
+	for _, o := range log {
+		if o.outcome != "lost" {
+			last[o.source+o.receiver] = o.start
+		}
+	}
+	for _, t := range coming() {
+		due, minutes := 0, 0
+		for _, c := range claimsOf(sources) {
+			cycles := now.Sub(last[c.s.name+c.rx]).Hours() / 24 / c.intervalDays(mjdOf(now))
+			if (c.a.kind == "calibration" || cycles >= 0.8) && t.has(c.rx) && minutesUp(c.s, t) >= c.minutes {
+				due, minutes = due+1, minutes+c.minutes+4
+			}
+		}
+		hour := siderealDeg(mjdOf(t.start)) / 15
+		fmt.Fprintf(w, "%-21s sidereal time %4.1f to %4.1f h: %3d visits due and possible, %4d minutes in %3d\n", t.name(),
+			hour, math.Mod(hour+float64(t.minutes)/60*1.0027, 24), due, minutes, t.minutes)
+	}
+}
+
+// minutesUp returns how long a source is inside all limits during a session.
+func minutesUp(s *source, t session) int {
+	up := 0
+	ofDate := precess(s.position, mjdOf(t.start))
+	for m := range t.minutes {
+		if visible(ofDate, mjdOf(t.start)+float64(m)/1440, math.Max(siteSunLimitDeg, s.sunLimit)) {
+			up++
+		}
+	}
+	return up
 }
 
 // printCoverage counts the visits in each bin of orbital phase from the ascending node.

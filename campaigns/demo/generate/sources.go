@@ -105,8 +105,8 @@ var sketches = []sketch{
 		aims: []aim{single(60, 15, "L")}},
 
 	// young
-	{chapter: "young", role: "Glitched on 16 November 2026. The new ephemeris rests on a few visits since, so its pulse count runs out\n" +
-		"within days: first back every day, then at growing intervals.",
+	{chapter: "young", role: "Glitched on 16 November 2026. The new ephemeris rests on the first visits since, and its pulse count runs out\n" +
+		"before the session of 12 December: back as often as can be, then at growing intervals.",
 		raH: 23.08, decDeg: 57.2, priority: 4, periodS: 0.1117, slowdown: 2.6e-14, dm: 168, mjy: 1.9, index: -1.4, duty: 0.048,
 		sigmas: &spinSigmas{61368, 0.004, 6e-8, 6e-14}, positions: [2]float64{120, 140}, glitchMJD: 61360.41,
 		aims: []aim{single(14, 20, "L").growing("2026-11-17", 1, 1.5).gap(0.5).noted("daily after the glitch, a factor 1.5 longer each time"), connect(0.1)}},
@@ -186,12 +186,12 @@ var sketches = []sketch{
 	{chapter: "new", role: "Found on 21 October 2026 and seen three times; storms and busier sources have kept it waiting since\n" +
 		"12 November. Without a visit on 3 December the count of its turns is a guess by the session of 7 December.",
 		raH: 2.21, decDeg: 18.9, priority: 3, periodS: 0.00472, slowdown: 1.5e-20, dm: 45, mjy: 0.7, index: -1.8, duty: 0.060,
-		sigmas: &spinSigmas{61348, 0.012, 3.0e-8, 1e-14}, positions: [2]float64{60, 85}, found: on(2026, 10, 21, 0, 0), missed: on(2026, 11, 18, 0, 0),
+		sigmas: &spinSigmas{61348, 0.012, 3.2e-8, 1e-14}, positions: [2]float64{60, 85}, found: on(2026, 10, 21, 0, 0), missed: on(2026, 11, 18, 0, 0),
 		aims: []aim{single(28, 30, "L").growing("2026-10-21", 2, 1.6).gap(0.5).noted("gaps that grow as the ephemeris does"), connect(0.1)}},
-	{chapter: "new", role: "Found on 8 November 2026 at the edge of a beam. Slow enough to be in no hurry before Christmas, but\n" +
-		"its position is known only to a quarter of a second of arc.",
+	{chapter: "new", role: "Found on 8 November 2026 at the edge of a beam. Slow enough to be in no hurry before Christmas: the count\n" +
+		"of its turns holds until the session of 30 December. Its position is known only to a quarter of an arcsecond.",
 		raH: 7.92, decDeg: -9.3, priority: 2.5, periodS: 0.02531, slowdown: 3.8e-18, dm: 88, mjy: 0.6, index: -1.6, duty: 0.045,
-		sigmas: &spinSigmas{61366, 0.015, 2.1e-8, 1.2e-14}, positions: [2]float64{250, 310}, found: on(2026, 11, 8, 0, 0),
+		sigmas: &spinSigmas{61366, 0.015, 2.1e-8, 1.3e-14}, positions: [2]float64{250, 310}, found: on(2026, 11, 8, 0, 0),
 		aims: []aim{single(28, 30, "L").growing("2026-11-08", 2, 1.6).gap(0.5), connect(0.1)}},
 
 	// binaries
