@@ -72,7 +72,11 @@ type Cause struct {
 
 // String names the cause in plain words: "elevation 8°".
 func (c Cause) String() string {
-	n := strconv.FormatFloat(math.Round(c.Deg*10)/10, 'f', -1, 64)
+	parts := 1000.0
+	if c.Kind == HorizonMask {
+		parts = 10 // a point on a line, not a number somebody chose
+	}
+	n := strconv.FormatFloat(math.Round(c.Deg*parts)/parts, 'f', -1, 64)
 	switch c.Kind {
 	case Interval:
 		return "end of the interval"

@@ -132,8 +132,15 @@ func (c *scan) atAzimuth(az, a, b float64) float64 {
 		n := z*s.cosLat - m*s.sinLat
 		return (s.spin-w)*cos - n*sin, (-m*cos - w*s.sinLat*sin) * earthRotationPerDay
 	}
-	v, _ := g(b)
-	return solve(g, a, b, v >= 0)
+	va, _ := g(a)
+	vb, _ := g(b)
+	if (va >= 0) == (vb >= 0) { // one end lies on the plane, but for rounding
+		if math.Abs(va) < math.Abs(vb) {
+			return a
+		}
+		return b
+	}
+	return solve(g, a, b, vb >= 0)
 }
 
 // maskPiece goes on with the flips of one piece under one straight line of the mask.

@@ -162,7 +162,7 @@ func (c *scan) sunDistance(limitDeg float64) {
 	cosLimit := math.Cos(limitDeg * radPerDeg)
 	g := func(x float64) (v, d float64) {
 		s, p := c.frame.sun.vector(x), c.place.vector(x)
-		return cosLimit - s.dot(p), -c.frame.sun.slope(x).dot(p)
+		return cosLimit*math.Sqrt(s.dot(s)*p.dot(p)) - s.dot(p), -c.frame.sun.slope(x).dot(p)
 	}
 	// The Sun moves 1.02° a day at most: where it is far from the limit there is nothing to find.
 	middle := (c.x0 + c.x1) / 2
@@ -216,27 +216,30 @@ func (c *scan) azimuthRate(degPerMin float64) {
 		v = margin(x)
 		return v, (margin(x+e) - margin(x-e)) / (2 * e)
 	}
-	// The rate is at most |sin φ| + cos φ tan |el|: lower than this, nothing to look for.
+	// The rate is at most |sin φ| + cos φ tan el: lower than this there is nothing to look for, and what is
+	// below the horizontal plane, where the rate grows again, is not followed anyway.
 	steep := math.Atan2(fastest-math.Abs(s.sinLat), s.cosLat)
 	sinSteep := math.Sin(steep)
 	v, _ := g(c.x0)
 	c.flips.begin(v >= 0)
 	for i := 0; i+1 < len(c.knots); i++ {
 		a, b := c.knots[i], c.knots[i+1]
-		if max(a.sinEl, b.sinEl) <= sinSteep {
-			if steep > 0 {
-				c.flips.set(a.x, true)
-				continue
-			}
+		if steep > 0 && max(a.sinEl, b.sinEl) <= sinSteep {
+			c.flips.set(a.x, true)
+			continue
 		}
 		xa, xb := a.x, b.x
 		if steep > 0 && a.sinEl < sinSteep {
 			xa = c.cross(i, sinSteep)
+			c.flips.set(a.x, true)
 		}
 		if steep > 0 && b.sinEl < sinSteep {
 			xb = c.cross(i, sinSteep)
 		}
 		c.walk(g, xa, xb, 0.01)
+		if xb < b.x {
+			c.flips.set(xb, true)
+		}
 	}
 	c.keep(true, AzimuthRate)
 }
