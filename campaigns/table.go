@@ -115,7 +115,11 @@ func (t *table) done(reason func(key string) (found, accepted string, ok bool)) 
 				free = append(free, k)
 			}
 		}
-		t.complain(key, "a key that is not known here", "one of the keys "+strings.Join(t.known, ", "), didYouMean(key, free))
+		hint := didYouMean(key, free)
+		if there := nearest(key, t.known, 1); hint == "" && len(there) > 0 {
+			hint = fmt.Sprintf("%q is there already", there[0])
+		}
+		t.complain(key, "a key that is not known here", "one of the keys "+strings.Join(t.known, ", "), hint)
 	}
 }
 
@@ -413,7 +417,7 @@ func (t *table) minute(key string) time.Time {
 	}
 	when, ok := asMinute(v)
 	if !ok {
-		t.complain(key, describe(v), acceptedInstant, "")
+		t.complain(key, describe(v), acceptedInstant, quotedDate(v))
 	}
 	return when
 }
@@ -425,11 +429,11 @@ func (t *table) day(key string, needed bool) time.Time {
 		return time.Time{}
 	}
 	when, ok := v.(time.Time)
-	if !ok || isLocal(when, "datetime-local") || isLocal(when, "time-local") {
+	if !ok || hasNoZone(when) && when.Location().String() != localDate {
 		t.complain(key, describe(v), acceptedDay, quotedDate(v))
 		return time.Time{}
 	}
-	if isLocal(when, "date-local") {
+	if when.Location().String() == localDate {
 		when = time.Date(when.Year(), when.Month(), when.Day(), 0, 0, 0, 0, time.UTC)
 	}
 	if when.Before(earliest) || !when.Before(latest) {
@@ -441,15 +445,22 @@ func (t *table) day(key string, needed bool) time.Time {
 
 func asMinute(v any) (time.Time, bool) {
 	when, ok := v.(time.Time)
-	if !ok || isLocal(when, "-local") || when.Second() != 0 || when.Nanosecond() != 0 || when.Before(earliest) || !when.Before(latest) {
+	if !ok || hasNoZone(when) || when.Second() != 0 || when.Nanosecond() != 0 || when.Before(earliest) || !when.Before(latest) {
 		return time.Time{}, false
 	}
 	return when.UTC(), true
 }
 
-// isLocal recognises dates and times without a zone by the name that the TOML library gives to their location.
-func isLocal(when time.Time, kind string) bool {
-	return strings.HasSuffix(when.Location().String(), kind)
+// The TOML library marks dates and times without a zone by the name of their location.
+const (
+	localDate     = "date-local"
+	localTime     = "time-local"
+	localDateTime = "datetime-local"
+)
+
+func hasNoZone(when time.Time) bool {
+	name := when.Location().String()
+	return name == localDate || name == localTime || name == localDateTime
 }
 
 // asNumber takes whole numbers for numbers. What is too large to be exact is refused rather than rounded.
@@ -509,12 +520,12 @@ func written(v any, depth int) string {
 	case bool:
 		return strconv.FormatBool(v)
 	case time.Time:
-		switch {
-		case isLocal(v, "date-local"):
+		switch v.Location().String() {
+		case localDate:
 			return v.Format("2006-01-02")
-		case isLocal(v, "time-local"):
+		case localTime:
 			return v.Format("15:04:05.999999999")
-		case isLocal(v, "datetime-local"):
+		case localDateTime:
 			return v.Format("2006-01-02T15:04:05.999999999") + " without a zone"
 		}
 		return v.Format(time.RFC3339Nano)
