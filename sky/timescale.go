@@ -81,17 +81,21 @@ func TTMinusUTCSec(t time.Time) float64 {
 
 // TDBMinusTTSec returns TDB − TT in seconds.
 //
-//	0.001657 sin g + 0.000022 sin(L − L_J),  g = 357.53° + 0.98560028° d
+//	0.001657 sin(628.3076 T + 6.2401) + six terms of 22 µs and less, T in Julian centuries since J2000.0
 //
 // Given:    MJD of TT (or UTC: the difference moves it by less than a nanosecond)
-// Neglects: smaller terms and the place on the Earth, 30 µs in all
-// Source:   Astronomical Almanac, section B; Explanatory Supplement 1992, eq. 2.222-1
-// Checked:  TestTimeScales
+// Neglects: smaller terms and the place on the Earth, 10 µs in all
+// Source:   Kaplan 2005, USNO Circular 179, eq. 2.6
+// Checked:  TestTimeScales (AST-080)
 func TDBMinusTTSec(mjd float64) float64 {
-	d := mjd - j2000MJD
-	g := (357.53 + 0.98560028*d) * radPerDeg
-	lj := (246.11 + 0.90251792*d) * radPerDeg
-	return 0.001657*math.Sin(g) + 0.000022*math.Sin(lj)
+	t := (mjd - j2000MJD) / daysPerCentury
+	return 0.001657*math.Sin(628.3076*t+6.2401) +
+		0.000022*math.Sin(575.3385*t+4.2970) +
+		0.000014*math.Sin(1256.6152*t+6.1969) +
+		0.000005*math.Sin(606.9777*t+4.0212) +
+		0.000005*math.Sin(52.9691*t+0.4444) +
+		0.000002*math.Sin(21.3299*t+5.5431) +
+		0.000010*t*math.Sin(628.3076*t+4.2490)
 }
 
 // jdTT returns the Julian day of TT at a UTC instant.
