@@ -1,0 +1,235 @@
+package sched
+
+import (
+	"context"
+	"fmt"
+	"slices"
+	"sync"
+)
+
+// Options say how much work Solve does. The zero value is the default effort.
+type Options struct {
+	Rounds   int          // rounds of re-planning after the first plan; 0 is the default, below 0 none
+	Warm     *Plan        // a plan to start from: its slots are kept where they still fit
+	Workers  int          // goroutines; the plan does not depend on their number; 0 is 1
+	Progress func(Result) // called after the first plan and after every round, by the caller's goroutine
+}
+
+// A Result is the best plan found, and what is known of it.
+type Result struct {
+	Plan       Plan
+	Worth      Micro
+	Ceiling    Micro // no plan is worth more, with the same grid and rules
+	HasCeiling bool  // a ceiling has been proved; there is none otherwise
+	Rounds     int   // rounds of re-planning done
+	Proven     bool  // no plan is worth more than this one
+}
+
+const (
+	defaultRounds = 8
+	lanes         = 2 // searches side by side: fixed, so that the number of workers changes nothing
+)
+
+// Solve plans a session: it keeps the pins, leaves out what is barred, includes the jobs that must be
+// there where that is possible, and otherwise maximises worth. The same problem and the same options give
+// the same plan on any processor and with any number of workers.
+//
+// It fails, without a plan, on a malformed problem and on pins that cannot follow one another. When ctx
+// ends it stops after the round in progress and returns the best plan so far together with ctx's error.
+func Solve(ctx context.Context, p *Problem, o Options) (Result, error) {
+	if err := p.Check(); err != nil {
+		return Result{}, fmt.Errorf("malformed problem: %w", err)
+	}
+	if err := p.checkPinsMeet(); err != nil {
+		return Result{}, err
+	}
+	s := newSearch(p, o)
+	s.first()
+	s.report(o)
+	rounds := o.Rounds
+	if rounds == 0 {
+		rounds = defaultRounds
+	}
+	for s.rounds < rounds {
+		if err := ctx.Err(); err != nil {
+			return s.result(), err
+		}
+		s.round(o.Workers, rounds)
+		s.report(o)
+	}
+	return s.result(), ctx.Err()
+}
+
+// checkPinsMeet finds the pair of pins that cannot follow one another. Time already past is not judged.
+func (p *Problem) checkPinsMeet() error {
+	for i := 1; i < len(p.Pins); i++ {
+		a, b := p.Pins[i-1], p.Pins[i]
+		if b.Start < p.FromMin {
+			continue
+		}
+		if b.Start < a.End {
+			return fmt.Errorf("pins clash: %s until %s overlaps %s from %s by %d min; unpin or move one of them",
+				p.nodeName(a.Node), p.clock(a.End), p.nodeName(b.Node), p.clock(b.Start), a.End-b.Start)
+		}
+		if setup := p.SetupBetween(a.Node, a.End, b.Node, b.Start); b.Start < setup.ReadyMin {
+			return fmt.Errorf("pins clash: %s from %s starts %d min too early after %s until %s: %s; unpin or move one of them",
+				p.nodeName(b.Node), p.clock(b.Start), setup.ReadyMin-b.Start, p.nodeName(a.Node), p.clock(a.End), p.describe(setup, b.Node))
+		}
+	}
+	return nil
+}
+
+// A search holds the best plan so far and the lanes that look for a better one.
+type search struct {
+	t      *tables
+	prices []Micro
+	lanes  []*lane
+	best   []Slot
+	value  Micro
+	rounds int
+	notes  map[int]string // by node, from the warm plan
+}
+
+func newSearch(p *Problem, o Options) *search {
+	t := newTables(p)
+	s := &search{t: t, prices: t.minutePrices(), value: unreachable, notes: map[int]string{}}
+	for i := range lanes {
+		s.lanes = append(s.lanes, newLane(t, s.prices, uint64(i)))
+	}
+	if o.Warm != nil {
+		s.offer(s.lanes[0].complete(s.warm(*o.Warm)))
+		for _, slot := range o.Warm.Slots {
+			if slot.Note != "" && slot.Node >= 0 && slot.Node < len(p.Nodes) {
+				s.notes[slot.Node] = slot.Note
+			}
+		}
+	}
+	return s
+}
+
+func (s *search) offer(slots []Slot) {
+	if v := s.t.value(slots); v > s.value {
+		s.best, s.value = slots, v
+	}
+}
+
+// priceScales are the shares of the prices at which the first plans are made. The paths of the sweep
+// keep only their best past, so that the price at which jobs are best not taken too soon has to be tried.
+var priceScales = []float64{0.95, 0.85, 0.7}
+
+// first makes plans from nothing and keeps the best.
+func (s *search) first() {
+	for _, scale := range priceScales {
+		s.offer(s.lanes[0].fromNothing(scale))
+	}
+	for _, l := range s.lanes {
+		l.start(s.best, s.value)
+	}
+}
+
+// round lets every lane re-plan for a while, then gives the best plan to the lane that is furthest behind.
+func (s *search) round(workers, rounds int) {
+	heat := 1 - float64(s.rounds+1)/float64(rounds)
+	if workers > 1 {
+		var wg sync.WaitGroup
+		for _, l := range s.lanes {
+			wg.Go(func() { l.replan(heat) })
+		}
+		wg.Wait()
+	} else {
+		for _, l := range s.lanes {
+			l.replan(heat)
+		}
+	}
+	worst := s.lanes[0]
+	for _, l := range s.lanes {
+		if l.bestValue > s.value {
+			s.best, s.value = l.best, l.bestValue
+		}
+		if l.value < worst.value {
+			worst = l
+		}
+	}
+	worst.start(s.best, s.value)
+	s.rounds++
+}
+
+func (s *search) result() Result {
+	slots := slices.Clone(s.best)
+	for i := range slots {
+		if note, ok := s.notes[slots[i].Node]; ok && !slots[i].Pinned {
+			slots[i].Note = note
+		}
+	}
+	plan := Plan{Slots: slots}
+	return Result{Plan: plan, Worth: s.t.p.PlanWorth(plan), Rounds: s.rounds}
+}
+
+func (s *search) report(o Options) {
+	if o.Progress != nil {
+		o.Progress(s.result())
+	}
+}
+
+// warm returns what of the plan still fits the problem, with the problem's pins.
+func (s *search) warm(plan Plan) []Slot {
+	t, p := s.t, s.t.p
+	slots := pinned(p)
+	set := make([]uint64, t.words)
+	for _, pin := range slots {
+		t.spend(set, p.Nodes[pin.Node].Job)
+	}
+	for _, slot := range plan.Sorted().Slots {
+		if slot.Node < 0 || slot.Node >= len(p.Nodes) || slices.ContainsFunc(slots, slot.same) {
+			continue
+		}
+		slot.Pinned = false
+		job := p.Nodes[slot.Node].Job
+		if t.spent(set, job) || !t.allows(slot) {
+			continue
+		}
+		at, _ := slices.BinarySearchFunc(slots, slot, compareSlots)
+		if p.fitsAt(slots, at, slot) {
+			slots = slices.Insert(slots, at, slot)
+			t.spend(set, job)
+		}
+	}
+	return slots
+}
+
+func (s Slot) same(o Slot) bool { return s.Node == o.Node && s.Start == o.Start && s.End == o.End }
+
+// allows tells whether the search could have made this slot.
+func (t *tables) allows(s Slot) bool {
+	j := t.p.Jobs[t.p.Nodes[s.Node].Job]
+	if s.Start < 0 || s.End > t.p.Minutes || s.End%t.p.GridMin != 0 || s.End-s.Start < j.MinMin || s.End-s.Start > j.MaxMin {
+		return false
+	}
+	from := t.winFrom[s.Node*t.span+s.End]
+	return from != None && int(from) <= s.Start
+}
+
+// fitsAt tells whether the slot can stand before slots[at], with the setups on both sides of it.
+func (p *Problem) fitsAt(slots []Slot, at int, s Slot) bool {
+	from, end := None, 0
+	if at > 0 {
+		from, end = slots[at-1].Node, slots[at-1].End
+	}
+	if s.Start < end || s.Start < p.SetupBetween(from, end, s.Node, s.Start).ReadyMin {
+		return false
+	}
+	if at == len(slots) {
+		return true
+	}
+	next := slots[at]
+	return s.End <= next.Start && p.SetupBetween(s.Node, s.End, next.Node, next.Start).ReadyMin <= next.Start
+}
+
+// pinned returns the problem's pins as slots of a plan.
+func pinned(p *Problem) []Slot {
+	slots := slices.Clone(p.Pins)
+	for i := range slots {
+		slots[i].Pinned = true
+	}
+	return slots
+}
