@@ -1,0 +1,120 @@
+package campaigns
+
+import (
+	"fmt"
+	"sort"
+	"time"
+)
+
+// Arrears returns every account of the campaign at a moment, worst first: what each aim of each source is
+// owed, and when it can next be observed in a session that has not ended. Sources with the same debt stand
+// in the order of their names.
+//
+// A debt of 1 is due now. It counts cycles for a cadence; the share still missing for phase coverage and
+// conjunctions; how far the error is above the goal for a measurement, in halvings; the predicted phase
+// error over its limit for a count of turns; and nothing for a calibration, which every session needs.
+func Arrears(c *Campaign, log *Logbook, at time.Time) ([]AccountRow, error) {
+	b := open(c, log, at)
+	rows, err := accountRows(c, b)
+	if err != nil {
+		return nil, err
+	}
+	next, err := nextWindows(c, at)
+	if err != nil {
+		return nil, err
+	}
+	for i := range rows {
+		r := &rows[i]
+		if w, ok := next.of(r.Source, r.Receivers); ok {
+			r.NextStart, r.NextEnd, r.NextSession = w.start, w.end, w.session
+		} else {
+			r.Flags = append(r.Flags, "not up in any coming session")
+		}
+	}
+	return rows, nil
+}
+
+// accountRows makes a row for each aim of each source, worst first.
+func accountRows(c *Campaign, b *books) ([]AccountRow, error) {
+	var rows []AccountRow
+	for i := range c.Sources {
+		k, err := newKnowledge(&c.Sources[i], b.frames)
+		if err != nil {
+			return nil, err
+		}
+		for j := range c.Sources[i].Aims {
+			row, err := b.accountRow(k, &c.Sources[i].Aims[j])
+			if err != nil {
+				return nil, err
+			}
+			rows = append(rows, row)
+		}
+	}
+	sort.SliceStable(rows, func(i, j int) bool {
+		if rows[i].Debt != rows[j].Debt {
+			return rows[i].Debt > rows[j].Debt
+		}
+		return rows[i].Source < rows[j].Source
+	})
+	return rows, nil
+}
+
+func (b *books) accountRow(k *knowledge, aim *Aim) (AccountRow, error) {
+	row := AccountRow{
+		Source: k.source.Name, Aim: aim.label(), Kind: aim.Kind, Receivers: aim.Receivers, Priority: k.source.Priority,
+		Last: b.last(k.source.Name, aim.Receivers),
+	}
+	switch aim.Kind {
+	case Cadence:
+		a := b.cadence(k.source, aim)
+		row.Debt, row.Due, row.Why, row.Last = a.Debt, a.Due, a.Why, a.Last
+		if a.ramping {
+			row.Flags = append(row.Flags, fmt.Sprintf("ramp since %s", aim.Ramp.From.Format(time.DateOnly)))
+		}
+	case PhaseCoverage:
+		c := b.coverage(k, aim)
+		row.Debt, row.Why = c.debt(), c.why()
+	case Conjunction:
+		c := b.passages(k, aim)
+		row.Debt, row.Why = c.debt(), c.why()
+	case Measure:
+		m, err := b.measured(k, aim)
+		if err != nil {
+			return row, err
+		}
+		row.Debt, row.Why = m.debt(), m.why()
+	case Connect:
+		n, err := b.connected(k, aim)
+		if err != nil {
+			return row, err
+		}
+		row.Debt, row.Due, row.Why = n.debt(), n.deadline, n.why()
+	case Calibration:
+		row.Why = fmt.Sprintf("every session needs %s", count(aim.PerSession, "slot"))
+	}
+	if row.Debt > 1 {
+		row.Flags = append(row.Flags, "overdue")
+	}
+	if k.source.GlitchMJD > 0 && aim.Kind == Connect {
+		row.Flags = append(row.Flags, "glitch "+k.glitch.Format(time.DateOnly))
+	}
+	return row, nil
+}
+
+func count(n int, thing string) string {
+	if n == 1 {
+		return "1 " + thing
+	}
+	return fmt.Sprintf("%d %ss", n, thing)
+}
+
+// last is when a source was last observed with any of the receivers; zero if never.
+func (b *books) last(source string, receivers []string) time.Time {
+	var last time.Time
+	for _, v := range b.visits(source, receivers) {
+		if v.At.After(last) {
+			last = v.At
+		}
+	}
+	return last
+}

@@ -1,0 +1,85 @@
+package campaigns
+
+import (
+	"fmt"
+	"math"
+	"time"
+
+	"example.org/tallystick/sched"
+)
+
+// Saved is the plan as it is kept in the campaign's folder.
+func (p *Prepared) Saved(plan sched.Plan, r sched.Result, version string) *SavedPlan {
+	s := &SavedPlan{
+		Session: p.Session.Name, Campaign: p.Campaign.Name, MadeAt: p.At.UTC(), Version: version,
+		GridMin: p.Problem.GridMin, Worth: inUnits(p.Problem.PlanWorth(plan)),
+	}
+	if r.HasCeiling {
+		s.Ceiling = inUnits(r.Ceiling)
+	}
+	barred := map[string]bool{}
+	for _, j := range p.Problem.Jobs {
+		if j.Barred && !barred[j.Source] {
+			barred[j.Source] = true
+			s.Bars = append(s.Bars, j.Source)
+		}
+	}
+	for _, slot := range plan.Slots {
+		node := p.Problem.Nodes[slot.Node]
+		job := p.Problem.Jobs[node.Job]
+		s.Slots = append(s.Slots, SavedSlot{
+			Source: job.Source, Receiver: p.Problem.Receivers[job.Receiver].Name,
+			Start: p.Instant(slot.Start), End: p.Instant(slot.End),
+			Turn: p.turnAt(node, slot.Start), Pinned: slot.Pinned, Note: slot.Note,
+		})
+	}
+	return s
+}
+
+func inUnits(m sched.Micro) float64 { return float64(m) / float64(sched.Unit) }
+
+// Bind finds a saved plan's slots in the prepared session. What no longer fits anything there, because
+// the campaign has changed since, comes back in words.
+func (p *Prepared) Bind(saved *SavedPlan) (plan sched.Plan, lost []string) {
+	for _, s := range saved.Slots {
+		node, ok := p.nodeFor(s)
+		switch {
+		case !ok:
+			lost = append(lost, fmt.Sprintf("%s with %s at %s: no aim of this campaign asks for it in this session",
+				s.Source, s.Receiver, s.Start.UTC().Format("15:04")))
+		case s.Start.After(p.Session.End) || s.End.Before(p.Session.Start):
+			lost = append(lost, fmt.Sprintf("%s with %s at %s: outside the session",
+				s.Source, s.Receiver, s.Start.UTC().Format(time.RFC3339)))
+		default:
+			plan.Slots = append(plan.Slots, sched.Slot{
+				Node: node, Start: p.Minute(s.Start), End: p.Minute(s.End), Pinned: s.Pinned, Note: s.Note,
+			})
+		}
+	}
+	return plan.Sorted(), lost
+}
+
+// nodeFor finds the node of a saved slot: its source and receiver, on the cable turn it was saved with
+// or, where that is no longer to be had, the nearest.
+func (p *Prepared) nodeFor(s SavedSlot) (int, bool) {
+	best, away := -1, math.MaxInt
+	for i, n := range p.Problem.Nodes {
+		j := p.Problem.Jobs[n.Job]
+		if j.Source != s.Source || p.Problem.Receivers[j.Receiver].Name != s.Receiver {
+			continue
+		}
+		d := p.turnAt(n, p.Minute(s.Start)) - s.Turn
+		if d < 0 {
+			d = -d
+		}
+		if d < away {
+			best, away = i, d
+		}
+	}
+	return best, best >= 0
+}
+
+// turnAt is the cable turn of a node at a minute: mount azimuth = compass azimuth + 360 × turn.
+func (p *Prepared) turnAt(n sched.Node, minute int) int {
+	return int(math.Floor(p.mountAzimuth(n, p.clamp(minute)) / 360))
+}

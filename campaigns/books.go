@@ -1,0 +1,85 @@
+package campaigns
+
+import (
+	"sort"
+	"time"
+
+	"example.org/tallystick/sched"
+)
+
+// books are the accounts of a campaign at one moment: a pure function of the campaign, the logbook and
+// that moment.
+type books struct {
+	at       time.Time
+	opened   time.Time          // when the logbook begins
+	entries  map[string][]Entry // what was done or partly done before the moment, by source, in time order
+	frames   *frames
+	sessions []Session // in order of their start
+}
+
+// open reads the logbook up to a moment. Lines that are later, or lost, pay nothing.
+func open(c *Campaign, log *Logbook, at time.Time) *books {
+	b := &books{at: at, opened: at, entries: map[string][]Entry{}, frames: newFrames(), sessions: c.Sessions}
+	if log == nil {
+		return b
+	}
+	for _, e := range log.Effective() {
+		if !e.End.Before(at) && !e.Start.Before(at) {
+			continue
+		}
+		if e.Start.Before(b.opened) {
+			b.opened = e.Start
+		}
+		if e.paid() > 0 {
+			b.entries[e.Source] = append(b.entries[e.Source], e)
+		}
+	}
+	for _, list := range b.entries {
+		sort.SliceStable(list, func(i, j int) bool { return list[i].Start.Before(list[j].Start) })
+	}
+	return b
+}
+
+// paid is the share of the wanted sensitivity that an observation reached.
+func (e *Entry) paid() float64 {
+	if e.Outcome == Lost {
+		return 0
+	}
+	return e.Quality
+}
+
+func (e *Entry) middle() time.Time { return e.Start.Add(e.End.Sub(e.Start) / 2) }
+
+func (e *Entry) minutes() float64 { return e.End.Sub(e.Start).Minutes() }
+
+// visits are the observations of a source with any of the receivers.
+func (b *books) visits(source string, receivers []string) []sched.Visit {
+	var out []sched.Visit
+	for _, e := range b.entries[source] {
+		for _, r := range receivers {
+			if e.Receiver == r {
+				out = append(out, sched.Visit{At: e.middle(), Receiver: r, Paid: e.paid()})
+			}
+		}
+	}
+	return out
+}
+
+// A cadenceAccount is what a cadence aim is owed, as a whole and by receiver.
+type cadenceAccount struct {
+	sched.Account
+	needs   []sched.ReceiverNeed
+	ramping bool // its interval is still growing towards every_days
+}
+
+func (b *books) cadence(source *Source, aim *Aim) cadenceAccount {
+	rule := sched.CadenceRule{
+		EveryDays: aim.EveryDays, PairDays: aim.PairDays, Carry: aim.Carry, MinGapDays: aim.MinGapDays,
+		MinFraction: aim.MinFraction, Receivers: aim.Receivers,
+	}
+	if aim.Ramp != nil {
+		rule.Ramp = &sched.Ramp{From: aim.Ramp.From, FirstDays: aim.Ramp.FirstDays, Factor: aim.Ramp.Factor}
+	}
+	a := rule.Balance(b.opened, b.visits(source.Name, aim.Receivers), b.at)
+	return cadenceAccount{Account: a, needs: rule.Needs(a, b.at), ramping: rule.IntervalDaysAt(b.at) < rule.EveryDays}
+}

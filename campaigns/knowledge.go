@@ -1,0 +1,193 @@
+package campaigns
+
+import (
+	"fmt"
+	"math"
+	"time"
+
+	"example.org/tallystick/sched"
+	"example.org/tallystick/sky"
+	"example.org/tallystick/sky/orbit"
+)
+
+// knowledge is what is known of one source at one moment: its ephemeris and what the logbook has added.
+type knowledge struct {
+	source *Source
+	clock  clock
+	glitch time.Time // zero: none
+}
+
+func newKnowledge(source *Source, f *frames) (*knowledge, error) {
+	k := &knowledge{source: source, clock: clock{target: source.target(), frames: f}}
+	if source.GlitchMJD > 0 {
+		k.glitch = utcOf(source.GlitchMJD)
+	}
+	if source.Orbit != nil {
+		o, err := orbit.New(source.Orbit.elements())
+		if err != nil {
+			return nil, fmt.Errorf("%s: %w", source.Name, err)
+		}
+		k.clock.orbit = &o
+	}
+	return k, nil
+}
+
+func (s *Source) target() sky.Target {
+	return sky.Target{
+		RADeg: s.RADeg, DecDeg: s.DecDeg, PMRAMasPerYr: s.PMMasPerYr[0], PMDecMasPerYr: s.PMMasPerYr[1],
+		EpochMJD: s.PositionMJD,
+	}
+}
+
+func (o *Orbit) elements() orbit.Elements {
+	return orbit.Elements{
+		PeriodDays: o.PeriodDays, AscendingNodeMJD: o.AscendingNodeMJD, PeriastronMJD: o.PeriastronMJD,
+		SemimajorLs: o.SemimajorLs, Eccentricity: o.Eccentricity, PeriastronDeg: o.PeriastronDeg,
+		AdvanceDegPerYr: o.AdvanceDegPerYr, Decay: o.Decay,
+	}
+}
+
+// sigmas are the errors of the orbit. Those of an eclipsing system are let wander beyond its data.
+func (o *Orbit) sigmas() orbit.Sigmas {
+	s := orbit.Sigmas{EpochDays: o.SigmaEpochDays, PeriodDays: o.SigmaPeriodDays}
+	if o.Eclipse != nil {
+		s.WanderSecPerYr = orbit.DefaultWanderSecPerYr
+	}
+	return s
+}
+
+func (e *Eclipse) orbit() orbit.Eclipse {
+	return orbit.Eclipse{CentreTurns: e.CentreTurns, HalfWidthTurns: e.HalfWidthTurns, MarginTurns: e.MarginTurns}
+}
+
+// phase is the orbital phase heard at t, turns from the ascending node.
+func (k *knowledge) phase(t time.Time) float64 { return k.clock.orbit.Phase(k.clock.orbitMJD(t)) }
+
+// A passage is one superior conjunction as it is heard at the observatory.
+type passage struct {
+	centre   time.Time
+	halfWide time.Duration // the aim's half-width, widened where the orbit is not known better
+	trust    orbit.Prediction
+}
+
+// superior returns the superior conjunctions whose windows touch the time from one instant to another.
+func (k *knowledge) superior(halfWidthTurns float64, from, to time.Time) []passage {
+	o := k.clock.orbit
+	period := time.Duration(o.PeriodDays * 24 * float64(time.Hour))
+	reach := time.Duration(halfWidthTurns*float64(period)) + 20*time.Minute
+	var out []passage
+	for _, mjd := range o.Conjunctions(orbit.Superior, tdbMJD(from.Add(-reach)), tdbMJD(to.Add(reach))) {
+		// Orbit time and observatory time are within ten minutes and the orbit's own light time of one another.
+		p := passage{centre: k.clock.heardAt(mjd, utcOf(mjd)), trust: o.ConjunctionError(k.source.Orbit.sigmas(), mjd)}
+		p.halfWide = time.Duration(p.trust.WidenedTurns(halfWidthTurns) * float64(period))
+		if p.centre.Add(p.halfWide).After(from) && p.centre.Add(-p.halfWide).Before(to) {
+			out = append(out, p)
+		}
+	}
+	return out
+}
+
+// coverage is how often each orbital-phase bin of an aim has been visited.
+type coverage struct {
+	aim   *Aim
+	needs []float64 // by bin: the share of its visits that is missing
+}
+
+// missing is the number of visits that a bin lacks.
+func (c coverage) missing(bin int) float64 { return c.needs[bin] * float64(c.aim.PerBin) }
+
+// debt is the share of all visits that is missing.
+func (c coverage) debt() float64 {
+	sum := 0.0
+	for _, n := range c.needs {
+		sum += n
+	}
+	return sum / float64(len(c.needs))
+}
+
+func (c coverage) why() string {
+	empty := 0
+	for _, n := range c.needs {
+		if n > 0.99 {
+			empty++
+		}
+	}
+	all := c.aim.Bins * c.aim.PerBin
+	return fmt.Sprintf("%.1f of %d visits missing, %d of %d bins empty", c.debt()*float64(all), all, empty, c.aim.Bins)
+}
+
+// coverage counts the visits of a phase coverage aim since its date. A minute counts in the bin it falls in
+// until the visit is full; a visit is full after the wanted minutes or, where that is shorter, the whole bin.
+func (b *books) coverage(k *knowledge, aim *Aim) coverage {
+	full := binMinutes(aim, k.source.Orbit)
+	var visits []sched.PhaseVisit
+	for _, e := range b.entries[k.source.Name] {
+		if e.Start.Before(aim.Since) || !aim.wants(e.Receiver) {
+			continue
+		}
+		gathered := make([]float64, aim.Bins)
+		for t := e.Start; t.Before(e.End); t = t.Add(time.Minute) {
+			gathered[binOf(k.phase(t), aim.Bins)] += math.Min(1, e.End.Sub(t).Minutes())
+		}
+		for i, g := range gathered {
+			if g > 0 {
+				middle := (float64(i) + 0.5) / float64(aim.Bins)
+				visits = append(visits, sched.PhaseVisit{Turns: middle, Paid: e.paid() * math.Min(1, g/full)})
+			}
+		}
+	}
+	return coverage{aim: aim, needs: sched.PhaseNeeds(aim.Bins, aim.PerBin, visits)}
+}
+
+// binMinutes is how long a visit of a phase bin lasts.
+func binMinutes(aim *Aim, o *Orbit) float64 {
+	return math.Min(aim.Minutes, o.PeriodDays*24*60/float64(aim.Bins))
+}
+
+func binOf(phase float64, bins int) int { return min(int(phase*float64(bins)), bins-1) }
+
+// passages is what has been caught of a conjunction aim's passages.
+type passages struct {
+	wanted int
+	need   float64 // the share of the wanted that is missing
+}
+
+func (p passages) missing() float64 { return p.need * float64(p.wanted) }
+func (p passages) debt() float64    { return p.need }
+func (p passages) why() string {
+	return fmt.Sprintf("%.1f of %d passages caught", float64(p.wanted)-p.missing(), p.wanted)
+}
+
+// passages counts what has been caught since the aim's date: of each passage the share of its weight.
+func (b *books) passages(k *knowledge, aim *Aim) passages {
+	var caught []float64
+	var last time.Time
+	for _, e := range b.entries[k.source.Name] {
+		if e.Start.Before(aim.Since) || !aim.wants(e.Receiver) {
+			continue
+		}
+		for _, pass := range k.superior(aim.HalfWidthTurns, e.Start, e.End) {
+			if !pass.centre.Equal(last) { // a passage seen with two receivers, or in two parts, is one passage
+				caught, last = append(caught, 0), pass.centre
+			}
+			caught[len(caught)-1] += e.paid() * k.shareOf(pass, e.Start, e.End)
+		}
+	}
+	return passages{wanted: aim.Wanted, need: sched.ConjunctionNeed(aim.Wanted, caught)}
+}
+
+// shareOf is the share of a passage's weight that lies between two instants.
+func (k *knowledge) shareOf(pass passage, from, to time.Time) float64 {
+	got, whole := 0.0, 0.0
+	for t := pass.centre.Add(-pass.halfWide); t.Before(pass.centre.Add(pass.halfWide)); t = t.Add(time.Minute) {
+		w := k.conjunctionWeight(pass, t)
+		whole += w
+		if !t.Before(from) && t.Before(to) {
+			got += w
+		}
+	}
+	if whole == 0 {
+		return 0
+	}
+	return got / whole
+}

@@ -1,0 +1,291 @@
+package campaigns
+
+import (
+	"fmt"
+	"math"
+	"time"
+
+	"example.org/tallystick/sched"
+	"example.org/tallystick/sky/timing"
+)
+
+// usualPhaseTurns is the error of an ephemeris's phase where none is given: a thousandth of a turn is what a
+// solution that has kept count is good to.
+const usualPhaseTurns = 0.001
+
+// timingSource is the source as the timing model sees it.
+func (s *Source) timingSource() timing.Source {
+	t := timing.Source{
+		RADeg: s.RADeg, DecDeg: s.DecDeg, PMMasPerYr: s.PMMasPerYr, PositionMJD: s.PositionMJD,
+		ParallaxMas: s.ParallaxMas, DMPcPerCm3: s.DMPcPerCm3, GlitchMJD: s.GlitchMJD,
+	}
+	if s.Spin != nil {
+		t.FrequencyHz, t.DerivativeHzPerS, t.EpochMJD = s.Spin.FrequencyHz, s.Spin.DerivativeHzPerS, s.Spin.EpochMJD
+	}
+	if s.Orbit != nil {
+		el := s.Orbit.elements()
+		t.Orbit, t.CompanionMsun, t.SinI = &el, s.Orbit.CompanionMsun, s.Orbit.SinI
+	}
+	return t
+}
+
+// ephemerisPriors are the errors that the campaign file gives. What it gives none for is held without error.
+func (s *Source) ephemerisPriors() []timing.Prior {
+	var out []timing.Prior
+	add := func(p timing.Parameter, sigma float64) {
+		if sigma > 0 {
+			out = append(out, timing.Prior{Parameter: p, Sigma: sigma})
+		}
+	}
+	phase := s.Spin.SigmaPhaseTurns
+	if phase == 0 {
+		phase = usualPhaseTurns
+	}
+	add(timing.Phase, phase)
+	add(timing.Frequency, s.Spin.SigmaFrequencyHz)
+	add(timing.FrequencyDerivative, s.Spin.SigmaDerivativeHzPerS)
+	add(timing.RightAscension, s.SigmaPositionMas[0])
+	add(timing.Declination, s.SigmaPositionMas[1])
+	if o := s.Orbit; o != nil {
+		add(timing.OrbitalPeriod, o.SigmaPeriodDays)
+		if o.AscendingNodeMJD != 0 {
+			add(timing.AscendingNode, o.SigmaEpochDays)
+		} else if o.Eccentricity > 0 {
+			add(timing.Periastron, o.SigmaEpochDays)
+		}
+	}
+	return out
+}
+
+// measuringPriors free everything that has to be fitted together with a parameter, with no knowledge but the
+// logbook's own.
+func (s *Source) measuringPriors() []timing.Prior {
+	var out []timing.Prior
+	free := func(ps ...timing.Parameter) {
+		for _, p := range ps {
+			out = append(out, timing.Prior{Parameter: p, Sigma: math.Inf(1)})
+		}
+	}
+	free(timing.Phase, timing.Frequency, timing.FrequencyDerivative, timing.RightAscension, timing.Declination,
+		timing.ProperMotionRA, timing.ProperMotionDec)
+	if s.ParallaxMas > 0 {
+		free(timing.Parallax)
+	}
+	if o := s.Orbit; o != nil {
+		free(timing.SemimajorAxis, timing.AscendingNode, timing.OrbitalPeriod, timing.Eps1, timing.Eps2)
+		if o.Decay != 0 {
+			free(timing.OrbitalDecay)
+		}
+		if o.AdvanceDegPerYr != 0 {
+			free(timing.AdvanceOfPeriastron)
+		}
+		if o.CompanionMsun > 0 {
+			free(timing.CompanionMass)
+			if o.SinI > 0 {
+				free(timing.SinI)
+			}
+		}
+	}
+	return out
+}
+
+// arrivals are the logbook's arrival times of a source: those whose error was written down.
+func (b *books) arrivals(k *knowledge) []timing.Observation {
+	var out []timing.Observation
+	for _, e := range b.entries[k.source.Name] {
+		if e.ToaUs > 0 {
+			out = append(out, timing.Observation{MJD: k.clock.barycentreMJD(e.middle()), SigmaUs: e.ToaUs})
+		}
+	}
+	return out
+}
+
+// farDeadlineDays is from where on a deadline is not worth a word: ten years.
+const farDeadlineDays = 3653
+
+// connection is how well the count of a source's turns is kept.
+type connection struct {
+	limit     float64 // turns
+	predicted float64 // error of the pulse phase, turns, at the next session
+	next      time.Time
+	deadline  time.Time // when the error passes the limit; zero: not within ten years
+}
+
+// debt is the predicted error over its limit, at most mostNeed.
+func (c connection) debt() float64 { return math.Min(c.predicted/c.limit, mostNeed) }
+
+func (c connection) why() string {
+	s := fmt.Sprintf("phase good to %.2g turns on %s, limit %.2g", c.predicted, c.next.UTC().Format(time.DateOnly), c.limit)
+	switch {
+	case math.IsInf(c.predicted, 1):
+		return "the count is not connected: nothing says the phase"
+	case c.predicted > c.limit:
+		return s + ": the count may be lost by then"
+	case !c.deadline.IsZero():
+		return s + ", passed on " + c.deadline.UTC().Format(time.DateOnly)
+	}
+	return s
+}
+
+// connected predicts the error of the pulse phase at the session after the books' moment, as it will be if the
+// source is not observed before.
+func (b *books) connected(k *knowledge, aim *Aim) (connection, error) {
+	m, err := timing.New(k.source.timingSource(), k.source.ephemerisPriors(), b.arrivals(k))
+	if err != nil {
+		return connection{}, fmt.Errorf("%s: %w", k.source.Name, err)
+	}
+	c := connection{limit: aim.MaxPhaseErrorTurns, next: b.nextSession()}
+	c.predicted = m.PhaseErrorTurns(tdbMJD(c.next), 0)
+	if d := m.Deadline(c.limit, tdbMJD(b.at), 0); !d.Never && d.MJD < tdbMJD(b.at)+farDeadlineDays {
+		c.deadline = utcOf(d.MJD)
+	}
+	return c, nil
+}
+
+// noSession is how far ahead the next session is taken to be when none is listed.
+const noSession = 30 * 24 * time.Hour
+
+// nextSession is the start of the first session after the books' moment.
+func (b *books) nextSession() time.Time {
+	for i := range b.sessions {
+		if b.sessions[i].Start.After(b.at) {
+			return b.sessions[i].Start
+		}
+	}
+	return b.at.Add(noSession)
+}
+
+func (jb *jobBuilder) connect(aim *Aim) error {
+	minutes, ok := jb.wantedMinutes(aim)
+	if !ok {
+		return nil
+	}
+	wanted, least := jb.visit(aim, minutes)
+	c, err := jb.books.connected(jb.source.knowledge, aim)
+	if err != nil {
+		return err
+	}
+	jb.term(aim, sched.Term{
+		Scale: jb.scale(sched.ConnectNeed(c.predicted, c.limit)), Curve: sched.Root,
+		Wanted: wanted, Least: least, Cum: jb.effective(), Why: c.why(),
+	})
+	return nil
+}
+
+// measurement is how well a parameter is known from the logbook.
+type measurement struct {
+	model     *timing.Model
+	parameter timing.Parameter
+	sigma     float64 // 0: not determined
+	goal      float64 // the error wanted
+}
+
+// debt is how often the error must still be halved, at most mostNeed.
+func (m measurement) debt() float64 {
+	if m.sigma == 0 {
+		return mostNeed
+	}
+	return math.Min(mostNeed, math.Max(0, math.Log2(m.sigma/m.goal)))
+}
+
+func (m measurement) why() string {
+	if m.sigma == 0 {
+		return fmt.Sprintf("%s not determined yet, wanted to %.2g %s", m.parameter, m.goal, m.parameter.Unit())
+	}
+	return fmt.Sprintf("%s known to %.2g %s, wanted to %.2g", m.parameter, m.sigma, m.parameter.Unit(), m.goal)
+}
+
+func (b *books) measured(k *knowledge, aim *Aim) (measurement, error) {
+	p, err := timing.ParameterNamed(aim.Parameter)
+	if err != nil {
+		return measurement{}, fmt.Errorf("%s: %w", k.source.Name, err)
+	}
+	model, err := timing.New(k.source.timingSource(), k.source.measuringPriors(), b.arrivals(k))
+	if err != nil {
+		return measurement{}, fmt.Errorf("%s: %w", k.source.Name, err)
+	}
+	m := measurement{model: model, parameter: p, goal: math.Abs(model.Value(p)) * aim.GoalPercent / 100}
+	if sigma, err := model.SigmaOf(p); err == nil {
+		m.sigma = sigma
+	}
+	return m, nil
+}
+
+// measure adds a term for what the session's minutes add to the knowledge of a parameter. It is worth 1 times
+// priority and need where a visit of the wanted minutes would add as much as at the best moment there is.
+func (jb *jobBuilder) measure(aim *Aim) error {
+	minutes, ok := jb.wantedMinutes(aim)
+	if !ok {
+		return nil
+	}
+	m, err := jb.books.measured(jb.source.knowledge, aim)
+	if err != nil {
+		return err
+	}
+	need := math.Min(1, m.debt())
+	wanted, least := jb.visit(aim, minutes)
+	gain, best, err := jb.gains(m)
+	if err != nil || best <= 0 { // not determined yet: any visit helps
+		jb.term(aim, sched.Term{
+			Scale: jb.scale(need), Curve: sched.Root, Wanted: wanted, Least: least, Cum: jb.effective(), Why: m.why(),
+		})
+		return nil
+	}
+	atBest := 0.5 * math.Log1p(best*minutes)
+	total := 0.0
+	for _, q := range gain {
+		total += q
+	}
+	unit := math.Min(1e9, 1e9/math.Max(total, 1e-9)) // gathered units to a gain of 1
+	cum := make([]int32, len(gain)+1)
+	sum := 0.0
+	for i, q := range gain {
+		sum += q
+		cum[i+1] = int32(sum * unit)
+	}
+	jb.term(aim, sched.Term{
+		Scale: jb.scale(need / atBest), Curve: sched.Log, Wanted: int32(unit), Cum: cum, Why: m.why(),
+	})
+	return nil
+}
+
+// bestSamples is how many moments are tried for the best one.
+const bestSamples = 96
+
+// gains is what each minute of the session adds with this receiver, and the most that a minute at the zenith
+// could add at the best moment of an orbit, or of a year where there is none.
+func (jb *jobBuilder) gains(m measurement) (gain []float64, best float64, err error) {
+	ps, p := jb.source, jb.prepared
+	set := &ps.setups[jb.receiver]
+	zenith := set.TOAErrorUs(1, 90)
+	minutes := make([]timing.Observation, p.Problem.Minutes)
+	for i := range minutes {
+		at := p.Instant(i)
+		minutes[i] = timing.Observation{MJD: ps.knowledge.clock.barycentreMJD(at), SigmaUs: math.Inf(1)}
+		if w := ps.weights[jb.receiver][i]; w > 0 && !ps.untimable[i] {
+			minutes[i].SigmaUs = zenith / math.Sqrt(w)
+		}
+	}
+	span := 365.25
+	if ps.src.Orbit != nil {
+		span = ps.src.Orbit.PeriodDays
+	}
+	tries := make([]timing.Observation, bestSamples)
+	for i := range tries {
+		tries[i] = timing.Observation{MJD: minutes[0].MJD + span*float64(i)/bestSamples, SigmaUs: zenith}
+	}
+	if gain, err = m.model.GainPerMinute(m.parameter, minutes, nil); err != nil {
+		return nil, 0, err
+	}
+	over, err := m.model.GainPerMinute(m.parameter, tries, nil)
+	if err != nil {
+		return nil, 0, err
+	}
+	for _, q := range over {
+		best = math.Max(best, q)
+	}
+	for _, q := range gain {
+		best = math.Max(best, q)
+	}
+	return gain, best, nil
+}

@@ -1,0 +1,114 @@
+package campaigns
+
+import (
+	"math"
+	"time"
+
+	"example.org/tallystick/sched"
+	"example.org/tallystick/sky"
+	"example.org/tallystick/sky/radiometer"
+)
+
+// A preparedSource is a source during a session.
+type preparedSource struct {
+	src       *Source
+	knowledge *knowledge
+	place     sky.Place
+	setups    []radiometer.Setup // by index in Problem.Receivers
+	effective [][]int32          // by receiver: hundredths of an effective minute from the start to each minute
+	weights   [][]float64        // by receiver: what each minute counts for, 0..1
+	phases    []float64          // orbital phase heard at each minute; nil without an orbit
+	untimable []bool             // in eclipse or its margin
+}
+
+// lookAt is where the source stands at a minute.
+func (p *Prepared) lookAt(ps *preparedSource, minute int) sky.Look {
+	return p.site.Look(p.frame, ps.place, p.Instant(minute))
+}
+
+// mountAzimuth is where the mount's first axis stands on a node at a minute: its azimuth within the
+// cable's travel. An equatorial or transit mount has no cable wrap, and the compass azimuth is given.
+func (p *Prepared) mountAzimuth(n sched.Node, minute int) float64 {
+	pl := &p.places[n.Place]
+	if p.Site.Mount != AltAz {
+		return p.Tracks[pl.source].AzDeg[minute]
+	}
+	return pl.axes[minute].A
+}
+
+// icrsAt is the source's ICRS position with its proper motion up to t, in degrees.
+func (ps *preparedSource) icrsAt(t time.Time) (ra, dec float64) {
+	years := (sky.MJD(t) - ps.src.PositionMJD) / 365.25
+	const degPerMas = 1.0 / 3.6e6
+	dec = ps.src.DecDeg + years*ps.src.PMMasPerYr[1]*degPerMas
+	ra = ps.src.RADeg + years*ps.src.PMMasPerYr[0]*degPerMas/math.Max(1e-9, math.Cos(ps.src.DecDeg*math.Pi/180))
+	return math.Mod(ra+360, 360), dec
+}
+
+// listen works out what each receiver of the session hears of the source, and what its orbit does meanwhile.
+func (ps *preparedSource) listen(p *Prepared) {
+	l, b := sky.GalacticDeg(ps.src.RADeg, ps.src.DecDeg)
+	pulsar := ps.src.pulsar(l, b)
+	el := p.Tracks[p.sourceByName[ps.src.Name]].ElDeg
+	for _, rec := range p.Problem.Receivers {
+		set := radiometer.Setup{Receiver: p.Campaign.receiver(rec.Name, p.Site.Name).radiometer(), Pulsar: pulsar}
+		weights := make([]float64, len(el))
+		cum := make([]int32, len(el))
+		sum := 0.0
+		for m := range el {
+			weights[m] = set.EffectiveWeight(el[m])
+			cum[m] = int32(sum)
+			sum += weights[m] * sharesPerMinute
+		}
+		ps.setups = append(ps.setups, set)
+		ps.weights = append(ps.weights, weights)
+		ps.effective = append(ps.effective, cum)
+	}
+	if ps.src.Orbit != nil {
+		ps.phases = make([]float64, len(el))
+		for m := range ps.phases {
+			ps.phases[m] = ps.knowledge.phase(p.Instant(m))
+		}
+	}
+}
+
+func (r *Receiver) radiometer() radiometer.Receiver {
+	return radiometer.Receiver{
+		BandMHz: r.BandMHz, TsysK: r.TsysK, ZenithOpacity: r.ZenithOpacity,
+		GainKPerJy: r.GainKPerJy, Polarizations: r.Polarizations,
+	}
+}
+
+// pulsar is what decides how well a source can be timed, given its Galactic direction.
+func (s *Source) pulsar(lDeg, bDeg float64) radiometer.Pulsar {
+	p := radiometer.Pulsar{WidthMs: s.WidthMs, JitterUsPerHour: s.JitterUsPerHour, FloorUs: s.FloorUs, Sky408K: s.SkyK}
+	if p.Sky408K == 0 {
+		p.Sky408K = radiometer.SkyAt408(lDeg, bDeg)
+	}
+	if s.Flux != nil {
+		p.FluxMJy, p.AtMHz, p.SpectralIndex = s.Flux.MJy, s.Flux.AtMHz, s.Flux.SpectralIndex
+	}
+	if s.Spin != nil {
+		p.PeriodS = 1 / s.Spin.FrequencyHz
+	}
+	return p
+}
+
+// minutesFor is how many minutes at the zenith reach a wanted TOA error. ok is false where none do: the aim
+// lies below the floor, or flux, spin or width are not known.
+func (ps *preparedSource) minutesFor(receiver int, toaUs float64) (minutes float64, ok bool) {
+	minutes, err := ps.setups[receiver].MinutesFor(toaUs, 90)
+	return minutes, err == nil
+}
+
+// expect is the S/N and TOA error of a slot; 0 where it is not known.
+func (ps *preparedSource) expect(receiver, start, end int) (snr, toaUs float64) {
+	set, minutes := &ps.setups[receiver], 0.0
+	for m := start; m < end; m++ {
+		minutes += ps.weights[receiver][m]
+	}
+	if minutes == 0 || set.Pulsar.PeriodS == 0 || set.Check() != nil {
+		return 0, 0
+	}
+	return set.SNR(minutes, 90), set.TOAErrorUs(minutes, 90)
+}

@@ -1,0 +1,95 @@
+package campaigns
+
+import (
+	"math"
+	"slices"
+	"time"
+
+	"example.org/tallystick/sched"
+	"example.org/tallystick/sky"
+)
+
+// A siteTrack is a source's track with the windows it was made from.
+type siteTrack struct {
+	Track
+	up     []sched.Window // within elevation limits and mask, Sun and eclipses left aside
+	sunny  []sched.Window // what is left of up outside the Sun limit
+	usable []sched.Window // what is left of that outside eclipses and breaks; the mount's travel is still to come
+}
+
+// track works out where a source stands during the session and when it may be observed.
+func (p *Prepared) track(i int, ps *preparedSource) siteTrack {
+	n := p.Problem.Minutes + 1
+	t := siteTrack{Track: Track{Source: i, AzDeg: make([]float64, n), ElDeg: make([]float64, n), LimitDeg: make([]float64, n)}}
+	p.site.Track(p.frame, ps.place, p.Problem.Start, time.Minute, t.AzDeg, t.ElDeg)
+	limits := p.Site.limits(ps.src)
+	for m := range n {
+		t.LimitDeg[m] = math.Max(limits.LowDeg, limits.Mask.At(t.AzDeg[m]))
+	}
+	t.SunDeg = p.nearestSun(ps)
+
+	sun := limits.SunDeg
+	limits.SunDeg = 0
+	t.up = inMinutes(p.site.Windows(p.frame, ps.place, p.Session.Start, p.Session.End, limits), p.Problem.Start)
+	t.sunny = t.up
+	if t.SunDeg < sun {
+		limits.SunDeg = sun
+		t.sunny = inMinutes(p.site.Windows(p.frame, ps.place, p.Session.Start, p.Session.End, limits), p.Problem.Start)
+	}
+	hidden, untimable := ps.knowledge.eclipses(p.Problem.Start, p.Problem.Minutes)
+	t.Eclipsed = hidden
+	t.usable = t.sunny
+	if hidden != nil {
+		t.usable = without(t.usable, hidden, eclipseReason(ps.src.Orbit))
+	}
+	t.usable = without(t.usable, p.Problem.Breaks, "break")
+	t.Up, t.Usable = spans(t.up), spans(t.usable)
+
+	ps.untimable = make([]bool, n)
+	for _, s := range untimable {
+		for m := s.From; m < s.To; m++ {
+			ps.untimable[m] = true
+		}
+	}
+	return t
+}
+
+// nearestSun is the source's least distance from the Sun in the session, which moves by 1° a day against it.
+func (p *Prepared) nearestSun(ps *preparedSource) float64 {
+	return math.Min(p.frame.SunDeg(ps.place, p.Session.Start), p.frame.SunDeg(ps.place, p.Session.End))
+}
+
+// placesOf are the cable turns on which the mount can follow a source, and when. A source that is never
+// within limits has one place all the same: an observer may still ask what it would break.
+func (p *Prepared) placesOf(i int, t siteTrack) []place {
+	mount := p.Site.mount()
+	var out []place
+	for _, turn := range p.site.Turns(mount, p.frame, p.sources[i].place, p.Session.Start, p.Session.End) {
+		pl := place{source: i, turn: turn.Turn, axes: make([]sky.Axes, len(t.AzDeg))}
+		p.site.AxesTrack(mount, p.frame, p.sources[i].place, p.Problem.Start, time.Minute, turn.Turn, pl.axes)
+		pl.open = both(t.usable, inMinutes(turn.Open, p.Problem.Start))
+		out = append(out, pl)
+	}
+	able := slices.DeleteFunc(slices.Clone(out), func(pl place) bool { return len(pl.open) == 0 })
+	switch {
+	case len(able) > 0:
+		return able
+	case len(out) > 0:
+		return out[:1]
+	}
+	axes := make([]sky.Axes, len(t.AzDeg))
+	p.site.AxesTrack(mount, p.frame, p.sources[i].place, p.Problem.Start, time.Minute, 0, axes)
+	return []place{{source: i, axes: axes}}
+}
+
+// facts are what a reason for leaving a source out is told from.
+func (p *Prepared) facts(ps *preparedSource, t siteTrack) sched.Facts {
+	f := sched.Facts{
+		UpMin: longest(t.up), SunMin: longest(t.sunny), ClearMin: longest(t.usable),
+		SunDeg: t.SunDeg, SunLimit: p.Site.sunLimit(ps.src), HighestEl: t.ElDeg[0],
+	}
+	for _, el := range t.ElDeg {
+		f.HighestEl = math.Max(f.HighestEl, el)
+	}
+	return f
+}
