@@ -183,26 +183,46 @@ func (t Target) Check() error {
 	return nil
 }
 
-// direction returns the target's ICRS unit vector, moved by its proper motion.
+// course is a target as a straight line: from + days·perDay, days since J2000.0, ICRS.
+type course struct {
+	from, perDay vec
+	still        bool
+}
+
+// course returns a target's unit vector and its proper motion.
 //
-// Given:    days since J2000.0
 // Neglects: parallax (under 1 mas beyond 1 kpc) and motion along the line of sight
 // Source:   straight motion in space, Hipparcos catalogue vol. 1, eq. 1.2.16 without its radial terms
-func (t Target) direction(days float64) vec {
-	ra, dec := t.RADeg*radPerDeg, t.DecDeg*radPerDeg
-	r := direction(ra, dec)
+// Checked:  TestAzEl (rows of kind pm), TestBookPrecession
+func (t Target) course() course {
+	sa, ca := math.Sincos(t.RADeg * radPerDeg)
+	sd, cd := math.Sincos(t.DecDeg * radPerDeg)
+	r := vec{cd * ca, cd * sa, sd}
 	if t.PMRAMasPerYr == 0 && t.PMDecMasPerYr == 0 {
-		return r
+		return course{from: r, still: true}
 	}
-	if t.EpochMJD != 0 {
-		days -= t.EpochMJD - j2000MJD
-	}
-	years := days / 365.25
-	sa, ca := math.Sincos(ra)
-	sd, cd := math.Sincos(dec)
 	east, north := vec{-sa, ca, 0}, vec{-sd * ca, -sd * sa, cd}
-	const mas = radPerSec / 1000
-	return r.plus(years*t.PMRAMasPerYr*mas, east).plus(years*t.PMDecMasPerYr*mas, north).unit()
+	const masPerYr = radPerSec / 1000 / 365.25
+	perDay := east.times(t.PMRAMasPerYr*masPerYr).plus(t.PMDecMasPerYr*masPerYr, north)
+	var epoch float64
+	if t.EpochMJD != 0 {
+		epoch = t.EpochMJD - j2000MJD
+	}
+	return course{from: r.plus(-epoch, perDay), perDay: perDay}
+}
+
+// at returns the unit vector at a date in days since J2000.0.
+func (c *course) at(days float64) vec {
+	if c.still {
+		return c.from
+	}
+	return c.from.plus(days, c.perDay).unit()
+}
+
+// direction returns the target's ICRS unit vector at a date in days since J2000.0.
+func (t Target) direction(days float64) vec {
+	c := t.course()
+	return c.at(days)
 }
 
 // A Place is where something stands in a frame, as seen from the Earth's centre: a unit vector on the true
@@ -232,13 +252,13 @@ func placeThrough(v [3]vec) Place {
 // Place returns the apparent place of a target: proper motion, the Sun's bending of its light, annual
 // aberration, precession and nutation. What the site adds (diurnal aberration) comes with Look.
 func (f *Frame) Place(t Target) Place {
-	var v [3]vec
-	r := t.direction(f.nodes[1].days)
-	for i := range f.nodes {
-		n := &f.nodes[i]
-		v[i] = n.rotation.apply(aberrate(bend(r, n.earth), n.velocity))
-	}
-	return placeThrough(v)
+	c := t.course()
+	return placeThrough([3]vec{f.nodes[0].place(&c), f.nodes[1].place(&c), f.nodes[2].place(&c)})
+}
+
+// place returns a target's apparent place at one instant.
+func (n *node) place(c *course) vec {
+	return n.rotation.apply(aberrate(bend(c.at(n.days), n.earth), n.velocity))
 }
 
 // sunPlace returns the Sun's apparent place: where it was when the light left, and annual aberration. The
@@ -247,7 +267,7 @@ func (f *Frame) sunPlace() Place {
 	var v [3]vec
 	for i := range f.nodes {
 		n := &f.nodes[i]
-		v[i] = n.rotation.apply(aberrate(n.earth.times(-1).unit(), n.velocity))
+		v[i] = n.rotation.apply(aberrate(n.earth.times(-1/n.earth.length()), n.velocity))
 	}
 	p := placeThrough(v)
 	const earthRadiusAU = 6371.0e3 / auMetres
@@ -268,20 +288,22 @@ func (f *Frame) Sun() Place { return f.sun }
 func aberrate(p, v vec) vec {
 	g := math.Sqrt(1 - v.dot(v))
 	pv := p.dot(v)
-	return p.times(g/(1+pv)).plus((1+pv/(1+g))/(1+pv), v).unit()
+	return p.times(g/(1+pv)).plus((1+pv/(1+g))/(1+pv), v)
 }
 
 // bend returns a direction after the Sun has bent its light: 0.004 arcsec × cot(elongation/2).
 //
-// Given:    unit vector; the Earth's heliocentric place in au, same axes
+//	p + 2GM/(c² r) · (e − (p·e) p) / (1 + p·e)
+//
+// Given:    unit vector; the Earth's heliocentric place r e in au, same axes
 // Ends:     behind the Sun's disc the bending is held at 0.2° from the Sun's centre
 // Source:   Klioner 2003, AJ 125, 1580, as in the Explanatory Supplement 2013, eq. 7.63
 func bend(p, earth vec) vec {
 	const twiceSunRadiusAU = 1.97412574336e-8 // 2GM/c²
 	r := earth.length()
-	e := earth.times(1 / r)
-	strength := twiceSunRadiusAU / r / math.Max(1+p.dot(e), 6e-6)
-	return p.plus(strength, p.cross(e.cross(p))).unit()
+	pe := p.dot(earth) / r
+	k := twiceSunRadiusAU / r / max(1+pe, 6e-6)
+	return p.times(1-k*pe).plus(k/r, earth)
 }
 
 // RADec returns a place's right ascension (0 to 360) and declination in degrees, true equator and equinox of date.

@@ -98,7 +98,7 @@ func (c *scan) maskArc(lim *Limits, a, b float64) {
 
 // maskCell cuts a piece at the points of the mask that the track passes.
 func (c *scan) maskCell(lim *Limits, a, b, azA, azB float64) {
-	way := math.Remainder(azB-azA, 360)
+	way := half(azB-azA, 360)
 	i, step := lim.Mask.segment(azA), -1
 	if way > 0 {
 		i, step = i+1, 1
@@ -148,7 +148,7 @@ func (c *scan) maskPiece(lim *Limits, a, b, azA, azB float64) {
 	if !(a < b) {
 		return
 	}
-	middle := mod(azA+math.Remainder(azB-azA, 360)/2, 360)
+	middle := mod(azA+half(azB-azA, 360)/2, 360)
 	line := lim.Mask.line(lim.Mask.segment(middle))
 	s := c.site
 	g := func(x float64) (v, d float64) {
@@ -163,7 +163,7 @@ func (c *scan) maskPiece(lim *Limits, a, b, azA, azB float64) {
 			el += lim.Refraction.lift(h.u)
 		}
 		azRate := s.sinLat - s.cosLat*h.n*h.u/q
-		az = middle + math.Remainder(az*degPerRad-middle, 360)
+		az = middle + half(az*degPerRad-middle, 360)
 		return el*degPerRad - line.at(az), (elRate - line.slope*azRate) * earthRotationPerDay * degPerRad
 	}
 	c.flips.along(g, a, b)

@@ -138,7 +138,7 @@ func (s *Site) AxesTrack(m Mount, f *Frame, p Place, from time.Time, step time.D
 		}
 		az := look.AzDeg + 360*float64(turn)
 		if i > 0 {
-			az = dst[i-1].A + math.Remainder(az-dst[i-1].A, 360)
+			az = dst[i-1].A + half(az-dst[i-1].A, 360)
 		}
 		dst[i] = Axes{az, look.ElDeg}
 	}

@@ -43,9 +43,9 @@ func (c *scan) begin(s *Site, f *Frame, p *Place, x0, x1 float64) {
 	// The culminations are half a turn apart, but for what the place itself moves.
 	isUpper := h0 < 0
 	first := x0 + mod(-h0, math.Pi)/earthRotationPerDay
-	const half = math.Pi / earthRotationPerDay
+	const halfDay = math.Pi / earthRotationPerDay
 	for k := 0; ; k++ {
-		x := first + float64(k)*half
+		x := first + float64(k)*halfDay
 		var sinEl float64
 		for range 3 {
 			var h float64
@@ -54,7 +54,7 @@ func (c *scan) begin(s *Site, f *Frame, p *Place, x0, x1 float64) {
 				h = halfTurn(h + math.Pi)
 			}
 			// Within an arcsecond of the celestial pole hour angle means little: never step far.
-			step := min(max(h/earthRotationPerDay, -half/8), half/8)
+			step := min(max(h/earthRotationPerDay, -halfDay/8), halfDay/8)
 			x -= step
 			if math.Abs(step) < 1e-6 { // a tenth of a second: the elevation there is good to 1e−11
 				break

@@ -143,6 +143,6 @@ func (s *Site) Track(f *Frame, p Place, from time.Time, step time.Duration, azDe
 // north, the rest is moved by whole turns. The first value stays.
 func Unwrap(azDeg []float64) {
 	for i := 1; i < len(azDeg); i++ {
-		azDeg[i] = azDeg[i-1] + math.Remainder(azDeg[i]-azDeg[i-1], 360)
+		azDeg[i] = azDeg[i-1] + half(azDeg[i]-azDeg[i-1], 360)
 	}
 }

@@ -131,7 +131,7 @@ func (c *scan) stop(m Mount, kind CauseKind, x float64, track []azimuthAt, turne
 		i++
 	}
 	h, _ := c.site.horizon(c.frame, &c.place, x).azEl()
-	az := track[i].az + math.Remainder(h*degPerRad-track[i].az, 360) + turned
+	az := track[i].az + half(h*degPerRad-track[i].az, 360) + turned
 	if math.Abs(az-m.TravelDeg[0]) < math.Abs(az-m.TravelDeg[1]) {
 		return Cause{kind, m.TravelDeg[0]}
 	}
@@ -149,7 +149,7 @@ func (c *scan) azimuths() []azimuthAt {
 		h, _ := c.site.horizon(c.frame, &c.place, x).azEl()
 		az := positive(h) * degPerRad
 		if n := len(all); n > 0 {
-			az = all[n-1].az + math.Remainder(az-all[n-1].az, 360)
+			az = all[n-1].az + half(az-all[n-1].az, 360)
 		}
 		all = append(all, azimuthAt{x, az})
 	}

@@ -78,17 +78,17 @@ func aboutZ(a float64) *mat {
 	return &mat{{c, s, 0}, {-s, c, 0}, {0, 0, 1}}
 }
 
-// mod returns a reduced to [0, m).
+// mod returns a reduced to [0, m). It is for angles of a few turns: a digit is lost with every ten of them.
 func mod(a, m float64) float64 {
-	a = math.Mod(a, m)
-	if a < 0 {
-		a += m
-	}
-	if a >= m { // a tiny negative number plus m rounds to m
+	a -= m * math.Floor(a/m)
+	if a < 0 || a >= m { // only ever by rounding
 		return 0
 	}
 	return a
 }
 
+// half returns a reduced to [−m/2, m/2], under the same caution.
+func half(a, m float64) float64 { return a - m*math.Floor(a/m+0.5) }
+
 // halfTurn returns an angle in radians reduced to [−π, π].
-func halfTurn(a float64) float64 { return math.Remainder(a, turn) }
+func halfTurn(a float64) float64 { return half(a, turn) }

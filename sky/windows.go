@@ -25,7 +25,9 @@ func (s *Site) Season(frames []*Frame, t Target, from, to time.Time, lim Limits)
 		c    scan
 		all  []Window
 		some []Window
+		v    [3]vec
 	)
+	course := t.course()
 	for i, f := range frames {
 		a, b := from, to
 		if start := f.at.Add(-12 * time.Hour); i > 0 && start.After(a) {
@@ -37,7 +39,13 @@ func (s *Site) Season(frames []*Frame, t Target, from, to time.Time, lim Limits)
 		if !a.Before(b) {
 			continue
 		}
-		p := f.Place(t)
+		// A day's frame begins with two of the three instants of the day before.
+		if i > 0 && v != [3]vec{} && f.nodes[0].days == frames[i-1].nodes[1].days {
+			v = [3]vec{v[1], v[2], f.nodes[2].place(&course)}
+		} else {
+			v = [3]vec{f.nodes[0].place(&course), f.nodes[1].place(&course), f.nodes[2].place(&course)}
+		}
+		p := placeThrough(v)
 		some = c.windows(some[:0], s, f, &p, a, b, &lim)
 		if n := len(all); n > 0 && len(some) > 0 && all[n-1].ClosesBy.Kind == Interval && some[0].OpensBy.Kind == Interval && all[n-1].To.Equal(some[0].From) {
 			all[n-1].To, all[n-1].ClosesBy = some[0].To, some[0].ClosesBy
