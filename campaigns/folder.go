@@ -212,7 +212,8 @@ func (f *Folder) SavePlan(p *SavedPlan) error {
 		if known == nil {
 			known = &knownPlan{}
 		}
-		if !same(now, known.data) && !same(now, known.attempted) && !same(now, data) {
+		leftByUs := known.attempted != nil && same(now, known.attempted)
+		if !same(now, known.data) && !leftByUs && !same(now, data) {
 			return ErrChanged
 		}
 		f.plans[p.Session] = &knownPlan{data: known.data, attempted: data}

@@ -73,26 +73,35 @@ const (
 // ReadLogbook reads a logbook; name is what it is called in messages. A damaged line is complained
 // about, and everything else is read. A torn end is no entry and no complaint: see Logbook.Torn.
 func ReadLogbook(r io.Reader, name string) (*Logbook, Complaints) {
-	b, err := io.ReadAll(io.LimitReader(r, largestLogbook+1))
+	var b strings.Builder
+	if sized, ok := r.(interface{ Len() int }); ok {
+		b.Grow(min(sized.Len(), largestLogbook+1))
+	}
+	_, err := io.Copy(&b, io.LimitReader(r, largestLogbook+1))
 	if err != nil {
-		return &Logbook{Header: logbookColumns}, Complaints{{File: name, Found: "an unreadable file (" + reason(err).Error() + ")", Accepted: "a CSV file"}}
+		return emptyLogbook(), Complaints{{File: name, Found: "an unreadable file (" + reason(err).Error() + ")", Accepted: "a CSV file"}}
 	}
-	if len(b) > largestLogbook {
-		return &Logbook{Header: logbookColumns}, Complaints{{File: name, Found: fmt.Sprintf("more than %d MB", largestLogbook>>20), Accepted: "a smaller logbook"}}
+	if b.Len() > largestLogbook {
+		return emptyLogbook(), Complaints{{File: name, Found: fmt.Sprintf("more than %d MB", largestLogbook>>20), Accepted: "a smaller logbook"}}
 	}
-	return parseLogbook(string(b), name)
+	return parseLogbook(b.String(), name)
 }
 
 func parseLogbook(text, name string) (*Logbook, Complaints) {
-	p := logParser{name: name, text: strings.TrimPrefix(text, "\uFEFF"), book: &Logbook{Header: slices.Clone(logbookColumns)}}
-	for i := range p.book.column {
-		p.book.column[i] = i
-	}
+	p := logParser{name: name, text: strings.TrimPrefix(text, "\uFEFF"), book: emptyLogbook()}
 	p.read()
 	if p.unnamed > 0 {
 		p.faults = append(p.faults, Complaint{File: name, Found: fmt.Sprintf("%d more damaged lines", p.unnamed), Accepted: "entries"})
 	}
 	return p.book, p.faults
+}
+
+func emptyLogbook() *Logbook {
+	book := &Logbook{Header: slices.Clone(logbookColumns)}
+	for i := range book.column {
+		book.column[i] = i
+	}
+	return book
 }
 
 type logParser struct {
@@ -141,6 +150,9 @@ func (p *logParser) read() {
 // torn says that a record which cannot be read is what a save that was cut short has left: the last of
 // the file, and without its newline, or of zero bytes, or with too few columns.
 func (p *logParser) torn(here, record string, closed bool, fault *Complaint) bool {
+	if !closed && len(here) <= longestLine && !entryBelow(here) {
+		return true // of an entry of several lines, more than one may be there
+	}
 	if len(record) < len(here) || len(record) > longestLine {
 		return false
 	}
@@ -196,6 +208,33 @@ func beginsEntry(s string) bool {
 	return ok
 }
 
+// entryBelow says that a line after the first begins as an entry does.
+func entryBelow(text string) bool {
+	for {
+		newline := strings.IndexByte(text, '\n')
+		if newline < 0 {
+			return false
+		}
+		if text = text[newline+1:]; beginsEntry(text) {
+			return true
+		}
+	}
+}
+
+// firstEntry finds the first record that begins as an entry does, if there is one among the first few;
+// otherwise it is the first record.
+func firstEntry(text string) string {
+	first, _, _ := nextRecord(text)
+	for range 5 {
+		record, _, _ := nextRecord(text)
+		if beginsEntry(record) {
+			return record
+		}
+		text = text[len(record):]
+	}
+	return first
+}
+
 func blank(record string) bool { return record == "\n" || record == "\r\n" }
 
 // header reads the first line; next is the text after it. It is false when the line is only the
@@ -211,8 +250,9 @@ func (p *logParser) header(record string, closed bool, next string) bool {
 		return false
 	}
 	// A damaged header must not make every line unreadable: the lines below tell how many columns there are.
-	following, _, _ := nextRecord(next)
-	if n := countCells(following); !sound || missing && n > 0 && n != len(cells) {
+	swallowed := slices.ContainsFunc(cells, func(c string) bool { _, ok := parseUTC(c); return ok })
+	following := firstEntry(next)
+	if n := countCells(following); !sound || (missing || swallowed) && n > 0 && n != len(cells) {
 		p.complain(Complaint{File: p.name, Line: p.line, Found: "a damaged header", Accepted: strings.Join(logbookColumns, ",")})
 		for i := len(logbookColumns); i < n; i++ {
 			p.book.Header = append(p.book.Header, fmt.Sprintf("column_%d", i+1))

@@ -333,7 +333,7 @@ func (t *table) texts(key string, needed bool) []string {
 		t.complain(key, describe(v), accepted, "")
 		return nil
 	}
-	out := make([]string, 0, len(list))
+	var out []string
 	for i, e := range list {
 		s, ok := e.(string)
 		if !ok || slices.Contains(out, s) {
