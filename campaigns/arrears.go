@@ -92,14 +92,20 @@ func (b *books) accountRow(k *knowledge, aim *Aim) (AccountRow, error) {
 	case Calibration:
 		row.Why = fmt.Sprintf("every session needs %s", count(aim.PerSession, "slot"))
 	}
-	if row.Debt > 1 {
+	if row.Debt > 1 && aim.Kind == Cadence {
 		row.Flags = append(row.Flags, "overdue")
 	}
-	if k.source.GlitchMJD > 0 && aim.Kind == Connect {
+	if row.Debt > 1 && aim.Kind == Connect {
+		row.Flags = append(row.Flags, "count at risk")
+	}
+	if since := b.at.Sub(k.glitch); !k.glitch.IsZero() && since > 0 && since < freshGlitch {
 		row.Flags = append(row.Flags, "glitch "+k.glitch.Format(time.DateOnly))
 	}
 	return row, nil
 }
+
+// freshGlitch is how long a glitch is worth a flag: recoveries take up to half a year.
+const freshGlitch = 183 * 24 * time.Hour
 
 func count(n int, thing string) string {
 	if n == 1 {

@@ -189,10 +189,14 @@ func (m measurement) debt() float64 {
 }
 
 func (m measurement) why() string {
-	if m.sigma == 0 {
-		return fmt.Sprintf("%s not determined yet, wanted to %.2g %s", m.parameter, m.goal, m.parameter.Unit())
+	unit := m.parameter.Unit()
+	if unit != "" {
+		unit = " " + unit
 	}
-	return fmt.Sprintf("%s known to %.2g %s, wanted to %.2g", m.parameter, m.sigma, m.parameter.Unit(), m.goal)
+	if m.sigma == 0 {
+		return fmt.Sprintf("%s not determined yet, wanted to %.2g%s", m.parameter, m.goal, unit)
+	}
+	return fmt.Sprintf("%s known to %.2g%s, wanted to %.2g%s", m.parameter, m.sigma, unit, m.goal, unit)
 }
 
 func (b *books) measured(k *knowledge, aim *Aim) (measurement, error) {

@@ -1,0 +1,316 @@
+package campaigns
+
+import (
+	"context"
+	"encoding/csv"
+	"math"
+	"os"
+	"slices"
+	"strconv"
+	"strings"
+	"testing"
+	"time"
+
+	"example.org/tallystick/sched"
+	"example.org/tallystick/sky"
+	"example.org/tallystick/sky/orbit"
+	"github.com/google/go-cmp/cmp"
+	"pgregory.net/rapid"
+)
+
+// openDemo opens the demonstration and says when it takes place.
+func openDemo(t testing.TB) (*Folder, time.Time) {
+	t.Helper()
+	f, err := OpenDemo()
+	if err != nil {
+		t.Fatal(err)
+	}
+	now, _ := f.Now()
+	return f, now
+}
+
+// prepareDemo prepares one of the demonstration's sessions.
+func prepareDemo(t testing.TB, session int) *Prepared {
+	t.Helper()
+	f, now := openDemo(t)
+	p, err := Prepare(f.Campaign, f.Logbook, &f.Campaign.Sessions[session], PrepareOptions{At: now})
+	if err != nil {
+		t.Fatal(err)
+	}
+	return p
+}
+
+func solve(t testing.TB, p *sched.Problem) sched.Result {
+	t.Helper()
+	r, err := sched.Solve(context.Background(), p, sched.Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	return r
+}
+
+func TestEverySessionOfTheDemonstrationMakesASoundProblem(t *testing.T) {
+	f, now := openDemo(t)
+	for i := range f.Campaign.Sessions {
+		p, err := Prepare(f.Campaign, f.Logbook, &f.Campaign.Sessions[i], PrepareOptions{At: now})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := p.Problem.Check(); err != nil {
+			t.Errorf("%s: %v", p.Session.Name, err)
+		}
+		for _, n := range p.Problem.Nodes {
+			for _, w := range n.Open {
+				if w.OpensBy == "" || w.ClosesBy == "" {
+					t.Errorf("%s: a window of %s does not say what bounds it: %+v", p.Session.Name, p.Problem.Jobs[n.Job].Source, w)
+				}
+			}
+		}
+	}
+}
+
+func TestPreparingTwiceGivesTheSameProblem(t *testing.T) {
+	a, b := prepareDemo(t, 0).Problem, prepareDemo(t, 0).Problem
+	if d := cmp.Diff(a, b); d != "" {
+		t.Error(d)
+	}
+}
+
+// The table of slews is what the planner and its judge go by, so no move may take longer than it says.
+func TestNoSlewTakesLongerThanItsTable(t *testing.T) {
+	p := prepareDemo(t, 0)
+	mount := p.Site.mount()
+	n := len(p.places)
+	rapid.Check(t, func(t *rapid.T) {
+		from, to := rapid.IntRange(0, n-1).Draw(t, "from"), rapid.IntRange(0, n-1).Draw(t, "to")
+		depart := rapid.IntRange(0, p.Problem.Minutes).Draw(t, "depart")
+		if from == to || !openAt(p.places[from], depart) {
+			return
+		}
+		bin := min(depart/p.Problem.Slew.BinMin, p.Problem.Slew.Bins-1)
+		table := float64(p.Problem.Slew.Sec[(bin*n+from)*n+to])
+		// When the telescope gets there: the target moves on, so the move is followed second by second.
+		start, target := p.places[from].axes[depart], holdAhead(p.places[to])
+		for s := 0.0; s <= table; s++ {
+			if mount.MoveSec(start, whereAt(target, float64(depart)+s/60)) <= s {
+				return
+			}
+		}
+		t.Fatalf("from %d to %d at minute %d: not there after %.0f s", from, to, depart, table)
+	})
+}
+
+func openAt(p place, minute int) bool {
+	return slices.ContainsFunc(p.open, func(w sched.Window) bool { return w.From <= minute && minute <= w.To })
+}
+
+func whereAt(axes []sky.Axes, minute float64) sky.Axes {
+	i := min(int(minute), len(axes)-2)
+	f := math.Min(minute-float64(i), 1)
+	return sky.Axes{A: axes[i].A + f*(axes[i+1].A-axes[i].A), B: axes[i].B + f*(axes[i+1].B-axes[i].B)}
+}
+
+// What is heard of a published orbit, and when, against another program's light times.
+func TestConjunctionsAtTheObservatorysClock(t *testing.T) {
+	file, err := os.Open("testdata/barycentre.csv")
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer file.Close()
+	r := csv.NewReader(file)
+	r.Comment = '#'
+	rows, err := r.ReadAll()
+	if err != nil {
+		t.Fatal(err)
+	}
+	checked := 0
+	for _, row := range rows[1:] {
+		if row[4] != "MJD(UTC)" {
+			continue
+		}
+		in := map[string]float64{}
+		for _, kv := range strings.Split(row[2], ";") {
+			k, v, _ := strings.Cut(kv, "=")
+			in[k] = number(t, v)
+		}
+		// The rows leave the binary's own light time out, so the orbit has no size here.
+		o, err := orbit.New(orbit.Elements{PeriodDays: in["PB"], AscendingNodeMJD: in["TASC"], Decay: in["PBDOT"]})
+		if err != nil {
+			t.Fatal(err)
+		}
+		c := clock{target: sky.Target{RADeg: in["ra_deg"], DecDeg: in["dec_deg"]}, orbit: &o, frames: newFrames()}
+		mjd := o.Conjunctions(orbit.Superior, in["not_before_TDB"], in["not_before_TDB"]+in["PB"])[0]
+		heard := c.heardAt(mjd, utcOf(mjd))
+		// The Earth's place is that of noon: up to 4 s of light time, beside the row's own tolerance.
+		if off := (sky.MJD(heard) - number(t, row[3])) * 86400; math.Abs(off) > 4+number(t, row[5])*86400 {
+			t.Errorf("%s: heard %.1f s off", row[0], off)
+		}
+		checked++
+	}
+	if checked != 3 {
+		t.Errorf("%d rows checked, want 3", checked)
+	}
+}
+
+func number(t *testing.T, s string) float64 {
+	t.Helper()
+	x, err := strconv.ParseFloat(s, 64)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return x
+}
+
+func TestOrbitTimeAndHeardTimeAreInverse(t *testing.T) {
+	f, now := openDemo(t)
+	for i := range f.Campaign.Sources {
+		s := &f.Campaign.Sources[i]
+		if s.Orbit == nil {
+			continue
+		}
+		k, err := newKnowledge(s, newFrames())
+		if err != nil {
+			t.Fatal(err)
+		}
+		back := k.clock.heardAt(k.clock.orbitMJD(now), now)
+		if off := back.Sub(now); off < -time.Millisecond || off > time.Millisecond {
+			t.Errorf("%s: %v off", s.Name, off)
+		}
+	}
+}
+
+func TestASavedPlanBindsToWhatItWas(t *testing.T) {
+	p := prepareDemo(t, 0)
+	plan := solve(t, p.Problem).Plan
+	plan.Slots[2].Pinned, plan.Slots[2].Note = true, "windy"
+	saved := p.Saved(plan, sched.Result{}, "test")
+	again, lost := p.Bind(saved)
+	if len(lost) > 0 {
+		t.Errorf("lost: %v", lost)
+	}
+	if d := cmp.Diff(plan, again); d != "" {
+		t.Error(d)
+	}
+}
+
+func TestABoundPlanSaysWhatNoLongerFits(t *testing.T) {
+	p := prepareDemo(t, 0)
+	start := p.Session.Start.Add(time.Hour)
+	_, lost := p.Bind(&SavedPlan{Slots: []SavedSlot{
+		{Source: "J9999+0000", Receiver: "L", Start: start, End: start.Add(time.Hour)},
+		{Source: p.Problem.Jobs[0].Source, Receiver: p.Problem.Receivers[p.Problem.Jobs[0].Receiver].Name, Start: start.AddDate(0, 0, 9), End: start.AddDate(0, 0, 9).Add(time.Hour)},
+	}})
+	if len(lost) != 2 || !strings.Contains(lost[0], "J9999+0000") || !strings.Contains(lost[1], "outside the session") {
+		t.Errorf("lost: %q", lost)
+	}
+}
+
+func TestWindowsWithoutSpans(t *testing.T) {
+	w := []sched.Window{{Span: sched.Span{From: 0, To: 100}, OpensBy: "elevation 8°", ClosesBy: "session end"}}
+	got := without(w, []sched.Span{{From: 0, To: 10}, {From: 40, To: 50}, {From: 100, To: 120}}, "break")
+	want := []sched.Window{
+		{Span: sched.Span{From: 10, To: 40}, OpensBy: "break", ClosesBy: "break"},
+		{Span: sched.Span{From: 50, To: 100}, OpensBy: "break", ClosesBy: "session end"},
+	}
+	if d := cmp.Diff(want, got); d != "" {
+		t.Error(d)
+	}
+}
+
+func TestWindowsInBoth(t *testing.T) {
+	window := func(from, to int, by string) sched.Window {
+		return sched.Window{Span: sched.Span{From: from, To: to}, OpensBy: by, ClosesBy: by}
+	}
+	got := both([]sched.Window{window(0, 50, "a"), window(60, 90, "a")}, []sched.Window{window(10, 70, "b")})
+	want := []sched.Window{
+		{Span: sched.Span{From: 10, To: 50}, OpensBy: "b", ClosesBy: "a"},
+		{Span: sched.Span{From: 60, To: 70}, OpensBy: "a", ClosesBy: "b"},
+	}
+	if d := cmp.Diff(want, got); d != "" {
+		t.Error(d)
+	}
+}
+
+// Whatever a plan does, its slot list says where the telescope points, within the mount's travel.
+func TestSlotRowsStayWithinTheTravel(t *testing.T) {
+	p := prepareDemo(t, 0)
+	travel := p.Site.AzimuthTravelDeg
+	for _, r := range p.SlotRows(solve(t, p.Problem).Plan) {
+		for _, az := range []float64{r.AzStartDeg, r.AzEndDeg} {
+			if az < travel[0] || az > travel[1] {
+				t.Errorf("slot %d: azimuth %.2f, travel %v", r.Slot, az, travel)
+			}
+		}
+		if len(r.Breaches) > 0 {
+			t.Errorf("slot %d: %v", r.Slot, r.Breaches)
+		}
+		if r.WaitSec < 0 {
+			t.Errorf("slot %d starts %d s before it is set up", r.Slot, -r.WaitSec)
+		}
+	}
+}
+
+func TestDebtsDoNotReadTheFuture(t *testing.T) {
+	f, _ := openDemo(t)
+	at := time.Date(2026, 6, 1, 0, 0, 0, 0, time.UTC)
+	all, err := Arrears(f.Campaign, f.Logbook, at)
+	if err != nil {
+		t.Fatal(err)
+	}
+	past := &Logbook{Header: f.Logbook.Header}
+	for _, e := range f.Logbook.Entries {
+		if e.End.Before(at) {
+			past.Entries = append(past.Entries, e)
+		}
+	}
+	same, err := Arrears(f.Campaign, past, at)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if d := cmp.Diff(all, same); d != "" {
+		t.Error(d)
+	}
+}
+
+func TestArrearsNeverShowWhatIsNoNumber(t *testing.T) {
+	f, now := openDemo(t)
+	for _, log := range []*Logbook{f.Logbook, {}, nil} {
+		rows, err := Arrears(f.Campaign, log, now)
+		if err != nil {
+			t.Fatal(err)
+		}
+		aims := 0
+		for i := range f.Campaign.Sources {
+			aims += len(f.Campaign.Sources[i].Aims)
+		}
+		if len(rows) != aims {
+			t.Errorf("%d accounts, %d aims", len(rows), aims)
+		}
+		for i, r := range rows {
+			if math.IsNaN(r.Debt) || math.IsInf(r.Debt, 0) || r.Debt < 0 || r.Why == "" {
+				t.Errorf("%s, %s: debt %v, %q", r.Source, r.Aim, r.Debt, r.Why)
+			}
+			if i > 0 && r.Debt > rows[i-1].Debt {
+				t.Errorf("%s stands below a smaller debt", r.Source)
+			}
+		}
+	}
+}
+
+func BenchmarkPrepare(b *testing.B) {
+	f, now := openDemo(b)
+	for b.Loop() {
+		if _, err := Prepare(f.Campaign, f.Logbook, &f.Campaign.Sessions[0], PrepareOptions{At: now}); err != nil {
+			b.Fatal(err)
+		}
+	}
+}
+
+func BenchmarkArrears(b *testing.B) {
+	f, now := openDemo(b)
+	for b.Loop() {
+		if _, err := Arrears(f.Campaign, f.Logbook, now); err != nil {
+			b.Fatal(err)
+		}
+	}
+}
