@@ -4,13 +4,6 @@ import (
 	"math"
 	"testing"
 	"time"
-
-	"github.com/soniakeys/meeus/v3/apparent"
-	"github.com/soniakeys/meeus/v3/base"
-	"github.com/soniakeys/meeus/v3/coord"
-	"github.com/soniakeys/meeus/v3/globe"
-	"github.com/soniakeys/meeus/v3/sidereal"
-	"github.com/soniakeys/unit"
 )
 
 func benchSite(b *testing.B) *Site {
@@ -30,65 +23,6 @@ func spread(n int) []Target {
 		targets[i] = Target{RADeg: mod(float64(i)*137.50776, 360), DecDeg: math.Asin(z) * degPerRad}
 	}
 	return targets
-}
-
-// libraryAzEl is the whole chain as the library offers it: apparent place, sidereal time, horizon.
-func libraryAzEl(t Target, at time.Time, where *globe.Coord) (azDeg, elDeg float64) {
-	jd := MJD(at) + mjdOffset
-	eq := coord.Equatorial{RA: unit.RAFromDeg(t.RADeg), Dec: unit.AngleFromDeg(t.DecDeg)}
-	apparent.Position(&eq, &eq, 2000, base.JDEToJulianYear(jd), 0, 0)
-	hz := new(coord.Horizontal).EqToHz(&eq, where, sidereal.Apparent(jd))
-	return mod(hz.Az.Deg()+180, 360), hz.Alt.Deg()
-}
-
-// The chain that the speed is compared with gives the same answer, to what it is good for.
-func TestLibraryChain(t *testing.T) {
-	s, err := NewSite(38.21, -4.63, 812, 0)
-	if err != nil {
-		t.Fatal(err)
-	}
-	at := time.Date(2027, 3, 4, 5, 6, 7, 0, time.UTC)
-	f := mustFrame(t, at)
-	where := &globe.Coord{Lat: unit.AngleFromDeg(s.LatitudeDeg), Lon: unit.AngleFromDeg(-s.LongitudeDeg)}
-	for _, target := range spread(40) {
-		az, el := libraryAzEl(target, at, where)
-		look := s.Look(f, f.Place(target), at)
-		if off := between(direction2(az, el), direction2(look.AzDeg, look.ElDeg)) * degPerRad * arcsecPerDeg; off > 2 {
-			t.Errorf("%v: %g arcsec apart", target, off)
-		}
-	}
-}
-
-func BenchmarkAzElAgainstLibrary(b *testing.B) {
-	s := benchSite(b)
-	at := time.Date(2027, 3, 4, 5, 6, 7, 0, time.UTC)
-	f := mustFrame(b, at)
-	target := Target{RADeg: 33.5, DecDeg: 33.4}
-	p := f.Place(target)
-	where := &globe.Coord{Lat: unit.AngleFromDeg(s.LatitudeDeg), Lon: unit.AngleFromDeg(-s.LongitudeDeg)}
-	var sink float64
-	const n = 2000
-	var ours, theirs time.Duration
-	for b.Loop() {
-		start := time.Now()
-		for i := range n {
-			az, el := s.AzEl(f, &p, at.Add(time.Duration(i)*time.Minute))
-			sink += az + el
-		}
-		middle := time.Now()
-		for i := range n {
-			az, el := libraryAzEl(target, at.Add(time.Duration(i)*time.Minute), where)
-			sink += az + el
-		}
-		ours += middle.Sub(start)
-		theirs += time.Since(middle)
-	}
-	b.ReportMetric(float64(ours)/float64(b.N)/n, "ns/place")
-	b.ReportMetric(float64(theirs)/float64(b.N)/n, "ns/library-place")
-	b.ReportMetric(float64(theirs)/float64(ours), "times-faster")
-	if math.IsNaN(sink) {
-		b.Fatal("not a number")
-	}
 }
 
 func BenchmarkLook(b *testing.B) {

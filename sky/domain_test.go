@@ -301,3 +301,69 @@ func TestEarthVelocity(t *testing.T) {
 		}
 	}
 }
+
+// Every row of the book's examples. The two reductions differ by up to 0.1 arcsec: the tolerances say so.
+func TestBook(t *testing.T) {
+	greenwich, err := NewSite(0, 0, 0, 0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	washington, err := NewSite(38+55/60.+17/3600., -(77 + 3/60. + 56/3600.), 0, 0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	mean := func(hours float64) float64 {
+		mjd := MJD(time.Date(1987, 4, 10, 0, 0, 0, 0, time.UTC))
+		return mod((earthRotation(mjd, hours/24)+precessionInRA((mjd-j2000MJD+hours/24)/daysPerCentury))*24/turn, 24)
+	}
+	midnight := time.Date(1987, 4, 10, 0, 0, 0, 0, time.UTC)
+	evening := midnight.Add(19*time.Hour + 21*time.Minute)
+	venus := washington.Look(mustFrame(t, evening), placeOfDate(15*(23+9/60.+16.641/3600), -(6+43/60.+11.61/3600)), evening)
+	psi, eps, obliquity := nutationOf(2446895.5)
+
+	const when = 2462088.69 - mjdOffset // 2028-11-13.19 TD
+	star := Target{RADeg: 15 * (2 + 44/60. + 11.986/3600), DecDeg: 49 + 13/60. + 42.48/3600, PMDecMasPerYr: -89.5}
+	star.PMRAMasPerYr = 0.03425 * 15000 * math.Cos(star.DecDeg*radPerDeg)
+	m := precessionMatrix(when + mjdOffset)
+	v := m.apply(star.direction(when - j2000MJD))
+	at := TimeOfMJD(when).Add(-69184 * time.Millisecond)
+	frame := mustFrame(t, at)
+	starRA, starDec := frame.RADec(frame.Place(star), at)
+
+	october := time.Date(1992, 10, 13, 0, 0, 0, 0, time.UTC)
+	october = october.Add(-time.Duration(TTMinusUTCSec(october) * 1e9))
+	sky := mustFrame(t, october)
+	sunRA, sunDec := sky.RADec(sky.Sun(), october)
+
+	known := map[string]struct{ got, tolerance float64 }{
+		"12.a mean sidereal time Greenwich":     {mean(0), 2e-6},
+		"12.a apparent sidereal time Greenwich": {greenwich.LSTHours(mustFrame(t, midnight), midnight), 2e-6},
+		"12.b mean sidereal time Greenwich":     {mean(19.35), 2e-6},
+		"13.b hour angle":                       {venus.HourAngleDeg, 3e-4},
+		"13.b azimuth A":                        {venus.AzDeg - 180, 2e-4},
+		"13.b altitude":                         {venus.ElDeg, 2e-4},
+		"17.a separation":                       {SeparationDeg(placeOfDate(213.9154, 19.1825), placeOfDate(201.2983, -11.1614)), 5e-5},
+		"21.b RA precessed":                     {math.Atan2(v[1], v[0]) * degPerRad, 2e-6},
+		"21.b dec precessed":                    {math.Asin(v[2]) * degPerRad, 2e-6},
+		"22.a nutation in longitude":            {psi * degPerRad, 1e-6},
+		"22.a nutation in obliquity":            {eps * degPerRad, 1e-6},
+		"22.a true obliquity":                   {(obliquity + eps) * degPerRad, 1e-6},
+		"23.a apparent RA":                      {starRA, 5e-5},
+		"23.a apparent dec":                     {starDec, 5e-5},
+		"25.a Sun apparent RA":                  {sunRA, 0.01}, // the book's short method, good to that
+		"25.a Sun apparent dec":                 {sunDec, 0.01},
+		"25.b Sun apparent RA":                  {sunRA, 1e-4},
+		"25.b Sun apparent dec":                 {sunDec, 1e-4},
+	}
+	for _, r := range table(t, "book.csv", 18) {
+		k := r.text("example") + " " + r.text("quantity")
+		c, ok := known[k]
+		if !ok {
+			t.Errorf("%s: not worked out", k)
+			continue
+		}
+		if want := r.number("value"); !(math.Abs(c.got-want) <= c.tolerance) {
+			t.Errorf("%s: %.9g, want %.9g, tolerance %g", k, c.got, want, c.tolerance)
+		}
+	}
+}
