@@ -42,7 +42,10 @@ func (c *scan) begin(s *Site, f *Frame, p *Place, x0, x1 float64) {
 	c.knots = append(c.knots, knot{x0, sin0, h0, none})
 	// The culminations are half a turn apart, but for what the place itself moves.
 	isUpper := h0 < 0
-	first := x0 + mod(-h0, math.Pi)/earthRotationPerDay
+	first := x0 - h0/earthRotationPerDay
+	if !isUpper {
+		first += math.Pi / earthRotationPerDay
+	}
 	const halfDay = math.Pi / earthRotationPerDay
 	for k := 0; ; k++ {
 		x := first + float64(k)*halfDay

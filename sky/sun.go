@@ -73,14 +73,25 @@ func SunGaps(t Target, limitDeg float64, from, to time.Time) ([]SunGap, error) {
 	return gaps, nil
 }
 
+// ClosestSunDeg returns a place's least angle from the Sun's centre between two instants within the frame's reach,
+// in degrees, and when that is: within the interval, not only at its ends.
+func (f *Frame) ClosestSunDeg(p Place, from, to time.Time) (deg float64, at time.Time) {
+	toward := func(x float64) (v, d float64) {
+		s, q := f.sun.vector(x), p.vector(x)
+		return s.dot(q), f.sun.slope(x).dot(q) + s.dot(p.slope(x))
+	}
+	x := closest(toward, f.days(from), f.days(to))
+	return between(f.sun.vector(x), p.vector(x)) * degPerRad, f.instant(x)
+}
+
 // closest returns where g is greatest between a and b.
 func closest(g func(x float64) (v, d float64), a, b float64) float64 {
-	_, da := g(a)
-	_, db := g(b)
+	va, da := g(a)
+	vb, db := g(b)
 	switch {
 	case da > 0 && db < 0:
 		return turning(g, a, b, false)
-	case da > 0:
+	case vb > va:
 		return b
 	}
 	return a

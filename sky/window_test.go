@@ -278,6 +278,41 @@ func TestSeason(t *testing.T) {
 	}
 }
 
+// An interval that begins or ends on a culmination, to the nanosecond, loses nothing.
+func TestFromTransitToTransit(t *testing.T) {
+	s, err := NewSite(20, 50, 0, 0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	at := time.Date(2027, 2, 3, 0, 0, 0, 0, time.UTC)
+	f := mustFrame(t, at.Add(18*time.Hour))
+	lim := Limits{LowDeg: 15}
+	for _, target := range spread(50) {
+		p := f.Place(target)
+		var transits []time.Time
+		for _, e := range s.Passes(f, p, at, at.Add(36*time.Hour), Limits{LowDeg: 15}).Events {
+			if e.Kind == UpperTransit || e.Kind == LowerTransit {
+				transits = append(transits, e.At)
+			}
+		}
+		for _, start := range transits {
+			for shift := time.Duration(-3); shift <= 3; shift++ {
+				from := start.Add(shift)
+				to := from.Add(20 * time.Hour)
+				windows := s.Windows(f, p, from, to, lim)
+				for m := range 20 * 6 {
+					at := from.Add(time.Duration(m)*10*time.Minute + 5*time.Minute)
+					above := s.Look(f, p, at).ElDeg - lim.LowDeg
+					inside := slices.ContainsFunc(windows, func(w Window) bool { return !at.Before(w.From) && !at.After(w.To) })
+					if inside != (above >= 0) && math.Abs(above) > 1e-5 {
+						t.Fatalf("%v from %v: at %v %g above the limit, windows %v", target, from, at, above, windows)
+					}
+				}
+			}
+		}
+	}
+}
+
 func TestNeverAndAlways(t *testing.T) {
 	north, err := NewSite(90, 0, 0, 0)
 	if err != nil {
@@ -319,6 +354,26 @@ func TestAzimuthRate(t *testing.T) {
 	if !slices.Equal(said, want) {
 		t.Errorf("windows %q, want %q", said, want)
 	}
+}
+
+// The least angle from the Sun is no greater than any found by looking, and is met where it says.
+func TestClosestSun(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		from := drawInstant(t)
+		to := from.Add(time.Duration(rapid.IntRange(1, 2*86400).Draw(t, "length")) * time.Second)
+		f := mustFrameOf(t, from.Add(to.Sub(from)/2))
+		ra, dec := f.RADec(f.Sun(), f.At())
+		p := f.Place(Target{RADeg: mod(ra+rapid.Float64Range(-180, 180).Draw(t, "ra off Sun"), 360), DecDeg: dec + rapid.Float64Range(-60, 60).Draw(t, "dec off Sun")})
+		least, at := f.ClosestSunDeg(p, from, to)
+		if got := f.SunDeg(p, at); math.Abs(got-least) > 1e-9 || at.Before(from) || at.After(to) {
+			t.Fatalf("%g° at %v, where it is %g°", least, at, got)
+		}
+		for i := range 101 {
+			if got := f.SunDeg(p, from.Add(to.Sub(from)*time.Duration(i)/100)); got < least-1e-7 {
+				t.Fatalf("%g°, but %g° after %d hundredths", least, got, i)
+			}
+		}
+	})
 }
 
 func TestCauseString(t *testing.T) {
