@@ -1,0 +1,114 @@
+package timing
+
+import (
+	"math"
+	"strings"
+	"testing"
+
+	"example.org/tallystick/sky/orbit"
+)
+
+const start = 57000.0
+
+// phaseModel fits the named parameters to arrivals whose error is given in turns.
+func phaseModel(t *testing.T, params string, days []float64, turns float64) *Model {
+	t.Helper()
+	src := Source{FrequencyHz: 100, EpochMJD: start}
+	free := []Parameter{Phase, Frequency}
+	if strings.Contains(params, "F1") {
+		free = append(free, FrequencyDerivative)
+	}
+	var obs []Observation
+	for _, d := range days {
+		obs = append(obs, Observation{MJD: start + d, SigmaUs: turns / src.FrequencyHz * 1e6})
+	}
+	return mustModel(t, src, allFree(free), obs)
+}
+
+func TestPhaseConnection(t *testing.T) {
+	for _, r := range rows(t, "phase_connection.csv", "PHA-03") {
+		m := phaseModel(t, r.inputs["params"], r.nums(t, "t_d"), r.num(t, "sphi_turn"))
+		r.check(t, m.PhaseErrorTurns(start+r.num(t, "t_pred_d"), 0))
+	}
+	for _, r := range rows(t, "phase_connection.csv", "PHA-06") {
+		days := r.nums(t, "t_d")
+		m := phaseModel(t, r.inputs["params"], days, r.num(t, "sphi_turn"))
+		d := m.Deadline(0.25/3, start+days[len(days)-1], 0)
+		r.check(t, d.MJD-start)
+	}
+	for _, r := range rows(t, "phase_connection.csv", "PHA-02") {
+		m := phaseModel(t, "", []float64{0, 2}, r.num(t, "sphi_turn"))
+		d := m.Deadline(r.num(t, "limit_turn")/r.num(t, "k"), start+2, 0)
+		r.check(t, (d.MJD-start-2)/2)
+	}
+	for _, r := range rows(t, "phase_connection.csv", "PHA-001", "PHA-002") {
+		src := Source{FrequencyHz: 100, EpochMJD: start}
+		priors := []Prior{{Phase, r.num(t, "sphi0_turn")}, {Frequency, r.num(t, "sF0_Hz")}}
+		if s := r.num(t, "sF1_Hz_s"); s > 0 {
+			priors = append(priors, Prior{FrequencyDerivative, s})
+		}
+		d := mustModel(t, src, priors, nil).Deadline(r.num(t, "limit_turn")/r.num(t, "k"), start, 0)
+		r.check(t, (d.MJD-start)*secPerDay)
+	}
+	for _, r := range rows(t, "phase_connection.csv", "PHA-005", "PHA-006") {
+		m := mustModel(t, Source{FrequencyHz: 100, EpochMJD: start}, []Prior{{FrequencyDerivative, r.num(t, "F1max_Hz_s")}}, nil)
+		d := m.Deadline(r.num(t, "limit_turn"), start, 0)
+		r.check(t, (d.MJD-start)*secPerDay)
+	}
+	for _, r := range rows(t, "phase_connection.csv", "PHA-050") {
+		f := r.num(t, "F0")
+		m := mustModel(t, Source{FrequencyHz: f, EpochMJD: start}, []Prior{{Frequency, f * r.num(t, "dF_over_F")}}, nil)
+		r.check(t, (m.Deadline(r.num(t, "limit_turn"), start, 0).MJD-start)*secPerDay)
+	}
+}
+
+func TestFrequencyFromOneObservation(t *testing.T) {
+	for _, r := range rows(t, "phase_connection.csv", "PHA-040", "PHA-041") {
+		n := 2.0
+		if r.inputs["n"] != "" {
+			n = r.num(t, "n")
+		}
+		var days []float64
+		for i := range int(n) {
+			days = append(days, float64(i)*r.num(t, "T_s")/n/secPerDay)
+		}
+		r.check(t, sigma(t, phaseModel(t, "", days, r.num(t, "sphi_turn")), Frequency))
+	}
+}
+
+func TestOrbitInPhaseError(t *testing.T) {
+	for _, r := range rows(t, "phase_connection.csv", "PHA-045") {
+		// At the node the line-of-sight motion is fastest: the worst phase.
+		src := Source{FrequencyHz: r.num(t, "F0"), EpochMJD: start,
+			Orbit: &orbit.Elements{PeriodDays: r.num(t, "PB_d"), AscendingNodeMJD: start, SemimajorLs: r.num(t, "x_s")}}
+		m := mustModel(t, src, []Prior{{OrbitalPeriod, r.num(t, "sPB_d")}}, nil)
+		r.check(t, m.PhaseErrorTurns(start+r.num(t, "N")*src.Orbit.PeriodDays, 0))
+	}
+}
+
+func TestPositionAmplitude(t *testing.T) {
+	for _, r := range rows(t, "phase_connection.csv", "PHA-010", "PHA-013") {
+		want := PositionAmplitudeTurns(r.num(t, "F0_Hz"), r.num(t, "beta_deg"), r.num(t, "dlambda_arcsec"), 0)
+		r.check(t, want)
+		// The model's own partial derivative swings as far: a source on the ecliptic, where right ascension is longitude.
+		src := Source{FrequencyHz: r.num(t, "F0_Hz"), EpochMJD: start, RADeg: 90, DecDeg: 23.4393}
+		m := mustModel(t, src, []Prior{{RightAscension, 1e3 * r.num(t, "dlambda_arcsec")}}, nil)
+		most := 0.0
+		for d := range 366 {
+			most = math.Max(most, m.PhaseErrorTurns(start+float64(d), 0))
+		}
+		if math.Abs(most/want-1) > 0.02 { // the Earth's orbit is not a circle
+			t.Errorf("%s: largest phase error %g, amplitude %g", r.id, most, want)
+		}
+	}
+}
+
+func TestDeadlineNever(t *testing.T) {
+	m := mustModel(t, Source{FrequencyHz: 100, EpochMJD: start}, []Prior{{Phase, 0.01}}, nil)
+	if d := m.Deadline(0.1, start, 0); !d.Never || d.Passed {
+		t.Errorf("a source that is perfectly known: %+v", d)
+	}
+	if d := m.Deadline(0.001, start, 0); !d.Passed || d.MJD != start {
+		t.Errorf("a source that is lost: %+v", d)
+	}
+}

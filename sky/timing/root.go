@@ -1,0 +1,63 @@
+package timing
+
+import "math"
+
+// A root is the upper triangle R of the information matrix N = RᵀR. It is kept instead of N, because what is
+// known of a new pulsar spans more digits than a sum of squares can hold: an arrival good to a microsecond
+// stands beside a position that may shift it by seconds.
+type root struct {
+	r [columns]vec // r[i][j], j ≥ i
+}
+
+// A batch is a number of rows waiting to be folded in, column by column.
+type batch struct {
+	n   int
+	col [columns][64]float64
+}
+
+// take folds the rows of a batch into the root and empties the batch.
+//
+//	QᵀQ = 1,  Q [R; rows] = [R'; 0], one reflection for each free column
+//
+// Source:  Householder 1958, J. ACM 5, 339; as a filter, Bierman 1977, Factorization Methods for Discrete
+// Sequential Estimation, ch. V
+// Checked: TestCovarianceAgainstQR
+func (t *root) take(b *batch, free *[columns]bool) {
+	if b.n == 0 {
+		return
+	}
+	for c := range columns {
+		if !free[c] {
+			continue
+		}
+		x := b.col[c][:b.n]
+		sum := 0.0
+		for _, v := range x {
+			sum += v * v
+		}
+		if sum == 0 {
+			continue
+		}
+		top := t.r[c][c]
+		norm := -math.Copysign(math.Sqrt(top*top+sum), top)
+		head := top - norm // no digits are lost: the signs differ
+		scale := -1 / (norm * head)
+		t.r[c][c] = norm
+		for k := c + 1; k < columns; k++ {
+			if !free[k] {
+				continue
+			}
+			y := b.col[k][:len(x)]
+			dot := head * t.r[c][k]
+			for i, v := range x {
+				dot += v * y[i]
+			}
+			dot *= scale
+			t.r[c][k] -= dot * head
+			for i, v := range x {
+				y[i] -= dot * v
+			}
+		}
+	}
+	b.n = 0
+}

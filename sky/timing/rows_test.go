@@ -1,0 +1,106 @@
+package timing
+
+import (
+	"encoding/csv"
+	"math"
+	"os"
+	"strconv"
+	"strings"
+	"testing"
+)
+
+// A row is a line of a table in testdata.
+type row struct {
+	id      string
+	inputs  map[string]string
+	want    float64   // the first of
+	wants   []float64 // the numbers expected
+	half    float64   // half of the last digit printed
+	tol     float64
+	tolKind string
+}
+
+func (r row) num(t *testing.T, key string) float64 {
+	t.Helper()
+	v, err := strconv.ParseFloat(r.inputs[key], 64)
+	if err != nil {
+		t.Fatalf("%s: input %q: %v", r.id, key, err)
+	}
+	return v
+}
+
+// check compares and ticks the row off.
+func (r row) check(t *testing.T, got float64) {
+	t.Helper()
+	var ok bool
+	switch r.tolKind {
+	case "abs":
+		ok = math.Abs(got-r.want) <= r.tol+r.half
+	case "rel":
+		ok = math.Abs(got-r.want) <= r.tol*math.Abs(r.want)+r.half
+	}
+	if !ok {
+		t.Errorf("%s: got %.15g, want %.15g (%s %g)", r.id, got, r.want, r.tolKind, r.tol)
+	}
+}
+
+// nums reads an input that holds several numbers.
+func (r row) nums(t *testing.T, key string) []float64 {
+	t.Helper()
+	return numbers(t, r.inputs[key])
+}
+
+func numbers(t *testing.T, text string) []float64 {
+	t.Helper()
+	var out []float64
+	for _, f := range strings.Fields(text) {
+		v, err := strconv.ParseFloat(f, 64)
+		if err != nil {
+			t.Fatal(err)
+		}
+		out = append(out, v)
+	}
+	return out
+}
+
+func rows(t *testing.T, file string, prefixes ...string) []row {
+	t.Helper()
+	f, err := os.Open("testdata/" + file)
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	lines, err := csv.NewReader(f).ReadAll()
+	if err != nil {
+		t.Fatal(err)
+	}
+	var out []row
+	for _, l := range lines[1:] {
+		wanted := false
+		for _, p := range prefixes {
+			wanted = wanted || strings.HasPrefix(l[0], p)
+		}
+		if !wanted {
+			continue
+		}
+		r := row{id: l[0], inputs: map[string]string{}, tolKind: l[6]}
+		for _, kv := range strings.Split(l[2], ";") {
+			if k, v, ok := strings.Cut(kv, "="); ok {
+				r.inputs[k] = v
+			}
+		}
+		r.wants = numbers(t, l[3])
+		r.want = r.wants[0]
+		if r.tol, err = strconv.ParseFloat(l[5], 64); err != nil {
+			t.Fatal(err)
+		}
+		if _, decimals, ok := strings.Cut(strings.Fields(l[3])[0], "."); ok && !strings.Contains(decimals, "e") {
+			r.half = 0.5000001 * math.Pow(10, -float64(len(decimals)))
+		}
+		out = append(out, r)
+	}
+	if len(out) == 0 {
+		t.Fatalf("%s holds no row %v", file, prefixes)
+	}
+	return out
+}
