@@ -63,27 +63,48 @@ func (m *mover) fill(sec []uint16, first, last int) {
 	n := len(m.depart)
 	for from := range n {
 		for to := range n {
-			if from == to {
-				continue
+			if from != to {
+				sec[from*n+to] = ceilSec(m.longest(m.depart[from], m.arrive[to], first, last))
 			}
-			var a, b float64 // the longest way on either axis
-			way := func(depart, arrive int) {
-				p, q := m.depart[from][depart], m.arrive[to][min(arrive, m.last)]
-				a, b = max(a, math.Abs(q.A-p.A)), max(b, math.Abs(q.B-p.B))
-			}
-			for d := first; d <= last; d++ {
-				way(d, d)
-			}
-			guess := int(m.mount.MoveSec(sky.Axes{}, sky.Axes{A: a, B: b}) / 60)
-			a, b = 0, 0
-			for d := first; d <= last; d++ {
-				way(d, d+guess)
-				way(d, d+guess+1)
-			}
-			sec[from*n+to] = ceilSec(m.mount.MoveSec(sky.Axes{}, sky.Axes{A: a, B: b}))
 		}
 	}
 }
+
+// longest is the longest move from one place to another for departures from minute first to minute last. The
+// first and the last of them say between which whole minutes all arrive; the longest ways, on either axis, to
+// where the target is at those minutes bound every move.
+func (m *mover) longest(depart, arrive []sky.Axes, first, last int) float64 {
+	a, b := m.minutesToReach(depart, arrive, first), m.minutesToReach(depart, arrive, last)
+	early, late := min(a, b), max(a, b)+1 // on arrival the target is between two whole minutes
+	var wayA, wayB float64
+	for d := first; d <= last; d++ {
+		p := &depart[d]
+		for at := d + early; at <= d+late; at++ {
+			q := &arrive[min(at, m.last)]
+			wayA, wayB = max(wayA, math.Abs(q.A-p.A)), max(wayB, math.Abs(q.B-p.B))
+		}
+	}
+	return m.mount.MoveSec(sky.Axes{}, sky.Axes{A: wayA, B: wayB})
+}
+
+// minutesToReach is how many whole minutes a move takes that departs at a minute. The target goes on moving
+// meanwhile, so it is asked again where it will be until that changes the answer no more.
+func (m *mover) minutesToReach(depart, arrive []sky.Axes, at int) int {
+	whole := 0
+	for range mostPasses {
+		sec := max(m.mount.MoveSec(depart[at], arrive[min(at+whole, m.last)]), m.mount.MoveSec(depart[at], arrive[min(at+whole+1, m.last)]))
+		next := int(sec / 60)
+		if next <= whole { // below it where the target comes towards the telescope
+			return next
+		}
+		whole = next
+	}
+	return whole
+}
+
+// mostPasses ends the chase of a target that runs as fast as the mount; each pass gains what is left of the
+// way times the ratio of the speeds.
+const mostPasses = 12
 
 // fillBreak writes the bin of a break: nothing moves in it, so the way is from where the telescope was
 // when it began to where the target is when it has ended.
@@ -91,12 +112,17 @@ func (m *mover) fillBreak(sec []uint16, brk sched.Span) {
 	n := len(m.depart)
 	for from := range n {
 		for to := range n {
-			p := m.depart[from][brk.From]
-			first := m.mount.MoveSec(p, m.arrive[to][brk.To])
-			then := min(brk.To+int(first/60), m.last)
-			longest := first
-			for _, at := range []int{then, min(then+1, m.last)} {
-				longest = max(longest, m.mount.MoveSec(p, m.arrive[to][at]))
+			p, whole := m.depart[from][brk.From], 0
+			longest := 0.0
+			for range mostPasses {
+				for _, at := range []int{whole, whole + 1} {
+					longest = max(longest, m.mount.MoveSec(p, m.arrive[to][min(brk.To+at, m.last)]))
+				}
+				if next := int(longest / 60); next > whole {
+					whole = next
+					continue
+				}
+				break
 			}
 			sec[from*n+to] = ceilSec(longest)
 		}
