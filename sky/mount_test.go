@@ -73,7 +73,7 @@ func TestTurns(t *testing.T) {
 		p := f.Place(Target{RADeg: rapid.Float64Range(0, 359.9).Draw(t, "ra"), DecDeg: rapid.Float64Range(-89, 89).Draw(t, "dec")})
 		m := drawMount(t)
 		m.Kind = AltAz
-		const step = 30 * time.Second
+		const step = 2 * time.Minute
 		turns := s.Turns(m, f, p, from, to)
 		track := make([]Axes, int(to.Sub(from)/step)+1)
 		for k := -4; k <= 4; k++ {
