@@ -215,33 +215,46 @@ func TestLogbookSpansTheCampaign(t *testing.T) {
 	}
 }
 
+func arrears(t *testing.T) []campaigns.AccountRow {
+	t.Helper()
+	f, err := demo.Files.Open("logbook.csv")
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	l, complaints := campaigns.ReadLogbook(f, "logbook.csv")
+	if len(complaints) > 0 {
+		t.Fatal(complaints)
+	}
+	rows, err := campaigns.Arrears(load(t), l, demo.Now())
+	if err != nil {
+		t.Fatal(err)
+	}
+	return rows
+}
+
 // TestSomeAreOverdue: the demonstration must have something to catch up with, and something in hand.
 func TestSomeAreOverdue(t *testing.T) {
-	c := load(t)
-	last := map[string]time.Time{}
-	for _, e := range logbook(t) {
-		if e.Outcome != campaigns.Lost {
-			last[e.Source+e.Receiver] = e.Start
-		}
-	}
-	square, overdue, badly := 0, 0, 0
-	for i := range c.Sources {
-		for _, a := range aimsOf(&c.Sources[i], campaigns.Cadence) {
-			for _, rx := range a.Receivers {
-				cycles := demo.Now().Sub(last[c.Sources[i].Name+rx]).Hours() / 24 / a.EveryDays
-				switch {
-				case cycles > 2.5:
-					badly++
-				case cycles > 1:
-					overdue++
-				default:
-					square++
-				}
+	inHand, overdue, badly, worst := 0, 0, 0, ""
+	for _, r := range arrears(t) {
+		switch {
+		case r.Kind != campaigns.Cadence:
+		case r.Debt < 1:
+			inHand++
+		case r.Debt < 2.5:
+			overdue++
+		default:
+			badly++
+			if worst == "" {
+				worst = r.Source
 			}
 		}
 	}
-	if square < 15 || overdue < 10 || badly < 4 {
-		t.Errorf("%d in hand, %d overdue, %d by more than two and a half cycles: all three are wanted", square, overdue, badly)
+	if inHand < 4 || overdue < 15 || badly < 5 {
+		t.Errorf("%d cadences in hand, %d overdue, %d badly: all three are wanted", inHand, overdue, badly)
+	}
+	if worst != "J1906+2042" {
+		t.Errorf("%s is worst in arrears, its remark says that J1906+2042 is", worst)
 	}
 }
 
@@ -293,34 +306,30 @@ func TestOrbitsAreConsistent(t *testing.T) {
 	}
 }
 
-// TestCountsOfTurnsRunOut follows the remarks: which session is the first in which the count of a source's turns
-// is no longer sure. Position errors, which come on top, are left out.
-//
-//	σ² = σ0² + (σF t)² + (σF' t²/2)²
+// TestCountsOfTurnsRunOut follows the remarks: by which session a count of turns is no longer sure if nothing is
+// observed before, and that it still is at the session before that one.
 func TestCountsOfTurnsRunOut(t *testing.T) {
-	c := load(t)
-	known := sourcesByName(c)
+	sessions := load(t).Sessions
+	due := map[string]time.Time{}
+	for _, r := range arrears(t) {
+		if r.Kind == campaigns.Connect {
+			due[r.Source] = r.Due
+		}
+	}
 	for name, want := range map[string]string{
 		"J0212+1858": "2026-12-07 morning",
 		"J2304+5707": "2026-12-12 evening",
 		"J0755-0913": "2026-12-30 night",
 	} {
-		s := known[name]
-		if s == nil {
-			t.Fatalf("no source is called %s", name)
-		}
-		limit := aimsOf(s, campaigns.Connect)[0].MaxPhaseErrorTurns
 		first := "none"
-		for _, session := range c.Sessions {
-			sec := (float64(session.Start.Unix())/86400 + 40587 - s.Spin.EpochMJD) * 86400
-			sigma := math.Hypot(math.Hypot(s.Spin.SigmaPhaseTurns, s.Spin.SigmaFrequencyHz*sec), s.Spin.SigmaDerivativeHzPerS*sec*sec/2)
-			if sigma > limit {
-				first = session.Name
+		for _, s := range sessions {
+			if !due[name].IsZero() && due[name].Before(s.Start) {
+				first = s.Name
 				break
 			}
 		}
 		if first != want {
-			t.Errorf("%s: the count of turns is lost by the session %s, its remark says %s", name, first, want)
+			t.Errorf("%s: the count of turns runs out on %v, by the session %s; its remark says %s", name, due[name], first, want)
 		}
 	}
 }

@@ -124,12 +124,12 @@ func past() []session {
 		d := newDice("session of " + day.Format("2006-01-02"))
 		s := session{
 			start:   moved(day.Add(time.Duration(d.unit()*24*6) * 10 * time.Minute)),
-			minutes: 10 * int(d.between(46, 61)),
+			minutes: 10 * int(d.between(50, 64)),
 			rx:      both(),
 		}
 		s.trouble(d)
 		out = append(out, s)
-		day = day.Add(time.Duration(24*d.between(4.2, 5.8)) * time.Hour).Truncate(24 * time.Hour)
+		day = day.Add(time.Duration(24*d.between(4.0, 5.5)) * time.Hour).Truncate(24 * time.Hour)
 	}
 	out = append(out, session{start: lastPastSession, minutes: 560, rx: both()})
 	for i := 1; i < len(out); i++ {

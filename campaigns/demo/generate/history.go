@@ -21,16 +21,24 @@ type observation struct {
 	note       string
 }
 
-// A claim is what one source wants of one receiver: a running balance in cycles of its cadence.
+// An account is the running balance of one aim, in cycles of its cadence. The rules are those of the program: an
+// epoch pays only when every receiver of the aim has had its visit within the pair's days.
+type account struct {
+	s         *source
+	a         *aim
+	debt      float64
+	open      map[string]float64 // shares of the epoch that has been begun, by receiver
+	openedMJD float64
+	lastEpoch float64 // MJD; 0: none yet
+	visits    int     // since the ramp began
+}
+
+// A claim is what an account wants of one receiver.
 type claim struct {
-	s        *source
-	a        *aim
-	rx       string
-	minutes  int
-	debt     float64
-	lastPaid float64 // MJD of the last useful visit; 0: none yet
-	visits   int     // since the ramp began
-	doneIn   int     // number of the last session that held it
+	*account
+	rx      string
+	minutes int
+	doneIn  int // number of the last session that held it
 }
 
 func claimsOf(sources []source) []*claim {
@@ -42,10 +50,10 @@ func claimsOf(sources []source) []*claim {
 			if a.kind != "cadence" && a.kind != "calibration" {
 				continue
 			}
+			// A campaign does not begin with everything due on one day.
+			acc := &account{s: s, a: a, debt: newDice("first debt of "+s.name+a.receivers[0]).between(0.2, 1), open: map[string]float64{}}
 			for _, rx := range a.receivers {
-				// A campaign does not begin with everything due on one day.
-				start := newDice("first debt of "+s.name+rx).between(0.2, 1)
-				out = append(out, &claim{s: s, a: a, rx: rx, minutes: int(a.minutes), debt: start, doneIn: -1})
+				out = append(out, &claim{account: acc, rx: rx, minutes: int(a.minutes), doneIn: -1})
 			}
 		}
 	}
@@ -53,7 +61,7 @@ func claimsOf(sources []source) []*claim {
 }
 
 // intervalDays is the present interval of the cadence: shorter while a ramp runs.
-func (c *claim) intervalDays(mjd float64) float64 {
+func (c *account) intervalDays(mjd float64) float64 {
 	r := c.a.ramp
 	if r == nil || mjd < mjdOfDate(r.from) {
 		return c.a.everyDays
@@ -69,45 +77,71 @@ func mjdOfDate(date string) float64 {
 	return mjdOf(t)
 }
 
-// grow lets the debt grow by some days.
-func (c *claim) grow(days, mjd float64) {
-	if c.a.kind == "cadence" && mjd >= mjdOf(c.s.found) {
+// grow lets the debt grow by some days, and a begun epoch lapse.
+func (c *account) grow(days, mjd float64) {
+	if c.a.kind != "cadence" {
+		return
+	}
+	if mjd >= mjdOf(c.s.found) {
 		c.debt += days / c.intervalDays(mjd)
+	}
+	if mjd-c.openedMJD > c.a.pairDays {
+		clear(c.open)
 	}
 }
 
 // pay books a visit that reached a share of the wanted sensitivity.
-func (c *claim) pay(share, mjd float64) {
+func (c *account) pay(rx string, share, mjd float64) {
 	if share <= 0 {
 		return
 	}
+	if len(c.open) == 0 {
+		c.openedMJD = mjd
+	}
+	c.open[rx] = share
+	if len(c.open) < len(c.a.receivers) {
+		return
+	}
+	paid := 0.0
+	for _, r := range c.a.receivers {
+		paid += c.open[r] / float64(len(c.a.receivers))
+	}
+	clear(c.open)
 	carry := c.a.carry
 	if carry == 0 {
 		carry = 0.5
 	}
-	c.debt = math.Max(0, c.debt-share)
-	c.debt *= 1 - share*(1-carry)
-	c.lastPaid = mjd
+	c.debt = math.Max(0, c.debt-paid) * (1 - paid*(1-carry))
+	c.lastEpoch = mjd
 	if c.a.ramp != nil && mjd >= mjdOfDate(c.a.ramp.from) {
 		c.visits++
 	}
 }
 
-// need is what the visit is worth for a source of priority 1.
+// need is what a visit with the claim's receiver is worth for a source of priority 1. To finish an epoch is worth
+// more than to begin one, since what has been begun lapses.
 func (c *claim) need(mjd float64) float64 {
+	const due, finish = 0.6, 1.6
 	if c.a.kind == "calibration" {
-		return 3
+		return 5
 	}
-	if !c.s.missed.IsZero() && mjd > mjdOf(c.s.missed) {
+	if mjd < mjdOf(c.s.found) || !c.s.missed.IsZero() && mjd > mjdOf(c.s.missed) {
 		return 0
 	}
-	if mjd < mjdOf(c.s.found) || c.debt < 0.6 || mjd-c.lastPaid < c.a.minGap {
+	worth := c.debt * c.debt
+	if c.debt > 1 {
+		worth = 2*math.Min(c.debt, 5) - 1
+	}
+	if _, had := c.open[c.rx]; had {
 		return 0
 	}
-	if c.debt < 1 {
-		return c.debt * c.debt
+	if len(c.open) > 0 {
+		return finish * worth
 	}
-	return 2*math.Min(c.debt, 5) - 1
+	if c.debt < due || mjd-c.lastEpoch < c.a.minGap {
+		return 0
+	}
+	return worth
 }
 
 // A telescope is what the dispatcher knows about the dish: where it points and what is in the beam.
@@ -147,7 +181,9 @@ func playHistory(sources []source) []observation {
 	for i, s := range past() {
 		now := mjdOf(s.start)
 		for _, c := range claims {
-			c.grow(now-before, now)
+			if c.rx == c.a.receivers[0] { // once for each account
+				c.grow(now-before, now)
+			}
 		}
 		before = now
 		n := night{session: s, number: i, ofDate: map[string]vector{}, dice: newDice("weather of " + s.name())}
@@ -261,12 +297,23 @@ func (n *night) best(claims []*claim, now, limit time.Time) (*claim, time.Time) 
 		value := need / float64(setup+c.minutes)
 		start := now.Add(time.Duration(setup) * time.Minute)
 		end := start.Add(time.Duration(c.minutes) * time.Minute)
-		if value <= most || end.After(limit) || !n.up(c.s, start, end) {
+		if value <= most || end.After(limit) || !n.up(c.s, start, end) || !n.canFinish(c, end) {
 			continue
 		}
 		found, at, most = c, start, value
 	}
 	return found, at
+}
+
+// canFinish tells whether the other receivers of an epoch can still follow in this session. Where a receiver is out of
+// order, the others are used all the same.
+func (n *night) canFinish(c *claim, end time.Time) bool {
+	missing := len(c.a.receivers) - len(c.open) - 1
+	if missing <= 0 || len(n.rx) < len(c.a.receivers) {
+		return true
+	}
+	last := end.Add(time.Duration(missing*(c.minutes+15)) * time.Minute)
+	return !last.After(n.end()) && n.up(c.s, last.Add(-time.Duration(c.minutes)*time.Minute), last)
 }
 
 // observe writes one slot into the log, with whatever became of it, and returns when the dish is free.
@@ -294,7 +341,7 @@ func (n *night) observe(c *claim, start, end time.Time, note string) time.Time {
 	}
 	if o.outcome != "lost" {
 		n.measure(&o, c, minutes, wanted)
-		c.pay(o.quality, mjdOf(start))
+		c.pay(c.rx, o.quality, mjdOf(start))
 	}
 	n.log = append(n.log, o)
 	return end

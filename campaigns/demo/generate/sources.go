@@ -38,10 +38,12 @@ func coverage(bins, perBin int, since string) aim {
 	return aim{kind: "phase coverage", receivers: []string{"L"}, bins: bins, perBin: perBin, since: since}
 }
 
-func connect(turns float64) aim { return aim{kind: "connect", maxPhase: turns} }
+func connect(turns float64, rx string) aim {
+	return aim{kind: "connect", maxPhase: turns, receivers: []string{rx}}
+}
 
 func measure(parameter string, percent float64, comment string) aim {
-	return aim{kind: "measure", parameter: parameter, goalPercent: percent, comment: comment}
+	return aim{kind: "measure", parameter: parameter, goalPercent: percent, receivers: []string{"L"}, comment: comment}
 }
 
 func calibrate(minutes float64, rx string) aim {
@@ -76,48 +78,48 @@ var sketches = []sketch{
 	// slow
 	{chapter: "slow", role: "Bright and high in the winter night: always an easy quarter of an hour.",
 		raH: 3.82, decDeg: 51.4, priority: 1, periodS: 0.762, slowdown: 2.1e-15, dm: 44, mjy: 6.2, index: -1.7, duty: 0.030,
-		aims: []aim{single(28, 12, "L"), connect(0.2)}},
+		aims: []aim{single(28, 12, "L"), connect(0.2, "L")}},
 	{chapter: "slow", role: "Weak sister of the one before; it needs the longer visit.",
 		raH: 6.35, decDeg: 8.8, priority: 0.8, periodS: 1.214, slowdown: 4.4e-16, dm: 71, mjy: 1.3, index: -1.5, duty: 0.041,
-		aims: []aim{single(35, 20, "L"), connect(0.2)}},
+		aims: []aim{single(35, 20, "L"), connect(0.2, "L")}},
 	{chapter: "slow", role: "Steep spectrum: only worth having with the U receiver.",
 		raH: 9.14, decDeg: 12.6, priority: 1, periodS: 0.418, slowdown: 9.0e-16, dm: 17, mjy: 1.1, index: -2.6, duty: 0.026,
-		aims: []aim{single(28, 12, "U"), connect(0.2)}},
+		aims: []aim{single(28, 12, "U"), connect(0.2, "U")}},
 	{chapter: "slow", role: "Spring sky, seen in the second half of the night.",
 		raH: 11.61, decDeg: 37.2, priority: 0.8, periodS: 0.655, slowdown: 1.3e-15, dm: 24, mjy: 3.4, index: -1.8, duty: 0.035,
-		aims: []aim{single(30, 12, "L"), connect(0.2)}},
+		aims: []aim{single(30, 12, "L"), connect(0.2, "L")}},
 	{chapter: "slow", role: "Circumpolar: never sets at Corvane, so it fills gaps at any hour.",
 		raH: 13.42, decDeg: 79.6, priority: 0.7, periodS: 0.351, slowdown: 3.2e-16, dm: 29, mjy: 2.7, index: -1.4, duty: 0.028,
-		aims: []aim{single(21, 12, "L"), connect(0.2)}},
+		aims: []aim{single(21, 12, "L"), connect(0.2, "L")}},
 	{chapter: "slow", role: "Lowest priority in the most crowded part of the sky: it loses to its neighbours every time and is\n" +
 		"badly overdue. More time at 19 hours of sidereal time would be needed to keep it.",
 		raH: 19.12, decDeg: 20.7, priority: 0.5, periodS: 0.571, slowdown: 5.8e-15, dm: 139, mjy: 0.9, index: -1.5, duty: 0.044,
-		aims: []aim{single(21, 35, "L"), connect(0.25)}},
+		aims: []aim{single(21, 35, "L"), connect(0.25, "L")}},
 	{chapter: "slow", role: "Long period, sharp pulse; circumpolar in the northern Milky Way.",
 		raH: 20.35, decDeg: 61.1, priority: 0.8, periodS: 1.883, slowdown: 7.4e-15, dm: 93, mjy: 2.2, index: -1.9, duty: 0.012,
-		aims: []aim{single(28, 15, "L"), connect(0.2)}},
+		aims: []aim{single(28, 15, "L"), connect(0.2, "L")}},
 	{chapter: "slow", role: "Autumn evening source.",
 		raH: 22.93, decDeg: 33.3, priority: 0.9, periodS: 0.944, slowdown: 1.1e-15, dm: 38, mjy: 4.5, index: -1.6, duty: 0.033,
-		aims: []aim{single(28, 12, "L"), connect(0.2)}},
+		aims: []aim{single(28, 12, "L"), connect(0.2, "L")}},
 	{chapter: "slow", role: "Far in the south: it never rises at Corvane. It stays in the list because the campaign inherited it, and\n" +
 		"to show what the program says about a source that cannot be had.",
 		raH: 6.21, decDeg: -57.3, priority: 0.5, periodS: 0.533, slowdown: 2.0e-15, dm: 52, mjy: 5.1, index: -1.6, duty: 0.030,
 		aims: []aim{single(60, 15, "L")}},
 
 	// young
-	{chapter: "young", role: "Glitched on 16 November 2026. The new ephemeris rests on the first visits since, and its pulse count runs out\n" +
-		"before the session of 12 December: back as often as can be, then at growing intervals.",
+	{chapter: "young", role: "Glitched on 28 November 2026. There has been one visit since, and its pulse count runs out before the session\n" +
+		"of 12 December: back as often as can be, then at growing intervals.",
 		raH: 23.08, decDeg: 57.2, priority: 4, periodS: 0.1117, slowdown: 2.6e-14, dm: 168, mjy: 1.9, index: -1.4, duty: 0.048,
-		sigmas: &spinSigmas{61368, 0.004, 6e-8, 6e-14}, positions: [2]float64{120, 140}, glitchMJD: 61360.41,
-		aims: []aim{single(14, 20, "L").growing("2026-11-17", 1, 1.5).gap(0.5).noted("daily after the glitch, a factor 1.5 longer each time"), connect(0.1)}},
+		sigmas: &spinSigmas{61374.5, 0.004, 1.2e-7, 2e-14}, positions: [2]float64{120, 140}, glitchMJD: 61372.41,
+		aims: []aim{single(14, 20, "L").growing("2026-11-28", 1, 1.5).gap(0.5).noted("daily after the glitch, a factor 1.5 longer each time"), connect(0.1, "L")}},
 	{chapter: "young", role: "Restless rotation but no glitch yet: every ten days, so that one would not be missed by long.",
 		raH: 19.74, decDeg: 26.4, priority: 2, periodS: 0.2143, slowdown: 1.9e-14, dm: 201, mjy: 1.6, index: -1.3, duty: 0.037,
 		sigmas: &spinSigmas{61240, 0.006, 9e-10, 3e-16}, positions: [2]float64{200, 260},
-		aims: []aim{single(10, 15, "L"), connect(0.1)}},
+		aims: []aim{single(10, 15, "L"), connect(0.1, "L")}},
 	{chapter: "young", role: "Young and fast, low in the south; its last glitch was long ago.",
 		raH: 6.93, decDeg: -11.6, priority: 1.8, periodS: 0.0863, slowdown: 5.2e-14, dm: 128, mjy: 1.2, index: -1.2, duty: 0.051,
 		sigmas: &spinSigmas{61210, 0.005, 1.1e-9, 5e-16}, positions: [2]float64{90, 170}, glitchMJD: 59214.6,
-		aims: []aim{single(14, 20, "L"), connect(0.1)}},
+		aims: []aim{single(14, 20, "L"), connect(0.1, "L")}},
 
 	// millisecond
 	{chapter: "millisecond", role: "One of the best clocks, and well kept: the standard by which others are judged.",
@@ -183,16 +185,16 @@ var sketches = []sketch{
 		pmMas: 22, aims: []aim{paired(21, 3, 25)}},
 
 	// new
-	{chapter: "new", role: "Found on 21 October 2026 and seen three times; storms and busier sources have kept it waiting since\n" +
-		"12 November. Without a visit on 3 December the count of its turns is a guess by the session of 7 December.",
+	{chapter: "new", role: "Found on 9 November 2026 and seen once since, on the 11th. Without a visit on 3 December the count of its turns\n" +
+		"is a guess by the session of 7 December.",
 		raH: 2.21, decDeg: 18.9, priority: 3, periodS: 0.00472, slowdown: 1.5e-20, dm: 45, mjy: 0.7, index: -1.8, duty: 0.060,
-		sigmas: &spinSigmas{61348, 0.012, 3.2e-8, 1e-14}, positions: [2]float64{60, 85}, found: on(2026, 10, 21, 0, 0), missed: on(2026, 11, 18, 0, 0),
-		aims: []aim{single(28, 30, "L").growing("2026-10-21", 2, 1.6).gap(0.5).noted("gaps that grow as the ephemeris does"), connect(0.1)}},
-	{chapter: "new", role: "Found on 8 November 2026 at the edge of a beam. Slow enough to be in no hurry before Christmas: the count\n" +
+		sigmas: &spinSigmas{61356, 0.012, 4.7e-8, 1e-14}, positions: [2]float64{60, 85}, found: on(2026, 11, 9, 0, 0), missed: on(2026, 11, 14, 0, 0),
+		aims: []aim{single(28, 30, "L").growing("2026-11-09", 2, 1.6).gap(0.5).noted("gaps that grow as the ephemeris does"), connect(0.1, "L")}},
+	{chapter: "new", role: "Found on 8 November 2026 at the edge of a beam, and seen twice. Slow enough to be in no hurry before Christmas: the count\n" +
 		"of its turns holds until the session of 30 December. Its position is known only to a quarter of an arcsecond.",
 		raH: 7.92, decDeg: -9.3, priority: 2.5, periodS: 0.02531, slowdown: 3.8e-18, dm: 88, mjy: 0.6, index: -1.6, duty: 0.045,
-		sigmas: &spinSigmas{61366, 0.015, 2.1e-8, 1.3e-14}, positions: [2]float64{250, 310}, found: on(2026, 11, 8, 0, 0),
-		aims: []aim{single(28, 30, "L").growing("2026-11-08", 2, 1.6).gap(0.5), connect(0.1)}},
+		sigmas: &spinSigmas{61366, 0.015, 2.1e-8, 1.45e-14}, positions: [2]float64{250, 310}, found: on(2026, 11, 8, 0, 0), missed: on(2026, 11, 18, 0, 0),
+		aims: []aim{single(28, 30, "L").growing("2026-11-08", 2, 1.6).gap(0.5), connect(0.1, "L")}},
 
 	// binaries
 	{chapter: "binaries", role: "An hour and a half around a wisp of a companion, whose wind hides the pulsar for a sixth of every orbit.\n" +
@@ -242,7 +244,7 @@ var sketches = []sketch{
 			advanceKnown: true, decayKnown: true, sigmaPeriod: 1e-10, sigmaEpoch: 1e-6},
 		aims: []aim{single(14, 40, "L").atMost(250), coverage(16, 3, "2026-01-01"),
 			measure("orbital decay", 2, "the orbit shrinks: the longer the span, the better"),
-			measure("advance of periastron", 0.05, ""), connect(0.1)}},
+			measure("advance of periastron", 0.05, ""), connect(0.1, "L")}},
 	{chapter: "binaries", role: "Massive white dwarf, seventeen hours, mildly eccentric.",
 		raH: 1.12, decDeg: -12.6, priority: 2, periodS: 0.0291, slowdown: 1.2e-18, dm: 26, mjy: 1.5, index: -1.6, duty: 0.035, pmMas: 11,
 		orbit: &orbitSketch{periodDays: 0.7113, e: 0.221, omegaDeg: 211, m1: 1.35, m2: 0.94, sinI: 0.71, advanceKnown: true,
