@@ -26,7 +26,7 @@ func (p *Prepared) track(i int, ps *preparedSource) siteTrack {
 	for m := range n {
 		t.LimitDeg[m] = math.Max(limits.LowDeg, limits.Mask.At(t.AzDeg[m]))
 	}
-	t.SunDeg = p.nearestSun(ps)
+	t.SunDeg, _ = p.frame.ClosestSunDeg(ps.place, p.Session.Start, p.Session.End)
 
 	sun := limits.SunDeg
 	limits.SunDeg = 0
@@ -52,11 +52,6 @@ func (p *Prepared) track(i int, ps *preparedSource) siteTrack {
 		}
 	}
 	return t
-}
-
-// nearestSun is the source's least distance from the Sun in the session, which moves by 1° a day against it.
-func (p *Prepared) nearestSun(ps *preparedSource) float64 {
-	return math.Min(p.frame.SunDeg(ps.place, p.Session.Start), p.frame.SunDeg(ps.place, p.Session.End))
 }
 
 // placesOf are the cable turns on which the mount can follow a source, and when. A source that is never
