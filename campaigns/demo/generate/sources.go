@@ -132,9 +132,9 @@ var sketches = []sketch{
 		raH: 2.55, decDeg: -8.4, priority: 2.5, periodS: 0.00443, slowdown: 1.5e-20, dm: 22, mjy: 1.3, index: -1.8, duty: 0.045,
 		pmMas: 14, aims: []aim{paired(14, 3, 25)}},
 	{chapter: "millisecond", role: "Grazes the southern skyline: under two hours a day above the limit, and never higher than ten degrees.\n" +
-		"Only a session that holds its transit can serve it.",
+		"Only a session that holds its transit can serve it, and through so much air it takes twice the minutes.",
 		raH: 3.36, decDeg: -35.5, priority: 1.5, periodS: 0.00531, slowdown: 1.1e-20, dm: 19, mjy: 1.9, index: -1.6, duty: 0.052,
-		pmMas: 7, aims: []aim{single(30, 40, "L").atLeast(0.75)}},
+		pmMas: 7, aims: []aim{single(30, 25, "L").atMost(90)}},
 	{chapter: "millisecond", role: "Winter zenith: passes so high that the mount must leave it for a few minutes at transit.",
 		raH: 4.28, decDeg: 43.1, priority: 3, periodS: 0.00287, slowdown: 1.8e-20, dm: 58, mjy: 1.1, index: -1.9, duty: 0.048,
 		pmMas: 4, aims: []aim{paired(14, 2, 30)}},
