@@ -265,7 +265,7 @@ var sketches = []sketch{
 		raH: 21.61, decDeg: 51.3, priority: 2, periodS: 0.00312, slowdown: 1.1e-20, dm: 81, mjy: 1.2, index: -1.8, duty: 0.041, pmMas: 4,
 		orbit: &orbitSketch{periodDays: 97.24, e: 0.552, omegaDeg: 17, m1: 1.6, m2: 0.31, sinI: 0.83, sigmaPeriod: 1e-7, sigmaEpoch: 5e-6},
 		aims:  []aim{paired(21, 3, 25), coverage(12, 2, "2025-05-01")}},
-	{chapter: "binaries", role: "The widest: 150 days. Three orbits and a half since the campaign began, so each phase has come round only a few\n" +
+	{chapter: "binaries", role: "The widest: 150 days. Not quite four orbits since the campaign began, so each phase has come round only a few\n" +
 		"times, and an unlucky week cannot be made up until next year.",
 		raH: 17.91, decDeg: 31.2, priority: 2, periodS: 0.00547, slowdown: 1.5e-20, dm: 33, mjy: 1.5, index: -1.6, duty: 0.046, pmMas: 7,
 		orbit: &orbitSketch{periodDays: 149.6, m1: 1.5, m2: 0.34, sinI: 0.86, sigmaPeriod: 3e-7, sigmaEpoch: 2e-5},
