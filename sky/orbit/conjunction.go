@@ -31,11 +31,11 @@ func (k Kind) longitudeTurns() float64 {
 //
 //	ω0 + (1+k) A = 90° + 360° n   (superior; 270° inferior), then A → E → M → t
 //
-// Returns: nothing when toMJD is before fromMJD or either is not finite
+// Returns: nothing when toMJD is before fromMJD or either is beyond ±1e7 (27,000 years)
 // Source:  Damour & Deruelle 1986, Ann. Inst. H. Poincaré 44, 263
 // Checked: TestConjunctions, TestConjunctionsAgainstScan
 func (o Orbit) Conjunctions(kind Kind, fromMJD, toMJD float64) []float64 {
-	if !(toMJD >= fromMJD) || math.IsInf(fromMJD, 0) || math.IsInf(toMJD, 0) {
+	if !(toMJD >= fromMJD) || math.Abs(fromMJD) > 1e7 || math.Abs(toMJD) > 1e7 {
 		return nil
 	}
 	var times []float64

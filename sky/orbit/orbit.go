@@ -227,12 +227,8 @@ func (o Orbit) EpochAt(n float64) (mjd float64, ok bool) { return o.whenElapsed(
 
 // meanAnomaly returns the mean anomaly in turns, whole turns kept.
 func (o *Orbit) meanAnomaly(mjd float64) float64 {
-	n := o.elapsed(mjd)
-	if o.node {
-		// Mean longitude n; periastron stands at om/(1+k) when the longitude is 0.
-		return (n - o.om/turn) / (1 + o.advance)
-	}
-	return n
+	_, anomaly := o.Means(mjd)
+	return anomaly
 }
 
 // whenMeanAnomaly is the inverse of meanAnomaly.
@@ -251,10 +247,19 @@ func (o *Orbit) whenMeanAnomaly(turns float64) (mjd float64, ok bool) {
 // Neglects: with mjd the barycentric arrival instead of orbit time, up to SemimajorLs: 1.5e-5 turns
 // for an orbit of 11 ls in 8.7 d
 func (o Orbit) Phase(mjd float64) float64 {
+	longitude, _ := o.Means(mjd)
+	return fraction(longitude)
+}
+
+// Means returns the mean orbital longitude and the mean anomaly in turns, whole turns kept: Phase and
+// PhasePeriastron without their whole turns taken off. Their difference is the longitude of periastron in the
+// mean. It is the call for inner loops.
+func (o *Orbit) Means(mjd float64) (longitude, anomaly float64) {
+	n := o.elapsed(mjd)
 	if o.node {
-		return fraction(o.elapsed(mjd))
+		return n, (n - o.om/turn) / (1 + o.advance)
 	}
-	return fraction(o.om/turn + (1+o.advance)*o.elapsed(mjd))
+	return o.om/turn + (1+o.advance)*n, n
 }
 
 // PhasePeriastron returns the mean anomaly in turns: the phase counted from periastron, 0 ≤ phase < 1.

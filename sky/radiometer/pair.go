@@ -5,6 +5,21 @@ import "math"
 // DispersionConstant is the delay of a dispersion measure of 1 pc/cm³ at 1 MHz, seconds.
 const DispersionConstant = 4.148808e3
 
+// EphemerisDispersionConstant is the one that published dispersion measures are fitted with by convention,
+// 1/2.41e-4: a delay worked out from a published value needs it where 1e-4 of the delay matters.
+const EphemerisDispersionConstant = 1 / 2.41e-4
+
+// ChannelSmearingUs returns by how much dispersion widens a pulse across one channel, µs.
+//
+//	2 K DM Δf/f³
+//
+// Given:   the width of the channel and its frequency in MHz
+// Source:  Lorimer & Kramer 2005, Handbook of Pulsar Astronomy
+// Checked: TestDispersion
+func ChannelSmearingUs(dmPcPerCm3, channelMHz, mhz float64) float64 {
+	return 2e6 * DispersionConstant * dmPcPerCm3 * channelMHz / (mhz * mhz * mhz)
+}
+
 // DispersionSec returns the delay against infinite frequency, seconds.
 //
 //	K DM/f²

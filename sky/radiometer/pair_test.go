@@ -9,6 +9,13 @@ func TestDispersion(t *testing.T) {
 	for _, r := range rows(t, "dispersion.csv", "DIS-001") {
 		r.check(t, DispersionConstant)
 	}
+	for _, r := range rows(t, "dispersion.csv", "DIS-002") {
+		r.check(t, EphemerisDispersionConstant)
+	}
+	for _, r := range rows(t, "dispersion.csv", "DIS-020") {
+		r.tol = 6e-3 // the published coefficient, 8.3 µs, has two digits
+		r.check(t, ChannelSmearingUs(r.num(t, "DM"), r.num(t, "chan_MHz"), 1e3*r.num(t, "f_GHz")))
+	}
 	for _, r := range rows(t, "dispersion.csv", "DIS-01") {
 		r.check(t, DispersionSec(r.num(t, "DM"), r.num(t, "f_MHz")))
 	}

@@ -8,7 +8,7 @@ type fit struct {
 	n     int          // columns kept
 	kept  [columns]int // which they are, ascending
 	scale vec          // of the kept ones, in their order
-	l     [columns]vec // lower triangle of the factor
+	u     [columns]vec // Lᵀ, the upper triangle: row i holds column i of L
 	inv   vec          // 1/diagonal
 
 	nDropped int
@@ -66,10 +66,10 @@ func (f *fit) factor(t *root, free *[columns]bool) {
 		f.n++
 	}
 	for i := range f.n {
-		for j := 0; j <= i; j++ {
-			f.l[i][j] = w[f.kept[i]][j]
+		for j := i; j < f.n; j++ {
+			f.u[i][j] = w[f.kept[j]][i]
 		}
-		f.inv[i] = 1 / f.l[i][i]
+		f.inv[i] = 1 / f.u[i][i]
 	}
 	for d := range f.nDropped {
 		f.findNull(d, &w)
@@ -107,23 +107,24 @@ func (f *fit) findNull(d int, w *[columns]vec) {
 	}
 }
 
-// forward solves L y = v in place, backward Lᵀ y = v.
+// forward solves L y = v in place, column by column.
 func (f *fit) forward(v *vec) {
-	for i := range f.n {
-		sum := v[i]
-		row := &f.l[i]
-		for k := range i {
-			sum -= row[k] * v[k]
+	y := v[:f.n]
+	for i := range y {
+		y[i] *= f.inv[i]
+		known, row := y[i], f.u[i][:len(y)]
+		for k := i + 1; k < len(y); k++ {
+			y[k] -= row[k] * known
 		}
-		v[i] = sum * f.inv[i]
 	}
 }
 
+// backward solves Lᵀ y = v in place.
 func (f *fit) backward(v *vec) {
 	for i := f.n - 1; i >= 0; i-- {
 		sum := v[i]
 		for k := i + 1; k < f.n; k++ {
-			sum -= f.l[k][i] * v[k]
+			sum -= f.u[i][k] * v[k]
 		}
 		v[i] = sum * f.inv[i]
 	}

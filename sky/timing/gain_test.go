@@ -2,6 +2,7 @@ package timing
 
 import (
 	"math"
+	"sync"
 	"testing"
 
 	"pgregory.net/rapid"
@@ -91,6 +92,35 @@ func BenchmarkInformation(b *testing.B) {
 		if _, err := New(src, priors, obs); err != nil {
 			b.Fatal(err)
 		}
+	}
+}
+
+// A whole campaign on two cores: 120 sources, information and gain table.
+func BenchmarkCampaign(b *testing.B) {
+	src, obs := example(), weekly(50000, 20)
+	priors := LoosePriors(src, nil)
+	obs = obs[:len(obs)/2]
+	minutes := make([]Observation, 720)
+	for i := range minutes {
+		minutes[i] = Observation{57400 + float64(i)/1440, 3, 1400}
+	}
+	for b.Loop() {
+		var both sync.WaitGroup
+		for range 2 {
+			both.Go(func() {
+				var q []float64
+				for range 60 {
+					m, err := New(src, priors, obs)
+					if err == nil {
+						q, err = m.GainPerMinute(CompanionMass, minutes, q)
+					}
+					if err != nil {
+						b.Error(err)
+					}
+				}
+			})
+		}
+		both.Wait()
 	}
 }
 

@@ -72,7 +72,7 @@ func reference(src Source, observations []Observation) float64 {
 
 func (m *Model) addPriors(priors []Prior) error {
 	for _, p := range priors {
-		if !(p.Sigma > 0) {
+		if !(p.Sigma > 1e-100) { // below, its square is no number any more
 			return fmt.Errorf("error of %v: found %g; accepted above 0, or infinite for a free parameter", p.Parameter, p.Sigma)
 		}
 		if err := m.geo.applies(p.Parameter); err != nil {
@@ -146,9 +146,9 @@ func (m *Model) addObservations(observations []Observation) error {
 	var a vec
 	var b batch
 	for i, o := range observations {
-		if !(o.SigmaUs > 0) || math.IsNaN(o.MJD) || math.IsInf(o.MJD, 0) || !(o.MHz >= 0) {
-			return fmt.Errorf("observation %d: found MJD %g, error %g µs, %g MHz; accepted a finite date, an error above 0, a frequency of 0 or more",
-				i+1, o.MJD, o.SigmaUs, o.MHz)
+		if !(o.SigmaUs >= 1e-9) || !(math.Abs(o.MJD) <= farMJD) || !(o.MHz >= 0) {
+			return fmt.Errorf("observation %d: found MJD %g, error %g µs, %g MHz; accepted a date within ±%g, an error above 1e-9 µs, a frequency of 0 or more",
+				i+1, o.MJD, o.SigmaUs, o.MHz, farMJD)
 		}
 		m.geo.row(o, &a)
 		m.add(&b, &a, o.SigmaUs*1e-6)
@@ -162,8 +162,9 @@ func (m *Model) add(b *batch, v *vec, sigma float64) {
 	if math.IsInf(sigma, 1) {
 		return
 	}
+	weight := 1 / sigma
 	for c := range columns {
-		b.col[c][b.n] = v[c] / sigma
+		b.col[c][b.n] = v[c] * weight
 	}
 	if b.n++; b.n == len(b.col[0]) {
 		m.root.take(b, &m.free)

@@ -344,6 +344,41 @@ func TestParameterNames(t *testing.T) {
 	}
 }
 
+// Whatever is put in, an error or numbers come out, never NaN.
+func TestNeverNaN(t *testing.T) {
+	any := rapid.OneOf(rapid.Float64(), rapid.Float64Range(-1e5, 1e5), rapid.SampledFrom([]float64{0, 1, 57000, math.NaN(), math.Inf(1), math.Inf(-1)}))
+	rapid.Check(t, func(t *rapid.T) {
+		d := func(name string) float64 { return any.Draw(t, name) }
+		src := example()
+		for i, f := range []*float64{&src.FrequencyHz, &src.DerivativeHzPerS, &src.EpochMJD, &src.RADeg, &src.DecDeg, &src.PositionMJD, &src.ParallaxMas,
+			&src.CompanionMsun, &src.SinI, &src.GlitchMJD, &src.Orbit.PeriodDays, &src.Orbit.SemimajorLs, &src.Orbit.Eccentricity, &src.Orbit.AdvanceDegPerYr} {
+			if rapid.IntRange(0, 9).Draw(t, "change") == i%10 {
+				*f = d("value")
+			}
+		}
+		obs := []Observation{{57000, 1, 1400}, {57100.3, 2, 800}, {d("mjd"), d("sigma"), d("mhz")}}
+		if rapid.Bool().Draw(t, "usual") {
+			obs = obs[:2]
+		}
+		m, err := New(src, LoosePriors(src, nil), obs)
+		if err != nil {
+			return
+		}
+		for p := range parameterCount {
+			if s, err := m.SigmaOf(p); math.IsNaN(s) && err == nil {
+				t.Fatalf("%v is NaN", p)
+			}
+			q, err := m.GainPerMinute(p, []Observation{{d("mjd"), d("sigma"), d("mhz")}}, nil)
+			if err == nil && (math.IsNaN(q[0]) || q[0] < 0) {
+				t.Fatalf("%v gains %g", p, q[0])
+			}
+		}
+		if s := m.PhaseErrorTurns(d("at"), 1400); math.IsNaN(s) {
+			t.Fatal("phase error is NaN")
+		}
+	})
+}
+
 // Whatever is observed, no answer is NaN and more observations never make anything worse.
 func TestMoreIsNeverWorse(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {

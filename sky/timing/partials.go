@@ -133,13 +133,14 @@ func (g *geometry) row(o Observation, a *vec) {
 // Broucke & Cefola 1972, Celest. Mech. 5, 303
 // Checked:  TestPartials
 func (g *geometry) orbitRow(mjd float64, a *vec) {
-	at := mjd - g.orb.RoemerSec(mjd)/secPerDay // leave the pulsar's side of its orbit: one evaluation is enough
 	e, x := g.orb.Eccentricity, g.orb.SemimajorLs
-	mean := turn * g.orb.PhasePeriastron(at)
-	omega := turn*g.orb.Phase(at) - mean // longitude of periastron, in the mean
+	longitude, anomaly := g.orb.Means(mjd)
+	omega := turn * (longitude - anomaly) // longitude of periastron, in the mean
 	sinO, cosO := math.Sincos(omega)
 	h, k := e*sinO, e*cosO
-	sinF, cosF := math.Sincos(orbit.EccentricAnomaly(mean, e) + omega)
+	anomaly = turn * (anomaly - math.Round(anomaly))
+	sinF, cosF := math.Sincos(orbit.EccentricAnomaly(anomaly, e) + omega)
+	at, sinF, cosF := g.leave(mjd, h, k, sinF, cosF)
 
 	beta := math.Sqrt(1 - e*e)
 	b := 1 / (1 + beta)
@@ -169,10 +170,29 @@ func (g *geometry) orbitRow(mjd float64, a *vec) {
 	a[colOrbitFreq] = turn * gL * days
 	a[colOrbitDrift] = turn * gL * days * days / 2
 	perDeg := days / daysPerYear * degToRad
-	sinA, cosA := math.Sincos(g.src.Orbit.AdvanceDegPerYr * perDeg)
+	sinA, cosA := 0.0, 1.0
+	if g.src.Orbit.AdvanceDegPerYr != 0 {
+		sinA, cosA = math.Sincos(g.src.Orbit.AdvanceDegPerYr * perDeg)
+	}
 	a[colEps1] = gH*cosA - gK*sinA
 	a[colEps2] = gH*sinA + gK*cosA
 	a[colAdvance] = (gH*k - gK*h) * perDeg
 	a[colMass] = -2 * orbit.SunSec * math.Log(arg)
 	a[colSinI] = -pull * s
+}
+
+// leave goes back from the arrival to when the pulse left the pulsar's place in its orbit, by the light time
+// at the arrival, and takes the eccentric longitude along: a small step of mean longitude, Kepler's equation
+// solved by two steps of Newton's from where it was.
+func (g *geometry) leave(mjd, h, k, sinF, cosF float64) (at, sin, cos float64) {
+	e2 := h*h + k*k
+	back := g.orb.SemimajorLs / secPerDay * (sinF - h - k*(k*sinF-h*cosF)/(1+math.Sqrt(1-e2)))
+	at = mjd - back
+	step := -turn * back / g.orb.PeriodDays // of the mean longitude; the advance within a light time is nothing
+	d := step / (1 - k*cosF - h*sinF)
+	sinD, cosD := math.Sincos(d)
+	sin, cos = sinF*cosD+cosF*sinD, cosF*cosD-sinF*sinD
+	left := step - d + k*(sin-sinF) - h*(cos-cosF)
+	d = left / (1 - k*cos - h*sin)
+	return at, sin + d*cos - d*d/2*sin, cos - d*sin - d*d/2*cos
 }

@@ -107,7 +107,8 @@ func (g *geometry) orbitAt(p Parameter) orbitWriter {
 		at -= g.orb.PhasePeriastron(at) / w.anomalistic
 	}
 	w.days = at - g.ref
-	w.sinO, w.cosO = math.Sincos(turn * (g.orb.Phase(at) - g.orb.PhasePeriastron(at)))
+	longitude, anomaly := g.orb.Means(at)
+	w.sinO, w.cosO = math.Sincos(turn * (longitude - anomaly))
 	w.sinA, w.cosA = math.Sincos(turn * advance * w.days)
 	return w
 }

@@ -48,16 +48,42 @@ func (t *root) take(b *batch, free *[columns]bool) {
 				continue
 			}
 			y := b.col[k][:len(x)]
-			dot := head * t.r[c][k]
-			for i, v := range x {
-				dot += v * y[i]
-			}
-			dot *= scale
+			dot := scale * (head*t.r[c][k] + product(x, y))
 			t.r[c][k] -= dot * head
-			for i, v := range x {
-				y[i] -= dot * v
-			}
+			subtract(y, x, dot)
 		}
 	}
 	b.n = 0
+}
+
+// product is the scalar product, summed in four strands so that the additions need not wait for one another.
+func product(x, y []float64) float64 {
+	y = y[:len(x)]
+	var a, b, c, d float64
+	i := 0
+	for ; i+4 <= len(x); i += 4 {
+		a += x[i] * y[i]
+		b += x[i+1] * y[i+1]
+		c += x[i+2] * y[i+2]
+		d += x[i+3] * y[i+3]
+	}
+	for ; i < len(x); i++ {
+		a += x[i] * y[i]
+	}
+	return (a + b) + (c + d)
+}
+
+// subtract takes f times x from y.
+func subtract(y, x []float64, f float64) {
+	y = y[:len(x)]
+	i := 0
+	for ; i+4 <= len(x); i += 4 {
+		y[i] -= f * x[i]
+		y[i+1] -= f * x[i+1]
+		y[i+2] -= f * x[i+2]
+		y[i+3] -= f * x[i+3]
+	}
+	for ; i < len(x); i++ {
+		y[i] -= f * x[i]
+	}
 }

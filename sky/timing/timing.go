@@ -25,6 +25,7 @@ import (
 const (
 	secPerDay   = 86400
 	daysPerYear = 365.25
+	farMJD      = 1e7 // 27,000 years: dates beyond are mistakes
 	turn        = 2 * math.Pi
 	degToRad    = math.Pi / 180
 	masToRad    = degToRad / 3.6e6
@@ -175,10 +176,18 @@ func (s Source) check() error {
 	for _, f := range []struct {
 		name  string
 		value float64
-	}{{"frequency derivative", s.DerivativeHzPerS}, {"epoch", s.EpochMJD}, {"right ascension", s.RADeg}, {"declination", s.DecDeg},
-		{"proper motion", s.PMMasPerYr[0]}, {"proper motion", s.PMMasPerYr[1]}, {"epoch of position", s.PositionMJD},
-		{"parallax", s.ParallaxMas}, {"dispersion measure", s.DMPcPerCm3}, {"glitch", s.GlitchMJD}} {
+	}{{"frequency derivative", s.DerivativeHzPerS}, {"right ascension", s.RADeg}, {"declination", s.DecDeg},
+		{"proper motion", s.PMMasPerYr[0]}, {"proper motion", s.PMMasPerYr[1]},
+		{"parallax", s.ParallaxMas}, {"dispersion measure", s.DMPcPerCm3}} {
 		finite(f.name, f.value)
+	}
+	for _, f := range []struct {
+		name string
+		mjd  float64
+	}{{"epoch", s.EpochMJD}, {"epoch of position", s.PositionMJD}, {"glitch", s.GlitchMJD}} {
+		if !(math.Abs(f.mjd) <= farMJD) {
+			faults = append(faults, fmt.Errorf("%s: found MJD %g; accepted within ±%g", f.name, f.mjd, farMJD))
+		}
 	}
 	if !(s.FrequencyHz > 0) || math.IsInf(s.FrequencyHz, 0) {
 		faults = append(faults, fmt.Errorf("spin frequency: found %g Hz; accepted above 0", s.FrequencyHz))
