@@ -294,28 +294,52 @@ func (f *Folder) records(text string, entries []Entry) ([]byte, []Entry, error) 
 	for _, e := range entries {
 		lines = f.Logbook.record(lines, e, newline)
 	}
-	// The entries are read back before they are written: a header that was damaged must not swallow them.
+	// The entries are read back before they are written: a header that is damaged, or has no column for
+	// something, must not swallow it.
 	again, faults := parseLogbook(string(head)+string(lines), f.path(LogbookFile))
-	if len(again.Entries) != len(entries) {
-		if len(faults) > 0 {
-			return nil, nil, faults
+	sound := sameEntries(again.Entries, entries)
+	start, before := lineStart(text, head, newline)
+	lines = append(start, lines...)
+	if sound && len(f.Damage) > 0 {
+		// What a damaged header is taken for also depends on the lines below it.
+		whole, _ := parseLogbook(text+string(lines), "")
+		n := len(whole.Entries) - len(entries)
+		sound = n == len(f.Logbook.Entries) && sameEntries(whole.Entries[:n], f.Logbook.Entries) && sameEntries(whole.Entries[n:], entries)
+	}
+	if !sound {
+		if faults = append(faults, f.Damage...); len(faults) > 0 {
+			return nil, nil, fmt.Errorf("new entries do not fit what is there: %w", faults)
 		}
 		return nil, nil, errors.New("found a header that new entries do not fit; accepted: " + strings.Join(logbookColumns, ","))
-	}
-	before := strings.Count(text, "\n") - 1 // the header is there, not written
-	var start []byte
-	switch {
-	case strings.TrimSpace(strings.TrimPrefix(text, "\uFEFF")) == "":
-		start = head
-		before++
-	case !strings.HasSuffix(text, "\n"):
-		start = []byte(newline)
-		before++
 	}
 	for i := range again.Entries {
 		again.Entries[i].Line += before
 	}
-	return append(start, lines...), again.Entries, nil
+	return lines, again.Entries, nil
+}
+
+func sameEntries(read, meant []Entry) bool {
+	if len(read) != len(meant) {
+		return false
+	}
+	for i := range read {
+		if !read[i].saysAsMuchAs(meant[i]) {
+			return false
+		}
+	}
+	return true
+}
+
+// lineStart is what must be written before a new entry, and the lines above the entry without the header.
+func lineStart(text string, head []byte, newline string) (start []byte, before int) {
+	before = strings.Count(text, "\n") - 1
+	switch {
+	case strings.TrimSpace(strings.TrimPrefix(text, "\uFEFF")) == "":
+		return head, before + 1
+	case !strings.HasSuffix(text, "\n"):
+		return []byte(newline), before + 1
+	}
+	return nil, before
 }
 
 // SaveTo writes the whole campaign, its logbook and the plans of its sessions into a folder that is new

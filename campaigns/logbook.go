@@ -1,6 +1,7 @@
 package campaigns
 
 import (
+	"cmp"
 	"fmt"
 	"io"
 	"math"
@@ -498,29 +499,50 @@ func parsePlain(s string) (float64, bool) {
 // Effective returns the entries that count, in order of their start: a later line with the same start,
 // site, source and receiver replaces the earlier one, which is how a slip is put right.
 func (l *Logbook) Effective() []Entry {
-	order := make([]int32, len(l.Entries))
+	// Most logbooks are in order already, and few entries share their start.
+	type place struct {
+		start int64 // µs
+		index int32
+	}
+	order := make([]place, len(l.Entries))
 	for i := range order {
-		order[i] = int32(i)
+		order[i] = place{l.Entries[i].Start.UnixMicro(), int32(i)}
 	}
-	same := func(a, b *Entry) int {
-		if c := a.Start.Compare(b.Start); c != 0 {
-			return c
-		}
-		if c := strings.Compare(a.Site, b.Site); c != 0 {
-			return c
-		}
-		if c := strings.Compare(a.Source, b.Source); c != 0 {
-			return c
-		}
-		return strings.Compare(a.Receiver, b.Receiver)
+	byStart := func(a, b place) int { return cmp.Or(cmp.Compare(a.start, b.start), cmp.Compare(a.index, b.index)) }
+	if !slices.IsSortedFunc(order, byStart) {
+		slices.SortFunc(order, byStart)
 	}
-	slices.SortStableFunc(order, func(i, j int32) int { return same(&l.Entries[i], &l.Entries[j]) })
 	out := make([]Entry, 0, len(order))
-	for k, i := range order {
-		if k+1 < len(order) && same(&l.Entries[i], &l.Entries[order[k+1]]) == 0 {
-			continue // corrected by the next
+	for from := 0; from < len(order); {
+		to := from + 1
+		for to < len(order) && order[to].start == order[from].start {
+			to++
 		}
-		out = append(out, l.Entries[i])
+		begun := len(out)
+		for _, p := range order[from:to] {
+			out = append(out, l.Entries[p.index])
+		}
+		out = append(out[:begun], lastOfEach(out[begun:])...)
+		from = to
 	}
 	return out
+}
+
+// lastOfEach sorts entries of the same start by site, source and receiver, and keeps the last of those that
+// have the same.
+func lastOfEach(entries []Entry) []Entry {
+	if len(entries) == 1 {
+		return entries
+	}
+	what := func(a, b Entry) int {
+		return cmp.Or(strings.Compare(a.Site, b.Site), strings.Compare(a.Source, b.Source), strings.Compare(a.Receiver, b.Receiver))
+	}
+	slices.SortStableFunc(entries, what)
+	kept := entries[:0]
+	for i, e := range entries {
+		if i+1 == len(entries) || what(e, entries[i+1]) != 0 {
+			kept = append(kept, e)
+		}
+	}
+	return kept
 }

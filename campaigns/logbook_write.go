@@ -71,6 +71,21 @@ func appendCells(b []byte, cells []string, newline string) []byte {
 	return append(b, newline...)
 }
 
+// saysAsMuchAs says that nothing of another entry was lost in this one, which was made from its line.
+func (e Entry) saysAsMuchAs(other Entry) bool {
+	for column := range logbookColumns {
+		if e.cell(column) != strings.ToValidUTF8(other.cell(column), "\uFFFD") {
+			return false
+		}
+	}
+	for i, cell := range other.Extra {
+		if cell != "" && (i >= len(e.Extra) || e.Extra[i] != strings.ToValidUTF8(cell, "\uFFFD")) {
+			return false
+		}
+	}
+	return true
+}
+
 // cell is what stands in one of our columns.
 func (e Entry) cell(column int) string {
 	number := func(x float64) string {

@@ -163,14 +163,16 @@ func (t *table) numberOr(key string, b bounds, otherwise float64) float64 {
 }
 
 func (t *table) readNumber(key string, b bounds, needed bool, otherwise float64) float64 {
-	accepted := "a number " + b.String()
-	v, ok := t.ask(key, needed, accepted)
+	v, ok := t.ask(key, false, "")
 	if !ok {
+		if needed {
+			t.complain(key, "nothing", "a number "+b.String(), t.misspelt(key))
+		}
 		return otherwise
 	}
 	x, ok := asNumber(v)
 	if !ok || !b.holds(x) {
-		t.complain(key, describe(v), accepted, quotedNumber(v))
+		t.complain(key, describe(v), "a number "+b.String(), quotedNumber(v))
 		return otherwise
 	}
 	return x
