@@ -44,29 +44,23 @@ func dispatchNext(p *Problem, slots []Slot, at int) (best Slot, found bool) {
 func (h hole) dispatchSlot(node, free int) (best Slot, worth Micro, ok bool) {
 	p := h.p
 	j := &p.Jobs[p.Nodes[node].Job]
-	ready, latest := h.ready(node), h.latest(node)
-	if latest == None {
-		return Slot{}, 0, false
-	}
-	for _, w := range p.Nodes[node].Open {
-		for _, s := range p.cut(w.Span) {
-			start, end := max(s.From, ready), min(s.To, latest)
-			if start > ready+10 && ready <= h.p.Minutes || end-start < j.MinMin {
+	soonest := h.ready(node, 0)
+	for _, s := range h.rooms(node) {
+		if s.From > soonest+10 {
+			break
+		}
+		rate := -1.0
+		for e := s.From + j.MinMin; e <= min(s.To, s.From+j.MaxMin); e++ {
+			if !h.leaves(node, e) {
 				continue
 			}
-			rate := -1.0
-			for e := start + j.MinMin; e <= min(end, start+j.MaxMin); e++ {
-				if e%p.GridMin != 0 {
-					continue
-				}
-				w := p.JobWorth(p.Nodes[node].Job, start, e)
-				if r := float64(w) / float64(e-free); r > rate {
-					best, worth, rate, ok = Slot{Node: node, Start: start, End: e}, w, r, true
-				}
+			w := p.JobWorth(p.Nodes[node].Job, s.From, e)
+			if r := float64(w) / float64(e-free); r > rate {
+				best, worth, rate, ok = Slot{Node: node, Start: s.From, End: e}, w, r, true
 			}
-			if ok {
-				return best, worth, true
-			}
+		}
+		if ok {
+			break
 		}
 	}
 	return best, worth, ok

@@ -8,12 +8,13 @@ import (
 // A lane is one search for better plans: it takes a few neighbouring slots out, fills the gap again at
 // other prices, and keeps the result if it is better or not much worse.
 type lane struct {
-	t      *tables
-	prices []Micro
-	sweep  *sweeper
-	rand   *rand.Rand
-	adjust []Micro
-	used   []uint64
+	t        *tables
+	prices   []Micro
+	sweep    *sweeper
+	rand     *rand.Rand
+	adjust   []Micro
+	thorough bool
+	used     []uint64
 
 	slots     []Slot // where it is
 	value     Micro
@@ -116,7 +117,7 @@ func (l *lane) refill(slots []Slot, a, b int) ([]Slot, bool) {
 		g.next, g.nextStart, g.nextEnd, g.fixed = n.Node, n.Start, n.End, n.Pinned
 	}
 	l.spendAll(slots[:a], slots[b:])
-	path, nextStart, ok := l.sweep.fill(g, l.used, l.adjust)
+	path, nextStart, ok := l.sweep.fill(g, l.used, l.adjust, l.thorough)
 	if !ok {
 		return slots, false
 	}
@@ -129,7 +130,7 @@ func (l *lane) refill(slots []Slot, a, b int) ([]Slot, bool) {
 }
 
 // movesPerRound is how many stretches a lane re-plans in a round.
-const movesPerRound = 15
+const movesPerRound = 25
 
 // replan makes a round of moves. The hotter, the more worth it gives up to get out of a dead end.
 func (l *lane) replan(heat float64) {
@@ -152,26 +153,32 @@ func (l *lane) replan(heat float64) {
 	}
 }
 
-// move re-plans one stretch, and half the time another one with it, so that jobs can change places.
+// move re-plans one stretch, and half the time another one with it, so that jobs can change places. One
+// time in four the prices differ so much that some jobs are priced out of the stretch; what room that
+// leaves is then filled without prices.
 func (l *lane) move() ([]Slot, bool) {
-	a, b := l.stretch(2 + l.rand.IntN(7))
-	share := l.rand.Float64()
-	if l.rand.IntN(2) == 0 {
+	a, b := l.stretch(1 + l.rand.IntN(5))
+	share, noise := l.rand.Float64(), 0.3
+	l.thorough = l.rand.IntN(8) == 0
+	switch l.rand.IntN(4) {
+	case 0, 1:
 		l.spendAll(l.slots[:a], l.slots[b:])
-		l.price(share, 0.3)
+		l.price(share, noise)
 		return l.refill(l.slots, a, b)
+	case 2:
+		return l.shuffle(a, b)
 	}
-	c, d := l.stretch(1 + l.rand.IntN(3))
+	c, d := l.stretch(1 + l.rand.IntN(2))
 	if c > a {
 		a, b, c, d = c, d, a, b // now c comes first
 	}
 	if d >= a {
 		l.spendAll(l.slots[:min(a, c)], l.slots[max(b, d):])
-		l.price(share, 0.3)
+		l.price(share, noise)
 		return l.refill(l.slots, min(a, c), max(b, d))
 	}
 	l.spendAll(l.slots[:c], l.slots[d:a], l.slots[b:])
-	l.price(share, 0.3)
+	l.price(share, noise)
 	if l.rand.IntN(2) == 0 {
 		gone := d - c
 		slots, ok := l.refill(slices.Delete(slices.Clone(l.slots), c, d), a-gone, b-gone)
@@ -188,6 +195,25 @@ func (l *lane) move() ([]Slot, bool) {
 	}
 	a += len(slots) - left
 	return l.refill(slots, a, a)
+}
+
+// shuffle fills slots a up to b at prices from nothing to twice what they are, then the room that is left.
+func (l *lane) shuffle(a, b int) ([]Slot, bool) {
+	l.spendAll(l.slots[:a], l.slots[b:])
+	l.price(1, 1)
+	slots, ok := l.refill(l.slots, a, b)
+	if !ok {
+		return nil, false
+	}
+	last := a + len(slots) - len(l.slots) + b - a
+	l.price(0, 0)
+	for at := a; at <= last; at++ {
+		n := len(slots)
+		slots, _ = l.refill(slots, at, at)
+		at += len(slots) - n
+		last += len(slots) - n
+	}
+	return slots, true
 }
 
 // stretch picks up to n neighbouring slots without a pin among them.

@@ -17,50 +17,61 @@ type gap struct {
 // plan. The buffers are used again from gap to gap.
 type sweeper struct {
 	t    *tables
-	nw   int
 	from int
 	wide int // minutes of the gap, both ends counted
+	nw   int // words of a set of jobs, numbered anew for each gap
 
-	active []target
-	ready  []Micro // target·wide + minute − from: best value when ready by then
-	parent []int32 // likewise: the ended state it comes from, or None
+	targets []target // by falling latest start
+	next    int      // index of the slot after the gap among them, or None
+	ready   []Micro  // target·wide + minute − from: best value when ready by then
+	parent  []int32  // likewise: the ended state it comes from, or None
 
 	ended []Micro  // target·wide + end − from
 	came  []int32  // likewise: the ended state before
 	start []int32  // likewise: minute
-	set   []uint64 // likewise, ·nw: jobs spent
-	used  []uint64 // jobs spent outside the gap
+	set   []uint64 // likewise, ·nw: jobs spent on the way
 
-	prefix   []int32 // by target: its best ended state so far, or None
-	carried  []int32 // by target: ready is filled in up to this minute
-	best     []Micro // by minute: best of all ended states until then
-	spread   int     // the longest setup less the shortest
-	adjusted []Micro // by target: what a slot gains beyond its worth
+	// By target, apart from the rest because every departure reads them.
+	places []int32
+	lasts  []int32
+	words  []int32  // where in a set to find whether its job is spent
+	bits   []uint64 // 0 for the slot after the gap, which is never spent
+	change [][]int32
+
+	prefix  []int32 // by target: its best ended state so far, or None
+	best    []Micro // by minute: best of all ended states until then
+	spread  int     // the longest setup less the shortest, in minutes; beyond the gap when thorough
+	jobBit  []int32 // by job: its first bit in this gap, or None
+	carried []int32 // by target: ready is filled in up to this minute
 }
 
 // A target is a node that may follow.
 type target struct {
-	node     int
-	job      int
-	place    int32
-	last     int32 // latest minute at which it may start
-	word     int32 // where to find whether its job is spent
-	bit      uint64
-	first    uint64 // bit of the first slot, in the same word; 0 unless only one slot is allowed
-	min, max int
-	rows     *worthRows
-	windows  []int32 // winFrom of the node
+	node, job  int
+	last       int // latest minute at which it may start
+	bit, slots int // its job's first bit and how many more slots it may have
+	min, max   int
+	adjust     Micro // what a slot gains beyond its worth
+	rows       *worthRows
+	windows    []int32 // winFrom of the node
 }
 
 func newSweeper(t *tables) *sweeper {
-	return &sweeper{t: t, nw: t.words}
+	return &sweeper{t: t, jobBit: make([]int32, len(t.p.Jobs)), change: make([][]int32, len(t.p.Receivers))}
 }
+
+// alwaysThorough is the number of states up to which leaving any of them out saves nothing worth having.
+const alwaysThorough = 1000
 
 // fill returns the best way found to fill the gap with jobs that are not spent in used, where a slot of a
 // job gains its worth and adjust[job]; and the slot after the gap, moved to its new start if it is free.
 // It is false if the slot after cannot be reached.
-func (s *sweeper) fill(g gap, used []uint64, adjust []Micro) (path []Slot, nextStart int, ok bool) {
-	to := s.t.p.Minutes
+//
+// A thorough sweep also follows the states that are behind whatever comes next: the one that is ahead may
+// have spent the job that is wanted then.
+func (s *sweeper) fill(g gap, used []uint64, adjust []Micro, thorough bool) (path []Slot, nextStart int, ok bool) {
+	p := s.t.p
+	to := p.Minutes
 	if g.next != None {
 		to = g.nextEnd
 		if g.fixed {
@@ -71,23 +82,23 @@ func (s *sweeper) fill(g gap, used []uint64, adjust []Micro) (path []Slot, nextS
 	if s.wide < 1 {
 		return nil, 0, false
 	}
-	s.used = used
-	s.pickTargets(g, to, adjust)
+	s.pickTargets(g, to, used, adjust)
+	if thorough || len(s.targets)*s.wide <= alwaysThorough {
+		s.spread = s.wide
+	}
 	s.clear()
 	s.leaveStart(g)
-	next := len(s.active) - 1 // where the slot after stands, if there is one
-	searched := len(s.active)
-	if g.next != None {
-		searched--
-	}
-	p := s.t.p
 	b := int(s.t.after[s.from])
 	bestEnd, bestValue := int32(None), Micro(0)
 	running := unreachable
 	for e := s.from; e <= to; e++ {
 		if e%p.GridMin == 0 {
-			for l := range searched {
-				id, ok := s.endSlot(l, e)
+			ahead := unreachable
+			if e-s.from >= s.spread {
+				ahead = s.best[e-s.from-s.spread]
+			}
+			for l := range s.targets {
+				id, ok := s.endSlot(l, e, ahead)
 				if !ok {
 					continue
 				}
@@ -96,13 +107,7 @@ func (s *sweeper) fill(g gap, used []uint64, adjust []Micro) (path []Slot, nextS
 					bestEnd, bestValue = id, v
 				}
 				running = max(running, v)
-				if q := s.prefix[l]; q != None && s.ended[q] >= v {
-					continue // whoever left this node earlier with as much is ahead
-				}
 				s.prefix[l] = id
-				if e-s.from >= s.spread && s.best[e-s.from-s.spread] >= v {
-					continue // some other node was left so much earlier that it is everywhere first
-				}
 				s.leave(l, id, e)
 			}
 		}
@@ -115,15 +120,19 @@ func (s *sweeper) fill(g gap, used []uint64, adjust []Micro) (path []Slot, nextS
 	if g.next == None {
 		return s.path(bestEnd), 0, true
 	}
-	return s.reach(g, next)
+	return s.reach(g)
 }
 
-func (s *sweeper) pickTargets(g gap, to int, adjust []Micro) {
+func (s *sweeper) pickTargets(g gap, to int, used []uint64, adjust []Micro) {
 	t, p := s.t, s.t.p
-	s.active, s.adjusted = s.active[:0], s.adjusted[:0]
+	s.targets = s.targets[:0]
+	for j := range s.jobBit {
+		s.jobBit[j] = None
+	}
+	bit := 0
 	for i := range p.Nodes {
 		job := p.Nodes[i].Job
-		if !t.chosen[job] || t.spent(s.used, job) {
+		if !t.chosen[job] || t.spent(used, job) {
 			continue
 		}
 		last := None
@@ -135,67 +144,100 @@ func (s *sweeper) pickTargets(g gap, to int, adjust []Micro) {
 		if last == None {
 			continue
 		}
-		s.add(i, last, adjust[job])
+		a := s.target(i, last)
+		a.slots = t.left(used, job)
+		if s.jobBit[job] == None {
+			s.jobBit[job] = int32(bit)
+			bit += a.slots
+		}
+		a.bit, a.adjust = int(s.jobBit[job]), adjust[job]
+		s.targets = append(s.targets, a)
 	}
+	s.nw = max(1, (bit+63)/64)
 	if g.next != None {
 		last := g.nextStart
 		if !g.fixed {
 			last = g.nextEnd - p.Jobs[p.Nodes[g.next].Job].MinMin
 		}
-		s.add(g.next, last, 0)
-		s.active[len(s.active)-1].bit = 0
+		s.targets = append(s.targets, s.target(g.next, last))
 	}
+	// The later a target may still start the longer it is of interest: departures stop at the first
+	// that is past.
+	slices.SortFunc(s.targets, func(a, b target) int {
+		if a.last != b.last {
+			return b.last - a.last
+		}
+		return a.node - b.node
+	})
+	s.next = None
+	for l := range s.targets {
+		if s.targets[l].slots == 0 {
+			s.next = l
+		}
+	}
+	s.layColumns()
 	s.spread = s.setupSpread()
 }
 
-func (s *sweeper) add(node, last int, adjust Micro) {
+// target describes a node. Until it is given slots it stands for the slot after the gap.
+func (s *sweeper) target(node, last int) target {
 	t := s.t
 	job := t.p.Nodes[node].Job
-	b := t.bits[job]
-	a := target{
-		node: node, job: job, place: int32(t.p.Nodes[node].Place), last: int32(last),
-		word: int32(b.last >> 6), bit: 1 << (b.last & 63),
+	return target{
+		node: node, job: job, last: last,
 		min: t.p.Jobs[job].MinMin, max: t.p.Jobs[job].MaxMin,
 		rows: &t.rows[job], windows: t.winFrom[node*t.span : (node+1)*t.span],
 	}
-	if b.first == b.last {
-		a.first = a.bit
-	}
-	s.active = append(s.active, a)
-	s.adjusted = append(s.adjusted, adjust)
 }
 
-// setupSpread samples the setups of the gap's first bin: the state left out on its account is only
-// less promising, never wrong.
-func (s *sweeper) setupSpread() int {
+func (s *sweeper) layColumns() {
 	p := s.t.p
-	low, high := 1<<30, 0
-	bin := p.slewBin(s.from)
-	for _, a := range s.active {
-		row := p.Slew.Sec[(bin*p.Slew.Places+int(a.place))*p.Slew.Places:]
-		change := s.t.change[p.Jobs[a.job].Receiver]
-		for _, b := range s.active {
-			if a.place == b.place {
-				continue
-			}
-			sec := max(int(row[b.place]), int(change[b.node]))
-			low, high = min(low, sec), max(high, sec)
+	n := len(s.targets)
+	s.places, s.lasts = grow(s.places, n), grow(s.lasts, n)
+	s.words, s.bits = grow(s.words, n), grow(s.bits, n)
+	for r := range s.change {
+		s.change[r] = grow(s.change[r], n)
+	}
+	for l := range s.targets {
+		a := &s.targets[l]
+		s.places[l], s.lasts[l] = int32(p.Nodes[a.node].Place), int32(a.last)
+		s.words[l], s.bits[l] = 0, 0
+		if a.slots > 0 {
+			full := a.bit + a.slots - 1
+			s.words[l], s.bits[l] = int32(full>>6), 1<<(full&63)
+		}
+		for r := range s.change {
+			s.change[r][l] = s.t.change[r][a.node]
 		}
 	}
-	return max(0, ceilMin(high-low)) + 1
+}
+
+// setupSpread takes the setups of the gap's first bin for all: a state left out on its account is only
+// less promising.
+func (s *sweeper) setupSpread() int {
+	p := s.t.p
+	low, high := int32(1<<30), int32(0)
+	bin := p.slewBin(s.from)
+	for l := range s.targets {
+		row := p.Slew.Sec[(bin*p.Slew.Places+int(s.places[l]))*p.Slew.Places:]
+		change := s.change[p.Jobs[s.targets[l].job].Receiver]
+		for k, place := range s.places {
+			if k != l {
+				sec := max(int32(row[place]), change[k])
+				low, high = min(low, sec), max(high, sec)
+			}
+		}
+	}
+	return ceilMin(int(max(0, high-low))) + 1
 }
 
 func (s *sweeper) clear() {
-	n := len(s.active)
+	n := len(s.targets)
 	size := n * s.wide
-	s.ready = grow(s.ready, size)
-	s.parent = grow(s.parent, size)
-	s.ended = grow(s.ended, size)
-	s.came = grow(s.came, size)
-	s.start = grow(s.start, size)
+	s.ready, s.parent = grow(s.ready, size), grow(s.parent, size)
+	s.ended, s.came, s.start = grow(s.ended, size), grow(s.came, size), grow(s.start, size)
 	s.set = grow(s.set, size*s.nw)
-	s.prefix = grow(s.prefix, n)
-	s.carried = grow(s.carried, n)
+	s.prefix, s.carried = grow(s.prefix, n), grow(s.carried, n)
 	s.best = grow(s.best, s.wide)
 	for i := range s.ready {
 		s.ready[i] = unreachable
@@ -211,109 +253,123 @@ func grow[T any](s []T, n int) []T { return slices.Grow(s[:0], n)[:n] }
 // leaveStart makes every target ready at the first minute after the slot before the gap.
 func (s *sweeper) leaveStart(g gap) {
 	p := s.t.p
-	for l := range s.active {
-		a := &s.active[l]
+	for l := range s.targets {
+		a := &s.targets[l]
 		at := p.ReadyMin(g.prev, g.prevEnd, a.node, s.from)
-		if at <= int(a.last) {
-			s.arrive(l, at, 0, None)
+		if at <= a.last {
+			s.arrive(l, at)
 		}
 	}
 }
 
-func (s *sweeper) arrive(l, at int, v Micro, id int32) {
-	if i := l*s.wide + at - s.from; v > s.ready[i] {
-		s.ready[i], s.parent[i] = v, id
+// arrive makes a target ready without any slot before it in the gap.
+func (s *sweeper) arrive(l, at int) {
+	if i := l*s.wide + at - s.from; s.ready[i] < 0 {
+		s.ready[i], s.parent[i] = 0, None
 	}
 }
 
 // leave makes every target ready that can be reached before the next break from the ended state.
 func (s *sweeper) leave(l int, id int32, e int) {
 	p := s.t.p
-	a := &s.active[l]
 	until := s.from + s.wide
 	if b := int(s.t.after[e]); b < len(p.Breaks) {
 		until = min(until, p.Breaks[b].From)
 	}
-	s.depart(a.place, s.t.change[p.Jobs[a.job].Receiver], p.slewBin(e), id, e, until)
+	s.depart(l, p.slewBin(e), id, e, until)
 }
 
-// depart makes targets ready from a place at minute free, in a bin of the slew table, before minute until.
-func (s *sweeper) depart(place int32, change []int32, bin int, id int32, free, until int) {
+// depart makes targets ready after target l is left at minute free, in a bin of the slew table, before
+// minute until.
+func (s *sweeper) depart(l, bin int, id int32, free, until int) {
 	p := s.t.p
-	row := p.Slew.Sec[(bin*p.Slew.Places+int(place))*p.Slew.Places:]
+	row := p.Slew.Sec[(bin*p.Slew.Places+int(s.places[l]))*p.Slew.Places:]
 	row = row[:p.Slew.Places]
+	n := len(s.places)
+	lasts, words, bits := s.lasts[:n], s.words[:n], s.bits[:n]
+	change := s.change[p.Jobs[s.targets[l].job].Receiver][:n]
 	set := s.set[int(id)*s.nw : (int(id)+1)*s.nw]
 	v := s.ended[id]
-	base := -s.from
-	for k := range s.active {
-		to := &s.active[k]
-		if set[to.word]&to.bit != 0 {
-			base += s.wide
-			continue
+	overhead := uint32(p.OverheadSec + 59)
+	base, wide := -s.from, s.wide
+	for k, place := range s.places {
+		last := int(lasts[k])
+		if last < free {
+			return
 		}
-		sec := max(int(row[to.place]), int(change[to.node])) + p.OverheadSec
-		at := free + int(uint32(sec+59)/60)
-		if at <= int(to.last) && at < until {
-			if i := base + at; v > s.ready[i] {
-				s.ready[i], s.parent[i] = v, id
+		if set[words[k]]&bits[k] == 0 {
+			sec := uint32(max(int32(row[place]), change[k])) + overhead
+			if at := free + int(sec/60); at <= last && at < until {
+				if i := base + at; v > s.ready[i] {
+					s.ready[i], s.parent[i] = v, id
+				}
 			}
 		}
-		base += s.wide
+		base += wide
 	}
 }
 
 // leaveBreak makes targets ready after break b, from the best state of each node and from the start.
 func (s *sweeper) leaveBreak(g gap, b, to int) {
 	p := s.t.p
-	brk := p.Breaks[b]
 	until := to + 1
 	if b+1 < len(p.Breaks) {
 		until = min(until, p.Breaks[b+1].From+1)
 	}
-	for l := range s.active {
-		a := &s.active[l]
+	for l := range s.targets {
+		a := &s.targets[l]
 		at := p.setupAfter(g.prev, g.prevEnd, a.node, b).ReadyMin
-		if at <= int(a.last) && at < until {
-			s.arrive(l, at, 0, None)
+		if at <= a.last && at < until {
+			s.arrive(l, at)
 		}
 	}
 	for l, id := range s.prefix {
 		if id != None {
-			a := &s.active[l]
-			s.depart(a.place, s.t.change[p.Jobs[a.job].Receiver], p.Slew.Bins+b, id, brk.To, until)
+			s.depart(l, p.Slew.Bins+b, id, p.Breaks[b].To, until)
 		}
 	}
 }
 
-// endSlot finds the best start of a slot of the target that ends at minute e.
-func (s *sweeper) endSlot(l, e int) (id int32, ok bool) {
-	a := &s.active[l]
+// endSlot finds the best start of a slot of the target that ends at minute e. It is false when there is
+// none, or none of interest: not better than leaving the same node earlier, nor than ahead, the value
+// with which some node was left so much earlier that from there one is everywhere first.
+func (s *sweeper) endSlot(l, e int, ahead Micro) (id int32, ok bool) {
+	a := &s.targets[l]
 	opens := int(a.windows[e])
-	if opens == None {
+	if opens == None || l == s.next {
 		return 0, false
 	}
 	low, high := max(opens, e-a.max, s.from), e-a.min
 	if low > high {
 		return 0, false
 	}
+	if q := s.prefix[l]; q != None {
+		ahead = max(ahead, s.ended[q])
+	}
 	s.carry(l, high)
-	best, at := s.bestStart(l, low, high, a.rows.row(e))
-	if at == None {
+	row := a.rows.row(e)[:high-low+1]
+	if s.ready[l*s.wide-s.from+high]+row[high-low]+a.adjust <= ahead {
+		return 0, false
+	}
+	best, at := s.bestStart(l, low, high, row)
+	best += a.adjust
+	if at == None || best <= ahead {
 		return 0, false
 	}
 	i := l*s.wide + e - s.from
 	from := s.parent[l*s.wide+at-s.from]
-	s.ended[i], s.came[i], s.start[i] = best+s.adjusted[l], from, int32(at)
+	s.ended[i], s.came[i], s.start[i] = best, from, int32(at)
 	set := s.set[i*s.nw : (i+1)*s.nw]
 	if from == None {
-		copy(set, s.used)
+		clear(set)
 	} else {
 		copy(set, s.set[int(from)*s.nw:])
 	}
-	if a.first != 0 {
-		set[a.word] |= a.first
-	} else {
-		s.t.spend(set, a.job)
+	for bit := a.bit; bit < a.bit+a.slots; bit++ {
+		if set[bit>>6]&(1<<(bit&63)) == 0 {
+			set[bit>>6] |= 1 << (bit & 63)
+			break
+		}
 	}
 	return int32(i), true
 }
@@ -348,15 +404,16 @@ func (s *sweeper) path(id int32) []Slot {
 	var slots []Slot
 	for ; id != None; id = s.came[id] {
 		l, e := int(id)/s.wide, int(id)%s.wide+s.from
-		slots = append(slots, Slot{Node: s.active[l].node, Start: int(s.start[id]), End: e})
+		slots = append(slots, Slot{Node: s.targets[l].node, Start: int(s.start[id]), End: e})
 	}
 	slices.Reverse(slots)
 	return slots
 }
 
 // reach ends the gap at the slot after it.
-func (s *sweeper) reach(g gap, next int) (path []Slot, nextStart int, ok bool) {
-	a := &s.active[next]
+func (s *sweeper) reach(g gap) (path []Slot, nextStart int, ok bool) {
+	next := s.next
+	a := &s.targets[next]
 	if g.fixed {
 		s.carry(next, g.nextStart)
 		i := next*s.wide + g.nextStart - s.from

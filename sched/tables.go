@@ -274,6 +274,17 @@ func (t *tables) spent(set []uint64, job int) bool {
 	return !t.chosen[job] || set[last>>6]&(1<<(last&63)) != 0
 }
 
+// left returns how many more slots the job may have.
+func (t *tables) left(set []uint64, job int) int {
+	n := 0
+	for i := t.bits[job].first; i <= t.bits[job].last; i++ {
+		if set[i>>6]&(1<<(i&63)) == 0 {
+			n++
+		}
+	}
+	return n
+}
+
 func (t *tables) begun(set []uint64, job int) bool {
 	first := t.bits[job].first
 	return t.chosen[job] && set[first>>6]&(1<<(first&63)) != 0

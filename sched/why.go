@@ -222,24 +222,17 @@ func (h hole) most(job int) (best placement, ok bool) {
 		if h.p.Nodes[node].Job != job {
 			continue
 		}
-		ready, latest := None, None
-		for _, w := range h.p.Nodes[node].Open {
-			if h.before != nil && w.To <= h.before.End || h.after != nil && w.From >= h.after.Start {
-				continue
-			}
-			if ready == None {
-				ready, latest = h.ready(node), h.latest(node)
-			}
-			for _, s := range h.p.cut(w.Span) {
-				from, to := max(s.From, ready), min(s.To, latest)
-				for end := to - to%h.p.GridMin; end >= from+j.MinMin; end -= h.p.GridMin {
-					start := max(from, end-j.MaxMin)
-					if worth := h.p.JobWorth(job, start, end); !ok || worth > best.worth {
-						best, ok = placement{Slot{Node: node, Start: start, End: end}, worth, true}, true
-					}
-					if start == from {
-						break // shorter slots from here on are worth no more
-					}
+		for _, s := range h.rooms(node) {
+			for end := s.To; end >= s.From+j.MinMin; end-- {
+				if !h.leaves(node, end) {
+					continue
+				}
+				start := max(s.From, end-j.MaxMin)
+				if worth := h.p.JobWorth(job, start, end); !ok || worth > best.worth {
+					best, ok = placement{Slot{Node: node, Start: start, End: end}, worth}, true
+				}
+				if start == s.From {
+					break // shorter slots from here on are worth no more
 				}
 			}
 		}
