@@ -81,3 +81,12 @@ func TestObservatoryAndBack(t *testing.T) {
 		}
 	})
 }
+
+func BenchmarkFromObservatory(b *testing.B) {
+	o := mustNew(b, Elements{PeriodDays: 3, PeriastronMJD: 57000, SemimajorLs: 6, Eccentricity: 0.2, PeriastronDeg: 70, AdvanceDegPerYr: 1})
+	at := 57000.0
+	for b.Loop() {
+		o.Phase(o.FromObservatory(at, 300))
+		at += 1.0 / 1440
+	}
+}

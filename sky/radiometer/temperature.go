@@ -93,15 +93,37 @@ func (s Setup) SystemK(elevationDeg float64) float64 {
 // Neglects: the change of the gain with elevation
 // Checked:  TestEffectiveWeight
 func (s Setup) EffectiveWeight(elevationDeg float64) float64 {
-	if !(elevationDeg > 0) || !(elevationDeg < 180) || s.Receiver.Check() != nil || notNegative("", s.Pulsar.Sky408K) != nil {
-		return 0
+	var one [1]float64
+	return s.EffectiveWeights([]float64{elevationDeg}, one[:])[0]
+}
+
+// EffectiveWeights is EffectiveWeight for a track, minute by minute.
+//
+// Given:   dst, used for the result when it is long enough; it may be nil
+// Returns: one weight for each elevation, in their order
+func (s Setup) EffectiveWeights(elevationDeg, dst []float64) []float64 {
+	if cap(dst) < len(elevationDeg) {
+		dst = make([]float64, len(elevationDeg))
 	}
-	ratio := s.SystemK(90) / s.SystemK(elevationDeg)
-	weight := ratio * ratio * math.Exp(-2*s.Receiver.ZenithOpacity*(AirMass(elevationDeg)-1))
-	if !(weight > 0) {
-		return 0
+	dst = dst[:len(elevationDeg)]
+	clear(dst)
+	r := s.Receiver
+	if r.Check() != nil || notNegative("sky temperature", s.Pulsar.Sky408K) != nil {
+		return dst
 	}
-	return math.Min(1, weight)
+	sky, zenith := SkyK(s.Pulsar.Sky408K, r.CentreMHz()), math.Exp(-r.ZenithOpacity)
+	best := zenith / (r.TsysK + sky*zenith)
+	for i, el := range elevationDeg {
+		if !(el > 0) || !(el < 180) {
+			continue
+		}
+		through := transmission(r.ZenithOpacity, el)
+		ratio := through / (r.TsysK + sky*through + airK*(zenith-through)) / best
+		if weight := ratio * ratio; weight > 0 {
+			dst[i] = math.Min(1, weight)
+		}
+	}
+	return dst
 }
 
 func square(x float64) float64 { return x * x }
