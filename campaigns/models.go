@@ -57,38 +57,6 @@ func (s *Source) ephemerisPriors() []timing.Prior {
 	return out
 }
 
-// measuringPriors free everything that has to be fitted together with a parameter, with no knowledge but the
-// logbook's own.
-func (s *Source) measuringPriors() []timing.Prior {
-	var out []timing.Prior
-	free := func(ps ...timing.Parameter) {
-		for _, p := range ps {
-			out = append(out, timing.Prior{Parameter: p, Sigma: math.Inf(1)})
-		}
-	}
-	free(timing.Phase, timing.Frequency, timing.FrequencyDerivative, timing.RightAscension, timing.Declination,
-		timing.ProperMotionRA, timing.ProperMotionDec)
-	if s.ParallaxMas > 0 {
-		free(timing.Parallax)
-	}
-	if o := s.Orbit; o != nil {
-		free(timing.SemimajorAxis, timing.AscendingNode, timing.OrbitalPeriod, timing.Eps1, timing.Eps2)
-		if o.Decay != 0 {
-			free(timing.OrbitalDecay)
-		}
-		if o.AdvanceDegPerYr != 0 {
-			free(timing.AdvanceOfPeriastron)
-		}
-		if o.CompanionMsun > 0 {
-			free(timing.CompanionMass)
-			if o.SinI > 0 {
-				free(timing.SinI)
-			}
-		}
-	}
-	return out
-}
-
 // arrivals are the logbook's arrival times of a source: those whose error was written down.
 func (b *books) arrivals(k *knowledge) []timing.Observation {
 	var out []timing.Observation
@@ -204,7 +172,8 @@ func (b *books) measured(k *knowledge, aim *Aim) (measurement, error) {
 	if err != nil {
 		return measurement{}, fmt.Errorf("%s: %w", k.source.Name, err)
 	}
-	model, err := timing.New(k.source.timingSource(), k.source.measuringPriors(), b.arrivals(k))
+	src := k.source.timingSource()
+	model, err := timing.New(src, timing.LoosePriors(src, k.source.ephemerisPriors()), b.arrivals(k))
 	if err != nil {
 		return measurement{}, fmt.Errorf("%s: %w", k.source.Name, err)
 	}

@@ -52,11 +52,10 @@ func (ps *preparedSource) listen(p *Prepared) {
 	el := p.Tracks[p.sourceByName[ps.src.Name]].ElDeg
 	for _, rec := range p.Problem.Receivers {
 		set := radiometer.Setup{Receiver: p.Campaign.receiver(rec.Name, p.Site.Name).radiometer(), Pulsar: pulsar}
-		weights := make([]float64, len(el))
+		weights := set.EffectiveWeights(el, nil)
 		cum := make([]int32, len(el))
 		sum := 0.0
 		for m := range el {
-			weights[m] = set.EffectiveWeight(el[m])
 			cum[m] = int32(sum)
 			sum += weights[m] * sharesPerMinute
 		}
