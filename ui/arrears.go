@@ -1,0 +1,433 @@
+package ui
+
+import (
+	"cmp"
+	"fmt"
+	"image"
+	"slices"
+	"strings"
+	"time"
+
+	tea "github.com/charmbracelet/bubbletea"
+
+	"example.org/tallystick/campaigns"
+	"example.org/tallystick/ui/cell"
+	"example.org/tallystick/ui/theme"
+)
+
+// arrears is the review of all accounts: what each source is owed, and why it is or is not in the
+// plan of the session on the desk.
+type arrears struct {
+	list   rows
+	page   int
+	sort   int // index into accountColumns
+	turned bool
+	filter field
+	typing bool
+	shown  []int // indices into Prepared.Accounts, as last listed
+}
+
+func (v *arrears) title() string { return arrearsTitle }
+
+func (v *arrears) hints(*world) []verb {
+	return []verb{filterRows, sortNext, sortTurn, barSource, undoEdit, openChosen, nextView}
+}
+
+// An accountColumn is one column of the table of accounts. A narrow screen drops the highest ranks.
+type accountColumn struct {
+	head  string
+	width int
+	right bool
+	rank  int
+	text  func(w *world, g *theme.Glyphs, r *campaigns.AccountRow) string
+	order func(w *world, a, b *campaigns.AccountRow) int // nil: no order of its own
+}
+
+// debtShown is the debt at which a debt bar is full.
+const debtShown = 4
+
+var accountColumns = []accountColumn{
+	{"source", 12, false, 0,
+		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return r.Source },
+		func(_ *world, a, b *campaigns.AccountRow) int { return strings.Compare(a.Source, b.Source) }},
+	{"aim", 22, false, 2,
+		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return aimWords(r) },
+		func(_ *world, a, b *campaigns.AccountRow) int { return strings.Compare(aimWords(a), aimWords(b)) }},
+	{"debt", 5, true, 0,
+		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return fmt.Sprintf("%.2f", r.Debt) },
+		func(_ *world, a, b *campaigns.AccountRow) int { return cmp.Compare(b.Debt, a.Debt) }},
+	{"", 8, false, 3,
+		func(_ *world, g *theme.Glyphs, r *campaigns.AccountRow) string {
+			return cell.Gauge(r.Debt, debtShown, 8, g.Full, g.Nothing)
+		}, nil},
+	{"last", 10, false, 4,
+		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return date(r.Last) },
+		func(_ *world, a, b *campaigns.AccountRow) int { return a.Last.Compare(b.Last) }},
+	{"due", 10, false, 1,
+		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return dueWords(r) },
+		func(_ *world, a, b *campaigns.AccountRow) int { return byTime(a.Due, b.Due) }},
+	{"next usable, UTC", 22, false, 6,
+		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return nextWords(r) },
+		func(_ *world, a, b *campaigns.AccountRow) int { return byTime(a.NextStart, b.NextStart) }},
+	{"in plan", 10, false, 2,
+		func(w *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return planWords(w, r) },
+		func(w *world, a, b *campaigns.AccountRow) int {
+			return strings.Compare(planWords(w, a), planWords(w, b))
+		}},
+	{"flags", 16, false, 5,
+		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return strings.Join(r.Flags, ", ") },
+		func(_ *world, a, b *campaigns.AccountRow) int { return len(b.Flags) - len(a.Flags) }},
+}
+
+const debtColumn = 2
+
+// byTime orders times with unknown ones last.
+func byTime(a, b time.Time) int {
+	switch {
+	case a.IsZero() && b.IsZero():
+		return 0
+	case a.IsZero():
+		return 1
+	case b.IsZero():
+		return -1
+	}
+	return a.Compare(b)
+}
+
+func aimWords(r *campaigns.AccountRow) string {
+	if r.Aim != "" {
+		return r.Aim
+	}
+	return string(r.Kind)
+}
+
+func dueWords(r *campaigns.AccountRow) string {
+	if r.Due.IsZero() {
+		return "-"
+	}
+	return date(r.Due)
+}
+
+func nextWords(r *campaigns.AccountRow) string {
+	if r.NextStart.IsZero() {
+		return "-"
+	}
+	return r.NextStart.UTC().Format("2006-01-02 15:04") + "-" + clock(r.NextEnd)
+}
+
+// planWords says in a word whether a source is in the plan.
+func planWords(w *world, r *campaigns.AccountRow) string {
+	read := w.desk.read()
+	if _, barred := slices.BinarySearch(read.bars, r.Source); barred {
+		return "barred"
+	}
+	var numbers []string
+	for i := range read.rows {
+		if row := &read.rows[i]; row.Source == r.Source && (len(r.Receivers) == 0 || slices.Contains(r.Receivers, row.Receiver)) {
+			numbers = append(numbers, fmt.Sprint(i+1))
+		}
+	}
+	if len(numbers) > 0 {
+		return "slot " + strings.Join(numbers, ",")
+	}
+	return "-"
+}
+
+// rows lists the accounts that pass the filter, in order.
+func (v *arrears) rows(w *world) []int {
+	all := w.desk.prepared.Accounts
+	v.shown = v.shown[:0]
+	want := strings.ToLower(v.filter.String())
+	for i := range all {
+		a := &all[i]
+		if want == "" || strings.Contains(strings.ToLower(a.Source+" "+aimWords(a)+" "+strings.Join(a.Flags, " ")+" "+planWords(w, a)), want) {
+			v.shown = append(v.shown, i)
+		}
+	}
+	order := accountColumns[v.column()].order
+	slices.SortStableFunc(v.shown, func(i, j int) int {
+		n := order(w, &all[i], &all[j])
+		if v.turned {
+			return -n
+		}
+		return n
+	})
+	v.list.at = min(max(v.list.at, 0), max(len(v.shown)-1, 0))
+	return v.shown
+}
+
+// column is the column sorted by; debt at first.
+func (v *arrears) column() int { return (v.sort + debtColumn) % len(accountColumns) }
+
+func (v *arrears) sortBy(step int) {
+	n := len(accountColumns)
+	v.sort = (v.sort + n + step) % n
+	for accountColumns[v.column()].order == nil {
+		v.sort = (v.sort + n + step) % n
+	}
+	v.list = rows{}
+}
+
+func (v *arrears) chosen(w *world) (*campaigns.AccountRow, bool) {
+	if w.desk.prepared == nil {
+		return nil, false
+	}
+	shown := v.rows(w)
+	if len(shown) == 0 {
+		return nil, false
+	}
+	return &w.desk.prepared.Accounts[shown[v.list.at]], true
+}
+
+func (v *arrears) typed(k tea.KeyMsg, w *world) bool {
+	if !v.typing {
+		return false
+	}
+	switch k.String() {
+	case "esc":
+		v.typing, v.filter = false, field{}
+	case "enter":
+		v.typing = false
+	case "ctrl+c":
+		return false
+	default:
+		if !v.filter.key(k) {
+			v.typing = false
+			return false
+		}
+		v.list = rows{}
+	}
+	return true
+}
+
+func (v *arrears) steer(verb verb, w *world) action {
+	if w.desk.prepared == nil {
+		return action{}
+	}
+	switch verb {
+	case moveLeft:
+		v.sortBy(-1)
+	case moveRight, sortNext:
+		v.sortBy(1)
+	case sortTurn:
+		v.turned = !v.turned
+	case filterRows:
+		v.typing = true
+	case goBack:
+		v.filter = field{}
+	case barSource:
+		if r, ok := v.chosen(w); ok {
+			return action{verb: barThisSource, text: r.Source}
+		}
+	default:
+		v.list.steer(verb, len(v.rows(w)), max(v.page-1, 1))
+	}
+	return action{}
+}
+
+func (v *arrears) click(at, size image.Point, turn int, w *world) action {
+	if w.desk.prepared == nil {
+		return action{}
+	}
+	p := tableLayout(size.X, size.Y)
+	n := len(v.rows(w))
+	switch i := v.list.top + at.Y - p.table.Min.Y - 1; {
+	case turn < 0:
+		v.list.steer(moveUp, n, 1)
+	case turn > 0:
+		v.list.steer(moveDown, n, 1)
+	case at.In(p.table) && at.Y > p.table.Min.Y && i < n:
+		v.list.at = i
+	}
+	return action{}
+}
+
+func (v *arrears) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
+	cw, ch := c.Size()
+	p := tableLayout(cw, ch)
+	shown := v.rows(w)
+	v.drawHead(w, c.Sub(p.head), len(shown))
+	v.drawTable(w, c.Sub(p.table), g, shown)
+	if p.details.Empty() {
+		return
+	}
+	if p.beside {
+		x := p.details.Min.X - 1
+		c.Fill(image.Rect(x, p.details.Min.Y, x+1, p.details.Max.Y), g.Upright, theme.Muted)
+	}
+	title, lines := v.read(w)
+	dw, dh := c.Sub(p.details).Size()
+	drawPane(c.Sub(p.details), g, title, lines, dw, dh, p.beside)
+}
+
+func (v *arrears) drawHead(w *world, c *cell.Canvas, n int) {
+	cw, _ := c.Size()
+	all := w.desk.prepared.Accounts
+	if v.typing || v.filter.String() != "" {
+		text := fmt.Sprintf("%d of %d accounts, filter: ", n, len(all))
+		x := c.Put(1, 0, text, theme.Muted)
+		if v.typing {
+			v.filter.draw(c, x, 0)
+		} else {
+			c.Put(x, 0, cell.Fit(v.filter.String()+"  (Esc shows all)", max(cw-x, 0)), theme.Plain)
+		}
+		return
+	}
+	overdue := 0
+	for i := range all {
+		if all[i].Debt > 1 {
+			overdue++
+		}
+	}
+	text := fmt.Sprintf("%s at %s, %d overdue, by %s", count(len(all), "account"), w.desk.session.Start.UTC().Format("2006-01-02 15:04 UTC"), overdue, v.orderWords())
+	c.Put(1, 0, cell.Fit(text, cw-1), theme.Plain)
+}
+
+func (v *arrears) orderWords() string {
+	text := accountColumns[v.column()].head
+	if v.column() == debtColumn {
+		text = "debt, worst first"
+	}
+	if v.turned {
+		text += ", turned round"
+	}
+	return text
+}
+
+func (v *arrears) drawTable(w *world, c *cell.Canvas, g *theme.Glyphs, shown []int) {
+	cw, h := c.Size()
+	v.page = max(h-1, 1)
+	columns := fitAccountColumns(cw)
+	x := 1
+	for _, k := range columns {
+		col := accountColumns[k]
+		ink, head := theme.Muted, col.head
+		if k == v.column() {
+			ink = theme.Strong
+		}
+		c.Put(x, 0, fitted(head, col.width, col.right), ink)
+		x += col.width + 1
+	}
+	if len(shown) == 0 {
+		c.Put(1, 1, "no account matches", theme.Plain)
+		return
+	}
+	v.list.show(len(shown), v.page)
+	for i := v.list.top; i < min(v.list.top+v.page, len(shown)); i++ {
+		r := &w.desk.prepared.Accounts[shown[i]]
+		ink, mark := theme.Plain, " "
+		switch {
+		case i == v.list.at:
+			ink, mark = theme.Chosen, g.Mark
+			c.Put(0, i-v.list.top+1, cell.Fit("", cw), ink)
+		case r.Debt > 1:
+			ink = theme.Overdue
+		}
+		x := c.Put(0, i-v.list.top+1, mark, ink)
+		for _, k := range columns {
+			col := accountColumns[k]
+			c.Put(x, i-v.list.top+1, fitted(col.text(w, g, r), col.width, col.right), ink)
+			x += col.width + 1
+		}
+	}
+	drawMore(c, g, v.list.top, len(shown), v.page)
+}
+
+func fitted(s string, w int, right bool) string {
+	if right {
+		return cell.Right(s, w)
+	}
+	return cell.Fit(s, w)
+}
+
+// fitAccountColumns returns which columns have room in w cells.
+func fitAccountColumns(w int) []int {
+	used := 1
+	keep := map[int]bool{}
+	for rank := 0; rank <= 6; rank++ {
+		for i, c := range accountColumns {
+			if c.rank == rank && (rank == 0 || used+c.width+1 <= w) {
+				used += c.width + 1
+				keep[i] = true
+			}
+		}
+	}
+	var kept []int
+	for i := range accountColumns {
+		if keep[i] {
+			kept = append(kept, i)
+		}
+	}
+	return kept
+}
+
+// read is everything about the chosen account.
+func (v *arrears) read(w *world) (string, []line) {
+	r, ok := v.chosen(w)
+	if !ok {
+		return "", nil
+	}
+	var lines []line
+	add := func(label, format string, args ...any) {
+		lines = append(lines, line{label: label, text: fmt.Sprintf(format, args...)})
+	}
+	for _, s := range whyNotTonight(w, r) {
+		add("plan", "%s", s)
+	}
+	owed := "not due yet"
+	if r.Debt > 1 {
+		owed = "overdue"
+	} else if r.Debt == 1 {
+		owed = "due now"
+	}
+	add("debt", "%.2f, %s; priority %.3g", r.Debt, owed, r.Priority)
+	if r.Why != "" {
+		add("because", "%s", r.Why)
+	}
+	last := "never observed"
+	if !r.Last.IsZero() {
+		last = "last observed " + r.Last.UTC().Format("2006-01-02 15:04 UTC")
+	}
+	due := ""
+	if !r.Due.IsZero() {
+		due = "; due " + r.Due.UTC().Format("2006-01-02 15:04 UTC")
+	}
+	add("dates", "%s%s", last, due)
+	switch {
+	case r.NextStart.IsZero():
+		add("next", "not observable in any coming session")
+	default:
+		add("next", "%s UTC in session %s", nextWords(r), r.NextSession)
+	}
+	if len(r.Receivers) > 0 {
+		add("with", "%s", strings.Join(r.Receivers, ", "))
+	}
+	if len(r.Flags) > 0 {
+		add("flags", "%s", strings.Join(r.Flags, ", "))
+	}
+	return r.Source + ", " + aimWords(r), lines
+}
+
+// whyNotTonight says where the source is in the plan, or why it is not.
+func whyNotTonight(w *world, r *campaigns.AccountRow) []string {
+	read := w.desk.read()
+	var said []string
+	mine := func(source, receiver string) bool {
+		return source == r.Source && (len(r.Receivers) == 0 || slices.Contains(r.Receivers, receiver))
+	}
+	for i := range read.rows {
+		if row := &read.rows[i]; mine(row.Source, row.Receiver) {
+			said = append(said, fmt.Sprintf("in slot %d with %s, %s to %s UTC", i+1, row.Receiver, clock(row.Start), clock(row.End)))
+		}
+	}
+	for _, reason := range read.missing() {
+		job := read.problem.Jobs[reason.Job]
+		if receiver := read.problem.Receivers[job.Receiver].Name; mine(job.Source, receiver) {
+			said = append(said, fmt.Sprintf("not with %s: %s", receiver, reason.Text))
+		}
+	}
+	if len(said) == 0 {
+		said = append(said, "no aim of it can be served in this session: another site, or receivers that are not mounted")
+	}
+	return said
+}

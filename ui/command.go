@@ -1,0 +1,154 @@
+package ui
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"os"
+	"slices"
+	"sync"
+	"time"
+
+	tea "github.com/charmbracelet/bubbletea"
+
+	"example.org/tallystick/campaigns"
+	"example.org/tallystick/sched"
+)
+
+// files is the campaign's folder, which is for one command at a time.
+type files struct {
+	*campaigns.Folder
+	mu sync.Mutex
+}
+
+// guarded turns a fault in a command into a message, so that the terminal and the work are saved.
+func guarded(work func() tea.Msg) tea.Cmd {
+	return func() (msg tea.Msg) {
+		defer func() {
+			if r := recover(); r != nil {
+				msg = panicMsg{fmt.Sprint(r)}
+			}
+		}()
+		return work()
+	}
+}
+
+// tickCmd wakes at the next whole second of the machine's clock.
+func tickCmd() tea.Cmd {
+	return tea.Every(time.Second, func(t time.Time) tea.Msg { return tickMsg(t) })
+}
+
+func prepareCmd(f *files, s *campaigns.Session, at time.Time) tea.Cmd {
+	return guarded(func() tea.Msg {
+		from := 0
+		if at.After(s.Start) && at.Before(s.End) {
+			from = int(at.Sub(s.Start)/time.Minute) + 1
+		}
+		p, err := campaigns.Prepare(f.Campaign, f.Logbook, s, campaigns.PrepareOptions{At: at, FromMin: from})
+		if err != nil {
+			return preparedMsg{session: s.Name, err: err}
+		}
+		f.mu.Lock()
+		defer f.mu.Unlock()
+		saved, err := f.Plan(s.Name)
+		return preparedMsg{session: s.Name, prepared: p, saved: saved, err: err}
+	})
+}
+
+// planCmd plans around the pins of a plan. Progress goes to work.reports, which it closes.
+func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapshot, first bool) tea.Cmd {
+	q := *p
+	q.Pins = slices.DeleteFunc(slices.Clone(from.plan.Slots), func(s sched.Slot) bool { return !s.Pinned })
+	warm := from.plan.Clone()
+	return guarded(func() tea.Msg {
+		defer close(work.reports)
+		o := sched.Options{Progress: func(r sched.Result) {
+			select {
+			case work.reports <- r:
+			default: // the screen is behind; the next report says more
+			}
+		}}
+		if !first {
+			o.Warm = &warm
+		}
+		r, err := sched.Solve(ctx, &q, o)
+		return plannedMsg{work: work, result: r, first: first, pins: q.Pins, bars: from.bars, err: err}
+	})
+}
+
+// listenCmd waits for the next report of a planning run.
+func listenCmd(work *planning) tea.Cmd {
+	return func() tea.Msg {
+		r, ok := <-work.reports
+		if !ok {
+			return nil
+		}
+		return progressMsg{work, r}
+	}
+}
+
+func saveCmd(f *files, d *desk, s snapshot, plan *campaigns.SavedPlan, over, leave bool) tea.Cmd {
+	return guarded(func() tea.Msg {
+		f.mu.Lock()
+		defer f.mu.Unlock()
+		err := f.SavePlan(plan)
+		if over && errors.Is(err, campaigns.ErrChanged) {
+			// What is there now has been seen and may go: reading it makes it ours to replace.
+			if _, err = f.Plan(plan.Session); err == nil {
+				err = f.SavePlan(plan)
+			}
+		}
+		note := "saved in " + f.Name()
+		if f.Demo() {
+			note = "saved, but only until you quit: the demonstration lives in memory (W saves it into a folder)"
+		}
+		return savedMsg{desk: d, saved: s, note: note, err: err, leave: leave}
+	})
+}
+
+func exportCmd(c *Config, format, path string, p *campaigns.Prepared, plan sched.Plan, over bool) tea.Cmd {
+	return guarded(func() tea.Msg {
+		if _, err := os.Lstat(path); err == nil && !over {
+			return exportedMsg{format: format, path: path, exists: true}
+		}
+		note, err := c.Export(format, path, p, plan)
+		return exportedMsg{format: format, path: path, note: note, err: err}
+	})
+}
+
+func saveCampaignCmd(f *files, dir string) tea.Cmd {
+	return guarded(func() tea.Msg {
+		f.mu.Lock()
+		defer f.mu.Unlock()
+		return campaignSavedMsg{dir, f.SaveTo(dir)}
+	})
+}
+
+func findDraftsCmd(key string) tea.Cmd {
+	return guarded(func() tea.Msg { return draftsMsg{findDrafts(key)} })
+}
+
+func keepDraftsCmd(drafts []draft, gone []draft) tea.Cmd {
+	return guarded(func() tea.Msg {
+		var errs []error
+		for _, d := range drafts {
+			errs = append(errs, d.keep())
+		}
+		for _, d := range gone {
+			errs = append(errs, d.remove())
+		}
+		return draftKeptMsg{errors.Join(errs...)}
+	})
+}
+
+func deleteDraftCmd(d draft) tea.Cmd {
+	return guarded(func() tea.Msg { return draftKeptMsg{d.remove()} })
+}
+
+func dropDraftsCmd(key string, desks []*desk) tea.Cmd {
+	var gone []draft
+	for _, d := range desks {
+		gone = append(gone, draft{Key: key, Session: d.session.Name})
+	}
+	return keepDraftsCmd(nil, gone)
+}

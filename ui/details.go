@@ -1,0 +1,127 @@
+package ui
+
+import (
+	"fmt"
+	"image"
+	"strings"
+
+	"example.org/tallystick/sched"
+	"example.org/tallystick/ui/cell"
+	"example.org/tallystick/ui/theme"
+)
+
+// read is everything about the chosen slot.
+func (v *slate) read(w *world) (string, []line) {
+	d := w.desk
+	if _, ok := d.slot(); !ok {
+		return "", nil
+	}
+	return v.heading(w), slotLines(w, d.chosen)
+}
+
+func (v *slate) heading(w *world) string {
+	row := w.desk.read().rows[w.desk.chosen]
+	return fmt.Sprintf("slot %d: %s with %s, %s to %s UTC", row.Slot, row.Source, row.Receiver, clock(row.Start), clock(row.End))
+}
+
+// drawDetails writes as much about the chosen slot as there is room for.
+func (v *slate) drawDetails(w *world, c *cell.Canvas, g *theme.Glyphs, beside bool) {
+	cw, h := c.Size()
+	title, lines := v.read(w)
+	if lines == nil {
+		return
+	}
+	drawPane(c, g, title, lines, cw, h, beside)
+}
+
+// drawPane writes a heading and as many wrapped lines as fit below it.
+func drawPane(c *cell.Canvas, g *theme.Glyphs, title string, lines []line, w, h int, beside bool) {
+	if !beside {
+		c.Put(0, 0, strings.Repeat(g.Rule, w), theme.Muted)
+		c.Put(1, 0, " "+cell.Fit(title, min(cell.Width(title), w-4))+" ", theme.Strong)
+	} else {
+		c.Put(1, 0, cell.Fit(title, w-1), theme.Strong)
+	}
+	in := c.Sub(image.Rect(1, 1, w, h))
+	iw, ih := in.Size()
+	all := wrapLines(lines, iw)
+	drawLines(in, all, labelWidth(lines))
+	if len(all) > ih && ih > 0 {
+		more := " Enter: all "
+		c.Put(w-len(more)-1, 0, more, theme.Accent)
+	}
+}
+
+// slotLines tell everything about a slot, what matters most first.
+func slotLines(w *world, i int) []line {
+	d := w.desk
+	r := d.read()
+	row := &r.rows[i]
+	slot := r.plan.Slots[i]
+	job := r.problem.Jobs[r.problem.Nodes[slot.Node].Job]
+	why := r.explain(i)
+
+	var lines []line
+	add := func(label string, ink theme.Ink, format string, args ...any) {
+		lines = append(lines, line{label, fmt.Sprintf(format, args...), ink})
+	}
+	for _, b := range row.Breaches {
+		add("! limit", theme.Broken, "%s", b)
+	}
+	add("points", theme.Plain, "el %.1f to %.1f, az %.1f to %.1f deg, cable turn %d", row.ElStartDeg, row.ElEndDeg, row.AzStartDeg, row.AzEndDeg, row.Turn)
+	add("expects", theme.Plain, "%s", expects(row.SNR, row.ToaUs)+worthWords(row.Worth, why.Terms))
+	for _, t := range why.Terms {
+		if t.Why != "" {
+			add("", theme.Muted, "  %s %s: %s", t.Worth, t.Label, t.Why)
+		}
+	}
+	length := fmt.Sprintf("%d min on source, of use from %d to %d", slot.End-slot.Start, job.MinMin, job.MaxMin)
+	if row.Pinned {
+		length += "; pinned"
+	}
+	add("length", theme.Plain, "%s", length)
+	add("before", theme.Plain, "move %s, set-up %s, wait %s", seconds(row.MoveSec), seconds(row.OverheadSec), seconds(row.WaitSec))
+	if why.StartBy != "" {
+		add("start", theme.Plain, "%s", why.StartBy)
+	}
+	if why.EndBy != "" {
+		add("end", theme.Plain, "%s", why.EndBy)
+	}
+	if why.NextBest != "" {
+		add("instead", theme.Plain, "%s", why.NextBest)
+	}
+	add("sky", theme.Plain, "LST %s to %s, HA %s to %s, parallactic angle %.0f to %.0f deg",
+		hours(row.LSTStartH), hours(row.LSTEndH), signedHours(row.HAStartH), signedHours(row.HAEndH), row.ParStartDeg, row.ParEndDeg)
+	if row.PhaseStart != nil && row.PhaseEnd != nil {
+		add("phase", theme.Plain, "orbit %.3f to %.3f turns from the ascending node", *row.PhaseStart, *row.PhaseEnd)
+	}
+	add("Sun", theme.Plain, "never closer than %.0f deg; limit %.0f", d.prepared.Track(r.problem.Nodes[slot.Node].Job).SunDeg, job.Facts.SunLimit)
+	if row.Note != "" {
+		add("note", theme.Plain, "%s", row.Note)
+	}
+	return lines
+}
+
+func expects(snr, toaUs float64) string {
+	switch {
+	case snr == 0 && toaUs == 0:
+		return "no S/N known; "
+	case toaUs == 0:
+		return fmt.Sprintf("S/N %s; ", number(snr))
+	}
+	return fmt.Sprintf("S/N %s, TOA error %s us; ", number(snr), number(toaUs))
+}
+
+// worthWords adds a slot's worth up.
+func worthWords(total float64, terms []sched.TermShare) string {
+	text := fmt.Sprintf("worth %.2f", total)
+	for i, t := range terms {
+		if i == 0 {
+			text += " = "
+		} else {
+			text += " + "
+		}
+		text += fmt.Sprintf("%s %s", t.Worth, t.Kind)
+	}
+	return text
+}

@@ -1,0 +1,208 @@
+package ui
+
+import (
+	"flag"
+	"io"
+	"os"
+	"path/filepath"
+	"reflect"
+	"strings"
+	"testing"
+	"time"
+
+	"github.com/adrg/xdg"
+	tea "github.com/charmbracelet/bubbletea"
+	"github.com/charmbracelet/lipgloss"
+	"github.com/charmbracelet/x/ansi"
+	"github.com/muesli/termenv"
+
+	"example.org/tallystick/campaigns"
+	"example.org/tallystick/sched"
+	"example.org/tallystick/ui/theme"
+)
+
+var update = flag.Bool("update", false, "write the golden screens anew")
+
+// campaignFiles are read before any test changes the folder it works in.
+var campaignFiles = func() map[string][]byte {
+	files := map[string][]byte{}
+	for _, name := range []string{"campaign.toml", "logbook.csv"} {
+		text, err := os.ReadFile(filepath.Join("testdata", "campaign", name))
+		if err != nil {
+			panic(err)
+		}
+		files[name] = text
+	}
+	return files
+}()
+
+var evening = time.Date(2026, 12, 3, 15, 0, 0, 0, time.UTC)
+
+// A harness drives a model without a terminal: commands run at once, in order.
+type harness struct {
+	*model
+	t    testing.TB
+	quit bool
+}
+
+func styles(p termenv.Profile, ascii bool) theme.Styles {
+	r := lipgloss.NewRenderer(io.Discard)
+	r.SetColorProfile(p)
+	r.SetHasDarkBackground(true)
+	return theme.New(r, ascii)
+}
+
+// openCampaign opens a copy of the test campaign, which a test may write into.
+func openCampaign(t testing.TB) *campaigns.Folder {
+	t.Helper()
+	dir := t.TempDir()
+	for name, text := range campaignFiles {
+		if err := os.WriteFile(filepath.Join(dir, name), text, 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+	f, err := campaigns.Open(dir)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return f
+}
+
+func start(t testing.TB, f *campaigns.Folder, change ...func(*Config)) *harness {
+	t.Helper()
+	t.Setenv("XDG_STATE_HOME", t.TempDir())
+	xdg.Reload()
+	return open(t, f, change...)
+}
+
+// open opens the interface with the state folder as it is.
+func open(t testing.TB, f *campaigns.Folder, change ...func(*Config)) *harness {
+	t.Helper()
+	c := Config{
+		Folder: f, Now: func() time.Time { return evening }, Version: "test",
+		Export: func(format, path string, p *campaigns.Prepared, plan sched.Plan) (string, error) {
+			return "wrote " + path + " as " + format, os.WriteFile(path, []byte(format), 0o644)
+		},
+	}
+	for _, f := range change {
+		f(&c)
+	}
+	h := &harness{model: newModel(c, styles(termenv.Ascii, c.ASCII)), t: t}
+	h.size(80, 24)
+	h.run(prepareCmd(h.world.folder, h.world.desk.session, h.world.now))
+	h.run(findDraftsCmd(h.campaignKey()))
+	return h
+}
+
+func (h *harness) size(w, height int) { h.send(tea.WindowSizeMsg{Width: w, Height: height}) }
+
+func (h *harness) send(msg tea.Msg) {
+	_, cmd := h.Update(msg)
+	h.run(cmd)
+}
+
+func (h *harness) run(cmd tea.Cmd) {
+	if cmd == nil {
+		return
+	}
+	msg := cmd()
+	switch msg := msg.(type) {
+	case nil:
+		return
+	case tea.QuitMsg:
+		h.quit = true
+		return
+	case tea.BatchMsg:
+		for _, c := range msg {
+			h.run(c)
+		}
+		return
+	}
+	if v := reflect.ValueOf(msg); v.Kind() == reflect.Slice { // a sequence, whose type is not exported
+		for i := range v.Len() {
+			if c, ok := v.Index(i).Interface().(tea.Cmd); ok {
+				h.run(c)
+			}
+		}
+		return
+	}
+	h.send(msg)
+}
+
+// keys presses keys by their names; text in quotes is typed.
+func (h *harness) keys(names ...string) {
+	for _, n := range names {
+		if s, ok := strings.CutPrefix(n, "type:"); ok {
+			for _, r := range s {
+				h.send(tea.KeyMsg{Type: tea.KeyRunes, Runes: []rune{r}})
+			}
+			continue
+		}
+		h.send(keyMsg(n))
+	}
+}
+
+var special = map[string]tea.KeyType{
+	"up": tea.KeyUp, "down": tea.KeyDown, "left": tea.KeyLeft, "right": tea.KeyRight, "pgup": tea.KeyPgUp,
+	"pgdown": tea.KeyPgDown, "home": tea.KeyHome, "end": tea.KeyEnd, "enter": tea.KeyEnter, "esc": tea.KeyEsc,
+	"tab": tea.KeyTab, "shift+tab": tea.KeyShiftTab, "delete": tea.KeyDelete, "backspace": tea.KeyBackspace,
+	"shift+left": tea.KeyShiftLeft, "shift+right": tea.KeyShiftRight, "ctrl+c": tea.KeyCtrlC, "ctrl+p": tea.KeyCtrlP,
+	"ctrl+r": tea.KeyCtrlR, "ctrl+s": tea.KeyCtrlS, "ctrl+z": tea.KeyCtrlZ, "ctrl+u": tea.KeyCtrlU,
+}
+
+func keyMsg(name string) tea.KeyMsg {
+	if k, ok := special[name]; ok {
+		return tea.KeyMsg{Type: k}
+	}
+	return tea.KeyMsg{Type: tea.KeyRunes, Runes: []rune(name)}
+}
+
+// screen is the frame as plain text.
+func (h *harness) screen() string { return ansi.Strip(h.View()) }
+
+func (h *harness) shows(text string) {
+	h.t.Helper()
+	if !strings.Contains(h.screen(), text) {
+		h.t.Fatalf("the screen does not show %q:\n%s", text, h.screen())
+	}
+}
+
+func (h *harness) plan() snapshot { return h.world.desk.state }
+
+// exact fails unless the frame has exactly the size of the terminal.
+func (h *harness) exact() {
+	h.t.Helper()
+	lines := strings.Split(h.View(), "\n")
+	if len(lines) != h.model.h {
+		h.t.Fatalf("%d lines on a screen of %d by %d", len(lines), h.w, h.model.h)
+	}
+	for i, l := range lines {
+		if n := ansi.StringWidth(l); n != h.w {
+			h.t.Fatalf("line %d takes %d cells on a screen of %d by %d: %q", i+1, n, h.w, h.model.h, l)
+		}
+	}
+	if h.fault != "" {
+		h.t.Fatalf("a fault: %s", h.fault)
+	}
+}
+
+func golden(t *testing.T, name, got string) {
+	t.Helper()
+	path := filepath.Join("testdata", "screens", name+".txt")
+	if *update {
+		if err := os.MkdirAll(filepath.Dir(path), 0o755); err != nil {
+			t.Fatal(err)
+		}
+		if err := os.WriteFile(path, []byte(got+"\n"), 0o644); err != nil {
+			t.Fatal(err)
+		}
+		return
+	}
+	want, err := os.ReadFile(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if got+"\n" != string(want) {
+		t.Errorf("%s differs (go test ./ui -update writes it anew):\n%s\nwanted:\n%s", path, got, want)
+	}
+}

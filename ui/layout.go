@@ -1,0 +1,123 @@
+package ui
+
+import "image"
+
+// This file alone decides what goes where and what a small screen does without. Everything in it is
+// a function of the width and the height.
+
+// Smallest screen on which anything useful can be shown.
+const (
+	leastWidth  = 30
+	leastHeight = 6
+)
+
+// Width from which a view puts details beside its table.
+const wideEnough = 110
+
+// frame is the whole screen.
+type frame struct {
+	tooSmall                           bool
+	title, worth, body, message, hints image.Rectangle
+}
+
+func row(y, w int) image.Rectangle { return image.Rect(0, y, w, y+1) }
+
+func frameOf(w, h int) frame {
+	if w < leastWidth || h < leastHeight {
+		return frame{tooSmall: true}
+	}
+	return frame{
+		title: row(0, w), worth: row(1, w),
+		body:    image.Rect(0, 2, w, h-2),
+		message: row(h-2, w), hints: row(h-1, w),
+	}
+}
+
+// slateParts are the parts of the slate's body; an empty rectangle is left out.
+type slateParts struct {
+	words   image.Rectangle // the chosen source's elevation and the Sun, in words
+	plot    image.Rectangle // elevation curves
+	bars    image.Rectangle // slots on the axis
+	utc     image.Rectangle // axis in UTC
+	second  image.Rectangle // axis in LST, local time or MJD
+	table   image.Rectangle
+	details image.Rectangle
+	beside  bool // details stand beside the table, not below
+}
+
+// axisMargin is left of the plot and of the axes for their labels.
+const axisMargin = 5
+
+func slateLayout(w, h int) slateParts {
+	var p slateParts
+	y := 0
+	take := func(n int) image.Rectangle {
+		r := image.Rect(0, y, w, y+n)
+		y += n
+		return r
+	}
+	left := h
+	if h >= 12 {
+		left -= 4 // words, bars and two axes
+		plot := max(left/3, 3)
+		if w >= wideEnough {
+			plot = max(left*2/5, 5)
+		}
+		if h < 14 {
+			plot = 0
+		}
+		p.words = take(1)
+		p.plot = take(plot)
+		p.bars = take(1)
+		p.utc, p.second = take(1), take(1)
+	} else if h >= 9 {
+		p.bars = take(1)
+		p.utc = take(1)
+	}
+	left = h - y
+	switch {
+	case w >= wideEnough && left >= 6:
+		p.beside = true
+		table := max(w*11/20, 62)
+		p.table = image.Rect(0, y, table, h)
+		p.details = image.Rect(table+1, y, w, h)
+	case left >= 9:
+		details := max(left*2/5, 3)
+		p.table = image.Rect(0, y, w, h-details)
+		p.details = image.Rect(0, h-details, w, h)
+	default:
+		p.table = image.Rect(0, y, w, h)
+	}
+	return p
+}
+
+// tableParts are the parts of a view that is a table with details.
+type tableParts struct {
+	head, table, details image.Rectangle
+	beside               bool
+}
+
+func tableLayout(w, h int) tableParts {
+	p := tableParts{head: row(0, w)}
+	switch {
+	case w >= wideEnough+40 && h >= 8:
+		p.beside = true
+		p.table = image.Rect(0, 1, w*5/8, h)
+		p.details = image.Rect(w*5/8+1, 1, w, h)
+	case h >= 12:
+		details := max(h*3/10, 4)
+		p.table = image.Rect(0, 1, w, h-details)
+		p.details = image.Rect(0, h-details, w, h)
+	default:
+		p.table = image.Rect(0, 1, w, h)
+	}
+	return p
+}
+
+// centred returns a box of at most w by h in the middle of a screen, with a rim left free where
+// there is room.
+func centred(screen image.Rectangle, w, h int) image.Rectangle {
+	w, h = min(w, screen.Dx()), min(h, screen.Dy())
+	x, y := screen.Min.X+(screen.Dx()-w)/2, screen.Min.Y+(screen.Dy()-h)/2
+	return image.Rect(x, y, x+w, y+h)
+}

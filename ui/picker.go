@@ -1,0 +1,337 @@
+package ui
+
+import (
+	"fmt"
+	"image"
+	"slices"
+	"strings"
+
+	tea "github.com/charmbracelet/bubbletea"
+	"github.com/sahilm/fuzzy"
+
+	"example.org/tallystick/sched"
+	"example.org/tallystick/ui/cell"
+	"example.org/tallystick/ui/theme"
+)
+
+// A picker offers what could be observed at the cursor minute, best first. What is typed narrows it.
+type picker struct {
+	d          *desk
+	replaces   int // slot to be replaced, or -1
+	minute     int
+	all        []sched.Candidate
+	displaces  [][]int // slots of the plan shown that each would displace
+	names      []string
+	seen       []int // indices into all
+	typed      field
+	rows       rows
+	lost       sched.Micro // the worth of the slot to be replaced
+	slotsNamed func(int) string
+}
+
+func newPicker(d *desk, replaces int) *picker {
+	r := d.read()
+	plan := r.plan
+	p := &picker{d: d, replaces: replaces, minute: d.minute, slotsNamed: r.slotName}
+	without := func(i int) int { return i }
+	if replaces >= 0 {
+		p.minute = plan.Slots[replaces].Start
+		plan = sched.Plan{Slots: slices.Delete(slices.Clone(plan.Slots), replaces, replaces+1)}
+		without = func(i int) int {
+			if i >= replaces {
+				i++
+			}
+			return i
+		}
+	}
+	old := -1
+	if replaces >= 0 {
+		s := r.plan.Slots[replaces]
+		old = r.problem.Nodes[s.Node].Job
+		p.lost = r.problem.JobWorth(old, s.Start, s.End)
+	}
+	for _, c := range sched.Candidates(r.problem, plan, p.minute) {
+		if c.Job == old || slotsOf(r.problem, plan, c.Job) >= r.problem.Jobs[c.Job].MaxSlots {
+			continue
+		}
+		var slots []int
+		for _, i := range c.Displaces {
+			slots = append(slots, without(i))
+		}
+		p.all = append(p.all, c)
+		p.displaces = append(p.displaces, slots)
+		p.names = append(p.names, jobName(r.problem, c.Job))
+	}
+	p.narrow()
+	return p
+}
+
+// slotsOf counts the slots that a job has.
+func slotsOf(p *sched.Problem, plan sched.Plan, job int) int {
+	n := 0
+	for _, s := range plan.Slots {
+		if p.Nodes[s.Node].Job == job {
+			n++
+		}
+	}
+	return n
+}
+
+// narrow keeps what matches the typed text, in order of worth.
+func (p *picker) narrow() {
+	p.seen = p.seen[:0]
+	p.rows = rows{}
+	if p.typed.String() == "" {
+		for i := range p.all {
+			p.seen = append(p.seen, i)
+		}
+		return
+	}
+	for _, m := range fuzzy.Find(p.typed.String(), p.names) {
+		p.seen = append(p.seen, m.Index)
+	}
+	slices.Sort(p.seen)
+}
+
+func (p *picker) key(k tea.KeyMsg, _ *world) action {
+	switch k.String() {
+	case "esc":
+		if p.typed.String() != "" {
+			p.typed = field{}
+			p.narrow()
+			return action{}
+		}
+		return action{verb: closeDialog}
+	case "ctrl+c":
+		return action{verb: closeDialog}
+	case "enter":
+		if len(p.seen) == 0 {
+			return action{}
+		}
+		i := p.seen[p.rows.at]
+		return action{verb: placeChosen, more: placing{p.all[i], p.replaces, p.displaces[i]}}
+	case "up", "down", "pgup", "pgdown":
+		p.rows.key(k, len(p.seen))
+		return action{}
+	}
+	if p.typed.key(k) {
+		p.narrow()
+	}
+	return action{}
+}
+
+func (p *picker) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
+	sw, sh := c.Size()
+	width := min(96, sw-4)
+	at := clock(p.d.prepared.Instant(p.minute))
+	title := "Insert at " + at + " UTC, best first"
+	if p.replaces >= 0 {
+		title = fmt.Sprintf("In place of %s at %s UTC, best first", p.slotsNamed(p.replaces), at)
+	}
+	in := box(c, g, width, max(min(len(p.all)+2, sh-5), 4), title, "type to narrow, Enter inserts, Esc goes back")
+	x := in.Put(0, 0, "find: ", theme.Muted)
+	p.typed.draw(in, x, 0)
+	iw, ih := in.Size()
+	in.Put(1, 1, cell.Fit(fmt.Sprintf("%-16s %-11s %6s %7s  %s", "source", "UTC", "worth", "change", "room"), iw-1), theme.Muted)
+	if len(p.seen) == 0 {
+		in.Put(1, 2, "nothing matches", theme.Plain)
+		return
+	}
+	h := ih - 2
+	if h <= 0 {
+		return
+	}
+	p.rows.show(len(p.seen), h)
+	list := in.Sub(image.Rect(0, 2, iw, ih))
+	for i := p.rows.top; i < min(p.rows.top+h, len(p.seen)); i++ {
+		k := p.seen[i]
+		cand := p.all[k]
+		p.rows.draw(list, g, i, fmt.Sprintf("%s %s-%s %6s %7s  %s", cell.Fit(p.names[k], 16),
+			clock(p.d.prepared.Instant(cand.Start)), clock(p.d.prepared.Instant(cand.End)), cand.Worth, p.change(k), p.room(k)))
+	}
+}
+
+// room says whether a candidate fits, and who has to go if not.
+func (p *picker) room(k int) string {
+	c := p.all[k]
+	if len(p.displaces[k]) == 0 {
+		if c.Fits {
+			return "fits"
+		}
+		return "breaks a limit"
+	}
+	var names []string
+	for _, i := range p.displaces[k] {
+		names = append(names, p.slotsNamed(i))
+	}
+	return "drops " + strings.Join(names, ", ")
+}
+
+// change is what picking a candidate does to the worth of the plan.
+func (p *picker) change(k int) string {
+	d := p.all[k].Worth - p.all[k].Cost - p.lost
+	if d > 0 {
+		return "+" + d.String()
+	}
+	return d.String()
+}
+
+// A palette finds any action by its name.
+type palette struct {
+	names []string
+	cmds  []*command
+	cant  []string
+	seen  []int
+	typed field
+	rows  rows
+}
+
+func newPalette(m *model) *palette {
+	p := &palette{}
+	view := m.views[m.at].title()
+	for i := range commands {
+		c := &commands[i]
+		if c.verb == findAction || c.group == moving {
+			continue
+		}
+		why := m.cannot(c.verb)
+		if !c.worksIn(view) {
+			why = "only in the " + strings.ToLower(c.view) + " view"
+		}
+		p.cmds = append(p.cmds, c)
+		p.names = append(p.names, c.name)
+		p.cant = append(p.cant, why)
+	}
+	p.narrow()
+	return p
+}
+
+func (p *palette) narrow() {
+	p.seen = p.seen[:0]
+	p.rows = rows{}
+	if p.typed.String() == "" {
+		for i := range p.cmds {
+			p.seen = append(p.seen, i)
+		}
+		return
+	}
+	typed := strings.ToLower(p.typed.String())
+	for _, m := range fuzzy.Find(typed, p.names) {
+		p.seen = append(p.seen, m.Index)
+	}
+	// Whoever types a word means that word: names that hold it as written come first.
+	slices.SortStableFunc(p.seen, func(i, j int) int {
+		return placeOf(p.names[i], typed) - placeOf(p.names[j], typed)
+	})
+}
+
+// placeOf ranks how a name holds a text: as its beginning, at the beginning of a word, anywhere, not as
+// written.
+func placeOf(name, text string) int {
+	name = strings.ToLower(name)
+	switch {
+	case strings.HasPrefix(name, text):
+		return 0
+	case strings.Contains(name, " "+text):
+		return 1
+	case strings.Contains(name, text):
+		return 2
+	}
+	return 3
+}
+
+func (p *palette) key(k tea.KeyMsg, _ *world) action {
+	switch k.String() {
+	case "esc", "ctrl+c":
+		return action{verb: closeDialog}
+	case "enter":
+		if len(p.seen) == 0 || p.cant[p.seen[p.rows.at]] != "" {
+			return action{}
+		}
+		return action{verb: doVerb, text: string(p.cmds[p.seen[p.rows.at]].verb)}
+	case "up", "down", "pgup", "pgdown":
+		p.rows.key(k, len(p.seen))
+		return action{}
+	}
+	if p.typed.key(k) {
+		p.narrow()
+	}
+	return action{}
+}
+
+func (p *palette) draw(_ *world, c *cell.Canvas, g *theme.Glyphs) {
+	sw, sh := c.Size()
+	in := box(c, g, min(88, sw-4), max(min(len(p.cmds)+1, sh-5), 3), "Actions", "type to find, Enter does it, Esc goes back")
+	x := in.Put(0, 0, "find: ", theme.Muted)
+	p.typed.draw(in, x, 0)
+	iw, ih := in.Size()
+	h := ih - 1
+	if len(p.seen) == 0 {
+		in.Put(1, 1, "no action has such a name", theme.Plain)
+		return
+	}
+	if h <= 0 {
+		return
+	}
+	p.rows.show(len(p.seen), h)
+	list := in.Sub(image.Rect(0, 1, iw, ih))
+	for i := p.rows.top; i < min(p.rows.top+h, len(p.seen)); i++ {
+		k := p.seen[i]
+		text := p.cmds[k].name
+		if p.cant[k] != "" {
+			text += " (not now: " + p.cant[k] + ")"
+		}
+		p.rows.draw(list, g, i, cell.Fit(p.cmds[k].Help().Key, 10)+" "+text)
+	}
+}
+
+// sessionList chooses another session.
+type sessionList struct {
+	names []string
+	texts []string
+	rows  rows
+}
+
+func newSessionList(w *world) *sessionList {
+	l := &sessionList{}
+	for _, s := range w.campaign.Sessions {
+		text := fmt.Sprintf("%s  %s to %s UTC, %.1f h", cell.Fit(s.Name, 22), s.Start.UTC().Format("2006-01-02 15:04"), clock(s.End), s.End.Sub(s.Start).Hours())
+		switch {
+		case s.End.Before(w.now):
+			text += ", over"
+		case s.Start.Before(w.now):
+			text += ", under way"
+		}
+		if d, ok := w.desks[s.Name]; ok && d.unsaved() {
+			text += ", not saved"
+		}
+		if s.Name == w.desk.session.Name {
+			l.rows.at = len(l.names)
+		}
+		l.names, l.texts = append(l.names, s.Name), append(l.texts, text)
+	}
+	return l
+}
+
+func (l *sessionList) key(k tea.KeyMsg, _ *world) action {
+	switch k.String() {
+	case "esc", "ctrl+c", "q":
+		return action{verb: closeDialog}
+	case "enter":
+		if len(l.names) > 0 {
+			return action{verb: goToSession, text: l.names[l.rows.at]}
+		}
+	}
+	l.rows.key(k, len(l.names))
+	return action{}
+}
+
+func (l *sessionList) draw(_ *world, c *cell.Canvas, g *theme.Glyphs) {
+	sw, sh := c.Size()
+	in := box(c, g, min(78, sw-4), max(min(len(l.names), sh-4), 1), "Sessions", "Enter goes there, Esc goes back")
+	_, h := in.Size()
+	l.rows.show(len(l.names), h)
+	for i := range l.texts {
+		l.rows.draw(in, g, i, l.texts[i])
+	}
+}

@@ -1,0 +1,164 @@
+package ui
+
+import (
+	"fmt"
+	"strings"
+	"testing"
+
+	"github.com/charmbracelet/x/ansi"
+	"github.com/muesli/termenv"
+)
+
+func TestGoldenScreens(t *testing.T) {
+	for _, size := range []struct{ w, h int }{{80, 24}, {120, 40}, {200, 60}, {60, 20}, {40, 10}} {
+		h := start(t, openCampaign(t))
+		h.size(size.w, size.h)
+		h.keys("down")
+		golden(t, fmt.Sprintf("slate-%dx%d", size.w, size.h), h.screen())
+		h.keys("2", "down")
+		golden(t, fmt.Sprintf("arrears-%dx%d", size.w, size.h), h.screen())
+	}
+}
+
+func TestGoldenDialogs(t *testing.T) {
+	h := start(t, openCampaign(t))
+	for _, d := range []struct {
+		name string
+		keys []string
+	}{
+		{"insert", []string{"i"}},
+		{"help", []string{"esc", "?"}},
+		{"actions", []string{"esc", ":", "type:pin"}},
+		{"sessions", []string{"esc", "o"}},
+		{"export", []string{"esc", "e"}},
+		{"details", []string{"esc", "enter"}},
+		{"held", []string{"esc", ">", ">", ">", ">"}},
+	} {
+		h.keys(d.keys...)
+		golden(t, "dialog-"+d.name, h.screen())
+	}
+}
+
+func TestEverySizeIsExact(t *testing.T) {
+	h := start(t, openCampaign(t))
+	long := start(t, openCampaign(t))
+	long.keys("i")
+	widths := []int{1, 2, 3, 5, 9, 20, 29, 30, 31, 39, 40, 45, 59, 60, 79, 80, 81, 109, 110, 120, 149, 150, 200, 300}
+	for _, w := range widths {
+		for height := 1; height <= 100; height += 1 + height/20 {
+			h.size(w, height)
+			h.keys("tab")
+			h.exact()
+			h.keys("tab")
+			h.exact()
+			if w%3 == 0 {
+				long.size(w, height)
+				long.exact()
+			}
+		}
+	}
+}
+
+func TestDialogsAreExactAtEverySize(t *testing.T) {
+	h := start(t, openCampaign(t))
+	for _, open := range [][]string{{"?"}, {":"}, {"o"}, {"e"}, {"e", "enter"}, {"enter"}, {"r"}, {"W"}, {"2", "/"}} {
+		h.size(80, 24)
+		h.keys("esc", "esc", "1")
+		h.keys(open...)
+		for w := 1; w <= 160; w += 1 + w/9 {
+			for height := 1; height <= 60; height += 1 + height/9 {
+				h.size(w, height)
+				h.exact()
+			}
+		}
+	}
+}
+
+func TestTooSmallSaysSo(t *testing.T) {
+	h := start(t, openCampaign(t))
+	h.size(29, 5)
+	h.shows("Please make the window")
+	h.size(30, 6)
+	h.shows("Slate")
+}
+
+func TestASCIIScreens(t *testing.T) {
+	h := start(t, openCampaign(t), func(c *Config) { c.ASCII = true })
+	for _, keys := range [][]string{{}, {"2"}, {"?"}, {"esc", "1", "i"}, {"esc", ".", ".", ".", ".", ".", ".", ".", ".", "."}} {
+		h.keys(keys...)
+		for _, r := range h.View() {
+			if r > 126 {
+				t.Fatalf("%q is not ASCII:\n%s", r, h.screen())
+			}
+		}
+	}
+}
+
+// The signs of the screen take one cell wherever they are shown: none is of ambiguous width beyond the
+// box lines.
+func TestNoSignOfDoubtfulWidth(t *testing.T) {
+	h := start(t, openCampaign(t))
+	for _, keys := range [][]string{{}, {"enter"}, {"esc", "2"}, {"enter"}, {"esc", "?"}, {"esc", "1", "i"}} {
+		h.keys(keys...)
+		for _, r := range h.screen() {
+			box := r >= 0x2500 && r <= 0x257f
+			if strings.ContainsRune("°·×µ…→–—±", r) || r > 126 && !box && !strings.ContainsRune(strings.Join(h.st.Glyphs.All(), ""), r) {
+				t.Errorf("%q is on the screen:\n%s", r, h.screen())
+			}
+		}
+	}
+}
+
+// Without colours every state is still told by a sign or a word.
+func TestStatesWithoutColour(t *testing.T) {
+	h := start(t, openCampaign(t))
+	h.keys("p")
+	h.shows("1 pinned")
+	h.keys(">", ">", ">", "!")
+	h.shows("limit broken")
+	h.keys("down", "up")
+	frame := h.View()
+	for _, code := range []string{"[3", ";3", "[4", ";4", "[9", ";9"} {
+		if strings.Contains(frame, code) {
+			t.Errorf("a colour code %q without colours", code)
+		}
+	}
+	if !strings.Contains(frame, "\x1b[1;7m") {
+		t.Error("the chosen row is not marked by reverse video")
+	}
+}
+
+func TestColourNeverChangesText(t *testing.T) {
+	h := start(t, openCampaign(t))
+	plain := h.screen()
+	for _, p := range []termenv.Profile{termenv.TrueColor, termenv.ANSI256, termenv.ANSI} {
+		h.st = styles(p, false)
+		if got := ansi.Strip(h.View()); got != plain {
+			t.Errorf("%s changes the text", p.Name())
+		}
+	}
+}
+
+func TestNothingChangesWhileNothingHappens(t *testing.T) {
+	h := start(t, openCampaign(t))
+	before := h.View()
+	h.send(tickMsg(evening))
+	if h.View() != before {
+		t.Error("a tick without a new second changes the frame")
+	}
+}
+
+func TestFaultKeepsTheWork(t *testing.T) {
+	h := start(t, openCampaign(t))
+	h.keys("p")
+	h.send(panicMsg{"the test asked for it"})
+	if !h.quit {
+		t.Fatal("a fault in a command does not end the program")
+	}
+	err := h.outcome(0, nil)
+	if err == nil || !strings.Contains(err.Error(), "the test asked for it") || !strings.Contains(err.Error(), "kept") {
+		t.Errorf("outcome: %v", err)
+	}
+	again := open(t, h.cfg.Folder)
+	again.shows("Unsaved work from before")
+}
