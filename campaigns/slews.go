@@ -23,78 +23,113 @@ type place struct {
 
 // slewTable measures how long the mount takes between every pair of places at every departure.
 //
-// A move ends where the target is on arrival, so each is measured to the target's position a first
-// estimate of the move later. Where the target is not yet within its limits on arrival, the telescope
-// waits at the place where it will come within them.
+// A move ends where the target is on arrival. Where the target is not yet within its limits by then, the
+// telescope waits at the place where it will come within them. Departures from a place outside its windows
+// are only estimated, to where the target is when the move begins: no plan that keeps the limits has them.
 func slewTable(mount sky.Mount, places []place, minutes int, breaks []sched.Span) sched.SlewTable {
 	n := len(places)
 	bins := (minutes + slewBinMin) / slewBinMin
 	t := sched.SlewTable{Places: n, BinMin: slewBinMin, Bins: bins, Sec: make([]uint16, (bins+len(breaks))*n*n)}
-	m := mover{mount: mount, depart: make([][]sky.Axes, n), arrive: make([][]sky.Axes, n), last: minutes}
+	m := mover{mount: mount, places: places, depart: make([][]sky.Axes, n), arrive: make([][]sky.Axes, n), last: minutes}
 	for i := range places {
 		m.depart[i], m.arrive[i] = holdBehind(places[i]), holdAhead(places[i])
 	}
 
 	var wg sync.WaitGroup
-	workers := min(runtime.GOMAXPROCS(0), bins)
+	workers := min(runtime.GOMAXPROCS(0), n)
 	for w := range workers {
 		wg.Go(func() {
-			for b := w; b < bins; b += workers {
-				m.fill(t.Sec[b*n*n:(b+1)*n*n], b*slewBinMin, min((b+1)*slewBinMin, minutes))
+			for from := w; from < n; from += workers {
+				m.fill(&t, from, breaks)
 			}
 		})
 	}
 	wg.Wait()
-	for i, b := range breaks {
-		m.fillBreak(t.Sec[(bins+i)*n*n:(bins+i+1)*n*n], b)
-	}
 	return t
 }
 
 // A mover knows where each place is left from and arrived at, minute by minute.
 type mover struct {
 	mount          sky.Mount
+	places         []place
 	depart, arrive [][]sky.Axes
 	last           int // the last minute
 }
 
-// fill writes one bin: the longest move of those that depart from minute first to minute last.
-func (m *mover) fill(sec []uint16, first, last int) {
-	n := len(m.depart)
-	for from := range n {
-		for to := range n {
-			if from != to {
-				sec[from*n+to] = ceilSec(m.longest(m.depart[from], m.arrive[to], first, last))
+// fill writes all moves from one place. Of each bin it keeps the longest move.
+func (m *mover) fill(t *sched.SlewTable, from int, breaks []sched.Span) {
+	n := len(m.places)
+	leaves := m.leaves(from, t.Bins)
+	for to := range n {
+		depart, arrive := m.depart[from], m.arrive[to]
+		if from != to {
+			before := 0
+			for b := range t.Bins {
+				first, last := b*slewBinMin, min((b+1)*slewBinMin, m.last)
+				sec := &t.Sec[(b*n+from)*n+to]
+				if !leaves[b] {
+					*sec = ceilSec(m.mount.MoveSec(depart[first], arrive[first]))
+					continue
+				}
+				if b == 0 || !leaves[b-1] {
+					before = m.minutesToReach(depart[first], arrive, first, 0)
+				}
+				after := m.minutesToReach(depart[last], arrive, last, before)
+				*sec = ceilSec(m.longest(depart, arrive, first, last, min(before, after), max(before, after)+1))
+				before = after
 			}
+		}
+		for i, b := range breaks {
+			// Nothing moves in a break: the way is from where the telescope was when it began.
+			whole := m.minutesToReach(depart[b.From], arrive, b.To, 0)
+			t.Sec[((t.Bins+i)*n+from)*n+to] = ceilSec(m.wayTo(depart[b.From], arrive, b.To+whole, b.To+whole+2))
 		}
 	}
 }
 
-// longest is the longest move from one place to another for departures from minute first to minute last. The
-// first and the last of them say between which whole minutes all arrive; the longest ways, on either axis, to
-// where the target is at those minutes bound every move.
-func (m *mover) longest(depart, arrive []sky.Axes, first, last int) float64 {
-	a, b := m.minutesToReach(depart, arrive, first), m.minutesToReach(depart, arrive, last)
-	early, late := min(a, b), max(a, b)+1 // on arrival the target is between two whole minutes
-	var wayA, wayB float64
+// leaves says in which bins a slot at a place may end.
+func (m *mover) leaves(from, bins int) []bool {
+	out := make([]bool, bins)
+	for _, w := range m.places[from].open {
+		for b := w.From / slewBinMin; b <= min(w.To/slewBinMin, bins-1); b++ {
+			out[b] = true
+		}
+	}
+	return out
+}
+
+// longest is the longest move for departures from minute first to minute last that arrive early to late whole
+// minutes later: the longest ways, on either axis, to where the target is at those minutes bound every move.
+func (m *mover) longest(depart, arrive []sky.Axes, first, last, early, late int) float64 {
+	var a, b float64
 	for d := first; d <= last; d++ {
 		p := &depart[d]
 		for at := d + early; at <= d+late; at++ {
 			q := &arrive[min(at, m.last)]
-			wayA, wayB = max(wayA, math.Abs(q.A-p.A)), max(wayB, math.Abs(q.B-p.B))
+			a, b = max(a, math.Abs(q.A-p.A)), max(b, math.Abs(q.B-p.B))
 		}
 	}
-	return m.mount.MoveSec(sky.Axes{}, sky.Axes{A: wayA, B: wayB})
+	return m.mount.MoveSec(sky.Axes{}, sky.Axes{A: a, B: b})
 }
 
-// minutesToReach is how many whole minutes a move takes that departs at a minute. The target goes on moving
-// meanwhile, so it is asked again where it will be until that changes the answer no more.
-func (m *mover) minutesToReach(depart, arrive []sky.Axes, at int) int {
-	whole := 0
+// wayTo is the longest move to where the target is from minute first to minute last.
+func (m *mover) wayTo(p sky.Axes, arrive []sky.Axes, first, last int) float64 {
+	var a, b float64
+	for at := first; at <= last; at++ {
+		q := &arrive[min(at, m.last)]
+		a, b = max(a, math.Abs(q.A-p.A)), max(b, math.Abs(q.B-p.B))
+	}
+	return m.mount.MoveSec(sky.Axes{}, sky.Axes{A: a, B: b})
+}
+
+// minutesToReach is how many whole minutes a move takes that departs at a minute: on arrival the target is
+// between where it is then and a minute later. The target goes on moving meanwhile, so it is asked again where
+// it will be until that changes the answer no more. The search begins at a guess.
+func (m *mover) minutesToReach(p sky.Axes, arrive []sky.Axes, at, guess int) int {
+	whole := guess
 	for range mostPasses {
-		sec := max(m.mount.MoveSec(depart[at], arrive[min(at+whole, m.last)]), m.mount.MoveSec(depart[at], arrive[min(at+whole+1, m.last)]))
-		next := int(sec / 60)
-		if next <= whole { // below it where the target comes towards the telescope
+		next := int(m.wayTo(p, arrive, at+whole, at+whole+1) / 60)
+		if next == whole || next == whole-1 { // one less where the target comes towards the telescope
 			return next
 		}
 		whole = next
@@ -105,29 +140,6 @@ func (m *mover) minutesToReach(depart, arrive []sky.Axes, at int) int {
 // mostPasses ends the chase of a target that runs as fast as the mount; each pass gains what is left of the
 // way times the ratio of the speeds.
 const mostPasses = 12
-
-// fillBreak writes the bin of a break: nothing moves in it, so the way is from where the telescope was
-// when it began to where the target is when it has ended.
-func (m *mover) fillBreak(sec []uint16, brk sched.Span) {
-	n := len(m.depart)
-	for from := range n {
-		for to := range n {
-			p, whole := m.depart[from][brk.From], 0
-			longest := 0.0
-			for range mostPasses {
-				for _, at := range []int{whole, whole + 1} {
-					longest = max(longest, m.mount.MoveSec(p, m.arrive[to][min(brk.To+at, m.last)]))
-				}
-				if next := int(longest / 60); next > whole {
-					whole = next
-					continue
-				}
-				break
-			}
-			sec[from*n+to] = ceilSec(longest)
-		}
-	}
-}
 
 func ceilSec(s float64) uint16 { return uint16(min(math.Ceil(s), math.MaxUint16)) }
 
