@@ -21,21 +21,18 @@ type PassRow struct {
 // Passes returns the passes of a source over a site that begin or last between two instants, in time
 // order. A source that never sets has one from each lower transit to the next.
 func Passes(site *Site, source *Source, from, to time.Time) ([]PassRow, error) {
-	place, err := sky.NewSite(site.LatitudeDeg, site.LongitudeDeg, site.HeightM, site.DUT1Sec)
+	place, err := site.onEarth()
 	if err != nil {
 		return nil, err
 	}
-	limits, err := passLimits(site, source)
-	if err != nil {
-		return nil, err
-	}
+	limits := site.limits(source)
 	// A day more on either side, so that every pass has both of its ends.
 	first, last := from.AddDate(0, 0, -1), to.AddDate(0, 0, 1)
 	frames, err := sky.NewFrames(first, last)
 	if err != nil {
 		return nil, err
 	}
-	target := sky.Target{RADeg: source.RADeg, DecDeg: source.DecDeg, PMRAMasPerYr: source.PMMasPerYr[0], PMDecMasPerYr: source.PMMasPerYr[1], EpochMJD: source.PositionMJD}
+	target := source.target()
 	windows := place.Season(frames, target, first, last, limits)
 	var rows []PassRow
 	for _, p := range passesOf(place, frames, target, first, last, limits) {
@@ -45,24 +42,6 @@ func Passes(site *Site, source *Source, from, to time.Time) ([]PassRow, error) {
 		rows = append(rows, p.rows(windows, func() string { return whyUnusable(place, frames, target, p, limits) })...)
 	}
 	return rows, nil
-}
-
-// passLimits are those of a site and a source, the cable aside: which side it comes from is a session's affair.
-func passLimits(site *Site, source *Source) (sky.Limits, error) {
-	mask, err := sky.MaskOf(site.HorizonDeg)
-	if err != nil {
-		return sky.Limits{}, err
-	}
-	l := sky.Limits{
-		LowDeg: site.ElevationLimitsDeg[0], HighDeg: site.ElevationLimitsDeg[1], Mask: mask,
-		SunDeg: max(site.SunLimitDeg, source.SunLimitDeg),
-	}
-	if site.Mount == AltAz {
-		l.AzimuthDegPerMin = site.SlewDegPerMin[0]
-	} else {
-		l.HourAngleDeg = site.HourAngleLimitsDeg
-	}
-	return l, l.Check()
 }
 
 // A pass lasts from rise to set or, where the source never sets, from one lower transit to the next.

@@ -1,0 +1,85 @@
+package main
+
+import (
+	"io"
+	"math"
+
+	"github.com/spf13/cobra"
+
+	"example.org/tallystick/campaigns"
+	"example.org/tallystick/campaigns/export"
+	"example.org/tallystick/sched"
+)
+
+func (p *program) exportCommand() *cobra.Command {
+	formats, abouts := export.Formats()
+	long := "The saved plan of the session is exported or, where there is none, one made now. Formats:\n"
+	for i, f := range formats {
+		long += "  " + f + ": " + abouts[i] + "\n"
+	}
+	c := &cobra.Command{
+		Use:   "export",
+		Short: "Write the slot list of a session for the operator or for another program",
+		Long:  long + export.Safety,
+		Example: "  tallystick export --out tonight.txt\n" +
+			"  tallystick export --session \"2026-12-03 night\" --format csv --out tonight.csv",
+		Args: noArgs,
+		RunE: func(*cobra.Command, []string) error {
+			d, err := p.open()
+			if err != nil {
+				return err
+			}
+			s, err := p.session(d)
+			if err != nil {
+				return err
+			}
+			sheet, err := p.sheet(d, s)
+			if err != nil {
+				return err
+			}
+			return p.deliver(func(w io.Writer) error { return export.Write(w, p.flags.format, *sheet) })
+		},
+	}
+	p.campaignFlags(c)
+	p.sessionFlags(c)
+	p.searchFlags(c)
+	p.tableFlags(c, formats...)
+	return c
+}
+
+// sheet is that of the saved plan or, where there is none, of a plan made now.
+func (p *program) sheet(d *desk, s *campaigns.Session) (*export.Sheet, error) {
+	saved, err := d.Plan(s.Name)
+	if err != nil {
+		return nil, err
+	}
+	if saved == nil {
+		p.say("session %s has no saved plan: planned now", s.Name)
+		made, err := p.planAnew(d, s)
+		if err != nil {
+			return nil, err
+		}
+		return &made.sheet, nil
+	}
+	prepared, err := campaigns.Prepare(d.Campaign, d.Logbook, s, campaigns.PrepareOptions{At: d.at, GridMin: max(1, saved.GridMin), Bars: saved.Bars})
+	if err != nil {
+		return nil, err
+	}
+	plan, lost := prepared.Bind(saved)
+	p.sayLost(lost)
+	sheet := export.New(prepared, plan, export.Origin{
+		MadeAt: saved.MadeAt, Version: version(), Saved: true, Entries: len(d.Logbook.Entries),
+		Ceiling: ceilingOf(saved), HasCeiling: saved.Ceiling > 0 && sameWorth(prepared.Problem.PlanWorth(plan), saved.Worth),
+	})
+	return &sheet, nil
+}
+
+func ceilingOf(saved *campaigns.SavedPlan) sched.Micro {
+	return sched.Micro(math.Round(saved.Ceiling * float64(sched.Unit)))
+}
+
+// sameWorth tells whether a plan is still worth what it was when its ceiling was proved; if not, the
+// accounts have moved since, and the ceiling proves nothing.
+func sameWorth(now sched.Micro, then float64) bool {
+	return now == sched.Micro(math.Round(then*float64(sched.Unit)))
+}
