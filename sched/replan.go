@@ -134,10 +134,7 @@ const movesPerRound = 25
 
 // replan makes a round of moves. The hotter, the more worth it gives up to get out of a dead end.
 func (l *lane) replan(heat float64) {
-	tolerance := Micro(float64(l.value) * 0.004 * heat)
-	if slices.Max(l.t.bonus) > 0 {
-		tolerance = Micro(float64(l.t.p.PlanWorth(Plan{Slots: l.slots})) * 0.004 * heat)
-	}
+	tolerance := Micro(float64(l.t.p.PlanWorth(Plan{Slots: l.slots})) * 0.004 * heat)
 	for range movesPerRound {
 		slots, ok := l.move()
 		if !ok {

@@ -79,7 +79,7 @@ func (p *Problem) breakBetween(endMin, startMin int) int {
 }
 
 func (p *Problem) slewBin(minute int) int {
-	return max(0, min(minute/p.Slew.BinMin, p.Slew.Bins-1))
+	return max(0, min(minute/max(1, p.Slew.BinMin), p.Slew.Bins-1))
 }
 
 func (p *Problem) slewInBin(from, to, bin int) int {

@@ -194,7 +194,7 @@ func (p *Problem) cheapest(slots []Slot, worth []Micro, job int) Reason {
 	}
 	verb := "would cost"
 	cost := way.cost - best.worth
-	if cost <= 0 {
+	if cost < 0 {
 		verb, cost = "would gain", -cost
 	}
 	return Reason{Job: job, Kind: Outranked, Text: fmt.Sprintf("%s %s: %s at %s displaces %s", verb, cost, best.worth, span, strings.Join(names, ", "))}
