@@ -439,7 +439,4 @@ func TestStarter(t *testing.T) {
 	if text, _ := os.ReadFile(mine); string(text) != "mine" {
 		t.Error("overwritten")
 	}
-	if _, err := os.Stat(filepath.Join(dir, LogbookFile)); err == nil {
-		t.Error("half a starter is left")
-	}
 }

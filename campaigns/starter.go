@@ -15,9 +15,9 @@ import (
 //go:embed starter.toml
 var starterText string
 
-// WriteStarter writes a small campaign with comments into a folder, to be made into one's own. Its session
-// is the second night after now, so that it lies ahead. It never overwrites anything: when one of its files
-// is there already, nothing is written.
+// WriteStarter writes a small campaign.toml with comments into a folder, to be made into one's own. Its
+// session is the second night after now, so that it lies ahead. The logbook begins with the first entry.
+// A campaign.toml that is there already is never overwritten.
 func WriteStarter(dir string, now time.Time) error {
 	night := now.UTC().AddDate(0, 0, 2).Truncate(24 * time.Hour).Add(19 * time.Hour)
 	text := strings.NewReplacer(
@@ -25,10 +25,6 @@ func WriteStarter(dir string, now time.Time) error {
 		"START", night.Format(time.RFC3339),
 		"END", night.Add(8*time.Hour).Format(time.RFC3339),
 	).Replace(starterText)
-	files := []struct{ name, text string }{
-		{LogbookFile, strings.Join(logbookColumns, ",") + "\r\n"},
-		{CampaignFile, text}, // last: it makes the folder a campaign
-	}
 	to := disk{dir}
 	if err := makeFolder(dir); err != nil {
 		return err
@@ -38,19 +34,11 @@ func WriteStarter(dir string, now time.Time) error {
 		return err
 	}
 	defer unlock()
-	for _, f := range files {
-		_, err := os.Lstat(to.path(f.name))
-		if err == nil {
-			return fmt.Errorf("%s: found a file that is there already; accepted: a folder without one", to.path(f.name))
-		}
-		if !errors.Is(err, fs.ErrNotExist) {
-			return err
-		}
+	file := to.path(CampaignFile)
+	if _, err := os.Lstat(file); err == nil {
+		return fmt.Errorf("%s: found a file that is there already; accepted: a folder without one", file)
+	} else if !errors.Is(err, fs.ErrNotExist) {
+		return err
 	}
-	for _, f := range files {
-		if err := to.replace(f.name, []byte(f.text)); err != nil {
-			return err
-		}
-	}
-	return nil
+	return to.replace(CampaignFile, []byte(text))
 }
