@@ -255,7 +255,7 @@ func (m *model) applyRest(a action) tea.Cmd {
 		return m.saveAndLeave()
 	case loseAndLeave:
 		m.discard = true
-		return tea.Sequence(dropDraftsCmd(m.campaignKey(), w.unsaved()), tea.Quit)
+		return tea.Sequence(m.dropDraftsCmd(w.unsaved()), tea.Quit)
 	}
 	return nil
 }

@@ -145,10 +145,11 @@ func deleteDraftCmd(d draft) tea.Cmd {
 	return guarded(func() tea.Msg { return draftKeptMsg{d.remove()} })
 }
 
-func dropDraftsCmd(key string, desks []*desk) tea.Cmd {
+// dropDraftsCmd removes what this run has kept of these sessions.
+func (m *model) dropDraftsCmd(desks []*desk) tea.Cmd {
 	var gone []draft
 	for _, d := range desks {
-		gone = append(gone, draft{Key: key, Session: d.session.Name})
+		gone = append(gone, m.drafts[d.session.Name]...)
 	}
 	return keepDraftsCmd(nil, gone)
 }

@@ -22,6 +22,7 @@ import (
 type draft struct {
 	Key     string               `json:"campaign"` // tells campaigns apart
 	Session string               `json:"session"`
+	Run     int64                `json:"run"` // tells runs of the program apart, so that none writes over another's draft
 	KeptAt  time.Time            `json:"kept_at"`
 	Plan    *campaigns.SavedPlan `json:"plan"`
 }
@@ -33,7 +34,7 @@ func draftFolder(key string) string {
 
 func (d draft) path() string {
 	sum := sha256.Sum256([]byte(d.Session))
-	return filepath.Join(draftFolder(d.Key), hex.EncodeToString(sum[:8])+".json")
+	return filepath.Join(draftFolder(d.Key), fmt.Sprintf("%x-%x.json", sum[:8], d.Run))
 }
 
 func (d draft) keep() error {
@@ -87,7 +88,7 @@ func (m *model) campaignKey() string {
 func (m *model) draftOf(d *desk) draft {
 	s := d.shown()
 	return draft{
-		Key: m.campaignKey(), Session: d.session.Name, KeptAt: m.machine().UTC(),
+		Key: m.campaignKey(), Session: d.session.Name, Run: m.run, KeptAt: m.machine().UTC(),
 		Plan: d.preparedWith(s.bars).Saved(s.plan, d.provenFor(s), m.cfg.Version),
 	}
 }
@@ -100,6 +101,11 @@ func (m *model) keepDrafts() []string {
 		if err := kept.keep(); err != nil {
 			said = append(said, fmt.Sprintf("the unsaved plan of %s could not be kept: %v", d.session.Name, err))
 			continue
+		}
+		for _, old := range m.drafts[d.session.Name] {
+			if old.Run != m.run {
+				_ = old.remove() // restored, and part of the one just kept
+			}
 		}
 		said = append(said, fmt.Sprintf("the unsaved plan of %s is kept and will be offered at the next start", d.session.Name))
 	}

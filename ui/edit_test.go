@@ -32,7 +32,7 @@ func TestUndoToTheStart(t *testing.T) {
 	h := start(t, openCampaign(t))
 	first := h.plan()
 	edits := []string{".", ",", "+", "-", "[", "]", "p", "x", "b", "<", ">"}
-	for i := range 260 {
+	for i := range 400 {
 		h.keys(edits[i*7%len(edits)])
 		if h.world.desk.held != nil {
 			h.keys("!")
@@ -269,7 +269,7 @@ func TestSignalKeepsADraft(t *testing.T) {
 		t.Errorf("restored %v, wanted %v", again.plan(), work)
 	}
 	again.keys("w")
-	again.send(tickMsg(evening))
+	again.run(again.tick())
 	if third := open(t, f); third.over != nil {
 		t.Error("the draft is offered again after it was saved")
 	}

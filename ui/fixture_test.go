@@ -107,7 +107,7 @@ func (h *harness) run(cmd tea.Cmd) {
 	}
 	msg := cmd()
 	switch msg := msg.(type) {
-	case nil:
+	case nil, tickMsg, tea.SuspendMsg:
 		return
 	case tea.QuitMsg:
 		h.quit = true

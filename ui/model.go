@@ -51,9 +51,11 @@ type model struct {
 
 	draftsDue   bool // drafts on disk are not level with the work
 	draftsAt    time.Time
-	machine     func() time.Time // the machine's clock, which tells how old a draft is whatever the present moment is taken to be
-	drafted     map[string]int   // edition of what is drafted, by session
-	closing     int              // saves still to come before leaving
+	machine     func() time.Time   // the machine's clock, which tells how old a draft is whatever the present moment is taken to be
+	run         int64              // tells this run's drafts from another's
+	drafted     map[string]int     // edition of what is drafted, by session
+	drafts      map[string][]draft // on disk for what is on the desk, by session
+	closing     int                // saves still to come before leaving
 	discard     bool
 	fault       string
 	waiting     bool // the first session is being prepared
@@ -61,7 +63,8 @@ type model struct {
 }
 
 func newModel(c Config, st theme.Styles) *model {
-	m := &model{cfg: c, st: st, drafted: map[string]int{}, machine: time.Now}
+	m := &model{cfg: c, st: st, drafted: map[string]int{}, drafts: map[string][]draft{}, machine: time.Now}
+	m.run = m.machine().UnixNano()
 	m.world = world{folder: &files{Folder: c.Folder}, campaign: c.Folder.Campaign, desks: map[string]*desk{}, mouse: c.Mouse}
 	m.world.now = m.clock()
 	m.views = []view{&slate{}, &arrears{}}
@@ -223,11 +226,16 @@ func (m *model) levelDrafts() tea.Cmd {
 		was, drafted := m.drafted[name]
 		switch {
 		case d.unsaved() && (!drafted || was != d.edition):
-			keep = append(keep, m.draftOf(d))
+			dr := m.draftOf(d)
+			if !drafted {
+				m.drafts[name] = append(m.drafts[name], draft{Key: dr.Key, Session: name, Run: m.run})
+			}
+			keep = append(keep, dr)
 			m.drafted[name] = d.edition
-		case !d.unsaved() && drafted:
-			gone = append(gone, draft{Key: m.campaignKey(), Session: name})
+		case !d.unsaved() && len(m.drafts[name]) > 0:
+			gone = append(gone, m.drafts[name]...)
 			delete(m.drafted, name)
+			delete(m.drafts, name)
 		}
 	}
 	if len(keep)+len(gone) == 0 {
@@ -334,6 +342,7 @@ func (m *model) restore(dr draft) {
 	d := m.world.desk
 	s := m.bindSaved(d, dr.Plan)
 	d.commit("restored the draft", s)
+	m.drafts[dr.Session] = append(m.drafts[dr.Session], dr) // it goes when this work is saved
 	d.choose(0)
 	m.tell("draft restored: u goes back to the plan without it")
 }

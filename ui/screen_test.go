@@ -142,7 +142,7 @@ func TestColourNeverChangesText(t *testing.T) {
 func TestNothingChangesWhileNothingHappens(t *testing.T) {
 	h := start(t, openCampaign(t))
 	before := h.View()
-	h.send(tickMsg(evening))
+	h.run(h.tick())
 	if h.View() != before {
 		t.Error("a tick without a new second changes the frame")
 	}
