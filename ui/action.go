@@ -206,16 +206,16 @@ func (m *model) applyRest(a action) tea.Cmd {
 		m.over = nil
 		return m.apply(action{verb: verb(a.text)})
 	case insertSlot:
-		m.over = newPicker(d, -1)
+		m.over = newPicker(w, -1)
 	case replaceSlot:
-		m.over = newPicker(d, d.chosen)
+		m.over = newPicker(w, d.chosen)
 	case savePlan:
 		return m.save(d, false)
 	case saveOver:
 		m.over = nil
 		return m.save(d, true)
 	case exportPlan:
-		m.over = newExportForm(d)
+		m.over = newExportForm(d, m.cfg.Formats...)
 	case exportTo, exportOver:
 		m.over = nil
 		return m.export(a.text, a.more.(string), a.verb == exportOver)

@@ -50,15 +50,15 @@ var accountColumns = []accountColumn{
 	{"source", 12, false, 0,
 		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return r.Source },
 		func(_ *world, a, b *campaigns.AccountRow) int { return strings.Compare(a.Source, b.Source) }},
-	{"aim", 22, false, 2,
+	{"aim", 20, false, 2,
 		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return aimWords(r) },
 		func(_ *world, a, b *campaigns.AccountRow) int { return strings.Compare(aimWords(a), aimWords(b)) }},
 	{"debt", 5, true, 0,
 		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return fmt.Sprintf("%.2f", r.Debt) },
 		func(_ *world, a, b *campaigns.AccountRow) int { return cmp.Compare(b.Debt, a.Debt) }},
-	{"", 8, false, 3,
+	{"", 6, false, 3,
 		func(_ *world, g *theme.Glyphs, r *campaigns.AccountRow) string {
-			return cell.Gauge(r.Debt, debtShown, 8, g.Full, g.Nothing)
+			return cell.Gauge(r.Debt, debtShown, 6, g.Full, g.Nothing)
 		}, nil},
 	{"last", 10, false, 4,
 		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return date(r.Last) },
@@ -74,7 +74,7 @@ var accountColumns = []accountColumn{
 		func(w *world, a, b *campaigns.AccountRow) int {
 			return strings.Compare(planWords(w, a), planWords(w, b))
 		}},
-	{"flags", 16, false, 5,
+	{"flags", 14, false, 5,
 		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return strings.Join(r.Flags, ", ") },
 		func(_ *world, a, b *campaigns.AccountRow) int { return len(b.Flags) - len(a.Flags) }},
 }
@@ -420,7 +420,8 @@ func whyNotTonight(w *world, r *campaigns.AccountRow) []string {
 			said = append(said, fmt.Sprintf("in slot %d with %s, %s to %s UTC", i+1, row.Receiver, clock(row.Start), clock(row.End)))
 		}
 	}
-	for _, reason := range read.missing() {
+	from, _ := w.nowMinute()
+	for _, reason := range read.missing(from) {
 		job := read.problem.Jobs[reason.Job]
 		if receiver := read.problem.Receivers[job.Receiver].Name; mine(job.Source, receiver) {
 			said = append(said, fmt.Sprintf("not with %s: %s", receiver, reason.Text))

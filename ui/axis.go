@@ -149,6 +149,8 @@ func barText(g *theme.Glyphs, n int, number, flag string) string {
 	switch {
 	case n == 1 && flag != "":
 		return flag
+	case n == 1 && len(number) == 1:
+		return number
 	case n == 1:
 		return g.SlotFrom
 	}

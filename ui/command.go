@@ -40,11 +40,7 @@ func tickCmd() tea.Cmd {
 
 func prepareCmd(f *files, s *campaigns.Session, at time.Time) tea.Cmd {
 	return guarded(func() tea.Msg {
-		from := 0
-		if at.After(s.Start) && at.Before(s.End) {
-			from = int(at.Sub(s.Start)/time.Minute) + 1
-		}
-		p, err := campaigns.Prepare(f.Campaign, f.Logbook, s, campaigns.PrepareOptions{At: at, FromMin: from})
+		p, err := campaigns.Prepare(f.Campaign, f.Logbook, s, campaigns.PrepareOptions{At: at})
 		if err != nil {
 			return preparedMsg{session: s.Name, err: err}
 		}
@@ -55,10 +51,20 @@ func prepareCmd(f *files, s *campaigns.Session, at time.Time) tea.Cmd {
 	})
 }
 
-// planCmd plans around the pins of a plan. Progress goes to work.reports, which it closes.
-func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapshot, first bool) tea.Cmd {
-	q := *p
-	q.Pins = slices.DeleteFunc(slices.Clone(from.plan.Slots), func(s sched.Slot) bool { return !s.Pinned })
+// planCmd plans around the pins of a plan and around what has begun before a minute. Progress goes to
+// work.reports, which it closes.
+func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapshot, minute int, first bool) tea.Cmd {
+	q := startingAt(p, minute)
+	var begun []sched.Slot // not pinned by the observer, but no longer to be changed
+	for _, s := range from.plan.Slots {
+		if !s.Pinned && s.Start < minute {
+			begun = append(begun, s)
+			s.Pinned = true
+		}
+		if s.Pinned {
+			q.Pins = append(q.Pins, s)
+		}
+	}
 	warm := from.plan.Clone()
 	return guarded(func() tea.Msg {
 		defer close(work.reports)
@@ -71,7 +77,13 @@ func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapsho
 		if !first {
 			o.Warm = &warm
 		}
-		r, err := sched.Solve(ctx, &q, o)
+		r, err := sched.Solve(ctx, q, o)
+		for i, s := range r.Plan.Slots {
+			s.Pinned = false
+			if slices.Contains(begun, s) {
+				r.Plan.Slots[i] = s
+			}
+		}
 		return plannedMsg{work: work, result: r, first: first, pins: q.Pins, bars: from.bars, err: err}
 	})
 }

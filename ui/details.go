@@ -72,7 +72,7 @@ func slotLines(w *world, i int) []line {
 	add("expects", theme.Plain, "%s", expects(row.SNR, row.ToaUs)+worthWords(row.Worth, why.Terms))
 	for _, t := range why.Terms {
 		if t.Why != "" {
-			add("", theme.Muted, "  %s %s: %s", t.Worth, t.Label, t.Why)
+			add(" ", theme.Muted, "%s for %s: %s", t.Worth, t.Label, t.Why)
 		}
 	}
 	length := fmt.Sprintf("%d min on source, of use from %d to %d", slot.End-slot.Start, job.MinMin, job.MaxMin)

@@ -78,7 +78,7 @@ func slateLayout(w, h int) slateParts {
 	switch {
 	case w >= wideEnough && left >= 6:
 		p.beside = true
-		table := max(w*11/20, 62)
+		table := max(w*11/20, min(w-72, 150))
 		p.table = image.Rect(0, y, table, h)
 		p.details = image.Rect(table+1, y, w, h)
 	case left >= 9:

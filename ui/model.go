@@ -68,6 +68,9 @@ func newModel(c Config, st theme.Styles) *model {
 	m.world = world{folder: &files{Folder: c.Folder}, campaign: c.Folder.Campaign, desks: map[string]*desk{}, mouse: c.Mouse}
 	m.world.now = m.clock()
 	m.views = []view{&slate{}, &arrears{}}
+	if len(c.Folder.Notices) > 0 {
+		m.warn("%s", c.Folder.Notices[0])
+	}
 	name := c.Session
 	if name == "" {
 		name = "next"
@@ -356,7 +359,11 @@ func (m *model) startPlanning(first bool) tea.Cmd {
 	work := &planning{desk: d, edition: d.edition, cancel: cancel, reports: make(chan sched.Result, 4)}
 	m.world.work = work
 	p := d.preparedWith(d.state.bars).Problem
-	return tea.Batch(planCmd(ctx, work, p, d.state, first), listenCmd(work))
+	from := 0
+	if m, ok := m.world.nowMinute(); ok {
+		from = m + 1
+	}
+	return tea.Batch(planCmd(ctx, work, p, d.state, from, first), listenCmd(work))
 }
 
 func (m *model) stopPlanning() {

@@ -29,8 +29,10 @@ type picker struct {
 	slotsNamed func(int) string
 }
 
-func newPicker(d *desk, replaces int) *picker {
+func newPicker(w *world, replaces int) *picker {
+	d := w.desk
 	r := d.read()
+	from, _ := w.nowMinute()
 	plan := r.plan
 	p := &picker{d: d, replaces: replaces, minute: d.minute, slotsNamed: r.slotName}
 	without := func(i int) int { return i }
@@ -50,7 +52,7 @@ func newPicker(d *desk, replaces int) *picker {
 		old = r.problem.Nodes[s.Node].Job
 		p.lost = r.problem.JobWorth(old, s.Start, s.End)
 	}
-	for _, c := range sched.Candidates(r.problem, plan, p.minute) {
+	for _, c := range sched.Candidates(startingAt(r.problem, from), plan, p.minute) {
 		if c.Job == old || slotsOf(r.problem, plan, c.Job) >= r.problem.Jobs[c.Job].MaxSlots {
 			continue
 		}
@@ -134,7 +136,11 @@ func (p *picker) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	iw, ih := in.Size()
 	in.Put(1, 1, cell.Fit(fmt.Sprintf("%-16s %-11s %6s %7s  %s", "source", "UTC", "worth", "change", "room"), iw-1), theme.Muted)
 	if len(p.seen) == 0 {
-		in.Put(1, 2, "nothing matches", theme.Plain)
+		text := "nothing matches"
+		if len(p.all) == 0 {
+			text = "every source that could be observed has its slots already"
+		}
+		in.Put(1, 2, cell.Fit(text, iw-1), theme.Plain)
 		return
 	}
 	h := ih - 2

@@ -145,7 +145,11 @@ func (m *model) drawWorth(c *cell.Canvas) {
 		return
 	}
 	r := d.read()
-	put("worth "+r.verdict.Worth.String(), theme.Strong)
+	worth := "worth " + r.verdict.Worth.String()
+	if d.held != nil {
+		worth += ", was " + d.prepared.Problem.PlanWorth(d.state.plan).String()
+	}
+	put(worth, theme.Strong)
 	put(m.distance(d, r), theme.Plain)
 	if n := len(r.verdict.Breaches); n > 0 {
 		put(fmt.Sprintf("! %s broken", count(n, "limit")), theme.Broken)
@@ -182,7 +186,7 @@ func pinned(r *reading) int {
 func (m *model) distance(d *desk, r *reading) string {
 	switch {
 	case len(r.verdict.Breaches) > 0:
-		return "no ceiling: limits are broken"
+		return "no ceiling" // it holds for plans within the limits
 	case !d.planned.holds(r.problem, r.plan):
 		if d.planned != nil && d.planned.result.HasCeiling {
 			return "ceiling out of date: R plans again"

@@ -119,7 +119,7 @@ type reading struct {
 	verdict  sched.Verdict
 	why      map[int]sched.SlotWhy // by slot
 	leftOut  []sched.Reason
-	leftDone bool
+	leftFrom int // the minute that leftOut holds for
 }
 
 // shown is the plan on the screen: the one that is held, if any.
@@ -155,12 +155,20 @@ func (r *reading) explain(slot int) sched.SlotWhy {
 	return why
 }
 
-// missing returns the reason for every job that has no slot.
-func (r *reading) missing() []sched.Reason {
-	if !r.leftDone {
-		r.leftOut, r.leftDone = sched.LeftOut(r.problem, r.plan), true
+// missing returns the reason for every job that has no slot, as from a minute on.
+func (r *reading) missing(from int) []sched.Reason {
+	if r.leftOut == nil || r.leftFrom != from {
+		r.leftOut, r.leftFrom = sched.LeftOut(startingAt(r.problem, from), r.plan), from
 	}
 	return r.leftOut
+}
+
+// startingAt returns the problem with everything before a minute past. What is judged on the screen is
+// judged without that: a slot that has begun is no fault of the plan.
+func startingAt(p *sched.Problem, minute int) *sched.Problem {
+	q := *p
+	q.FromMin = minute
+	return &q
 }
 
 // preparedWith returns the prepared session with these sources barred. It shares all that bars do not
@@ -173,6 +181,7 @@ func (d *desk) preparedWith(bars []string) *campaigns.Prepared {
 		_, q.Jobs[i].Barred = slices.BinarySearch(bars, q.Jobs[i].Source)
 	}
 	q.Pins = nil
+	q.FromMin = 0
 	p.Problem = &q
 	return &p
 }
