@@ -20,7 +20,7 @@ func TestMain(m *testing.M) {
 		checks = "40" // a plan takes ten times as long; the plain run does them all
 	}
 	os.Setenv("GORACE", "atexit_sleep_ms=0 "+os.Getenv("GORACE")) // else every command of a script ends a second late
-	flag.Set("rapid.checks", checks) // before the command line is read, which may say otherwise
+	flag.Set("rapid.checks", checks)                              // before the command line is read, which may say otherwise
 	testscript.Main(m, map[string]func(){"tallystick": main})
 }
 
