@@ -31,7 +31,21 @@ type disk struct{ dir string }
 
 func (d disk) path(name string) string { return filepath.Join(d.dir, filepath.FromSlash(name)) }
 
-func (d disk) read(name string) ([]byte, error) { return os.ReadFile(d.path(name)) }
+// read refuses what is not a plain file, since a pipe would be waited for, and what would fill the memory.
+func (d disk) read(name string) ([]byte, error) {
+	path := d.path(name)
+	info, err := os.Stat(path)
+	if err != nil {
+		return nil, err
+	}
+	if !info.Mode().IsRegular() {
+		return nil, &fs.PathError{Op: "read", Path: path, Err: errors.New("not a plain file")}
+	}
+	if info.Size() > largestLogbook {
+		return nil, &fs.PathError{Op: "read", Path: path, Err: fmt.Errorf("larger than %d MB", largestLogbook>>20)}
+	}
+	return os.ReadFile(path)
+}
 
 // lock keeps other programs from saving until unlock is called.
 func (d disk) lock() (unlock func(), err error) {

@@ -112,9 +112,6 @@ func (f *Folder) readLogbook() (string, error) {
 	if err != nil && !errors.Is(err, fs.ErrNotExist) {
 		return "", fmt.Errorf("%s cannot be read: %w", f.path(LogbookFile), reason(err))
 	}
-	if len(data) > largestLogbook {
-		return "", fmt.Errorf("%s: found more than %d MB; accepted: a smaller logbook", f.path(LogbookFile), largestLogbook>>20)
-	}
 	text := string(data)
 	f.Logbook, f.Damage = parseLogbook(text, f.path(LogbookFile))
 	return text, nil

@@ -8,6 +8,7 @@ import (
 	"path/filepath"
 	"strings"
 	"sync"
+	"syscall"
 	"testing"
 	"time"
 
@@ -410,6 +411,26 @@ func TestOpenSaysWhatIsMissing(t *testing.T) {
 	}
 	if _, err := Open(dir); err == nil || !strings.Contains(err.Error(), LogbookFile) {
 		t.Errorf("an unreadable logbook: %v", err)
+	}
+}
+
+func TestWhatIsNoFileIsNotWaitedFor(t *testing.T) {
+	for _, name := range []string{CampaignFile, LogbookFile} {
+		dir := copyOfSmall(t)
+		os.Remove(filepath.Join(dir, name))
+		if err := syscall.Mkfifo(filepath.Join(dir, name), 0o644); err != nil {
+			t.Fatal(err)
+		}
+		if _, err := Open(dir); err == nil || !strings.Contains(err.Error(), name) {
+			t.Errorf("a pipe called %s: %v", name, err)
+		}
+	}
+	dir := copyOfSmall(t)
+	if err := os.Truncate(filepath.Join(dir, LogbookFile), largestLogbook+1); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := Open(dir); err == nil || !strings.Contains(err.Error(), "larger than 256 MB") {
+		t.Errorf("a monstrous logbook: %v", err)
 	}
 }
 

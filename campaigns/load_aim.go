@@ -62,8 +62,12 @@ func (l *loader) aims(source *table, s *Source) []Aim {
 }
 
 func (l *loader) aim(t, source *table, s *Source) Aim {
+	kind := AimKind(t.word("kind", aimKinds))
+	if kind != "" {
+		t.label += fmt.Sprintf(" (%s)", kind)
+	}
 	a := Aim{
-		Kind:        AimKind(t.word("kind", aimKinds)),
+		Kind:        kind,
 		Receivers:   l.receiverNames(t, false),
 		Minutes:     t.numberOr("minutes", between(1, longestVisitMin), 0),
 		ToaUs:       t.numberOr("toa_us", above(0, 1e6), 0),
@@ -74,9 +78,6 @@ func (l *loader) aim(t, source *table, s *Source) Aim {
 		for _, r := range l.campaign.Receivers {
 			a.Receivers = append(a.Receivers, r.Name)
 		}
-	}
-	if a.Kind != "" {
-		t.label += fmt.Sprintf(" (%s)", a.Kind)
 	}
 	switch a.Kind {
 	case Cadence:

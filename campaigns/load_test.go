@@ -6,6 +6,7 @@ import (
 	"os"
 	"path/filepath"
 	"regexp"
+	"slices"
 	"strings"
 	"testing"
 	"testing/fstest"
@@ -173,5 +174,53 @@ func TestBroken(t *testing.T) {
 				}
 			}
 		})
+	}
+}
+
+func TestFaultsInSeveralFiles(t *testing.T) {
+	main, err := os.ReadFile("testdata/small/campaign.toml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	with := strings.Replace(string(main), "[campaign]\n", "[campaign]\ninclude = [\"more/*.toml\", \"more/b.toml\"]\n", 1)
+	source := "[[source]]\nname = \"%s\"\nra = 1\ndec = 1\naim = [{ kind = \"cadence\", every_days = 7, minutes = %s }]\n"
+	fsys := fstest.MapFS{
+		"more/a.toml": {Data: []byte("format = 1\n" + fmt.Sprintf(source, "One", "0") + "[[session]]\nname = \"x\"\n")},
+		"more/b.toml": {Data: []byte(fmt.Sprintf(source, "J0127+4811", "5"))},
+		"more/c.toml": {Data: []byte("[[source]]\nname = \"broken\n")},
+		"more/d.toml": {Data: []byte("format = 3\nwonder = 1\n")},
+		"more/e.toml": {Data: []byte(fmt.Sprintf(source, "Two", "5") + "receivers = 1\n")},
+		"more/f":      {Data: []byte("not included")},
+	}
+	included := []string{
+		`x/more/a.toml:6: source "One", aim 1 (cadence), minutes: found 0;`,
+		`x/more/a.toml:7: session: found a key that is not read in an included file; accepted: sources only; it belongs in campaign.toml`,
+		`x/more/b.toml:2: source "J0127+4811", name: found "J0127+4811", already used at x/campaign.toml:34;`,
+		`x/more/c.toml:2: source.name: found broken TOML`,
+		`x/more/d.toml:1: format: found 3; accepted: 1`,
+		`x/more/e.toml:6: source "Two", receivers: found a key that is not known here`,
+	}
+	fault := "settle_s = 15"
+	for name, c := range map[string]struct {
+		main string
+		want []string
+	}{
+		"sound main":  {with, included},
+		"faulty main": {strings.Replace(with, fault, "settle_s = -1", 1), append([]string{`x/campaign.toml:19: site "Tern Moor", settle_s: found -1;`}, included...)},
+		// Nothing is known of the sources and receivers in it, so nothing may be said about them.
+		"broken main": {strings.Replace(with, fault, "settle_s = 15 s", 1), append([]string{`x/campaign.toml:19: site: found broken TOML`}, slices.Delete(slices.Clone(included), 2, 3)...)},
+	} {
+		fsys[CampaignFile] = &fstest.MapFile{Data: []byte(c.main)}
+		_, err := LoadFS(fsys, "x")
+		var got Complaints
+		if !errors.As(err, &got) || len(got) != len(c.want) {
+			t.Errorf("%s: want %d complaints, got:\n%v", name, len(c.want), err)
+			continue
+		}
+		for i := range got {
+			if !strings.HasPrefix(got[i].Error(), c.want[i]) {
+				t.Errorf("%s: %v\nwant %s", name, got[i], c.want[i])
+			}
+		}
 	}
 }
