@@ -235,7 +235,9 @@ func computedFrom(s Sheet) block {
 	add("session", fmt.Sprintf("%s at %s", s.Session.Name, s.Site.Name))
 	add("made", fmt.Sprintf("%s UTC by tallystick %s, %s", minute(s.MadeAt), s.Version, choose(s.Saved, "from the plan saved with the campaign", "planned for this sheet and not saved")))
 	add("worth", worthText(s)+fmt.Sprintf("; slot ends on a grid of %d min", s.GridMin))
-	add("left out", fmt.Sprintf("%s of a source with a receiver got no slot; `tallystick plan` says why", count(len(s.LeftOut), "pairing")))
+	if n := len(s.LeftOut); n > 0 {
+		add("left out", fmt.Sprintf("%s of a source with a receiver got no slot; `tallystick plan` says why", count(n, "pairing")))
+	}
 	return b
 }
 
@@ -276,6 +278,8 @@ func seconds(s int) string {
 	switch {
 	case s < 60:
 		return fmt.Sprintf("%d s", s)
+	case s >= 3600:
+		return fmt.Sprintf("%d h %d min", s/3600, s/60%60)
 	case s%60 == 0:
 		return fmt.Sprintf("%d min", s/60)
 	}
