@@ -47,7 +47,7 @@ const (
 func (l *loader) aims(source *table, s *Source) []Aim {
 	list := source.tables("aim")
 	if len(list) == 0 && source.good("aim") {
-		source.complain("aim", "no aim", "at least one [[source.aim]]: without a reason a source is never observed", "")
+		source.lack("no aim", "at least one [[source.aim]]: without a reason a source is never observed", "aim")
 	}
 	aims := make([]Aim, len(list))
 	for i, t := range list {
@@ -139,15 +139,21 @@ func (t *table) ramp(everyDays float64) *Ramp {
 	return ramp
 }
 
+// without says that a key is truly missing: neither at fault nor misspelt.
+func (t *table) without(key string) bool {
+	_, misspelt := t.meantFor(key)
+	return !t.has(key) && !misspelt
+}
+
 func (t *table) needsOrbit(source *table, s *Source) {
-	if s.Orbit == nil && source.good("orbit") {
+	if s.Orbit == nil && source.without("orbit") {
 		t.complain("kind", "an aim that needs an orbit", "it only in a source with [source.orbit]", "")
 	}
 }
 
 // needsSpinError refuses to watch over a pulse count whose error is not known: it would look safe for ever.
 func (t *table) needsSpinError(source *table, s *Source) {
-	if (s.Spin == nil || s.Spin.SigmaFrequencyHz == 0) && source.good("spin") {
+	if s.Spin == nil && source.without("spin") || s.Spin != nil && s.Spin.SigmaFrequencyHz == 0 && source.good("spin") {
 		t.complain("kind", "an aim that needs the error of the spin frequency", "it only in a source whose spin has sigma_frequency_hz above 0", "")
 	}
 }
@@ -170,7 +176,7 @@ func (t *table) fillMinutes(a *Aim, aims []Aim, s *Source) {
 			}
 		}
 	}
-	t.complain("minutes", "neither minutes nor toa_us", "one of them, here or in another aim of the source", t.misspelt("minutes"))
+	t.lack("neither minutes nor toa_us", "one of them, here or in another aim of the source", "minutes", "toa_us")
 }
 
 // finishAim checks what concerns several keys and refuses those of other kinds.
@@ -200,13 +206,13 @@ func (t *table) reachable(a *Aim, source *table, s *Source) {
 		return
 	}
 	var missing []string
-	if s.Spin == nil && source.good("spin") {
+	if s.Spin == nil && source.without("spin") {
 		missing = append(missing, "spin")
 	}
-	if s.Flux == nil && source.good("flux") {
+	if s.Flux == nil && source.without("flux") {
 		missing = append(missing, "flux")
 	}
-	if s.WidthMs == 0 && source.good("width_ms") {
+	if s.WidthMs == 0 && source.without("width_ms") {
 		missing = append(missing, "width_ms")
 	}
 	if len(missing) > 0 {

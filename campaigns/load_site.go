@@ -12,7 +12,8 @@ import (
 func (l *loader) readSites(top *table) {
 	list := top.tables("site")
 	if len(list) == 0 && top.good("site") {
-		top.complain("site", "no sites", "at least one [[site]]", "")
+		top.lack("no sites", "at least one [[site]]", "site")
+		l.unsure["site"] = true
 	}
 	for _, t := range list {
 		s := t.site()
@@ -110,7 +111,8 @@ func (t *table) horizon(key string) [][2]float64 {
 func (l *loader) readReceivers(top *table) {
 	list := top.tables("receiver")
 	if len(list) == 0 && top.good("receiver") {
-		top.complain("receiver", "no receivers", "at least one [[receiver]]", "")
+		top.lack("no receivers", "at least one [[receiver]]", "receiver")
+		l.unsure["receiver"] = true
 	}
 	for _, t := range list {
 		r := Receiver{

@@ -130,9 +130,9 @@ func (t *table) epochOfOrbit(o *Orbit) {
 	case node && periastron:
 		t.complain("periastron_mjd", "both epochs", accepted, "")
 	case !node && !periastron:
-		t.complain("ascending_node_mjd", "no epoch", accepted, t.misspelt("ascending_node_mjd"))
+		t.lack("no epoch", accepted, "ascending_node_mjd", "periastron_mjd")
 	case (periastron || o.Eccentricity > 0) && !t.has("periastron_deg"):
-		t.complain("periastron_deg", "nothing", "a number from -360 to 360: an eccentric orbit and one counted from periastron need it", "")
+		t.lack("nothing", "a number from -360 to 360: an eccentric orbit and one counted from periastron need it", "periastron_deg")
 	}
 }
 

@@ -29,6 +29,14 @@ type table struct {
 	keys  map[string]any
 	known []string
 	bad   map[string]bool // keys that were complained about
+	lacks []lack
+}
+
+// A lack is a key that is needed and missing. It is complained about only when done has not found a key
+// that was meant for it: one slip is one complaint.
+type lack struct {
+	keys            []string // any of them would do
+	found, accepted string
 }
 
 func newTable(doc *document, place, label string, keys map[string]any) *table {
@@ -76,51 +84,75 @@ func (t *table) has(key string) bool {
 	return ok
 }
 
-// ask returns the value of a key. When it is missing although it is needed, that is a complaint.
+// lack notes that at least one of the keys is needed.
+func (t *table) lack(found, accepted string, keys ...string) {
+	for _, key := range keys {
+		t.bad[key] = true
+	}
+	t.lacks = append(t.lacks, lack{keys, found, accepted})
+}
+
+// ask returns the value of a key, if it is there.
 func (t *table) ask(key string, needed bool, accepted string) (any, bool) {
 	t.known = append(t.known, key)
 	v, ok := t.keys[key]
 	if !ok && needed {
-		t.complain(key, "nothing", accepted, t.misspelt(key))
+		t.lack("nothing", accepted, key)
 	}
 	return v, ok
 }
 
-// misspelt finds the unknown key of the table that could have been meant for the one that is missing.
-func (t *table) misspelt(key string) string {
-	for _, k := range nearest(key, sortedKeys(t.keys), 1) {
+// meantFor finds the unknown key of the table that could have been meant for one that is missing.
+func (t *table) meantFor(key string) (string, bool) {
+	var unknown []string
+	for _, k := range sortedKeys(t.keys) {
 		if !slices.Contains(t.known, k) {
-			return fmt.Sprintf("is %q meant for it?", k)
+			unknown = append(unknown, k)
 		}
 	}
-	return ""
+	near := nearest(key, unknown, 1)
+	return strings.Join(near, ""), len(near) > 0
 }
 
-// done complains about every key that was not asked for. The reason, if given, may know better than
-// that the key is unknown.
+// done complains about every key that was not asked for, and about those that are missing. The reason,
+// if given, may know better than that a key is unknown.
 func (t *table) done(reason func(key string) (found, accepted string, ok bool)) {
-	for _, key := range sortedKeys(t.keys) {
-		if slices.Contains(t.known, key) {
-			continue
-		}
-		if reason != nil {
-			if found, accepted, ok := reason(key); ok {
-				t.complain(key, found, accepted, "")
-				continue
+	meant := map[string]string{} // the missing key that an unknown one was meant for
+	for _, l := range t.lacks {
+		explained := false
+		for _, key := range l.keys {
+			if unknown, ok := t.meantFor(key); ok && meant[unknown] == "" {
+				meant[unknown], explained = key, true
+				break
 			}
 		}
-		var free []string // a key that is there already was not meant
-		for _, k := range t.known {
-			if !t.has(k) {
-				free = append(free, k)
-			}
+		if !explained {
+			t.complain(l.keys[0], l.found, l.accepted, "")
 		}
-		hint := didYouMean(key, free)
-		if there := nearest(key, t.known, 1); hint == "" && len(there) > 0 {
-			hint = fmt.Sprintf("%q is there already", there[0])
-		}
-		t.complain(key, "a key that is not known here", "one of the keys "+strings.Join(t.known, ", "), hint)
 	}
+	for _, key := range sortedKeys(t.keys) {
+		if !slices.Contains(t.known, key) {
+			t.unknown(key, meant[key], reason)
+		}
+	}
+}
+
+func (t *table) unknown(key, meant string, reason func(key string) (found, accepted string, ok bool)) {
+	if reason != nil && meant == "" {
+		if found, accepted, ok := reason(key); ok {
+			t.complain(key, found, accepted, "")
+			return
+		}
+	}
+	var hint string
+	if near := nearest(key, t.known, 1); meant != "" {
+		hint = fmt.Sprintf("did you mean %q?", meant)
+	} else if len(near) > 0 && t.has(near[0]) {
+		hint = fmt.Sprintf("%q is there already", near[0])
+	} else {
+		hint = didYouMean(key, t.known)
+	}
+	t.complain(key, "a key that is not known here", "one of the keys "+strings.Join(t.known, ", "), hint)
 }
 
 // bounds are the ends between which a number must lie, and whether it may lie on them.
@@ -166,7 +198,7 @@ func (t *table) readNumber(key string, b bounds, needed bool, otherwise float64)
 	v, ok := t.ask(key, false, "")
 	if !ok {
 		if needed {
-			t.complain(key, "nothing", "a number "+b.String(), t.misspelt(key))
+			t.lack("nothing", "a number "+b.String(), key)
 		}
 		return otherwise
 	}
