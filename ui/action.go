@@ -265,9 +265,12 @@ func (m *model) goBack() tea.Cmd {
 	w := &m.world
 	switch {
 	case w.work != nil:
-		w.work.cancel()
-		w.work = nil
+		first := w.work.first
+		m.stopPlanning()
 		m.tell("planning stopped; the plan is as it was")
+		if first {
+			m.tell("planning stopped: this is the best plan so far; R goes on")
+		}
 	case w.desk.held != nil:
 		m.tell("taken back: %s", w.desk.letGo())
 	default:

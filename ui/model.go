@@ -167,8 +167,8 @@ func (m *model) key(k tea.KeyMsg) tea.Cmd {
 		}
 		return nil
 	}
-	if c.verb != undoEdit && c.verb != redoEdit {
-		m.world.say = saying{}
+	if c.group == moving || c.group == editing {
+		m.world.say = saying{} // it has been read; help and the like leave it alone
 	}
 	if c.verb == openChosen {
 		m.openReader()
@@ -255,7 +255,7 @@ func (m *model) receive(msg tea.Msg) tea.Cmd {
 		return m.receivePrepared(msg)
 	case progressMsg:
 		if m.world.work == msg.work {
-			msg.work.reached = msg.result
+			m.receiveProgress(msg)
 		}
 		return listenCmd(msg.work)
 	case plannedMsg:
@@ -356,7 +356,7 @@ func (m *model) startPlanning(first bool) tea.Cmd {
 	d := m.world.desk
 	m.stopPlanning()
 	ctx, cancel := context.WithCancel(context.Background())
-	work := &planning{desk: d, edition: d.edition, cancel: cancel, reports: make(chan sched.Result, 4)}
+	work := &planning{desk: d, edition: d.edition, first: first, cancel: cancel, reports: make(chan sched.Result, 4)}
 	m.world.work = work
 	p := d.preparedWith(d.state.bars).Problem
 	from := 0
@@ -382,6 +382,22 @@ func (m *model) stopStalePlanning() tea.Cmd {
 	return nil
 }
 
+// receiveProgress shows how far planning has come. A session's first plan is shown as it grows, until
+// somebody edits it.
+func (m *model) receiveProgress(msg progressMsg) {
+	msg.work.reached = msg.result
+	d := msg.work.desk
+	if !msg.work.first || d.edition != msg.work.edition || len(msg.result.Plan.Slots) == 0 {
+		return
+	}
+	d.state.plan = msg.result.Plan.Clone()
+	d.saved = d.state
+	at := d.minute
+	d.changed()
+	d.goTo(at)
+	msg.work.edition = d.edition
+}
+
 func (m *model) receivePlanned(msg plannedMsg) {
 	w := &m.world
 	if w.work != msg.work {
@@ -402,7 +418,7 @@ func (m *model) receivePlanned(msg plannedMsg) {
 	if msg.first {
 		d.state, d.saved = to, to
 		d.changed()
-		d.choose(0)
+		d.choose(d.chosen)
 		if w.say.text == "" {
 			m.tell("planned %s; ? shows the keys", count(len(to.plan.Slots), "slot"))
 		}
@@ -432,7 +448,7 @@ func (m *model) goToSession(name string) tea.Cmd {
 	if w.desk.prepared == nil {
 		return prepareCmd(w.folder, s, w.now)
 	}
-	if w.desk.planned == nil && !w.desk.onDisk {
+	if d := w.desk; d.planned == nil && !d.onDisk && len(d.past) == 0 {
 		return m.startPlanning(true)
 	}
 	m.offerDraft()

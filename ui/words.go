@@ -93,13 +93,6 @@ func seconds(s int) string {
 	return fmt.Sprintf("%d min %d s", s/60, s%60)
 }
 
-func minutes(n int) string {
-	if n == 1 {
-		return "1 minute"
-	}
-	return fmt.Sprintf("%d minutes", n)
-}
-
 // count writes a number of things: "1 slot", "3 slots".
 func count(n int, thing string) string {
 	if n == 1 {

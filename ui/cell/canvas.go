@@ -124,10 +124,15 @@ func (c *Canvas) String(s *theme.Styles) string {
 		if y > c.bounds.Min.Y {
 			b.WriteByte('\n')
 		}
-		open := ""
+		open, ink := "", theme.Plain
 		for x := c.bounds.Min.X; x < c.bounds.Max.X; x++ {
 			o := c.all.cells[y*c.all.w+x]
 			if o.tail {
+				continue
+			}
+			blank := o.text == "" || o.text == " "
+			if blank && !s.Paints(ink) && !s.Paints(o.ink) {
+				b.WriteByte(' ') // looks the same in any ink: no need to change
 				continue
 			}
 			if want := s.Open(o.ink); want != open {
@@ -135,7 +140,7 @@ func (c *Canvas) String(s *theme.Styles) string {
 					b.WriteString(theme.Close)
 				}
 				b.WriteString(want)
-				open = want
+				open, ink = want, o.ink
 			}
 			if o.text == "" {
 				b.WriteByte(' ')

@@ -66,6 +66,7 @@ type Styles struct {
 	Glyphs Glyphs
 	ASCII  bool
 	open   [inks]string
+	paints [inks]bool
 }
 
 // New builds the styles for what a renderer knows of its terminal: how many colours, and whether its
@@ -76,13 +77,18 @@ func New(r *lipgloss.Renderer, ascii bool) Styles {
 		s.Glyphs = typed
 	}
 	for i := range palette {
-		s.open[i] = sequence(palette[i], r.ColorProfile(), r.HasDarkBackground())
+		a := palette[i]
+		s.open[i] = sequence(a, r.ColorProfile(), r.HasDarkBackground())
+		s.paints[i] = a.onDark != "" || a.reverse || a.reverseOnlyBare
 	}
 	return s
 }
 
 // Open returns the sequence that begins an ink, "" for plain text.
 func (s *Styles) Open(i Ink) string { return s.open[i] }
+
+// Paints reports whether an ink is seen on a blank.
+func (s *Styles) Paints(i Ink) bool { return s.paints[i] }
 
 // Close is the sequence that ends any ink.
 const Close = "\x1b[0m"
