@@ -46,6 +46,9 @@ func drawDegrees(c *cell.Canvas, s scale) {
 	}
 }
 
+// dotEvery is how many columns lie between the dots of another source's curve.
+const dotEvery = 3
+
 // A crowd of curves is drawn only about the slots they belong to.
 const (
 	crowd       = 6
@@ -97,7 +100,7 @@ func drawBackdrop(w *world, c *cell.Canvas, g *theme.Glyphs, a axis, h int) {
 }
 
 func drawOther(c *cell.Canvas, g *theme.Glyphs, a axis, s scale, t *campaigns.Track, from, to int) {
-	for x := a.left; x < a.left+a.columns; x += 2 {
+	for x := a.left; x < a.left+a.columns; x += dotEvery {
 		m := a.minute(x)
 		if m < from || m > to {
 			continue

@@ -313,10 +313,14 @@ func (r *rows) steer(v verb, n, page int) bool {
 	return true
 }
 
-// show scrolls so that the cursor is seen in a window of h out of n rows.
+// show scrolls so that the cursor is seen in a window of h out of n rows. It scrolls by half a window,
+// so that most keys leave most rows where they are.
 func (r *rows) show(n, h int) {
 	r.at = min(max(r.at, 0), max(n-1, 0))
-	r.top = min(max(min(r.top, r.at), r.at-h+1, 0), max(n-h, 0))
+	if r.at < r.top || r.at >= r.top+h {
+		r.top = r.at - h/2
+	}
+	r.top = max(min(r.top, n-h), 0)
 }
 
 // draw writes row i, if it is in sight.

@@ -7,6 +7,8 @@ import (
 
 	"github.com/charmbracelet/x/ansi"
 	"github.com/muesli/termenv"
+
+	"example.org/tallystick/campaigns"
 )
 
 func TestGoldenScreens(t *testing.T) {
@@ -161,4 +163,32 @@ func TestFaultKeepsTheWork(t *testing.T) {
 	}
 	again := open(t, h.cfg.Folder)
 	again.shows("Unsaved work from before")
+}
+
+// A key on a slow line: what has to be sent is the lines that changed.
+func TestFewBytesForAKey(t *testing.T) {
+	f, err := campaigns.OpenDemo()
+	if err != nil {
+		t.Fatal(err)
+	}
+	h := start(t, f, func(c *Config) { c.Now = nil })
+	h.st = styles(termenv.ANSI256, false)
+	was := strings.Split(h.View(), "\n")
+	total, keys := 0, 0
+	for range 30 {
+		h.keys("down")
+		is := strings.Split(h.View(), "\n")
+		for i := range is {
+			if is[i] != was[i] {
+				total += len(is[i]) + 4
+			}
+		}
+		was = is
+		keys++
+	}
+	if mean := total / keys; mean > 2048 {
+		t.Errorf("%d bytes a key at 80 by 24, wanted 2048 at most", mean)
+	} else {
+		t.Logf("%d bytes a key", mean)
+	}
 }

@@ -91,7 +91,7 @@ func (s *Styles) Open(i Ink) string { return s.open[i] }
 func (s *Styles) Paints(i Ink) bool { return s.paints[i] }
 
 // Close is the sequence that ends any ink.
-const Close = "\x1b[0m"
+const Close = "\x1b[m"
 
 func sequence(a attributes, p termenv.Profile, dark bool) string {
 	fg, fg16, bg := a.dark, a.dark16, a.onDark
