@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"errors"
 	"fmt"
+	"hash/maphash"
 	"io"
 	"io/fs"
 	"os"
@@ -29,6 +30,9 @@ type Folder struct {
 	fsys  fs.FS    // where they are
 	store store
 	plans map[string]*knownPlan // by session
+
+	// What was hashed is what Logbook was made of: reading it anew costs little while nobody else writes.
+	hashed *maphash.Hash
 }
 
 // A store keeps the files that the program writes.
@@ -106,14 +110,24 @@ func (f *Folder) Now() (now time.Time, fixed bool) {
 	return time.Time{}, false
 }
 
-// readLogbook reads the logbook anew and returns its text. No logbook is an empty one.
+// readLogbook reads the logbook, anew when it has changed, and returns its text. No logbook is an empty one.
 func (f *Folder) readLogbook() (string, error) {
 	data, err := f.store.read(LogbookFile)
 	if err != nil && !errors.Is(err, fs.ErrNotExist) {
 		return "", fmt.Errorf("%s cannot be read: %w", f.path(LogbookFile), reason(err))
 	}
+	if f.hashed != nil {
+		var now maphash.Hash
+		now.SetSeed(f.hashed.Seed())
+		now.Write(data)
+		if now.Sum64() == f.hashed.Sum64() {
+			return string(data), nil
+		}
+	}
 	text := string(data)
 	f.Logbook, f.Damage = parseLogbook(text, f.path(LogbookFile))
+	f.hashed = new(maphash.Hash)
+	f.hashed.Write(data)
 	return text, nil
 }
 
@@ -144,10 +158,17 @@ func (f *Folder) strangers() []string {
 			known[n] = true
 		}
 		counts := map[string]int{}
+		last := "" // the one before it was known
 		for i := range f.Logbook.Entries {
-			if n := k.of(&f.Logbook.Entries[i]); !known[n] {
-				counts[n]++
+			n := k.of(&f.Logbook.Entries[i])
+			if n == last {
+				continue
 			}
+			if !known[n] {
+				counts[n]++
+				continue
+			}
+			last = n
 		}
 		var unknown []string
 		for n := range counts {
@@ -239,8 +260,9 @@ func (f *Folder) saved(name string, save func() error) error {
 }
 
 // AppendLog adds entries to the logbook. When it returns without an error they are on the disk. The
-// logbook is read again, so Folder.Logbook then also has what other programs have added. A torn end
-// that an earlier save left is first set aside in a file beside the logbook.
+// logbook is read again, so Folder.Logbook then also has what other programs have added; it is a new
+// one, and whoever holds the old one keeps that as it was. A torn end that an earlier save left is first
+// set aside in a file beside the logbook.
 func (f *Folder) AppendLog(entries []Entry) error {
 	for i, e := range entries {
 		if err := e.Check(); err != nil {
@@ -273,8 +295,12 @@ func (f *Folder) AppendLog(entries []Entry) error {
 		if torn != "" {
 			f.Notices = append(f.Notices, fmt.Sprintf("the torn line at the end of %s was set aside in %s", f.path(LogbookFile), f.path(tornFile)))
 		}
-		f.Logbook.Torn = ""
-		f.Logbook.Entries = append(f.Logbook.Entries, added...)
+		if f.hashed.Write(lines); torn != "" {
+			f.hashed = nil
+		}
+		book := *f.Logbook
+		book.Torn, book.Entries = "", append(book.Entries, added...)
+		f.Logbook = &book
 		return nil
 	})
 }
