@@ -9,6 +9,7 @@ import (
 	"github.com/muesli/termenv"
 
 	"example.org/tallystick/campaigns"
+	"example.org/tallystick/sched"
 )
 
 func TestGoldenScreens(t *testing.T) {
@@ -67,8 +68,8 @@ func TestDialogsAreExactAtEverySize(t *testing.T) {
 		h.size(80, 24)
 		h.keys("esc", "esc", "1")
 		h.keys(open...)
-		for w := 1; w <= 160; w += 1 + w/9 {
-			for height := 1; height <= 60; height += 1 + height/9 {
+		for w := 1; w <= 160; w += 1 + w/5 {
+			for height := 1; height <= 60; height += 1 + height/5 {
 				h.size(w, height)
 				h.exact()
 			}
@@ -171,7 +172,17 @@ func TestFewBytesForAKey(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	h := start(t, f, func(c *Config) { c.Now = nil })
+	h := start(t, openCampaign(t))
+	session, err := f.Campaign.Session("next", evening)
+	if err != nil {
+		t.Fatal(err)
+	}
+	p, err := campaigns.Prepare(f.Campaign, f.Logbook, session, campaigns.PrepareOptions{At: evening})
+	if err != nil {
+		t.Fatal(err)
+	}
+	// The plan that is quickest to make will do.
+	h.world.desk = &desk{session: session, prepared: p, state: snapshot{plan: sched.Dispatch(p.Problem)}}
 	h.st = styles(termenv.ANSI256, false)
 	was := strings.Split(h.View(), "\n")
 	total, keys := 0, 0
