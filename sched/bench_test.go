@@ -14,6 +14,9 @@ func benchmarkSolve(b *testing.B, in instance, o Options) {
 		r, _ = Solve(context.Background(), p, o)
 	}
 	b.ReportMetric(float64(r.Worth)/float64(dispatched), "x-dispatched")
+	if r.HasCeiling {
+		b.ReportMetric(100*(1-float64(r.Worth)/float64(r.Ceiling)), "%-below-ceiling")
+	}
 }
 
 func BenchmarkFirstPlanDemo(b *testing.B)     { benchmarkSolve(b, demo, Options{Rounds: -1}) }

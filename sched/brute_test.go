@@ -90,9 +90,9 @@ func tiny(seed uint64) *Problem {
 }
 
 // The search keeps one path for each state, so it may miss the best plan where slews are as wild as here.
-// Every plan is compared; two in a hundred may fall short, none by a third.
+// Every plan is compared; three of them may fall short, none by a third.
 func TestSolveEqualsBruteForce(t *testing.T) {
-	const problems = 600
+	const problems = 150
 	short := 0
 	for seed := range uint64(problems) {
 		p := tiny(seed)
@@ -111,7 +111,7 @@ func TestSolveEqualsBruteForce(t *testing.T) {
 			short++
 		}
 	}
-	if short > problems/50 {
+	if short > 3 {
 		t.Errorf("%d of %d plans fall short of the best", short, problems)
 	}
 }

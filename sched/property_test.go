@@ -195,7 +195,7 @@ func TestWorthNeverFallsWhenASlotGrows(t *testing.T) {
 }
 
 func TestProblemReadsBack(t *testing.T) {
-	p := generate(medium.with(5))
+	p := generate(small.with(5))
 	p.Pins = Dispatch(p).Slots[:2]
 	text, err := json.Marshal(p)
 	if err != nil {
@@ -215,7 +215,7 @@ func TestProblemReadsBack(t *testing.T) {
 }
 
 func TestSamePlanWithAnyWorkers(t *testing.T) {
-	p := generate(medium.with(8))
+	p := generate(small.with(8))
 	a, b := solve(t, p, Options{Rounds: 3}), solve(t, p, Options{Rounds: 3, Workers: 4})
 	if !reflect.DeepEqual(a, b) {
 		t.Error("the plan depends on the number of workers")
@@ -224,7 +224,7 @@ func TestSamePlanWithAnyWorkers(t *testing.T) {
 
 func TestWarmPlanIsNeverLost(t *testing.T) {
 	p := generate(medium.with(9))
-	good := solve(t, p, Options{Rounds: 6})
+	good := solve(t, p, Options{Rounds: 1})
 	again := solve(t, p, Options{Rounds: -1, Warm: &good.Plan})
 	if again.Worth < good.Worth {
 		t.Errorf("worth %v from a plan of %v", again.Worth, good.Worth)

@@ -35,6 +35,7 @@ func (l *lane) start(slots []Slot, value Micro) {
 
 // fromNothing plans around the pins, at a share of the prices.
 func (l *lane) fromNothing(scale float64) []Slot {
+	l.thorough = false
 	for j, price := range l.prices {
 		l.adjust[j] = -Micro(float64(price) * scale)
 	}
@@ -130,10 +131,20 @@ func (l *lane) refill(slots []Slot, a, b int) ([]Slot, bool) {
 }
 
 // movesPerRound is how many stretches a lane re-plans in a round.
-const movesPerRound = 25
+const movesPerRound = 15
 
-// replan makes a round of moves. The hotter, the more worth it gives up to get out of a dead end.
-func (l *lane) replan(heat float64) {
+// replan makes a round of moves. The hotter, the more worth it gives up to get out of a dead end. A lane that
+// starts afresh first makes a plan from nothing at a share of the prices, and goes on from it if it is better.
+func (l *lane) replan(heat float64, afresh bool, scale float64) {
+	if afresh {
+		slots := l.fromNothing(scale)
+		if v := l.t.value(slots); v > l.value {
+			l.slots, l.value = slots, v
+			if v > l.bestValue {
+				l.best, l.bestValue = slots, v
+			}
+		}
+	}
 	tolerance := Micro(float64(l.t.p.PlanWorth(Plan{Slots: l.slots})) * 0.004 * heat)
 	for range movesPerRound {
 		slots, ok := l.move()

@@ -26,7 +26,7 @@ type Result struct {
 }
 
 const (
-	defaultRounds = 8
+	defaultRounds = 6
 	lanes         = 2 // searches side by side: fixed, so that the number of workers changes nothing
 )
 
@@ -50,7 +50,7 @@ func Solve(ctx context.Context, p *Problem, o Options) (Result, error) {
 	if rounds == 0 {
 		rounds = defaultRounds
 	}
-	for s.rounds < rounds {
+	for s.rounds < rounds && !s.proven() {
 		if err := ctx.Err(); err != nil {
 			return s.result(), err
 		}
@@ -79,10 +79,12 @@ func (p *Problem) checkPinsMeet() error {
 	return nil
 }
 
-// A search holds the best plan so far and the lanes that look for a better one.
+// A search holds the best plan so far, the lanes that look for a better one, and the bound on both. They
+// share what they have found after every round, never within one.
 type search struct {
 	t      *tables
-	prices []Micro
+	prices []Micro  // of jobs: shared by all lanes
+	bound  *bounder // nil if no ceiling can be proved
 	lanes  []*lane
 	best   []Slot
 	value  Micro
@@ -93,6 +95,7 @@ type search struct {
 func newSearch(p *Problem, o Options) *search {
 	t := newTables(p)
 	s := &search{t: t, prices: t.minutePrices(), value: unreachable, notes: map[int]string{}}
+	s.bound = newBounder(t, s.prices)
 	for i := range lanes {
 		s.lanes = append(s.lanes, newLane(t, s.prices, uint64(i)))
 	}
@@ -127,20 +130,33 @@ func (s *search) first() {
 	}
 }
 
-// round lets every lane re-plan for a while, then gives the best plan to the lane that is furthest behind.
+// Steps towards the lowest ceiling in a round. They are made on a coarse grid, where prices are learned
+// faster and serve as well.
+const (
+	stepsPerRound = 4
+	coarseMin     = 3
+)
+
+// round lets every lane re-plan for a while and lowers the ceiling, then gives the best plan to the lane
+// that is furthest behind, and the prices that were learned to all.
 func (s *search) round(workers, rounds int) {
 	heat := 1 - float64(s.rounds+1)/float64(rounds)
-	if workers > 1 {
-		var wg sync.WaitGroup
-		for _, l := range s.lanes {
-			wg.Go(func() { l.replan(heat) })
-		}
-		wg.Wait()
-	} else {
-		for _, l := range s.lanes {
-			l.replan(heat)
-		}
+	s.rounds++
+	var work []func()
+	for i, l := range s.lanes {
+		work = append(work, func() { l.replan(heat, i == 0, freshScales[s.rounds%len(freshScales)]) })
 	}
+	if s.bound != nil {
+		worth := s.t.p.PlanWorth(Plan{Slots: s.best})
+		grid := s.t.p.GridMin * max(1, coarseMin/s.t.p.GridMin)
+		work = append(work, func() {
+			s.bound.learn(stepsPerRound, grid, worth)
+			if s.rounds%3 == 0 || s.rounds == rounds {
+				s.bound.prove()
+			}
+		})
+	}
+	inParallel(workers, work)
 	worst := s.lanes[0]
 	for _, l := range s.lanes {
 		if l.bestValue > s.value {
@@ -151,7 +167,39 @@ func (s *search) round(workers, rounds int) {
 		}
 	}
 	worst.start(s.best, s.value)
-	s.rounds++
+	if s.bound != nil {
+		for j, price := range s.bound.learned {
+			s.prices[j] = Micro(price)
+		}
+	}
+}
+
+// freshScales are the shares of the learned prices at which plans are made anew, one each round.
+var freshScales = []float64{1, 0.97, 0.93}
+
+// inParallel does the work on so many goroutines, or on this one. Each piece works on what is its own.
+func inParallel(workers int, work []func()) {
+	if workers <= 1 {
+		for _, w := range work {
+			w()
+		}
+		return
+	}
+	var wg sync.WaitGroup
+	room := make(chan struct{}, workers)
+	for _, w := range work {
+		room <- struct{}{}
+		wg.Go(func() {
+			defer func() { <-room }()
+			w()
+		})
+	}
+	wg.Wait()
+}
+
+// proven tells whether the best plan reaches the ceiling.
+func (s *search) proven() bool {
+	return s.bound != nil && s.bound.valid && s.t.p.PlanWorth(Plan{Slots: s.best}) >= s.bound.ceiling
 }
 
 func (s *search) result() Result {
@@ -162,7 +210,11 @@ func (s *search) result() Result {
 		}
 	}
 	plan := Plan{Slots: slots}
-	return Result{Plan: plan, Worth: s.t.p.PlanWorth(plan), Rounds: s.rounds}
+	r := Result{Plan: plan, Worth: s.t.p.PlanWorth(plan), Rounds: s.rounds, Proven: s.proven()}
+	if s.bound != nil && s.bound.valid {
+		r.Ceiling, r.HasCeiling = s.bound.ceiling, true
+	}
+	return r
 }
 
 func (s *search) report(o Options) {

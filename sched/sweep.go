@@ -23,6 +23,8 @@ type sweeper struct {
 
 	targets []target // by falling latest start
 	next    int      // index of the slot after the gap among them, or None
+	relaxed bool     // jobs may come again, though not at once
+	grid    int      // ends lie on multiples of this
 	ready   []Micro  // target·wide + minute − from: best value when ready by then
 	parent  []int32  // likewise: the ended state it comes from, or None
 
@@ -40,6 +42,8 @@ type sweeper struct {
 
 	prefix  []int32 // by target: its best ended state so far, or None
 	best    []Micro // by minute: best of all ended states until then
+	second  []Micro // by minute: the best of those with another job than that one's
+	free    int     // the end of the last break
 	spread  int     // the longest setup less the shortest, in minutes; beyond the gap when thorough
 	jobBit  []int32 // by job: its first bit in this gap, or None
 	carried []int32 // by target: ready is filled in up to this minute
@@ -70,8 +74,23 @@ const alwaysThorough = 1000
 // A thorough sweep also follows the states that are behind whatever comes next: the one that is ahead may
 // have spent the job that is wanted then.
 func (s *sweeper) fill(g gap, used []uint64, adjust []Micro, thorough bool) (path []Slot, nextStart int, ok bool) {
-	p := s.t.p
-	to := p.Minutes
+	s.relaxed, s.grid = false, s.t.p.GridMin
+	if !s.enter(g, used, adjust) {
+		return nil, 0, false
+	}
+	if thorough || len(s.targets)*s.wide <= alwaysThorough {
+		s.spread = s.wide
+	}
+	last := s.run(g)
+	if g.next == None {
+		return s.path(last), 0, true
+	}
+	return s.reach(g)
+}
+
+// enter prepares the sweep of a gap; it is false if the gap has no length.
+func (s *sweeper) enter(g gap, used []uint64, adjust []Micro) bool {
+	to := s.t.p.Minutes
 	if g.next != None {
 		to = g.nextEnd
 		if g.fixed {
@@ -80,47 +99,86 @@ func (s *sweeper) fill(g gap, used []uint64, adjust []Micro, thorough bool) (pat
 	}
 	s.from, s.wide = g.prevEnd, to-g.prevEnd+1
 	if s.wide < 1 {
-		return nil, 0, false
+		return false
 	}
 	s.pickTargets(g, to, used, adjust)
-	if thorough || len(s.targets)*s.wide <= alwaysThorough {
-		s.spread = s.wide
-	}
 	s.clear()
+	return true
+}
+
+// run sweeps the gap and returns the best ended state, or None if nothing is better than no slot.
+func (s *sweeper) run(g gap) int32 {
+	p := s.t.p
 	s.leaveStart(g)
 	b := int(s.t.after[s.from])
+	to := s.from + s.wide - 1
 	bestEnd, bestValue := int32(None), Micro(0)
-	running := unreachable
+	running, runningJob, other := unreachable, None, unreachable
+	s.free = s.from
 	for e := s.from; e <= to; e++ {
-		if e%p.GridMin == 0 {
-			ahead := unreachable
-			if e-s.from >= s.spread {
-				ahead = s.best[e-s.from-s.spread]
-			}
+		if e%s.grid == 0 {
+			ahead := s.ahead(e)
 			for l := range s.targets {
 				id, ok := s.endSlot(l, e, ahead)
 				if !ok {
 					continue
 				}
-				v := s.ended[id]
+				v, job := s.ended[id], s.targets[l].job
 				if v > bestValue {
 					bestEnd, bestValue = id, v
 				}
-				running = max(running, v)
-				s.prefix[l] = id
-				s.leave(l, id, e)
+				switch {
+				case v > running && job != runningJob:
+					running, runningJob, other = v, job, running
+				case v > running:
+					running = v
+				case job != runningJob:
+					other = max(other, v)
+				}
+				s.keep(l, id, e, ahead)
 			}
 		}
-		s.best[e-s.from] = running
+		s.best[e-s.from], s.second[e-s.from] = running, other
 		for b < len(p.Breaks) && p.Breaks[b].From == e {
 			s.leaveBreak(g, b, to)
+			s.free = p.Breaks[b].To
 			b++
 		}
 	}
-	if g.next == None {
-		return s.path(bestEnd), 0, true
+	return bestEnd
+}
+
+// ahead returns the value that a state ending at minute e has to exceed: with it some node was left so
+// much earlier that from there one is at any other first. When jobs may come again that has to hold for two
+// jobs, since neither may come again at once; and not across a break, which makes up for a late end.
+func (s *sweeper) ahead(e int) Micro {
+	i := e - s.from - s.spread
+	switch {
+	case i < 0:
+		return unreachable
+	case !s.relaxed:
+		return s.best[i]
+	case i+s.from < s.free:
+		return unreachable
 	}
-	return s.reach(g)
+	return s.second[i]
+}
+
+// keep takes an ended state in and leaves from it.
+func (s *sweeper) keep(l int, id int32, e int, ahead Micro) {
+	v := s.ended[id]
+	q := s.prefix[l]
+	if !s.relaxed {
+		s.prefix[l] = id
+		s.leave(l, id, e)
+		return
+	}
+	if q == None || v > s.ended[q] {
+		s.prefix[l] = id
+	}
+	if v > ahead {
+		s.leave(l, id, e)
+	}
 }
 
 func (s *sweeper) pickTargets(g gap, to int, used []uint64, adjust []Micro) {
@@ -238,7 +296,7 @@ func (s *sweeper) clear() {
 	s.ended, s.came, s.start = grow(s.ended, size), grow(s.came, size), grow(s.start, size)
 	s.set = grow(s.set, size*s.nw)
 	s.prefix, s.carried = grow(s.prefix, n), grow(s.carried, n)
-	s.best = grow(s.best, s.wide)
+	s.best, s.second = grow(s.best, s.wide), grow(s.second, s.wide)
 	for i := range s.ready {
 		s.ready[i] = unreachable
 	}
@@ -343,7 +401,9 @@ func (s *sweeper) endSlot(l, e int, ahead Micro) (id int32, ok bool) {
 	if low > high {
 		return 0, false
 	}
-	if q := s.prefix[l]; q != None {
+	if s.relaxed {
+		ahead = unreachable / 2
+	} else if q := s.prefix[l]; q != None {
 		ahead = max(ahead, s.ended[q])
 	}
 	s.carry(l, high)
@@ -360,7 +420,7 @@ func (s *sweeper) endSlot(l, e int, ahead Micro) (id int32, ok bool) {
 	from := s.parent[l*s.wide+at-s.from]
 	s.ended[i], s.came[i], s.start[i] = best, from, int32(at)
 	set := s.set[i*s.nw : (i+1)*s.nw]
-	if from == None {
+	if from == None || s.relaxed {
 		clear(set)
 	} else {
 		copy(set, s.set[int(from)*s.nw:])

@@ -21,6 +21,7 @@ type tables struct {
 	bonus   []Micro     // by job: what its first slot gains in the search beyond its worth
 	best    []Micro     // by job: the worth of its best slot
 	chosen  []bool      // by job: takes part in the search
+	cropped bool        // jobs or slots were left out that might have been in the best plan
 }
 
 // worthRows holds the worth of a job's slots, end by end.
@@ -132,6 +133,7 @@ func (t *tables) choose() {
 			return most[j]
 		})
 		order = order[:maxSearched]
+		t.cropped = true
 	}
 	for _, j := range order {
 		t.chosen[j] = true
@@ -222,6 +224,7 @@ func (t *tables) layBits() {
 			continue
 		}
 		n := min(t.p.Jobs[j].MaxSlots, maxSlotsSearched)
+		t.cropped = t.cropped || n < t.p.Jobs[j].MaxSlots
 		t.bits[j] = jobBits{first: next, last: next + n - 1}
 		next += n
 	}
@@ -253,6 +256,20 @@ func (t *tables) layChanges() {
 			}
 		}
 	}
+}
+
+// setupSpread returns how much longer the longest setup is than the shortest, in minutes, rounded up: of
+// all departures, places and receivers.
+func (t *tables) setupSpread() int {
+	p := t.p
+	low, high := 1<<30, 0
+	for _, sec := range p.Slew.Sec {
+		low, high = min(low, int(sec)), max(high, int(sec))
+	}
+	for _, r := range p.Receivers {
+		high = max(high, r.ChangeSec)
+	}
+	return ceilMin(max(0, high-low)) + 1
 }
 
 // spend marks one more slot of the job in the set.

@@ -1,0 +1,80 @@
+package sched
+
+import (
+	"context"
+	"math/rand/v2"
+	"testing"
+
+	"pgregory.net/rapid"
+)
+
+// A bound holds at any prices that are not below zero, for every plan there is.
+func TestCeilingIsNeverBelowTheBestPlan(t *testing.T) {
+	for seed := range uint64(150) {
+		p := tiny(seed)
+		best := bruteForce(p)
+		tb := newTables(p)
+		b := newBounder(tb, tb.minutePrices())
+		r := rand.New(rand.NewPCG(seed, 5))
+		for range 4 {
+			if bound := b.bound(p.GridMin); bound < best {
+				t.Fatalf("seed %d: bound %d, best of all plans %d", seed, bound, best)
+			}
+			for j := range b.price {
+				b.price[j] = float64(tb.best[j]) * 1.5 * r.Float64()
+			}
+		}
+		got := solve(t, p, Options{})
+		if !got.HasCeiling || got.Ceiling < best {
+			t.Errorf("seed %d: ceiling %d, best of all plans %d", seed, got.Ceiling, best)
+		}
+		if got.Proven && got.Worth != best {
+			t.Errorf("seed %d: %d said to be proven, best of all plans %d", seed, got.Worth, best)
+		}
+	}
+}
+
+func TestCeilingHoldsForPlansWithPins(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		p := drawProblem(t)
+		r, err := Solve(context.Background(), p, Options{Rounds: 1})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if !r.HasCeiling || r.Worth > r.Ceiling {
+			t.Errorf("worth %v, ceiling %v (%v)", r.Worth, r.Ceiling, r.HasCeiling)
+		}
+		if d := p.PlanWorth(Dispatch(p)); d > r.Ceiling {
+			t.Errorf("a dispatched plan is worth %v, ceiling %v", d, r.Ceiling)
+		}
+	})
+}
+
+// More work never raises the ceiling, and the default effort brings it near.
+func TestCeilingComesNear(t *testing.T) {
+	p := generate(medium.with(3))
+	var last Result
+	_, err := Solve(context.Background(), p, Options{Progress: func(r Result) {
+		if last.HasCeiling && r.Ceiling > last.Ceiling || r.Worth < last.Worth {
+			t.Errorf("round %d: worth %v after %v, ceiling %v after %v", r.Rounds, r.Worth, last.Worth, r.Ceiling, last.Ceiling)
+		}
+		last = r
+	}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if float64(last.Worth) < 0.93*float64(last.Ceiling) {
+		t.Errorf("worth %v, ceiling %v", last.Worth, last.Ceiling)
+	}
+}
+
+// The search plans at most so many slots of one job: where more are allowed its paths bound nothing.
+func TestNoCeilingWhereSlotsWereLeftOut(t *testing.T) {
+	p := generate(small.with(2))
+	p.Jobs[3].MaxSlots = maxSlotsSearched + 1
+	r := solve(t, p, Options{Rounds: 1})
+	judged(t, p, r.Plan, r.Worth)
+	if r.HasCeiling || r.Proven || r.Ceiling != 0 {
+		t.Errorf("ceiling %v, proven %v", r.Ceiling, r.Proven)
+	}
+}
