@@ -128,6 +128,14 @@ func (jb *jobBuilder) term(aim *Aim, t sched.Term) {
 	jb.job.Terms = append(jb.job.Terms, t)
 }
 
+// owes notes what an aim is owed; the greatest debt is what a source that is not due is told by.
+func (jb *jobBuilder) owes(aim *Aim, debt float64) {
+	f := &jb.job.Facts
+	if f.DebtAim == "" || debt > f.Debt {
+		f.Debt, f.DebtAim = debt, aim.label()
+	}
+}
+
 // scale is priority times need, as worth.
 func (jb *jobBuilder) scale(need float64) sched.Micro {
 	return sched.Micro(math.Round(jb.source.src.Priority * need * float64(sched.Unit)))
@@ -170,6 +178,7 @@ func (jb *jobBuilder) cadence(aim *Aim) {
 	receiver := jb.prepared.Problem.Receivers[jb.receiver].Name
 	for _, need := range account.needs {
 		if need.Receiver == receiver {
+			jb.owes(aim, need.Debt)
 			jb.term(aim, sched.Term{
 				Scale: jb.scale(need.Need / float64(len(aim.Receivers))), Curve: sched.Root,
 				Wanted: wanted, Least: least, Cum: jb.effective(), Why: need.Why,

@@ -133,6 +133,7 @@ func (jb *jobBuilder) connect(aim *Aim) error {
 	if err != nil {
 		return err
 	}
+	jb.owes(aim, c.debt())
 	jb.term(aim, sched.Term{
 		Scale: jb.scale(sched.ConnectNeed(c.predicted, c.limit)), Curve: sched.Root,
 		Wanted: wanted, Least: least, Cum: jb.effective(), Why: c.why(),
@@ -195,6 +196,7 @@ func (jb *jobBuilder) measure(aim *Aim) error {
 	if err != nil {
 		return err
 	}
+	jb.owes(aim, m.debt())
 	need := math.Min(1, m.debt())
 	wanted, least := jb.visit(aim, minutes)
 	gain, best, err := jb.gains(m)

@@ -20,6 +20,7 @@ const mostNeed = 5
 func (jb *jobBuilder) phaseCoverage(aim *Aim) {
 	k := jb.source.knowledge
 	c := jb.books.coverage(k, aim)
+	jb.owes(aim, c.debt())
 	full := binMinutes(aim, k.source.Orbit)
 	jb.visit(aim, aim.Minutes)
 	for i := range c.needs {
@@ -46,6 +47,7 @@ func (jb *jobBuilder) phaseCoverage(aim *Aim) {
 func (jb *jobBuilder) conjunction(aim *Aim) {
 	k, p := jb.source.knowledge, jb.prepared
 	done := jb.books.passages(k, aim)
+	jb.owes(aim, done.debt())
 	if done.missing() <= 0 {
 		return
 	}

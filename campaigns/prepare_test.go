@@ -59,6 +59,11 @@ func TestEverySessionOfTheDemonstrationMakesASoundProblem(t *testing.T) {
 		if err := p.Problem.Check(); err != nil {
 			t.Errorf("%s: %v", p.Session.Name, err)
 		}
+		for _, j := range p.Problem.Jobs {
+			if !j.Must && j.Facts.DebtAim == "" {
+				t.Errorf("%s: %s does not say what it is owed", p.Session.Name, j.Source)
+			}
+		}
 		for _, n := range p.Problem.Nodes {
 			for _, w := range n.Open {
 				if w.OpensBy == "" || w.ClosesBy == "" {
