@@ -209,8 +209,9 @@ func slotLines(s Sheet, r campaigns.SlotRow) block {
 func beforeSlot(r campaigns.SlotRow, first bool, receiverBefore string) string {
 	move := "move " + seconds(r.MoveSec)
 	switch {
-	case first:
-		move = "be at the source when the session begins"
+	case first: // from wherever the telescope is: nobody knows how long that takes
+		by := r.Start.Add(-time.Duration(r.OverheadSec) * time.Second).UTC()
+		return "be at the source by " + by.Format("15:04:05") + ", set-up " + seconds(r.OverheadSec)
 	case r.Receiver != receiverBefore:
 		move = "change to receiver " + r.Receiver + " and move " + seconds(r.MoveSec)
 	}
@@ -242,7 +243,10 @@ func computedFrom(s Sheet) block {
 }
 
 func worthText(s Sheet) string {
-	if share, ok := s.Distance(); ok {
+	switch share, known := s.Distance(); {
+	case known && share == 0:
+		return fmt.Sprintf("%.3f, the most that any plan of this session can be worth", s.Worth)
+	case known:
 		return fmt.Sprintf("%.3f; no plan can be worth more than %.3f, so this one is at most %.2f %% below the best", s.Worth, s.Ceiling, 100*share)
 	}
 	return fmt.Sprintf("%.3f (1 = one observation that is exactly due, of a source of priority 1); no ceiling yet", s.Worth)

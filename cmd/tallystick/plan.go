@@ -24,7 +24,7 @@ func (p *program) planCommand() *cobra.Command {
 	c := &cobra.Command{
 		Use:   "plan",
 		Short: "Plan a session and print the slot list, its worth and what is left out and why",
-		Long: "Pins and bars of the session's saved plan are kept. With --at within the session, what has begun is kept too " +
+		Long: "Pins and bars of the session's saved plan are kept. In a session that is under way, slots of the saved plan that have begun are kept " +
 			"and the rest is planned anew. " + export.Safety,
 		Example: "  tallystick plan\n  tallystick plan --session \"2026-12-03 night\" --effort thorough --save",
 		Args:    noArgs,
@@ -102,18 +102,21 @@ func (p *program) planAnew(d *desk, s *campaigns.Session) (*madePlan, error) {
 		return nil, err
 	}
 	search := sched.Options{Rounds: efforts[p.flags.effort]}
-	deliberate := map[sched.Slot]bool{} // pins of the observer, not of the clock
 	if saved != nil {
 		plan, lost := prepared.Bind(saved)
 		p.sayLost(lost)
-		for _, slot := range plan.Slots {
-			begun := slot.Start < options.FromMin
-			if !slot.Pinned && !begun {
-				continue
+		begun := 0
+		for i, slot := range plan.Slots {
+			if slot.Start < options.FromMin && !slot.Pinned {
+				plan.Slots[i].Pinned = true // nobody can change it any more
+				begun++
 			}
-			deliberate[sched.Slot{Node: slot.Node, Start: slot.Start, End: slot.End}] = slot.Pinned
-			slot.Pinned = true
-			prepared.Problem.Pins = append(prepared.Problem.Pins, slot)
+			if plan.Slots[i].Pinned {
+				prepared.Problem.Pins = append(prepared.Problem.Pins, plan.Slots[i])
+			}
+		}
+		if begun > 0 {
+			p.say("%s begun by %s: kept as saved, and pinned", hasBegun(begun), d.at.UTC().Format("15:04Z"))
 		}
 		search.Warm = &plan
 	}
@@ -121,15 +124,17 @@ func (p *program) planAnew(d *desk, s *campaigns.Session) (*madePlan, error) {
 	if err != nil {
 		return nil, fmt.Errorf("session %s: %w", s.Name, err)
 	}
-	for i, slot := range result.Plan.Slots {
-		if pinned, kept := deliberate[sched.Slot{Node: slot.Node, Start: slot.Start, End: slot.End}]; kept {
-			result.Plan.Slots[i].Pinned = pinned
-		}
-	}
 	return &madePlan{prepared, result, export.New(prepared, result.Plan, export.Origin{
 		MadeAt: d.at, Version: version(), Ceiling: result.Ceiling, HasCeiling: result.HasCeiling,
 		Rounds: result.Rounds, Entries: len(d.Logbook.Entries),
 	})}, nil
+}
+
+func hasBegun(slots int) string {
+	if slots == 1 {
+		return "1 slot has"
+	}
+	return fmt.Sprintf("%d slots have", slots)
 }
 
 func (p *program) sayLost(lost []string) {
@@ -193,9 +198,13 @@ func planText(w io.Writer, made *madePlan) error {
 func planWorth(s export.Sheet) string {
 	var b strings.Builder
 	fmt.Fprintf(&b, "Worth    %.3f in %s\n", s.Worth, count(len(s.Rows), "slot"))
-	if share, ok := s.Distance(); ok {
+	share, known := s.Distance()
+	switch {
+	case known && share == 0:
+		fmt.Fprintf(&b, "Ceiling  %.3f: no plan of this session can be worth more\nDistance none: this is the best plan\n", s.Ceiling)
+	case known:
 		fmt.Fprintf(&b, "Ceiling  %.3f: no plan of this session can be worth more\nDistance %.2f %% at most from the best plan\n", s.Ceiling, 100*share)
-	} else {
+	default:
 		b.WriteString("Ceiling  no ceiling yet\n")
 	}
 	fmt.Fprintf(&b, "Search   %s, slot ends on a grid of %d min\n", count(s.Rounds, "round"), s.GridMin)
