@@ -35,6 +35,9 @@ func drawAxis(w *world, c *cell.Canvas, g *theme.Glyphs, a axis) {
 	d := w.desk
 	cw, _ := c.Size()
 	c.Put(0, 0, " UTC", theme.Muted)
+	if now, ok := w.nowMinute(); ok {
+		c.Put(min(max(a.column(now)-1, a.left), cw-3), 0, "now", theme.Now)
+	}
 	start := d.prepared.Problem.Start.UTC()
 	step := tickStep(a)
 	first := start.Truncate(step)
@@ -46,13 +49,7 @@ func drawAxis(w *world, c *cell.Canvas, g *theme.Glyphs, a axis) {
 		if m < 0 {
 			continue
 		}
-		x := a.column(m)
-		if label := t.Format("15:04"); x+len(label) <= cw {
-			c.Put(x, 0, label, theme.Plain)
-		}
-	}
-	if now, ok := w.nowMinute(); ok {
-		c.Put(min(max(a.column(now)-1, a.left), cw-3), 0, "now", theme.Now)
+		putLabel(c, a.column(m), cw, t.Format("15:04"), theme.Plain)
 	}
 }
 
@@ -83,20 +80,26 @@ func drawSecondAxis(w *world, c *cell.Canvas, a axis) {
 		for m := 0; m <= a.minutes; m++ {
 			k := int(d.prepared.LSTHours[m] * 60 / float64(step))
 			if last >= 0 && k != last {
-				putLabel(c, a.column(m), cw, hours(float64(k*step)/60))
+				putLabel(c, a.column(m), cw, hours(float64(k*step)/60), theme.Muted)
 			}
 			last = k
 		}
 	default:
 		for m := 0; m <= a.minutes; m += step {
-			putLabel(c, a.column(m), cw, w.zone.write(d.prepared, m))
+			putLabel(c, a.column(m), cw, w.zone.write(d.prepared, m), theme.Muted)
 		}
 	}
 }
 
-func putLabel(c *cell.Canvas, x, w int, label string) {
-	if x+len(label) <= w && c.Blank(x, 0) && (x == 0 || c.Blank(x-1, 0)) {
-		c.Put(x, 0, label, theme.Muted)
+// putLabel writes a label where it runs into nothing that is there already.
+func putLabel(c *cell.Canvas, x, w int, label string, ink theme.Ink) {
+	for i := x - 1; i <= x+len(label); i++ {
+		if i >= 0 && i < w && !c.Blank(i, 0) {
+			return
+		}
+	}
+	if x+len(label) <= w {
+		c.Put(x, 0, label, ink)
 	}
 }
 

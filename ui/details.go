@@ -48,7 +48,11 @@ func drawPane(c *cell.Canvas, g *theme.Glyphs, title string, lines []line, w, h 
 	drawLines(in, all, labelWidth(lines))
 	if len(all) > ih && ih > 0 {
 		more := " Enter: all "
-		c.Put(w-len(more)-1, 0, more, theme.Accent)
+		y := 0
+		if beside {
+			y = h - 1
+		}
+		c.Put(w-len(more)-1, y, more, theme.Accent)
 	}
 }
 
@@ -71,7 +75,7 @@ func slotLines(w *world, i int) []line {
 	add("points", theme.Plain, "el %.1f to %.1f, az %.1f to %.1f deg, cable turn %d", row.ElStartDeg, row.ElEndDeg, row.AzStartDeg, row.AzEndDeg, row.Turn)
 	add("expects", theme.Plain, "%s", expects(row.SNR, row.ToaUs)+worthWords(row.Worth, why.Terms))
 	for _, t := range why.Terms {
-		if t.Why != "" {
+		if t.Worth > 0 {
 			add(" ", theme.Muted, "%s for %s: %s", t.Worth, t.Label, t.Why)
 		}
 	}
@@ -112,16 +116,23 @@ func expects(snr, toaUs float64) string {
 	return fmt.Sprintf("S/N %s, TOA error %s us; ", number(snr), number(toaUs))
 }
 
-// worthWords adds a slot's worth up.
+// worthWords adds a slot's worth up, aims of one kind together.
 func worthWords(total float64, terms []sched.TermShare) string {
-	text := fmt.Sprintf("worth %.2f", total)
-	for i, t := range terms {
-		if i == 0 {
-			text += " = "
-		} else {
-			text += " + "
+	var kinds []sched.TermKind
+	sums := map[sched.TermKind]sched.Micro{}
+	for _, t := range terms {
+		if t.Worth > 0 && sums[t.Kind] == 0 {
+			kinds = append(kinds, t.Kind)
 		}
-		text += fmt.Sprintf("%s %s", t.Worth, t.Kind)
+		sums[t.Kind] += t.Worth
+	}
+	text := fmt.Sprintf("worth %.2f", total)
+	for i, k := range kinds {
+		sign := " + "
+		if i == 0 {
+			sign = " = "
+		}
+		text += fmt.Sprintf("%s%s %s", sign, sums[k], k)
 	}
 	return text
 }
