@@ -144,7 +144,7 @@ func (s *search) round(workers, rounds int) {
 	s.rounds++
 	var work []func()
 	for i, l := range s.lanes {
-		work = append(work, func() { l.replan(heat, i == 0, freshScales[s.rounds%len(freshScales)]) })
+		work = append(work, func() { l.replan(heat, true, freshScales[(s.rounds+i*2)%len(freshScales)]) })
 	}
 	if s.bound != nil {
 		worth := s.t.p.PlanWorth(Plan{Slots: s.best})
@@ -175,7 +175,7 @@ func (s *search) round(workers, rounds int) {
 }
 
 // freshScales are the shares of the learned prices at which plans are made anew, one each round.
-var freshScales = []float64{1, 0.97, 0.93}
+var freshScales = []float64{1, 0.97, 0.93, 0.98, 0.95}
 
 // inParallel does the work on so many goroutines, or on this one. Each piece works on what is its own.
 func inParallel(workers int, work []func()) {
