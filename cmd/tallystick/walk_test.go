@@ -136,9 +136,36 @@ func axisSec(distance, perMin, acceleration float64) float64 {
 }
 
 func walkSlew(site campaigns.Site, from, to [2]float64) float64 {
-	return site.SettleSec + math.Max(
-		axisSec(to[0]-from[0], site.SlewDegPerMin[0], site.AccelerationDegPerS2[0]),
-		axisSec(to[1]-from[1], site.SlewDegPerMin[1], site.AccelerationDegPerS2[1]))
+	second := axisSec(to[1]-from[1], site.SlewDegPerMin[1], site.AccelerationDegPerS2[1])
+	if site.Mount == campaigns.Transit { // it only turns in declination, and waits for the rest
+		return site.SettleSec + second
+	}
+	return site.SettleSec + math.Max(second, axisSec(to[0]-from[0], site.SlewDegPerMin[0], site.AccelerationDegPerS2[0]))
+}
+
+// axesOn is where the axes of the mount stand on a source: azimuth, without a jump from near, and
+// elevation, or hour angle and declination. A limit that is broken is told in words, with no regard to the Sun.
+func axesOn(site campaigns.Site, source campaigns.Source, at time.Time, near float64) (axes [2]float64, broken string) {
+	az, el, ha := horizontal(site, source, at)
+	travel, tol := site.HourAngleLimitsDeg, angleTolDeg
+	if site.Mount == campaigns.AltAz {
+		axes, travel = [2]float64{near + apart(az, near), el}, site.AzimuthTravelDeg
+		tol /= math.Cos(rad(el))
+	} else {
+		_, dec := ofDate(source, at)
+		axes = [2]float64{ha, dec}
+		tol /= math.Max(0.01, math.Cos(rad(dec)))
+	}
+	low := math.Max(site.ElevationLimitsDeg[0], maskAt(site.HorizonDeg, az))
+	switch {
+	case el < low-angleTolDeg:
+		broken = fmt.Sprintf("elevation %.2f, lowest allowed %.2f", el, low)
+	case el > site.ElevationLimitsDeg[1]+angleTolDeg:
+		broken = fmt.Sprintf("elevation %.2f, highest allowed %.2f", el, site.ElevationLimitsDeg[1])
+	case axes[0] < travel[0]-tol || axes[0] > travel[1]+tol:
+		broken = fmt.Sprintf("the mount at %.2f, its limits %v", axes[0], travel)
+	}
+	return axes, broken
 }
 
 // A walkedSlot is one line of the CSV.
@@ -196,7 +223,7 @@ func readSlots(t faulter, c *campaigns.Campaign, data []byte) []walkedSlot {
 	return slots
 }
 
-// walk checks every limit of the altazimuth mount and returns how many instants it looked at.
+// walk checks every limit and returns how many instants it looked at.
 func walk(t faulter, site campaigns.Site, session campaigns.Session, receivers []campaigns.Receiver, slots []walkedSlot) (looked int) {
 	t.Helper()
 	seen := map[string]int{}
@@ -242,19 +269,11 @@ func onSource(t faulter, name string, site campaigns.Site, s walkedSlot) (looked
 	mount := s.az1
 	for at := s.start; !at.After(s.end); at = at.Add(10 * time.Second) {
 		looked++
-		az, el, _ := horizontal(site, s.source, at)
-		mount += apart(az, mount) // the mount follows without a jump
+		axes, broken := axesOn(site, s.source, at, mount)
+		mount = axes[0] // the mount follows without a jump
 		when := at.Format("15:04:05")
-		if low := math.Max(site.ElevationLimitsDeg[0], maskAt(site.HorizonDeg, az)); el < low-angleTolDeg {
-			t.Errorf("%s: elevation %.2f at %s, lowest allowed %.2f", name, el, when, low)
-			return looked
-		}
-		if el > site.ElevationLimitsDeg[1]+angleTolDeg {
-			t.Errorf("%s: elevation %.2f at %s, highest allowed %.2f", name, el, when, site.ElevationLimitsDeg[1])
-			return looked
-		}
-		if tol := angleTolDeg / math.Cos(rad(el)); mount < site.AzimuthTravelDeg[0]-tol || mount > site.AzimuthTravelDeg[1]+tol {
-			t.Errorf("%s: mount azimuth %.2f at %s, travel %v", name, mount, when, site.AzimuthTravelDeg)
+		if broken != "" {
+			t.Errorf("%s: %s at %s", name, broken, when)
 			return looked
 		}
 		ra, dec := ofDate(s.source, at)
@@ -280,7 +299,7 @@ func onSource(t faulter, name string, site campaigns.Site, s walkedSlot) (looked
 		if math.Abs(el-wantEl) > angleTolDeg || math.Abs(apart(az, wantAz))*math.Cos(rad(el)) > angleTolDeg {
 			t.Errorf("%s: at its %s az %.3f el %.3f, exported %.3f %.3f", name, what, az, el, wantAz, wantEl)
 		}
-		if math.Abs(gotMount-wantAz)*math.Cos(rad(el)) > angleTolDeg {
+		if site.Mount == campaigns.AltAz && math.Abs(gotMount-wantAz)*math.Cos(rad(el)) > angleTolDeg {
 			t.Errorf("%s: the mount has come to azimuth %.3f at its %s, exported %.3f: a jump of the cable", name, gotMount, what, wantAz)
 		}
 		if d := apart(walkLST(site, at), wantLST*15) / 15; math.Abs(d) > lstTolH {
@@ -319,7 +338,7 @@ func between(t faulter, name string, site campaigns.Site, session campaigns.Sess
 		t.Errorf("%s: begins before the slot before it ends", name)
 	}
 	needs := walkSlew(site, stayedUntil(site, *previous, stays), whereToArrive(site, s, s.start.Add(-setUp)))
-	if leaves.Equal(previous.end) && previous.source.Name == s.source.Name && math.Abs(s.az1-previous.az2) < 180 {
+	if leaves.Equal(previous.end) && previous.source.Name == s.source.Name && (site.Mount != campaigns.AltAz || math.Abs(s.az1-previous.az2) < 180) {
 		needs = 0 // it stays on the source and only changes the receiver
 	}
 	if previous.receiver != s.receiver {
@@ -331,32 +350,28 @@ func between(t faulter, name string, site campaigns.Site, session campaigns.Sess
 	}
 }
 
-// stayedUntil is where the mount is when it has followed the source of a slot beyond its end, until the
-// instant or the source's limits.
+// stayedUntil is where the axes stand when they have followed the source of a slot beyond its end, until
+// the instant or the source's limits.
 func stayedUntil(site campaigns.Site, s walkedSlot, until time.Time) [2]float64 {
-	mount := [2]float64{s.az2, s.el2}
+	axes, _ := axesOn(site, s.source, s.end, s.az2)
 	for at := s.end; !at.After(until); at = at.Add(10 * time.Second) {
-		az, el, _ := horizontal(site, s.source, at)
-		next := mount[0] + apart(az, mount[0])
-		if el < math.Max(site.ElevationLimitsDeg[0], maskAt(site.HorizonDeg, az)) || el > site.ElevationLimitsDeg[1] ||
-			next < site.AzimuthTravelDeg[0] || next > site.AzimuthTravelDeg[1] {
+		next, broken := axesOn(site, s.source, at, axes[0])
+		if broken != "" {
 			break
 		}
-		mount = [2]float64{next, el}
+		axes = next
 	}
-	return mount
+	return axes
 }
 
-// whereToArrive is the mount's place on the source at the instant or, if the source is outside its
+// whereToArrive is where the axes stand on the source at the instant or, if the source is outside its
 // limits then, where the slot begins.
 func whereToArrive(site campaigns.Site, s walkedSlot, at time.Time) [2]float64 {
-	az, el, _ := horizontal(site, s.source, at)
-	mount := s.az1 + apart(az, s.az1)
-	if el < math.Max(site.ElevationLimitsDeg[0], maskAt(site.HorizonDeg, az)) || el > site.ElevationLimitsDeg[1] ||
-		mount < site.AzimuthTravelDeg[0] || mount > site.AzimuthTravelDeg[1] {
-		return [2]float64{s.az1, s.el1}
+	axes, broken := axesOn(site, s.source, at, s.az1)
+	if broken != "" {
+		axes, _ = axesOn(site, s.source, s.start, s.az1)
 	}
-	return [2]float64{mount, el}
+	return axes
 }
 
 // printed runs the command line in this process.
@@ -478,9 +493,15 @@ func randomCampaign(t *rapid.T) string {
 	in := func(name string, low, high float64) float64 {
 		return math.Round(rapid.Float64Range(low, high).Draw(t, name)*1000) / 1000
 	}
+	mount := rapid.SampledFrom([]string{"altaz", "altaz", "equatorial", "transit"}).Draw(t, "mount")
 	low, latitude := in("low", 5, 20), in("latitude", -89, 89)
-	fmt.Fprintf(&b, "format = 1\n[campaign]\nname = \"random\"\n[[site]]\nname = \"A\"\nmount = \"altaz\"\nlatitude_deg = %g\nlongitude_deg = %g\nheight_m = 100\n", latitude, in("longitude", -179, 179))
-	fmt.Fprintf(&b, "elevation_limits_deg = [%g, %g]\nazimuth_travel_deg = [%g, %g]\n", low, in("high", 70, 89.5), in("ccw", -300, -180), in("cw", 180, 300))
+	fmt.Fprintf(&b, "format = 1\n[campaign]\nname = \"random\"\n[[site]]\nname = \"A\"\nmount = %q\nlatitude_deg = %g\nlongitude_deg = %g\nheight_m = 100\n", mount, latitude, in("longitude", -179, 179))
+	fmt.Fprintf(&b, "elevation_limits_deg = [%g, %g]\n", low, in("high", 70, 89.5))
+	if mount == "altaz" {
+		fmt.Fprintf(&b, "azimuth_travel_deg = [%g, %g]\n", in("ccw", -300, -180), in("cw", 180, 300))
+	} else {
+		fmt.Fprintf(&b, "hour_angle_limits_deg = [%g, %g]\n", in("east", -120, -5), in("west", 5, 120))
+	}
 	fmt.Fprintf(&b, "slew_deg_per_min = [%g, %g]\nacceleration_deg_per_s2 = [%g, %g]\nsettle_s = %g\nsun_limit_deg = %g\n", in("v az", 10, 60), in("v el", 5, 40), in("a az", 0.02, 0.5), in("a el", 0.02, 0.5), in("settle", 0, 60), in("sun", 0, 40))
 	fmt.Fprintf(&b, "horizon_deg = [[%g, %g], [%g, %g], [%g, %g]]\n", in("m0", 0, 60), in("e0", 0, 30), in("m1", 90, 200), in("e1", 0, 30), in("m2", 220, 359), in("e2", 0, 30))
 	for _, r := range []string{"L", "S"} {
