@@ -106,7 +106,7 @@ func drawOther(c *cell.Canvas, g *theme.Glyphs, a axis, s scale, t *campaigns.Tr
 			continue
 		}
 		if row, _, ok := s.at(t.ElDeg[m]); ok {
-			c.Put(x, row, g.Other, theme.Muted)
+			c.Put(x, row, g.Other, theme.Plain)
 		}
 	}
 }
@@ -127,7 +127,7 @@ func drawSpan(c *cell.Canvas, a axis, s scale, t *campaigns.Track, from, to int,
 }
 
 func drawLimit(c *cell.Canvas, g *theme.Glyphs, a axis, s scale, t *campaigns.Track) {
-	for x := a.left; x < a.left+a.columns; x++ {
+	for x := a.left; x < a.left+a.columns; x += 2 {
 		if row, _, ok := s.at(t.LimitDeg[a.minute(x)]); ok {
 			c.Put(x, row, g.Limit, theme.Limit)
 		}

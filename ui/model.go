@@ -382,19 +382,18 @@ func (m *model) stopStalePlanning() tea.Cmd {
 	return nil
 }
 
-// receiveProgress shows how far planning has come. A session's first plan is shown as it grows, until
-// somebody edits it.
+// receiveProgress says how far planning has come. A session without a plan shows the first one there
+// is; what is found after that waits until planning has ended, so that the screen stays calm.
 func (m *model) receiveProgress(msg progressMsg) {
 	msg.work.reached = msg.result
 	d := msg.work.desk
-	if !msg.work.first || d.edition != msg.work.edition || len(msg.result.Plan.Slots) == 0 {
+	if !msg.work.first || len(d.state.plan.Slots) > 0 || d.edition != msg.work.edition || len(msg.result.Plan.Slots) == 0 {
 		return
 	}
 	d.state.plan = msg.result.Plan.Clone()
 	d.saved = d.state
-	at := d.minute
 	d.changed()
-	d.goTo(at)
+	d.choose(0)
 	msg.work.edition = d.edition
 }
 

@@ -104,7 +104,7 @@ func (b *bound) holds(p *sched.Problem, plan sched.Plan) bool {
 // planning is a plan being made.
 type planning struct {
 	desk    *desk
-	first   bool // the session's first plan, which is shown while it grows
+	first   bool // the session's first plan, which is no edit
 	edition int
 	cancel  context.CancelFunc
 	reached sched.Result
