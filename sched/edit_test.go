@@ -86,9 +86,10 @@ func TestEveryReasonIsTold(t *testing.T) {
 		}
 	}
 	told(Free, 2, "fits at 19:23–19:30 as things are, and would add 0.42")
-	told(Outranked, 3, "would gain 1.11: 2.23 at 19:01–19:20 displaces A L (1.11)")
-	p.Jobs[3].Terms[0].Scale = Unit
+	told(Outranked, 3, "would gain 1.51: 1.67 at 19:01–19:08 takes 10 min (0.16) from A L")
+	p.Jobs[3].MinMin, p.Jobs[3].Terms[0].Scale = 18, Unit
 	told(Outranked, 3, "would cost 0.00: 1.11 at 19:01–19:20 displaces A L (1.11)")
+	p.Jobs[3].MinMin = 5
 	p.Jobs[3].Facts.Debt, p.Jobs[3].Terms[0].Scale = 0.04, 1000
 	told(NotDue, 3, "not due: debt 0.04 (every 14 d); its best slot is worth 0.00")
 	p.Jobs[3].Terms[0].Scale, p.Jobs[3].Terms[0].Least = Unit, 2500

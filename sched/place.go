@@ -115,3 +115,28 @@ func (h hole) within(node int, s Span, at int) (best placement, away int, ok boo
 	}
 	return best, away, ok
 }
+
+// most returns the placement of most worth in the hole.
+func (h hole) most(job int) (best placement, ok bool) {
+	j := &h.p.Jobs[job]
+	for node := range h.p.Nodes {
+		if h.p.Nodes[node].Job != job {
+			continue
+		}
+		for _, s := range h.rooms(node) {
+			for end := s.To; end >= s.From+j.MinMin; end-- {
+				if !h.leaves(node, end) {
+					continue
+				}
+				start := max(s.From, end-j.MaxMin)
+				if worth := h.p.JobWorth(job, start, end); !ok || worth > best.worth {
+					best, ok = placement{Slot{Node: node, Start: start, End: end}, worth}, true
+				}
+				if start == s.From {
+					break // shorter slots from here on are worth no more
+				}
+			}
+		}
+	}
+	return best, ok
+}

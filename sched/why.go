@@ -1,9 +1,6 @@
 package sched
 
-import (
-	"fmt"
-	"strings"
-)
+import "fmt"
 
 // ReasonKind says why a job has no slot.
 type ReasonKind string
@@ -33,22 +30,21 @@ type Reason struct {
 func LeftOut(p *Problem, plan Plan) []Reason {
 	slots := plan.Sorted().Slots
 	has := make([]bool, len(p.Jobs))
-	worth := make([]Micro, len(slots))
-	for i, s := range slots {
-		job := p.Nodes[s.Node].Job
-		has[job] = true
-		worth[i] = p.JobWorth(job, s.Start, s.End)
+	for _, s := range slots {
+		has[p.Nodes[s.Node].Job] = true
 	}
+	in := newInserter(p, slots)
 	var reasons []Reason
 	for job := range p.Jobs {
 		if !has[job] {
-			reasons = append(reasons, p.whyNot(slots, worth, job))
+			reasons = append(reasons, in.whyNot(job))
 		}
 	}
 	return reasons
 }
 
-func (p *Problem) whyNot(slots []Slot, worth []Micro, job int) Reason {
+func (in *inserter) whyNot(job int) Reason {
+	p := in.p
 	j, f := &p.Jobs[job], p.Jobs[job].Facts
 	longest, later := p.longestOpen(job)
 	reason := func(kind ReasonKind, format string, args ...any) Reason {
@@ -77,7 +73,7 @@ func (p *Problem) whyNot(slots []Slot, worth []Micro, job int) Reason {
 		}
 		return reason(NotDue, "not due: debt %.2f (%s); its best slot is worth %s", f.Debt, f.DebtAim, best)
 	}
-	return p.cheapest(slots, worth, job)
+	return in.reason(job)
 }
 
 // longestOpen returns the job's longest stretch within limits, session and breaks, and the longest that
@@ -151,91 +147,4 @@ func (p *Problem) mostGathered(job int) (share, least float64) {
 		}
 	}
 	return share, least
-}
-
-// mostDisplaced is how many neighbouring slots an insertion may push out while looking for the cheapest.
-const mostDisplaced = 3
-
-// cheapest tries the job in every gap of the plan, with up to mostDisplaced neighbouring slots taken out,
-// and tells what the cheapest way costs.
-func (p *Problem) cheapest(slots []Slot, worth []Micro, job int) Reason {
-	var best placement
-	var way displacement
-	found := false
-	for at := 0; at <= len(slots); at++ {
-		var lost Micro
-		for gone := 0; gone <= mostDisplaced && at+gone <= len(slots); gone++ {
-			if gone > 0 {
-				if slots[at+gone-1].Pinned {
-					break
-				}
-				lost += worth[at+gone-1]
-			}
-			h := holeAt(p, slots, at, gone)
-			if found && lost-p.mostIn(h, job) >= way.cost-best.worth {
-				continue
-			}
-			place, ok := h.most(job)
-			if ok && (!found || lost-place.worth < way.cost-best.worth) {
-				best, way, found = place, displacement{at: at, gone: gone, cost: lost}, true
-			}
-		}
-	}
-	if !found {
-		return Reason{Job: job, Kind: NoRoom, Text: fmt.Sprintf("no room: no gap of %d min within its limits, even with %d slots taken out", p.Jobs[job].MinMin, mostDisplaced)}
-	}
-	span := p.clock(best.slot.Start) + "–" + p.clock(best.slot.End)
-	if way.gone == 0 {
-		return Reason{Job: job, Kind: Free, Text: fmt.Sprintf("fits at %s as things are, and would add %s", span, best.worth)}
-	}
-	names := make([]string, way.gone)
-	for i := range names {
-		names[i] = fmt.Sprintf("%s (%s)", p.nodeName(slots[way.at+i].Node), worth[way.at+i])
-	}
-	verb := "would cost"
-	cost := way.cost - best.worth
-	if cost < 0 {
-		verb, cost = "would gain", -cost
-	}
-	return Reason{Job: job, Kind: Outranked, Text: fmt.Sprintf("%s %s: %s at %s displaces %s", verb, cost, best.worth, span, strings.Join(names, ", "))}
-}
-
-// mostIn bounds what the job can be worth in the hole, without looking at setups.
-func (p *Problem) mostIn(h hole, job int) Micro {
-	from, to := 0, p.Minutes
-	if h.before != nil {
-		from = h.before.End
-	}
-	if h.after != nil {
-		to = h.after.Start
-	}
-	if to-from < p.Jobs[job].MinMin {
-		return 0
-	}
-	return p.JobWorth(job, from, to)
-}
-
-// most returns the placement of most worth in the hole.
-func (h hole) most(job int) (best placement, ok bool) {
-	j := &h.p.Jobs[job]
-	for node := range h.p.Nodes {
-		if h.p.Nodes[node].Job != job {
-			continue
-		}
-		for _, s := range h.rooms(node) {
-			for end := s.To; end >= s.From+j.MinMin; end-- {
-				if !h.leaves(node, end) {
-					continue
-				}
-				start := max(s.From, end-j.MaxMin)
-				if worth := h.p.JobWorth(job, start, end); !ok || worth > best.worth {
-					best, ok = placement{Slot{Node: node, Start: start, End: end}, worth}, true
-				}
-				if start == s.From {
-					break // shorter slots from here on are worth no more
-				}
-			}
-		}
-	}
-	return best, ok
 }

@@ -10,6 +10,9 @@ func (p *Problem) clock(minute int) string {
 	return p.Start.Add(time.Duration(minute) * time.Minute).UTC().Format("15:04")
 }
 
+// span returns a slot's time on source: "19:04–19:31".
+func (p *Problem) span(s Slot) string { return p.clock(s.Start) + "–" + p.clock(s.End) }
+
 // jobName returns source and receiver: "J0101+0101 L".
 func (p *Problem) jobName(job int) string {
 	j := p.Jobs[job]
