@@ -38,7 +38,7 @@ func drawDegrees(c *cell.Canvas, s scale) {
 	}
 	for el := step; el < 90; el += step {
 		if y, _, ok := s.at(float64(el)); ok {
-			c.Put(0, y, fmt.Sprintf("%4d", el), theme.Muted)
+			c.Put(0, y, fmt.Sprintf("%4d", el), theme.Plain)
 		}
 	}
 	if c.Blank(3, 0) {
@@ -91,7 +91,7 @@ func drawCurves(w *world, c *cell.Canvas, g *theme.Glyphs, a axis) {
 // drawBackdrop shades the breaks and draws the present moment and the cursor minute.
 func drawBackdrop(w *world, c *cell.Canvas, g *theme.Glyphs, a axis, h int) {
 	for _, b := range w.desk.prepared.Problem.Breaks {
-		c.Fill(image.Rect(a.column(b.From), 0, a.column(b.To)+1, h), g.Break, theme.Muted)
+		c.Fill(image.Rect(a.column(b.From), 0, a.column(b.To)+1, h), g.Break, theme.Plain)
 	}
 	if now, ok := w.nowMinute(); ok {
 		x := a.column(now)
