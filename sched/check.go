@@ -17,12 +17,12 @@ func (p *Problem) Check() error {
 	if p.GridMin < 1 {
 		fault("grid of %d min: 1 or more accepted", p.GridMin)
 	}
-	if p.OverheadSec < 0 {
-		fault("overhead of %d s: 0 or more accepted", p.OverheadSec)
+	if p.OverheadSec < 0 || p.OverheadSec > maxSec {
+		fault("overhead of %d s: 0 to %d accepted", p.OverheadSec, maxSec)
 	}
 	for i, r := range p.Receivers {
-		if r.ChangeSec < 0 {
-			fault("receiver %d (%s): change of %d s: 0 or more accepted", i, r.Name, r.ChangeSec)
+		if r.ChangeSec < 0 || r.ChangeSec > maxSec {
+			fault("receiver %d (%s): change of %d s: 0 to %d accepted", i, r.Name, r.ChangeSec, maxSec)
 		}
 	}
 	if where, ok := spansInOrder(p.Breaks); !ok {
@@ -39,6 +39,9 @@ func (p *Problem) Check() error {
 
 // maxMinutes is a month: longer than any session, small enough for every sum in 32 bits.
 const maxMinutes = 31 * 24 * 60
+
+// maxSec is a day: longer than any setup.
+const maxSec = 24 * 60 * 60
 
 func (p *Problem) checkSlew(fault func(string, ...any)) {
 	t := p.Slew
@@ -62,6 +65,7 @@ func (p *Problem) checkJob(i int, fault func(string, ...any)) {
 	if j.MaxSlots < 1 {
 		fault("job %d (%s): at most %d slots: 1 or more accepted", i, j.Source, j.MaxSlots)
 	}
+	worth := 0.0
 	for k := range j.Terms {
 		t := &j.Terms[k]
 		switch {
@@ -75,11 +79,16 @@ func (p *Problem) checkJob(i int, fault func(string, ...any)) {
 			fault("job %d (%s), term %d: %d sums: one for each of %d minutes and one more wanted", i, j.Source, k, len(t.Cum), p.Minutes)
 		case !slices.IsSorted(t.Cum) || t.Cum[0] < 0:
 			fault("job %d (%s), term %d: sums that fall or start below zero", i, j.Source, k)
+		default:
+			worth += float64(t.Scale) * t.Credit(0, p.Minutes)
 		}
+	}
+	if worth > float64(maxScale) {
+		fault("job %d (%s): worth up to %.3g units in the session: at most %.3g accepted", i, j.Source, worth/float64(Unit), float64(maxScale/Unit))
 	}
 }
 
-// maxScale is a million units of worth: sums over a session stay far from the ends of 64 bits.
+// maxScale is a million units: sums over a session stay far from the ends of 64 bits.
 const maxScale = 1_000_000 * Unit
 
 func (p *Problem) checkNodes(fault func(string, ...any)) {
@@ -108,8 +117,8 @@ func (p *Problem) checkPins(fault func(string, ...any)) {
 		if s.Node < 0 || s.Node >= len(p.Nodes) {
 			fault("pin %d: node %d of %d", i, s.Node, len(p.Nodes))
 		}
-		if s.End <= s.Start {
-			fault("pin %d: from minute %d to %d: the end comes after the start", i, s.Start, s.End)
+		if s.Start < 0 || s.End <= s.Start || s.End > p.Minutes {
+			fault("pin %d: from minute %d to %d: within the session of %d min, the end after the start", i, s.Start, s.End, p.Minutes)
 		}
 		if i > 0 && p.Pins[i-1].Start > s.Start {
 			fault("pin %d: pins are in time order", i)
