@@ -67,10 +67,7 @@ func tickStep(a axis) time.Duration {
 func drawSecondAxis(w *world, c *cell.Canvas, a axis) {
 	d := w.desk
 	cw, _ := c.Size()
-	name := w.zone.name(d.prepared.Site, d.session.Start)
-	if len(name) > 4 {
-		name = "here"
-	}
+	name := strings.TrimSuffix(w.zone.name(d.prepared.Site, d.session.Start), ":00") // +01:00 is as good as +01
 	c.Put(0, 0, fmt.Sprintf("%4s", name), theme.Muted)
 	step := int(tickStep(a) / time.Minute)
 	switch w.zone {

@@ -115,7 +115,7 @@ var commands = []command{
 
 	bind(insertSlot, editing, slateTitle, "insert", "insert a slot at the cursor minute", "i"),
 	bind(replaceSlot, editing, slateTitle, "replace", "put another source in place of the chosen slot", "r"),
-	bind(dropSlot, editing, slateTitle, "drop", "drop the chosen slot", "x", "delete"),
+	bind(dropSlot, editing, slateTitle, "drop", "drop the chosen slot (planning again may choose it again; b keeps the source out)", "x", "delete"),
 	bind(moveEarlier, editing, slateTitle, "earlier", "move the chosen slot 1 minute earlier", ","),
 	bind(moveLater, editing, slateTitle, "later", "move the chosen slot 1 minute later", "."),
 	bind(farEarlier, editing, slateTitle, "10 earlier", "move the chosen slot 10 minutes earlier", "<"),

@@ -165,7 +165,7 @@ func (m *model) drawWorth(c *cell.Canvas) {
 		put(count(n, "source")+" barred", theme.Plain)
 	}
 	if n := len(r.verdict.MissingMusts); n > 0 {
-		put(fmt.Sprintf("! without %s", jobName(r.problem, r.verdict.MissingMusts[0])), theme.Overdue)
+		put(fmt.Sprintf("! %s must be in", jobName(r.problem, r.verdict.MissingMusts[0])), theme.Overdue)
 	}
 	if m.world.folder.Demo() {
 		put("invented demonstration", theme.Muted)

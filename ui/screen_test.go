@@ -166,6 +166,20 @@ func TestFaultKeepsTheWork(t *testing.T) {
 	again.shows("Unsaved work from before")
 }
 
+// brokenView fails in everything it does.
+type brokenView struct{ slate }
+
+func (brokenView) steer(verb, *world) action { panic("the view fails") }
+
+func TestFaultInAKeyEndsTheProgram(t *testing.T) {
+	h := start(t, openCampaign(t))
+	h.views[0] = &brokenView{}
+	h.keys("j")
+	if !h.quit || h.fault != "the view fails" {
+		t.Fatalf("quit %v, fault %q", h.quit, h.fault)
+	}
+}
+
 // A key on a slow line: what has to be sent is the lines that changed.
 func TestFewBytesForAKey(t *testing.T) {
 	f, err := campaigns.OpenDemo()

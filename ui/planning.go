@@ -1,0 +1,93 @@
+package ui
+
+import (
+	"context"
+
+	tea "github.com/charmbracelet/bubbletea"
+
+	"example.org/tallystick/sched"
+)
+
+// startPlanning plans around the pins. The first plan of a session is no edit: it can be had again at
+// any time, so leaving without saving it loses nothing.
+func (m *model) startPlanning(first bool) tea.Cmd {
+	d := m.world.desk
+	m.stopPlanning()
+	ctx, cancel := context.WithCancel(context.Background())
+	work := &planning{desk: d, edition: d.edition, first: first, cancel: cancel, reports: make(chan sched.Result, 4)}
+	m.world.work = work
+	p := d.preparedWith(d.state.bars).Problem
+	from := 0
+	if m, ok := m.world.nowMinute(); ok {
+		from = m + 1
+	}
+	return tea.Batch(planCmd(ctx, work, p, d.state, from, first), listenCmd(work))
+}
+
+func (m *model) stopPlanning() {
+	if m.world.work != nil {
+		m.world.work.cancel()
+		m.world.work = nil
+	}
+}
+
+// stopStalePlanning ends a planning run whose plan has been edited in the meantime.
+func (m *model) stopStalePlanning() tea.Cmd {
+	if w := m.world.work; w != nil && w.edition != w.desk.edition {
+		m.stopPlanning()
+		m.world.say.text += "; planning stopped"
+	}
+	return nil
+}
+
+// receiveProgress says how far planning has come. A session without a plan shows the first one there
+// is; what is found after that waits until planning has ended, so that the screen stays calm.
+func (m *model) receiveProgress(msg progressMsg) {
+	msg.work.reached = msg.result
+	d := msg.work.desk
+	if !msg.work.first || len(d.state.plan.Slots) > 0 || d.edition != msg.work.edition || len(msg.result.Plan.Slots) == 0 {
+		return
+	}
+	d.state.plan = msg.result.Plan.Clone()
+	d.saved = d.state
+	d.changed()
+	d.choose(0)
+	msg.work.edition = d.edition
+}
+
+func (m *model) receivePlanned(msg plannedMsg) {
+	w := &m.world
+	if w.work != msg.work {
+		return // stopped, or overtaken
+	}
+	w.work.cancel()
+	w.work = nil
+	d := msg.work.desk
+	if d.edition != msg.work.edition {
+		return
+	}
+	if msg.err != nil {
+		m.warn("no plan: %v", msg.err)
+		return
+	}
+	to := snapshot{msg.result.Plan, msg.bars}
+	d.planned = &bound{msg.result, msg.bars, msg.pins}
+	if msg.first {
+		d.state, d.saved = to, to
+		d.changed()
+		d.choose(d.chosen)
+		if w.say.text == "" {
+			m.tell("planned %s; ? shows the keys", count(len(to.plan.Slots), "slot"))
+		}
+		m.offerDraft()
+		return
+	}
+	was := d.read().verdict.Worth
+	if d.state.equal(to) {
+		m.tell("planned again: the plan stays as it is, nothing better was found")
+		return
+	}
+	d.commit("re-planned", to)
+	d.choose(d.chosen)
+	m.tell("planned again: %s", worthChange(was, d.read().verdict.Worth))
+}
