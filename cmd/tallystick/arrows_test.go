@@ -24,6 +24,7 @@ var arrows = map[string][]string{
 		"github.com/google/renameio/v2"},
 	"campaigns/export":        {module + "/campaigns", module + "/sched", module + "/sky/*"},
 	"campaigns/demo":          {},
+	"campaigns/ephemeris":     {},
 	"campaigns/demo/generate": {module + "/campaigns", module + "/sched", module + "/sky/*"},
 	"ui": {module + "/campaigns", module + "/sched", module + "/sky/*", "github.com/charmbracelet/*", "github.com/muesli/termenv",
 		"github.com/sahilm/fuzzy", "github.com/adrg/xdg", "github.com/google/renameio/v2", "github.com/BurntSushi/toml"},

@@ -17,7 +17,7 @@ import (
 // efforts is how many rounds of search --effort buys after the first plan; below 0 is none. Rounds are
 // counted, not timed, so that the same effort gives the same plan on every machine. On the demonstration's
 // ten-hour session quick answers in a quarter of a second, normal in half a second, thorough in some seconds.
-var efforts = map[string]int{"quick": -1, "normal": 3, "thorough": 64}
+var efforts = map[string]int{"quick": -1, "normal": 2, "thorough": 64}
 
 var effortNames = []string{"quick", "normal", "thorough"}
 
