@@ -60,16 +60,17 @@ func Solve(ctx context.Context, p *Problem, o Options) (Result, error) {
 	return s.result(), ctx.Err()
 }
 
-// checkPinsMeet finds the pair of pins that cannot follow one another. Time already past is not judged.
+// checkPinsMeet finds the pair of pins that cannot follow one another. In time past a setup may have been
+// shorter than it is reckoned here, but no two slots were at the same time.
 func (p *Problem) checkPinsMeet() error {
 	for i := 1; i < len(p.Pins); i++ {
 		a, b := p.Pins[i-1], p.Pins[i]
-		if b.Start < p.FromMin {
-			continue
-		}
 		if b.Start < a.End {
 			return fmt.Errorf("pins clash: %s until %s overlaps %s from %s by %d min; unpin or move one of them",
 				p.nodeName(a.Node), p.clock(a.End), p.nodeName(b.Node), p.clock(b.Start), a.End-b.Start)
+		}
+		if b.Start < p.FromMin {
+			continue
 		}
 		if setup := p.SetupBetween(a.Node, a.End, b.Node, b.Start); b.Start < setup.ReadyMin {
 			return fmt.Errorf("pins clash: %s from %s starts %d min too early after %s until %s: %s; unpin or move one of them",
