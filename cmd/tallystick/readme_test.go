@@ -7,6 +7,7 @@ import (
 	"os"
 	"os/exec"
 	"path/filepath"
+	"regexp"
 	"slices"
 	"strings"
 	"testing"
@@ -180,5 +181,23 @@ func TestSmallCampaignLoads(t *testing.T) {
 	}
 	if len(c.Sources) != 6 {
 		t.Errorf("%d sources, want 6", len(c.Sources))
+	}
+}
+
+// A file that DEVELOPERS.md sends a reader to is there.
+func TestDevelopersPaths(t *testing.T) {
+	root := filepath.Join("..", "..")
+	data, err := os.ReadFile(filepath.Join(root, "DEVELOPERS.md"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	paths := regexp.MustCompile("`((?:cmd|campaigns|sched|sky|ui)/[a-z_/*]+(?:\\.go)?)`").FindAllStringSubmatch(string(data), -1)
+	for _, m := range paths {
+		if found, err := filepath.Glob(filepath.Join(root, filepath.FromSlash(m[1]))); err != nil || len(found) == 0 {
+			t.Errorf("DEVELOPERS.md speaks of %s, which is not there", m[1])
+		}
+	}
+	if len(paths) < 20 {
+		t.Errorf("found %d paths only: the check looks for nothing", len(paths))
 	}
 }
