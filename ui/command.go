@@ -55,15 +55,18 @@ func prepareCmd(f *files, s *campaigns.Session, at time.Time) tea.Cmd {
 // work.reports, which it closes.
 func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapshot, minute int, first bool) tea.Cmd {
 	q := startingAt(p, minute)
-	var begun []sched.Slot // not pinned by the observer, but no longer to be changed
+	proved := &bound{bars: from.bars}
 	for _, s := range from.plan.Slots {
-		if !s.Pinned && s.Start < minute {
-			begun = append(begun, s)
+		switch {
+		case s.Pinned:
+			proved.pins = append(proved.pins, s)
+		case s.Start < minute: // not pinned by the observer, but no longer to be changed
+			proved.begun = append(proved.begun, s)
 			s.Pinned = true
+		default:
+			continue
 		}
-		if s.Pinned {
-			q.Pins = append(q.Pins, s)
-		}
+		q.Pins = append(q.Pins, s)
 	}
 	warm := from.plan.Clone()
 	return guarded(func() tea.Msg {
@@ -80,11 +83,12 @@ func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapsho
 		r, err := sched.Solve(ctx, q, o)
 		for i, s := range r.Plan.Slots {
 			s.Pinned = false
-			if slices.Contains(begun, s) {
+			if slices.Contains(proved.begun, s) {
 				r.Plan.Slots[i] = s
 			}
 		}
-		return plannedMsg{work: work, result: r, first: first, pins: q.Pins, bars: from.bars, err: err}
+		proved.result = r
+		return plannedMsg{work: work, result: r, first: first, proved: proved, err: err}
 	})
 }
 

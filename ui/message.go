@@ -32,8 +32,7 @@ type plannedMsg struct {
 	work   *planning
 	result sched.Result
 	first  bool // the session's first plan, which is not an edit
-	pins   []sched.Slot
-	bars   []string
+	proved *bound
 	err    error
 }
 

@@ -70,8 +70,8 @@ func (m *model) receivePlanned(msg plannedMsg) {
 		m.warn("no plan: %v", msg.err)
 		return
 	}
-	to := snapshot{msg.result.Plan, msg.bars}
-	d.planned = &bound{msg.result, msg.bars, msg.pins}
+	to := snapshot{msg.result.Plan, msg.proved.bars}
+	d.planned = msg.proved
 	if msg.first {
 		d.state, d.saved = to, to
 		d.changed()

@@ -84,7 +84,8 @@ func (m *model) bindSaved(d *desk, s *campaigns.SavedPlan) snapshot {
 	slices.Sort(bars)
 	if s.Ceiling > 0 {
 		pins := slices.DeleteFunc(slices.Clone(plan.Slots), func(s sched.Slot) bool { return !s.Pinned })
-		d.planned = &bound{sched.Result{Ceiling: sched.Micro(s.Ceiling * float64(sched.Unit)), HasCeiling: len(lost) == 0}, bars, pins}
+		ceiling := sched.Result{Ceiling: sched.Micro(s.Ceiling * float64(sched.Unit)), HasCeiling: len(lost) == 0}
+		d.planned = &bound{result: ceiling, bars: bars, pins: pins}
 	}
 	return snapshot{plan, bars}
 }
@@ -134,7 +135,7 @@ func (m *model) goToSession(name string) tea.Cmd {
 }
 
 func (d *desk) provenFor(s snapshot) sched.Result {
-	if d.planned.holds(d.prepared.Problem, s.plan) {
+	if d.planned.holds(s) {
 		return d.planned.result
 	}
 	return sched.Result{}

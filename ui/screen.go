@@ -187,7 +187,7 @@ func (m *model) distance(d *desk, r *reading) string {
 	switch {
 	case len(r.verdict.Breaches) > 0:
 		return "no ceiling" // it holds for plans within the limits
-	case !d.planned.holds(r.problem, r.plan):
+	case !d.planned.holds(snapshot{r.plan, r.bars}):
 		if d.planned != nil && d.planned.result.HasCeiling {
 			return "ceiling out of date: R plans again"
 		}

@@ -72,22 +72,28 @@ func TestAnEditOvertakesPlanning(t *testing.T) {
 
 func TestCeilingOnlyWhereItHolds(t *testing.T) {
 	h := start(t, openCampaign(t))
-	d := h.world.desk
-	p := d.prepared.Problem
-	plan := d.state.plan
-	b := &bound{result: sched.Result{HasCeiling: true, Ceiling: 1}, pins: plan.Slots[:1]}
-	if !b.holds(p, plan) {
-		t.Error("the bound of this very plan does not hold")
-	}
-	if b.holds(p, sched.Plan{Slots: plan.Slots[1:]}) {
-		t.Error("holds without a pin that it was proved with")
-	}
-	b = &bound{result: sched.Result{HasCeiling: true, Ceiling: 1}, bars: []string{sourceOf(p, plan.Slots[0])}}
-	if b.holds(p, plan) {
-		t.Error("holds with a source that was barred")
-	}
-	if (*bound)(nil).holds(p, plan) {
-		t.Error("nothing proved, and it holds")
+	plan := h.plan().plan
+	pinnedFirst := plan.Clone()
+	pinnedFirst.Slots[0].Pinned = true
+	proved := sched.Result{HasCeiling: true, Ceiling: 1}
+	for _, c := range []struct {
+		name string
+		b    *bound
+		s    snapshot
+		want bool
+	}{
+		{"free", &bound{result: proved}, snapshot{plan: plan}, true},
+		{"more pins and bars", &bound{result: proved}, snapshot{pinnedFirst, []string{"X"}}, true},
+		{"the pin is there", &bound{result: proved, pins: pinnedFirst.Slots[:1]}, snapshot{plan: pinnedFirst}, true},
+		{"the pin was lifted", &bound{result: proved, pins: pinnedFirst.Slots[:1]}, snapshot{plan: plan}, false},
+		{"what had begun is there", &bound{result: proved, begun: plan.Slots[:1]}, snapshot{plan: plan}, true},
+		{"what had begun is gone", &bound{result: proved, begun: plan.Slots[:1]}, snapshot{plan: sched.Plan{Slots: plan.Slots[1:]}}, false},
+		{"the bar was lifted", &bound{result: proved, bars: []string{"X"}}, snapshot{plan: plan}, false},
+		{"nothing proved", nil, snapshot{plan: plan}, false},
+	} {
+		if got := c.b.holds(c.s); got != c.want {
+			t.Errorf("%s: %v", c.name, got)
+		}
 	}
 }
 

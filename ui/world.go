@@ -76,29 +76,41 @@ type heldEdit struct {
 	breaches []string
 }
 
-// A bound is what a planning run proved, and what it was proved for: plans without slots of bars and
-// with these pins.
+// A bound is what a planning run proved, and what it was proved for: plans with these bars and pins,
+// and with what had begun. More bars and pins leave it true; fewer do not.
 type bound struct {
 	result sched.Result
 	bars   []string
-	pins   []sched.Slot
+	pins   []sched.Slot // the observer's
+	begun  []sched.Slot
 }
 
-// holds reports whether what was proved is true of a plan.
-func (b *bound) holds(p *sched.Problem, plan sched.Plan) bool {
+// holds reports whether what was proved is true of every plan with the bars and pins of this one.
+func (b *bound) holds(s snapshot) bool {
 	if b == nil || !b.result.HasCeiling {
 		return false
 	}
+	has := func(want sched.Slot, pinned bool) bool {
+		return slices.ContainsFunc(s.plan.Slots, func(is sched.Slot) bool {
+			return is.Node == want.Node && is.Start == want.Start && is.End == want.End && (is.Pinned || !pinned)
+		})
+	}
 	for _, pin := range b.pins {
-		if !slices.ContainsFunc(plan.Slots, func(s sched.Slot) bool {
-			return s.Node == pin.Node && s.Start == pin.Start && s.End == pin.End
-		}) {
+		if !has(pin, true) {
 			return false
 		}
 	}
-	return !slices.ContainsFunc(plan.Slots, func(s sched.Slot) bool {
-		return slices.Contains(b.bars, sourceOf(p, s))
-	})
+	for _, slot := range b.begun {
+		if !has(slot, false) {
+			return false
+		}
+	}
+	for _, bar := range b.bars {
+		if !slices.Contains(s.bars, bar) {
+			return false
+		}
+	}
+	return true
 }
 
 // planning is a plan being made.
