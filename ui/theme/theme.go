@@ -51,7 +51,7 @@ var palette = [inks]attributes{
 	Accent:    {dark: "#5fd7ff", light: "#005f87", dark16: "14", light16: "4", bold: true},
 	Good:      {dark: "#87d787", light: "#005f00", dark16: "10", light16: ""},
 	Overdue:   {dark: "#ffaf5f", light: "#875f00", dark16: "11", light16: "5", bold: true},
-	Broken:    {dark: "#ff8787", light: "#af0000", dark16: "9", light16: "1", bold: true},
+	Broken:    {dark: "#ff8787", light: "#870000", dark16: "9", light16: "1", bold: true},
 	Pinned:    {dark: "#d7afff", light: "#5f00af", dark16: "13", light16: "5", bold: true},
 	Sun:       {dark: "#ffd75f", light: "#875f00", dark16: "11", light16: ""},
 	Limit:     {dark: "#af8787", light: "#875f5f", dark16: "7", light16: ""},
