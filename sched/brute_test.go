@@ -2,18 +2,22 @@ package sched
 
 import (
 	"math/rand/v2"
+	"slices"
 	"testing"
 	"time"
 )
 
 // bruteForce returns the worth of the best plan by trying every sequence of slots with every start and
-// every end. It knows the rules from their definition alone; the must bonus is the caller's concern.
-func bruteForce(p *Problem) Micro {
+// every end. It knows the rules from their definition alone. Only plans with the jobs named count; it is
+// below zero if there is none.
+func bruteForce(p *Problem, with ...int) Micro {
 	count := make([]int, len(p.Jobs))
-	var best Micro
+	best := Micro(-1)
 	var extend func(from, end int, sum Micro)
 	extend = func(from, end int, sum Micro) {
-		best = max(best, sum)
+		if !slices.ContainsFunc(with, func(job int) bool { return count[job] == 0 }) {
+			best = max(best, sum)
+		}
 		for node, n := range p.Nodes {
 			j := p.Jobs[n.Job]
 			if j.Barred || count[n.Job] == j.MaxSlots {

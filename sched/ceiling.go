@@ -9,6 +9,9 @@ package sched
 // Source: Fisher, "The Lagrangian relaxation method for solving integer programming problems", Management
 // Science 27 (1981) 1; step length after Polyak (1969)
 //
+// Jobs that must be in the plan cost worth. Once a plan has them all, only plans that do are bounded: their
+// price may then fall below zero, since every plan that counts pays it exactly once.
+//
 // Slots that are worth nothing are not part of the plans that it bounds.
 
 // A bounder looks for the prices of the lowest ceiling.
@@ -23,6 +26,7 @@ type bounder struct {
 	price   []float64
 	towards []float64 // smoothed subgradient
 	count   []int     // by job: slots in the best paths
+	forced  []bool    // by job: every plan that is bounded has exactly one slot of it
 	learned []float64 // the prices of the lowest bound so far
 	low     Micro     // that bound, on the grid it was found with
 	stale   int       // steps since
@@ -40,7 +44,7 @@ func newBounder(t *tables, prices []Micro) *bounder {
 	p := t.p
 	b := &bounder{
 		t: t, sweep: newSweeper(t), used: make([]uint64, t.words), spread: t.setupSpread(),
-		adjust: make([]Micro, len(p.Jobs)), count: make([]int, len(p.Jobs)), reach: 0.25,
+		adjust: make([]Micro, len(p.Jobs)), count: make([]int, len(p.Jobs)), forced: make([]bool, len(p.Jobs)), reach: 0.25,
 		price: make([]float64, len(p.Jobs)), towards: make([]float64, len(p.Jobs)), learned: make([]float64, len(p.Jobs)),
 	}
 	for j := range prices {
@@ -57,6 +61,23 @@ func newBounder(t *tables, prices []Micro) *bounder {
 	}
 	b.gaps = append(b.gaps, g)
 	return b
+}
+
+// force bounds only plans that have every job that must be there, if these slots do. It comes before any
+// bound is taken.
+func (b *bounder) force(slots []Slot) {
+	set := make([]uint64, b.t.words)
+	for _, s := range slots {
+		b.t.spend(set, b.t.p.Nodes[s.Node].Job)
+	}
+	for j, bonus := range b.t.bonus {
+		if bonus > 0 && !b.t.begun(set, j) {
+			return
+		}
+	}
+	for j, bonus := range b.t.bonus {
+		b.forced[j] = bonus > 0 && b.t.left(b.used, j) == 1 && !b.t.begun(b.used, j)
+	}
 }
 
 // bound returns the bound at the present prices with ends on the given grid, and counts the slots of each
@@ -137,7 +158,7 @@ func (b *bounder) step(bound, plan Micro) {
 			continue
 		}
 		b.towards[j] = memory*b.towards[j] + (1-memory)*float64(b.t.left(b.used, j)-b.count[j])
-		if b.price[j] == 0 && b.towards[j] > 0 {
+		if b.price[j] == 0 && b.towards[j] > 0 && !b.forced[j] {
 			continue
 		}
 		square += b.towards[j] * b.towards[j]
@@ -147,7 +168,10 @@ func (b *bounder) step(bound, plan Micro) {
 	}
 	length := b.reach * float64(bound-plan) / square
 	for j := range b.price {
-		b.price[j] = max(0, b.price[j]-length*b.towards[j])
+		b.price[j] -= length * b.towards[j]
+		if !b.forced[j] {
+			b.price[j] = max(0, b.price[j])
+		}
 	}
 }
 

@@ -19,10 +19,10 @@ type Options struct {
 type Result struct {
 	Plan       Plan
 	Worth      Micro
-	Ceiling    Micro // no plan is worth more, with the same grid and rules
+	Ceiling    Micro // no plan with the same grid and rules is worth more, if it has all musts that this one has
 	HasCeiling bool  // a ceiling has been proved; there is none otherwise
 	Rounds     int   // rounds of re-planning done
-	Proven     bool  // no plan is worth more than this one
+	Proven     bool  // the plan reaches the ceiling
 }
 
 const (
@@ -128,6 +128,9 @@ func (s *search) first() {
 	}
 	for _, l := range s.lanes {
 		l.start(s.best, s.value)
+	}
+	if s.bound != nil {
+		s.bound.force(s.best)
 	}
 }
 
