@@ -50,8 +50,6 @@ func (e *Entry) paid() float64 {
 
 func (e *Entry) middle() time.Time { return e.Start.Add(e.End.Sub(e.Start) / 2) }
 
-func (e *Entry) minutes() float64 { return e.End.Sub(e.Start).Minutes() }
-
 // visits are the observations of a source with any of the receivers.
 func (b *books) visits(source string, receivers []string) []sched.Visit {
 	var out []sched.Visit

@@ -8,6 +8,7 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+	"sync"
 	"testing"
 	"time"
 
@@ -29,25 +30,23 @@ func openDemo(t testing.TB) (*Folder, time.Time) {
 	return f, now
 }
 
-// prepareDemo prepares one of the demonstration's sessions.
-func prepareDemo(t testing.TB, session int) *Prepared {
-	t.Helper()
-	f, now := openDemo(t)
-	p, err := Prepare(f.Campaign, f.Logbook, &f.Campaign.Sessions[session], PrepareOptions{At: now})
+// firstSession is the demonstration's first session, prepared once for all tests, and its plan.
+var firstSession = sync.OnceValues(func() (*Prepared, sched.Plan) {
+	f, err := OpenDemo()
 	if err != nil {
-		t.Fatal(err)
+		panic(err)
 	}
-	return p
-}
-
-func solve(t testing.TB, p *sched.Problem) sched.Result {
-	t.Helper()
-	r, err := sched.Solve(context.Background(), p, sched.Options{})
+	now, _ := f.Now()
+	p, err := Prepare(f.Campaign, f.Logbook, &f.Campaign.Sessions[0], PrepareOptions{At: now})
 	if err != nil {
-		t.Fatal(err)
+		panic(err)
 	}
-	return r
-}
+	r, err := sched.Solve(context.Background(), p.Problem, sched.Options{Rounds: 1})
+	if err != nil {
+		panic(err)
+	}
+	return p, r.Plan
+})
 
 func TestEverySessionOfTheDemonstrationMakesASoundProblem(t *testing.T) {
 	f, now := openDemo(t)
@@ -75,15 +74,20 @@ func TestEverySessionOfTheDemonstrationMakesASoundProblem(t *testing.T) {
 }
 
 func TestPreparingTwiceGivesTheSameProblem(t *testing.T) {
-	a, b := prepareDemo(t, 0).Problem, prepareDemo(t, 0).Problem
-	if d := cmp.Diff(a, b); d != "" {
+	f, now := openDemo(t)
+	a, _ := firstSession()
+	b, err := Prepare(f.Campaign, f.Logbook, &f.Campaign.Sessions[0], PrepareOptions{At: now})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if d := cmp.Diff(a.Problem, b.Problem); d != "" {
 		t.Error(d)
 	}
 }
 
 // The table of slews is what the planner and its judge go by, so no move may take longer than it says.
 func TestNoSlewTakesLongerThanItsTable(t *testing.T) {
-	p := prepareDemo(t, 0)
+	p, _ := firstSession()
 	mount := p.Site.mount()
 	n := len(p.places)
 	rapid.Check(t, func(t *rapid.T) {
@@ -185,8 +189,8 @@ func TestOrbitTimeAndHeardTimeAreInverse(t *testing.T) {
 }
 
 func TestASavedPlanBindsToWhatItWas(t *testing.T) {
-	p := prepareDemo(t, 0)
-	plan := solve(t, p.Problem).Plan
+	p, plan := firstSession()
+	plan = plan.Clone()
 	plan.Slots[2].Pinned, plan.Slots[2].Note = true, "windy"
 	saved := p.Saved(plan, sched.Result{}, "test")
 	again, lost := p.Bind(saved)
@@ -199,7 +203,7 @@ func TestASavedPlanBindsToWhatItWas(t *testing.T) {
 }
 
 func TestABoundPlanSaysWhatNoLongerFits(t *testing.T) {
-	p := prepareDemo(t, 0)
+	p, _ := firstSession()
 	start := p.Session.Start.Add(time.Hour)
 	_, lost := p.Bind(&SavedPlan{Slots: []SavedSlot{
 		{Source: "J9999+0000", Receiver: "L", Start: start, End: start.Add(time.Hour)},
@@ -238,9 +242,9 @@ func TestWindowsInBoth(t *testing.T) {
 
 // Whatever a plan does, its slot list says where the telescope points, within the mount's travel.
 func TestSlotRowsStayWithinTheTravel(t *testing.T) {
-	p := prepareDemo(t, 0)
+	p, plan := firstSession()
 	travel := p.Site.AzimuthTravelDeg
-	for _, r := range p.SlotRows(solve(t, p.Problem).Plan) {
+	for _, r := range p.SlotRows(plan) {
 		for _, az := range []float64{r.AzStartDeg, r.AzEndDeg} {
 			if az < travel[0] || az > travel[1] {
 				t.Errorf("slot %d: azimuth %.2f, travel %v", r.Slot, az, travel)
