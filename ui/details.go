@@ -86,10 +86,10 @@ func slotLines(w *world, i int) []line {
 	add("length", theme.Plain, "%s", length)
 	add("before", theme.Plain, "move %s, set-up %s, wait %s", seconds(row.MoveSec), seconds(row.OverheadSec), seconds(row.WaitSec))
 	if why.StartBy != "" {
-		add("start", theme.Plain, "%s", why.StartBy)
+		add("no sooner", theme.Plain, "%s", why.StartBy)
 	}
 	if why.EndBy != "" {
-		add("end", theme.Plain, "%s", why.EndBy)
+		add("no later", theme.Plain, "%s", why.EndBy)
 	}
 	if why.NextBest != "" {
 		add("instead", theme.Plain, "%s", why.NextBest)

@@ -89,7 +89,9 @@ func open(t testing.TB, f *campaigns.Folder, change ...func(*Config)) *harness {
 	}
 	h := &harness{model: newModel(c, styles(termenv.Ascii, c.ASCII)), t: t}
 	h.size(80, 24)
-	h.run(prepareCmd(h.world.folder, h.world.desk.session, h.world.now))
+	if h.waiting {
+		h.run(prepareCmd(h.world.folder, h.world.desk.session, h.world.now))
+	}
 	h.run(findDraftsCmd(h.campaignKey()))
 	return h
 }

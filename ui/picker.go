@@ -130,7 +130,11 @@ func (p *picker) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	if p.replaces >= 0 {
 		title = fmt.Sprintf("In place of %s at %s UTC, best first", p.slotsNamed(p.replaces), at)
 	}
-	in := box(c, g, width, max(min(len(p.all)+2, sh-5), 4), title, "type to narrow, Enter inserts, Esc goes back")
+	does := "inserts"
+	if p.replaces >= 0 {
+		does = "replaces"
+	}
+	in := box(c, g, width, max(min(len(p.all)+2, sh-5), 4), title, "type to narrow, Enter "+does+", Esc goes back")
 	x := in.Put(0, 0, "find: ", theme.Muted)
 	p.typed.draw(in, x, 0)
 	iw, ih := in.Size()

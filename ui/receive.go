@@ -66,6 +66,9 @@ func (m *model) receivePrepared(msg preparedMsg) tea.Cmd {
 	d.saved, d.onDisk = d.state, true
 	d.changed()
 	d.choose(0)
+	if m.world.say.text == "" {
+		m.tell("the saved plan of %s", msg.saved.MadeAt.UTC().Format("2006-01-02 15:04 UTC"))
+	}
 	m.offerDraft()
 	return nil
 }

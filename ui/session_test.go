@@ -194,3 +194,22 @@ func TestSayings(t *testing.T) {
 		}
 	}
 }
+
+func TestNoSuchSession(t *testing.T) {
+	h := start(t, openCampaign(t), func(c *Config) { c.Session = "2026-12-04 night" })
+	h.shows("2026-12-0")
+	for i := range commands {
+		for _, k := range commands[i].Keys() {
+			h.keys(k)
+			h.exact()
+			h.keys("esc", "1")
+		}
+	}
+	if h.quit = false; len(h.world.unsaved()) > 0 {
+		t.Error("work without a session")
+	}
+	h.keys("o", "home", "enter")
+	if h.world.desk.prepared == nil {
+		t.Error("no way to a session that there is")
+	}
+}
