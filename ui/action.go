@@ -23,6 +23,7 @@ const (
 	chooseSlot    verb = "choose slot"
 	chooseMinute  verb = "choose minute"
 	closeDialog   verb = "close"
+	takeRow       verb = "take row"
 	openDialog    verb = "dialog"
 	placeChosen   verb = "place"
 	goToSession   verb = "go to session"
@@ -198,6 +199,9 @@ func (m *model) applyRest(a action) tea.Cmd {
 		return m.goBack()
 	case closeDialog:
 		m.over = nil
+	case takeRow:
+		m.over = nil
+		return m.apply(a.more.(action))
 	case openDialog:
 		m.over = a.more.(dialog)
 	case doVerb:

@@ -330,6 +330,20 @@ func TestOtherSession(t *testing.T) {
 	}
 }
 
+func TestFindASlot(t *testing.T) {
+	h := start(t, openCampaign(t))
+	h.keys("/", "type:beacon", "enter")
+	if s, ok := h.world.desk.slot(); !ok || sourceOf(h.world.desk.prepared.Problem, s) != "C Beacon" {
+		t.Errorf("chosen: %v", s)
+	}
+	h.keys("/", "type:zzz")
+	h.shows("nothing matches")
+	h.keys("enter", "esc", "esc")
+	if h.over != nil {
+		t.Error("Esc does not close")
+	}
+}
+
 func TestArrearsFilterAndSort(t *testing.T) {
 	h := start(t, openCampaign(t))
 	v := h.views[1].(*arrears)

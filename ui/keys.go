@@ -111,7 +111,7 @@ var commands = []command{
 	bind(moveLast, moving, "", "last", "last row", "end", "G"),
 	bind(openChosen, moving, "", "details", "everything about the chosen row", "enter"),
 	bind(goBack, moving, "", "back", "back one step: close, stop planning, take back an edit", "esc"),
-	bind(filterRows, moving, arrearsTitle, "filter", "show only rows that hold what is typed", "/"),
+	bind(filterRows, moving, "", "filter", "show only rows that hold what is typed", "/"),
 
 	bind(insertSlot, editing, slateTitle, "insert", "insert a slot at the cursor minute", "i"),
 	bind(replaceSlot, editing, slateTitle, "replace", "put another source in place of the chosen slot", "r"),

@@ -64,7 +64,7 @@ func TestEverySizeIsExact(t *testing.T) {
 
 func TestDialogsAreExactAtEverySize(t *testing.T) {
 	h := start(t, openCampaign(t))
-	for _, open := range [][]string{{"?"}, {":"}, {"o"}, {"e"}, {"e", "enter"}, {"enter"}, {"r"}, {"W"}, {"2", "/"}} {
+	for _, open := range [][]string{{"?"}, {":"}, {"o"}, {"e"}, {"e", "enter"}, {"enter"}, {"r"}, {"W"}, {"/"}, {"2", "/"}} {
 		h.size(80, 24)
 		h.keys("esc", "esc", "1")
 		h.keys(open...)

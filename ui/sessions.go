@@ -3,21 +3,12 @@ package ui
 import (
 	"fmt"
 
-	tea "github.com/charmbracelet/bubbletea"
-
 	"example.org/tallystick/ui/cell"
-	"example.org/tallystick/ui/theme"
 )
 
-// sessionList chooses another session.
-type sessionList struct {
-	names []string
-	texts []string
-	rows  rows
-}
-
-func newSessionList(w *world) *sessionList {
-	l := &sessionList{}
+// newSessionList goes to another session.
+func newSessionList(w *world) *chooser {
+	l := &chooser{title: "Sessions", does: "goes there"}
 	for _, s := range w.campaign.Sessions {
 		text := fmt.Sprintf("%s  %s to %s UTC, %.1f h", cell.Fit(s.Name, 22), s.Start.UTC().Format("2006-01-02 15:04"), clock(s.End), s.End.Sub(s.Start).Hours())
 		switch {
@@ -29,33 +20,21 @@ func newSessionList(w *world) *sessionList {
 		if d, ok := w.desks[s.Name]; ok && d.unsaved() {
 			text += ", not saved"
 		}
-		if s.Name == w.desk.session.Name {
-			l.rows.at = len(l.names)
-		}
-		l.names, l.texts = append(l.names, s.Name), append(l.texts, text)
+		at := s.Name == w.desk.session.Name
+		l.add(s.Name, text, action{verb: goToSession, text: s.Name}, at)
 	}
 	return l
 }
 
-func (l *sessionList) key(k tea.KeyMsg, _ *world) action {
-	switch k.String() {
-	case "esc", "ctrl+c", "q":
-		return action{verb: closeDialog}
-	case "enter":
-		if len(l.names) > 0 {
-			return action{verb: goToSession, text: l.names[l.rows.at]}
-		}
+// newSlotFinder chooses one of the slots of the plan.
+func newSlotFinder(w *world) *chooser {
+	l := &chooser{title: "Slots", does: "chooses"}
+	r := w.desk.read()
+	for i := range r.rows {
+		row := &r.rows[i]
+		name := r.slotName(i)
+		text := fmt.Sprintf("%2d %s-%s %s %s", row.Slot, clock(row.Start), clock(row.End), cell.Fit(name, 18), slotFlags(row))
+		l.add(name, text, action{verb: chooseSlot, n: i}, i == w.desk.chosen)
 	}
-	l.rows.key(k, len(l.names))
-	return action{}
-}
-
-func (l *sessionList) draw(_ *world, c *cell.Canvas, g *theme.Glyphs) {
-	sw, sh := c.Size()
-	in := box(c, g, min(78, sw-4), max(min(len(l.names), sh-4), 1), "Sessions", "Enter goes there, Esc goes back")
-	_, h := in.Size()
-	l.rows.show(len(l.names), h)
-	for i := range l.texts {
-		l.rows.draw(in, g, i, l.texts[i])
-	}
+	return l
 }

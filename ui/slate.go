@@ -44,6 +44,10 @@ func (v *slate) steer(verb verb, w *world) action {
 		return action{verb: chooseMinute, n: d.minute - 60}
 	case farRight:
 		return action{verb: chooseMinute, n: d.minute + 60}
+	case filterRows:
+		if _, ok := d.slot(); ok {
+			return action{verb: openDialog, more: dialog(newSlotFinder(w))}
+		}
 	case barSource:
 		s, ok := d.slot()
 		if !ok {
