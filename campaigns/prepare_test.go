@@ -5,6 +5,7 @@ import (
 	"encoding/csv"
 	"math"
 	"os"
+	"reflect"
 	"slices"
 	"strconv"
 	"strings"
@@ -80,8 +81,8 @@ func TestPreparingTwiceGivesTheSameProblem(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if d := cmp.Diff(a.Problem, b.Problem); d != "" {
-		t.Error(d)
+	if !reflect.DeepEqual(a.Problem, b.Problem) {
+		t.Error(cmp.Diff(a.Problem, b.Problem))
 	}
 }
 
