@@ -66,7 +66,7 @@ func arrearsText(w io.Writer, d *desk, rows []campaigns.AccountRow) error {
 	columns := []column{{"Debt", 6, true}, {"Source", 14, false}, {"Aim", 22, false}, {"Last", 10, false}, {"Due", 10, false}, {"Next window, UTC", 13, false}}
 	var out [][]string
 	for _, r := range rows {
-		out = append(out, []string{fmt.Sprintf("%.2f", r.Debt), words(r.Source), words(r.Aim), day(r.Last), day(r.Due), window(r.NextStart, r.NextEnd)})
+		out = append(out, []string{fmt.Sprintf("%.2f", r.Debt), words(r.Source), words(r.Aim), day(r.Last, "never"), day(r.Due, "-"), window(r.NextStart, r.NextEnd)})
 		remarks := r.Why
 		if len(r.Flags) > 0 {
 			remarks = strings.Join(r.Flags, ", ") + "; " + remarks
@@ -125,9 +125,10 @@ func maybe(t time.Time) *string {
 	return &s
 }
 
-func day(t time.Time) string {
+// day writes a date, or the word for there being none.
+func day(t time.Time, none string) string {
 	if t.IsZero() {
-		return "never"
+		return none
 	}
 	return t.UTC().Format(time.DateOnly)
 }
