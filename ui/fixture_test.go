@@ -208,3 +208,37 @@ func golden(t *testing.T, name, got string) {
 		t.Errorf("%s differs (go test ./ui -update writes it anew):\n%s\nwanted:\n%s", path, got, want)
 	}
 }
+
+// drawn opens the interface on a plan that is written here, so that the screens of the tests change when
+// the interface does, not when the planner gets better.
+func drawn(t testing.TB) *harness {
+	t.Helper()
+	once := start(t, openCampaign(t))
+	saved := &campaigns.SavedPlan{Session: "2026-12-03 night", Campaign: "Six for the screen", MadeAt: evening, GridMin: 1, Worth: 24.66, Ceiling: 25}
+	for _, s := range []struct {
+		source, receiver, start, end string
+		turn                         int
+		pinned                       bool
+	}{
+		{"J0018+5210", "S", "18:02", "18:30", 0, false},
+		{"J2216+3344", "L", "18:38", "19:38", -1, false},
+		{"J0018+5210", "L", "19:42", "20:30", -1, true},
+		{"C Beacon", "L", "20:53", "20:58", 0, false},
+		{"J0231+1905", "L", "21:04", "22:24", 0, false},
+		{"J0512-0241", "L", "22:29", "23:00", 0, false},
+	} {
+		at := func(clock string) time.Time {
+			when, err := time.Parse("2006-01-02 15:04", "2026-12-03 "+clock)
+			if err != nil {
+				t.Fatal(err)
+			}
+			return when
+		}
+		saved.Slots = append(saved.Slots, campaigns.SavedSlot{Source: s.source, Receiver: s.receiver,
+			Start: at(s.start), End: at(s.end), Turn: s.turn, Pinned: s.pinned})
+	}
+	h := &harness{model: newModel(once.cfg, once.st), t: t}
+	h.size(80, 24)
+	h.send(preparedMsg{session: saved.Session, prepared: once.world.desk.prepared, saved: saved})
+	return h
+}
