@@ -2,6 +2,7 @@ package ui
 
 import (
 	"fmt"
+	"slices"
 
 	tea "github.com/charmbracelet/bubbletea"
 
@@ -120,10 +121,8 @@ func (m *model) applyMove(a action) (tea.Cmd, bool) {
 		m.at = (m.at + 1) % len(m.views)
 	case lastView:
 		m.at = (m.at + len(m.views) - 1) % len(m.views)
-	case showSlate:
-		m.at = 0
-	case showArrears:
-		m.at = 1
+	case showSlate, showArrears:
+		m.at = slices.Index(viewVerbs, a.verb)
 	case otherTime:
 		w.zone = (w.zone + 1) % zones
 		m.tell("beside UTC: %s", [zones]string{"local sidereal time (LST)", "the site's local time", "Modified Julian Date"}[w.zone])

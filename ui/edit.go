@@ -92,8 +92,10 @@ func (m *model) drop() {
 	s := d.shown()
 	plan := s.plan.Clone()
 	did := "dropped " + m.chosenName()
+	gap := plan.Slots[d.chosen].Start
 	plan.Slots = slices.Delete(plan.Slots, d.chosen, d.chosen+1)
 	m.propose(did, snapshot{plan, s.bars}, d.chosen)
+	d.goTo(gap) // what is inserted next is meant for the time that has become free
 }
 
 func (m *model) pin() {

@@ -58,12 +58,18 @@ type model struct {
 	pendingOpen []draft
 }
 
+// newViews are the views in the order of their numbers; viewVerbs go to them. A view that joins is added
+// to both, with a key in the table of keys.
+func newViews() []view { return []view{&slate{}, &arrears{}} }
+
+var viewVerbs = []verb{showSlate, showArrears}
+
 func newModel(c Config, st theme.Styles) *model {
 	m := &model{cfg: c, st: st, drafted: map[string]int{}, drafts: map[string][]draft{}, machine: time.Now}
 	m.run = m.machine().UnixNano()
 	m.world = world{folder: &files{Folder: c.Folder}, campaign: c.Folder.Campaign, desks: map[string]*desk{}, mouse: c.Mouse}
 	m.world.now = m.clock()
-	m.views = []view{&slate{}, &arrears{}}
+	m.views = newViews()
 	if len(c.Folder.Notices) > 0 {
 		m.warn("%s", c.Folder.Notices[0])
 	}

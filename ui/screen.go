@@ -90,7 +90,7 @@ func tabName(i int, v view) string { return fmt.Sprintf(" %d %s ", i+1, v.title(
 func (m *model) titleClick(x int) action {
 	for i, r := range m.tabs() {
 		if image.Pt(x, 0).In(r) {
-			return action{verb: []verb{showSlate, showArrears}[i]}
+			return action{verb: viewVerbs[i]}
 		}
 	}
 	return action{}

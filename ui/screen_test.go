@@ -29,7 +29,7 @@ func TestGoldenDialogs(t *testing.T) {
 		name string
 		keys []string
 	}{
-		{"insert", []string{"i"}},
+		{"insert", []string{"down", "x", "i"}},
 		{"help", []string{"esc", "?"}},
 		{"actions", []string{"esc", ":", "type:pin"}},
 		{"sessions", []string{"esc", "o"}},
@@ -39,6 +39,22 @@ func TestGoldenDialogs(t *testing.T) {
 	} {
 		h.keys(d.keys...)
 		golden(t, "dialog-"+d.name, h.screen())
+	}
+}
+
+func TestEveryViewHasItsKey(t *testing.T) {
+	h := start(t, openCampaign(t))
+	if len(viewVerbs) != len(h.views) {
+		t.Fatalf("%d keys for %d views", len(viewVerbs), len(h.views))
+	}
+	for i, v := range h.views {
+		h.keys(commandOf[viewVerbs[i]].Keys()[0])
+		if h.views[h.at] != v {
+			t.Errorf("the key of %s leads to %s", v.title(), h.views[h.at].title())
+		}
+		if words[v.title()] == nil {
+			t.Errorf("no words about %s in its help", v.title())
+		}
 	}
 }
 
