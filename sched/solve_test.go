@@ -29,8 +29,8 @@ func judged(t testing.TB, p *Problem, plan Plan, worth Micro) {
 // Taking the best source at each moment loses a fifth to a third of what these sessions can bring.
 func TestSolveBeatsDispatch(t *testing.T) {
 	var planned, dispatched Micro
-	for seeds, in := range []instance{large, medium, small} {
-		for seed := range uint64(seeds + 1) {
+	for seeds, in := range []instance{medium, small} {
+		for seed := range uint64(2 * (seeds + 1)) {
 			p := generate(in.with(seed))
 			r := solve(t, p, Options{Rounds: 1})
 			judged(t, p, r.Plan, r.Worth)
