@@ -46,7 +46,7 @@ var accountColumns = []accountColumn{
 		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return dueWords(r) },
 		func(_ *world, a, b *campaigns.AccountRow) int { return byTime(a.Due, b.Due) }},
 	{"next usable, UTC", 22, false, 6,
-		func(_ *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return nextWords(r) },
+		func(w *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return nextWords(w.desk, r) },
 		func(_ *world, a, b *campaigns.AccountRow) int { return byTime(a.NextStart, b.NextStart) }},
 	{"in plan", 10, false, 2,
 		func(w *world, _ *theme.Glyphs, r *campaigns.AccountRow) string { return planWords(w, r) },
@@ -87,9 +87,12 @@ func dueWords(r *campaigns.AccountRow) string {
 	return date(r.Due)
 }
 
-func nextWords(r *campaigns.AccountRow) string {
-	if r.NextStart.IsZero() {
-		return "-"
+func nextWords(d *desk, r *campaigns.AccountRow) string {
+	switch {
+	case !d.reviewed:
+		return "being worked out"
+	case r.NextStart.IsZero():
+		return "no coming session"
 	}
 	return r.NextStart.UTC().Format("2006-01-02 15:04") + "-" + clock(r.NextEnd)
 }

@@ -33,7 +33,7 @@ func (v *arrears) hints(*world) []verb {
 
 // rows lists the accounts that pass the filter, in order.
 func (v *arrears) rows(w *world) []int {
-	all := w.desk.prepared.Accounts
+	all := w.desk.accounts
 	v.shown = v.shown[:0]
 	want := strings.ToLower(v.filter.String())
 	for i := range all {
@@ -74,7 +74,7 @@ func (v *arrears) chosen(w *world) (*campaigns.AccountRow, bool) {
 	if len(shown) == 0 {
 		return nil, false
 	}
-	return &w.desk.prepared.Accounts[shown[v.list.at]], true
+	return &w.desk.accounts[shown[v.list.at]], true
 }
 
 func (v *arrears) typed(k tea.KeyMsg, w *world) bool {
@@ -160,7 +160,7 @@ func (v *arrears) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 
 func (v *arrears) drawHead(w *world, c *cell.Canvas, n int) {
 	cw, _ := c.Size()
-	all := w.desk.prepared.Accounts
+	all := w.desk.accounts
 	if v.typing || v.filter.String() != "" {
 		text := fmt.Sprintf("%d of %d accounts, filter: ", n, len(all))
 		x := c.Put(1, 0, text, theme.Muted)
@@ -212,7 +212,7 @@ func (v *arrears) drawTable(w *world, c *cell.Canvas, g *theme.Glyphs, shown []i
 	}
 	v.list.show(len(shown), v.page)
 	for i := v.list.top; i < min(v.list.top+v.page, len(shown)); i++ {
-		r := &w.desk.prepared.Accounts[shown[i]]
+		r := &w.desk.accounts[shown[i]]
 		ink, mark := theme.Plain, " "
 		switch {
 		case i == v.list.at:

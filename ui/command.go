@@ -51,6 +51,16 @@ func prepareCmd(f *files, s *campaigns.Session, at time.Time) tea.Cmd {
 	})
 }
 
+func reviewCmd(f *files, s *campaigns.Session) tea.Cmd {
+	return guarded(func() tea.Msg {
+		f.mu.Lock()
+		log := f.Logbook
+		f.mu.Unlock()
+		rows, err := campaigns.Arrears(f.Campaign, log, s.Start)
+		return reviewedMsg{session: s.Name, accounts: rows, err: err}
+	})
+}
+
 // planCmd plans around the pins of a plan and around what has begun before a minute. Progress goes to
 // work.reports, which it closes.
 func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapshot, minute int, first bool) tea.Cmd {

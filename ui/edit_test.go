@@ -369,9 +369,9 @@ func TestArrearsFilterAndSort(t *testing.T) {
 func TestWhyNotTonightIsAnsweredForEverySource(t *testing.T) {
 	h := start(t, openCampaign(t))
 	w := &h.world
-	for i := range w.desk.prepared.Accounts {
-		if said := whyNotTonight(w, &w.desk.prepared.Accounts[i]); len(said) == 0 {
-			t.Errorf("nothing about %s", w.desk.prepared.Accounts[i].Source)
+	for i := range w.desk.accounts {
+		if said := whyNotTonight(w, &w.desk.accounts[i]); len(said) == 0 {
+			t.Errorf("nothing about %s", w.desk.accounts[i].Source)
 		}
 	}
 }

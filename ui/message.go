@@ -21,6 +21,13 @@ type preparedMsg struct {
 	err      error
 }
 
+// reviewedMsg: the accounts at the start of a session, with when each source can next be observed.
+type reviewedMsg struct {
+	session  string
+	accounts []campaigns.AccountRow
+	err      error
+}
+
 // progressMsg: planning has come so far.
 type progressMsg struct {
 	work   *planning

@@ -16,6 +16,15 @@ func (m *model) receive(msg tea.Msg) tea.Cmd {
 	switch msg := msg.(type) {
 	case preparedMsg:
 		return m.receivePrepared(msg)
+	case reviewedMsg:
+		d, ok := m.world.desks[msg.session]
+		switch {
+		case !ok:
+		case msg.err != nil:
+			m.warn("the coming windows are not known: %v", msg.err)
+		default:
+			d.accounts, d.reviewed = msg.accounts, true
+		}
 	case progressMsg:
 		if m.world.work == msg.work {
 			m.receiveProgress(msg)
@@ -56,11 +65,13 @@ func (m *model) receivePrepared(msg preparedMsg) tea.Cmd {
 		return nil
 	}
 	d.prepared, d.trouble = msg.prepared, ""
+	d.accounts = msg.prepared.Accounts
+	review := reviewCmd(m.world.folder, d.session)
 	if msg.err != nil {
 		m.warn("the saved plan could not be read: %v", msg.err)
 	}
 	if msg.saved == nil {
-		return m.startPlanning(true)
+		return tea.Batch(m.startPlanning(true), review)
 	}
 	d.state = m.bindSaved(d, msg.saved)
 	d.saved, d.onDisk = d.state, true
@@ -70,7 +81,7 @@ func (m *model) receivePrepared(msg preparedMsg) tea.Cmd {
 		m.tell("the saved plan of %s", msg.saved.MadeAt.UTC().Format("2006-01-02 15:04 UTC"))
 	}
 	m.offerDraft()
-	return nil
+	return review
 }
 
 // bindSaved finds a saved plan in the prepared session, and tells what it lost.

@@ -41,10 +41,12 @@ func (v *arrears) read(w *world) (string, []line) {
 	}
 	add("dates", "%s%s", last, due)
 	switch {
+	case !w.desk.reviewed:
+		add("next", "being worked out")
 	case r.NextStart.IsZero():
-		add("next", "not observable in any coming session")
+		add("next", "not within its limits in any coming session")
 	default:
-		add("next", "%s UTC in session %s", nextWords(r), r.NextSession)
+		add("next", "%s UTC in session %s", nextWords(w.desk, r), r.NextSession)
 	}
 	if len(r.Receivers) > 0 {
 		add("with", "%s", strings.Join(r.Receivers, ", "))
