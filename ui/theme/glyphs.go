@@ -1,8 +1,7 @@
 package theme
 
-// Glyphs are the signs the screen is drawn with. Every one takes a single cell, and none is of the
-// kind that East Asian terminals draw two cells wide, box lines and the degree of doubt about them
-// apart.
+// Glyphs are the signs the screen is drawn with. Every one takes a single cell; beyond the box lines
+// none is of ambiguous East Asian width (Unicode UAX #11), which some terminals draw two cells wide.
 type Glyphs struct {
 	Curve               [5]string // the chosen source, from the top of a cell to its bottom
 	Other               string    // other sources

@@ -37,9 +37,8 @@ type attributes struct {
 	dark, light     string // 24-bit colours on a dark and on a light background; "" is the terminal's own
 	dark16, light16 string // the same where only 16 colours can be had
 	onDark, onLight string // background, with which the foreground is legible by itself
-	on16            string
-	bold, reverse   bool // kept without colours
-	reverseOnlyBare bool // reverse where there is no background colour to be had
+	bold            bool   // kept without colours
+	reverse         bool   // where there is no background colour to be had
 }
 
 // Contrast is at least 4.5:1 on #000 and #1e1e1e (dark) and on #fff and #fdf6e3 (light), in 24-bit
@@ -56,9 +55,9 @@ var palette = [inks]attributes{
 	Sun:       {dark: "#ffd75f", light: "#875f00", dark16: "11", light16: ""},
 	Limit:     {dark: "#af8787", light: "#875f5f", dark16: "7", light16: ""},
 	Now:       {dark: "#afffff", light: "#005f5f", dark16: "14", light16: "4", bold: true},
-	Chosen:    {dark: "#ffffff", light: "#000000", onDark: "#005f87", onLight: "#afd7ff", bold: true, reverseOnlyBare: true},
-	ChosenBad: {dark: "#ffffff", light: "#000000", onDark: "#870000", onLight: "#ffd7d7", bold: true, reverseOnlyBare: true},
-	Bar:       {dark: "#d0d0d0", light: "#303030", onDark: "#303030", onLight: "#dadada", reverseOnlyBare: true},
+	Chosen:    {dark: "#ffffff", light: "#000000", onDark: "#005f87", onLight: "#afd7ff", bold: true, reverse: true},
+	ChosenBad: {dark: "#ffffff", light: "#000000", onDark: "#870000", onLight: "#ffd7d7", bold: true, reverse: true},
+	Bar:       {dark: "#d0d0d0", light: "#303030", onDark: "#303030", onLight: "#dadada", reverse: true},
 }
 
 // Styles are the terminal sequences of every ink, and the glyphs.
@@ -79,7 +78,7 @@ func New(r *lipgloss.Renderer, ascii bool) Styles {
 	for i := range palette {
 		a := palette[i]
 		s.open[i] = sequence(a, r.ColorProfile(), r.HasDarkBackground())
-		s.paints[i] = a.onDark != "" || a.reverse || a.reverseOnlyBare
+		s.paints[i] = a.onDark != "" || a.reverse
 	}
 	return s
 }
@@ -103,11 +102,11 @@ func sequence(a attributes, p termenv.Profile, dark bool) string {
 		codes = append(codes, "1")
 	}
 	few := p == termenv.ANSI
-	if a.reverse || a.reverseOnlyBare && (few || p == termenv.Ascii) {
+	if a.reverse && (few || p == termenv.Ascii) {
 		codes = append(codes, "7")
 	}
 	if few {
-		fg, bg = fg16, a.on16
+		fg, bg = fg16, ""
 	}
 	for _, c := range []struct {
 		value string
