@@ -10,6 +10,7 @@ import (
 	"github.com/charmbracelet/x/ansi"
 	"github.com/lucasb-eyer/go-colorful"
 	"github.com/muesli/termenv"
+	"golang.org/x/text/width"
 )
 
 // Relative luminance and contrast as in WCAG 2.1, "relative luminance" and "contrast ratio".
@@ -64,6 +65,12 @@ func TestGlyphsTakeOneCell(t *testing.T) {
 			if n := ansi.StringWidth(s); n != 1 || len([]rune(s)) != 1 {
 				t.Errorf("glyph %q takes %d cells", s, n)
 			}
+		}
+	}
+	for _, s := range drawn.All() {
+		r := []rune(s)[0]
+		if box := r >= 0x2500 && r <= 0x257f; !box && width.LookupRune(r).Kind() == width.EastAsianAmbiguous {
+			t.Errorf("glyph %q is of ambiguous East Asian width", s)
 		}
 	}
 	for _, s := range typed.All() {
