@@ -39,7 +39,7 @@ const safety = "This list is advice. The program moves nothing. The observatory'
 var words = map[string][]line{
 	slateTitle: {
 		{label: "worth", text: "what the planner adds up; 1 is one observation that is exactly due, of a source of priority 1"},
-		{label: "ceiling", text: "no plan of this session can be worth more: that is proved"},
+		{label: "ceiling", text: "no plan of this session with these pins and bars can be worth more: that is proved"},
 		{label: "P", text: "pinned: fixed by the observer; re-planning leaves it alone"},
 		{label: "!", text: "breaks a limit"},
 		{label: "curves", text: "elevation over the session: the chosen source drawn through, the other planned ones dotted, double or heavy where they are observed"},
