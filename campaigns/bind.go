@@ -59,24 +59,22 @@ func (p *Prepared) Bind(saved *SavedPlan) (plan sched.Plan, lost []string) {
 	return plan.Sorted(), lost
 }
 
-// nodeFor finds the node of a saved slot: its source and receiver, on the cable turn it was saved with
-// or, where that is no longer to be had, the nearest.
+// nodeFor finds the node of a saved slot: its source and receiver, on the cable turn it was saved with or, where
+// that is no longer to be had, the nearest; of several, the one whose windows are nearest to its start.
 func (p *Prepared) nodeFor(s SavedSlot) (int, bool) {
-	best, away := -1, math.MaxInt
+	best, bestTurns, bestMinutes := sched.None, 0, 0
+	start := p.Minute(s.Start)
 	for i, n := range p.Problem.Nodes {
 		j := p.Problem.Jobs[n.Job]
 		if j.Source != s.Source || p.Problem.Receivers[j.Receiver].Name != s.Receiver {
 			continue
 		}
-		d := p.turnAt(n, p.Minute(s.Start)) - s.Turn
-		if d < 0 {
-			d = -d
-		}
-		if d < away {
-			best, away = i, d
+		turns, minutes := max(p.turnAt(n, start)-s.Turn, s.Turn-p.turnAt(n, start)), n.MinutesFrom(start)
+		if best == sched.None || turns < bestTurns || turns == bestTurns && minutes < bestMinutes {
+			best, bestTurns, bestMinutes = i, turns, minutes
 		}
 	}
-	return best, best >= 0
+	return best, best != sched.None
 }
 
 // turnAt is the cable turn of a node at a minute: mount azimuth = compass azimuth + 360 × turn.

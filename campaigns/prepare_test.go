@@ -324,3 +324,46 @@ func BenchmarkArrears(b *testing.B) {
 		}
 	}
 }
+
+// Near the zenith a source crosses the keyhole faster than the mount can turn: what lies after it is a place of
+// its own, and the way there is as long as the turn takes.
+func TestThePartsOfAPassThatALimitCutsArePlacesOfTheirOwn(t *testing.T) {
+	start := time.Date(2027, 1, 2, 0, 0, 0, 0, time.UTC)
+	c := &Campaign{
+		Sites: []Site{{
+			Name: "Equator", LatitudeDeg: 1, LongitudeDeg: 0, ElevationLimitsDeg: [2]float64{5, 89.5}, AzimuthTravelDeg: [2]float64{-270, 270},
+			SlewDegPerMin: [2]float64{16, 8}, AccelerationDegPerS2: [2]float64{0.5, 0.5}, SettleSec: 8, Mount: AltAz,
+		}},
+		Receivers: []Receiver{{Name: "L", Site: "Equator", BandMHz: [2]float64{1200, 1500}, TsysK: 25, GainKPerJy: 1, Polarizations: 2}},
+		Sources: []Source{{Name: "J0900+0040", RADeg: 135, DecDeg: 0.67, Priority: 1, Aims: []Aim{
+			{Kind: Cadence, Receivers: []string{"L"}, Minutes: 20, EveryDays: 10, MinFraction: 0.6},
+		}}},
+		Sessions: []Session{{Name: "night", Site: "Equator", Start: start, End: start.Add(6 * time.Hour), Receivers: []string{"L"}}},
+	}
+	p, err := Prepare(c, nil, &c.Sessions[0], PrepareOptions{At: start})
+	if err != nil {
+		t.Fatal(err)
+	}
+	var east, west = -1, -1
+	for i, pl := range p.places {
+		if len(pl.open) != 1 {
+			t.Fatalf("place %d has %d windows", i, len(pl.open))
+		}
+		switch w := pl.open[0]; {
+		case pl.turn != p.places[0].turn:
+		case w.ClosesBy != "session end":
+			east = i
+		default:
+			west = i
+		}
+	}
+	if east < 0 || west < 0 {
+		t.Fatalf("the zenith does not cut the pass: %+v", p.places)
+	}
+	leave := p.places[east].open[0].To
+	sec := int(p.Problem.Slew.Sec[(leave/slewBinMin*len(p.places)+east)*len(p.places)+west])
+	turn := math.Abs(p.places[east].axes[leave].A - p.places[west].axes[p.places[west].open[0].From].A)
+	if turn < 90 || float64(sec) < turn/16*60 {
+		t.Errorf("%d s for a turn of %.0f°", sec, turn)
+	}
+}

@@ -2,7 +2,6 @@ package campaigns
 
 import (
 	"math"
-	"slices"
 	"time"
 
 	"example.org/tallystick/sched"
@@ -54,27 +53,36 @@ func (p *Prepared) track(i int, ps *preparedSource) siteTrack {
 	return t
 }
 
-// placesOf are the cable turns on which the mount can follow a source, and when. A source that is never
-// within limits has one place all the same: an observer may still ask what it would break.
+// placesOf are the places at which the mount can follow a source: one for each cable turn and each window of its
+// limits. Where a limit cuts a pass in two (the keyhole at the zenith, a stop, the horizon, the Sun) the mount has
+// to be brought from one part to the other, and that takes time: so the parts are places of their own. In eclipses
+// and breaks it simply goes on following. A source that is never within limits has one place all the same: an
+// observer may still ask what it would break.
 func (p *Prepared) placesOf(i int, t siteTrack) []place {
 	mount := p.Site.mount()
+	axesOn := func(turn int) []sky.Axes {
+		axes := make([]sky.Axes, len(t.AzDeg))
+		p.site.AxesTrack(mount, p.frame, p.sources[i].place, p.Problem.Start, time.Minute, turn, axes)
+		return axes
+	}
 	var out []place
 	for _, turn := range p.site.Turns(mount, p.frame, p.sources[i].place, p.Session.Start, p.Session.End) {
-		pl := place{source: i, turn: turn.Turn, axes: make([]sky.Axes, len(t.AzDeg))}
-		p.site.AxesTrack(mount, p.frame, p.sources[i].place, p.Problem.Start, time.Minute, turn.Turn, pl.axes)
-		pl.open = both(t.usable, inMinutes(turn.Open, p.Problem.Start))
-		out = append(out, pl)
+		var axes []sky.Axes
+		for _, w := range both(t.sunny, inMinutes(turn.Open, p.Problem.Start)) {
+			open := both(t.usable, []sched.Window{w})
+			if len(open) == 0 {
+				continue
+			}
+			if axes == nil {
+				axes = axesOn(turn.Turn)
+			}
+			out = append(out, place{source: i, turn: turn.Turn, axes: axes, open: open})
+		}
 	}
-	able := slices.DeleteFunc(slices.Clone(out), func(pl place) bool { return len(pl.open) == 0 })
-	switch {
-	case len(able) > 0:
-		return able
-	case len(out) > 0:
-		return out[:1]
+	if len(out) == 0 {
+		out = []place{{source: i, axes: axesOn(0)}}
 	}
-	axes := make([]sky.Axes, len(t.AzDeg))
-	p.site.AxesTrack(mount, p.frame, p.sources[i].place, p.Problem.Start, time.Minute, 0, axes)
-	return []place{{source: i, axes: axes}}
+	return out
 }
 
 // facts are what a reason for leaving a source out is told from.

@@ -2,6 +2,7 @@ package sched
 
 import (
 	"fmt"
+	"math"
 	"slices"
 )
 
@@ -26,6 +27,7 @@ func MoveSlot(p *Problem, plan Plan, i, byMin int) (Plan, int) {
 		length := s.End - s.Start
 		s.End = max(min(length, p.Minutes), min(p.step(s.End, byMin), p.Minutes))
 		s.Start = max(0, s.End-length)
+		p.rehome(s)
 	})
 }
 
@@ -34,6 +36,7 @@ func MoveSlot(p *Problem, plan Plan, i, byMin int) (Plan, int) {
 func Lengthen(p *Problem, plan Plan, i, byMin int) (Plan, int) {
 	return change(plan, i, func(s *Slot) {
 		s.End = max(s.Start+1, min(p.step(s.End, byMin), p.Minutes))
+		p.rehome(s)
 	})
 }
 
@@ -41,6 +44,7 @@ func Lengthen(p *Problem, plan Plan, i, byMin int) (Plan, int) {
 func StretchStart(p *Problem, plan Plan, i, byMin int) (Plan, int) {
 	return change(plan, i, func(s *Slot) {
 		s.Start = min(s.End-1, max(0, s.Start+byMin))
+		p.rehome(s)
 	})
 }
 
@@ -133,15 +137,44 @@ func (p *Problem) nodeAt(job, minute int) int {
 		if n.Job != job {
 			continue
 		}
-		off := p.Minutes + 1
-		for _, w := range n.Open {
-			off = min(off, max(0, w.From-minute, minute-w.To))
-		}
+		off := n.MinutesFrom(minute)
 		if best == None || off < away {
 			best, away = i, off
 		}
 	}
 	return best
+}
+
+// MinutesFrom returns how many minutes the node's nearest window is away from a minute: 0 inside one. A node without
+// windows is further away than any session is long.
+func (n Node) MinutesFrom(minute int) int {
+	off := math.MaxInt
+	for _, w := range n.Open {
+		off = min(off, max(0, w.From-minute, minute-w.To))
+	}
+	return off
+}
+
+// rehome gives a slot that its edit has taken out of its node's windows to another node of its job that holds it,
+// one on the same cable turn if there is any: a pass that a limit cuts in two has a node for each part.
+func (p *Problem) rehome(s *Slot) {
+	if p.Nodes[s.Node].holds(s) {
+		return
+	}
+	home := None
+	for i := range p.Nodes {
+		n := &p.Nodes[i]
+		if n.Job == p.Nodes[s.Node].Job && n.holds(s) && (home == None || n.Turn == p.Nodes[s.Node].Turn && p.Nodes[home].Turn != n.Turn) {
+			home = i
+		}
+	}
+	if home != None {
+		s.Node = home
+	}
+}
+
+func (n *Node) holds(s *Slot) bool {
+	return slices.ContainsFunc(n.Open, func(w Window) bool { return w.From <= s.Start && s.End <= w.To })
 }
 
 // shortestAt returns the slot of the node's least length from the minute on, within the session and

@@ -125,3 +125,26 @@ func TestExplainNamesTheBounds(t *testing.T) {
 		}
 	}
 }
+
+// A pass that a limit cuts in two has a node for each part; a slot moved across takes the other.
+func TestASlotMovedAcrossALimitTakesTheOtherNode(t *testing.T) {
+	window := func(from, to int) []Window {
+		return []Window{{Span: Span{From: from, To: to}, OpensBy: "elevation 8°", ClosesBy: "elevation 8°"}}
+	}
+	p := twoSources()
+	p.Nodes = []Node{
+		{Job: 0, Place: 0, Turn: 0, Open: window(0, 20)},
+		{Job: 0, Place: 1, Turn: -1, Open: window(25, 60)},
+		{Job: 0, Place: 2, Turn: 0, Open: window(25, 60)},
+	}
+	plan := Plan{Slots: []Slot{{Node: 0, Start: 5, End: 15}}}
+	for by, want := range map[int]Slot{
+		3:  {Node: 0, Start: 8, End: 18},
+		10: {Node: 0, Start: 15, End: 25}, // in the gap: it stays, and the judge says what it breaks
+		20: {Node: 2, Start: 25, End: 35}, // same cable turn
+	} {
+		if got := first(MoveSlot(p, plan, 0, by)).Slots[0]; got != want {
+			t.Errorf("moved by %d: %+v, want %+v", by, got, want)
+		}
+	}
+}

@@ -72,15 +72,16 @@ type Facts struct {
 	DebtAim   string  `json:"debt_aim"`    // the aim that owes it
 }
 
-// A Node is a job on one wrap side of the mount: the cable has one state throughout a slot.
+// A Node is a job on one wrap side of the mount, in one window of its limits: the cable has one state
+// throughout a slot, and where a limit cuts a pass in two the mount has to be brought across.
 type Node struct {
 	Job   int      `json:"job"`
 	Place int      `json:"place"` // index into the slew table
-	Turn  int      `json:"turn"`  // mount azimuth is within [360·Turn, 360·Turn+360) when the source transits or the session starts
+	Turn  int      `json:"turn"`  // mount azimuth is within [360·Turn, 360·Turn+360) when the session starts, and goes on continuously
 	Open  []Window `json:"open"`  // in time order, apart from one another; empty if it can never be observed
 }
 
-// A SlewTable holds how long the mount takes from one place (a source on a wrap side) to another, in
+// A SlewTable holds how long the mount takes from one place (a source on a wrap side, in one window) to another, in
 // seconds, acceleration and settling included, rounded up. The telescope leaves at once at a slot's
 // end, and arrives where the target then is or, if it is not yet within limits, will first be.
 // Bin b holds for departures from minute b·BinMin up to (b+1)·BinMin: the largest value in the bin.
