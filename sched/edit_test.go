@@ -148,3 +148,22 @@ func TestASlotMovedAcrossALimitTakesTheOtherNode(t *testing.T) {
 		}
 	}
 }
+
+func TestASourceIsAbsentForTheReasonNearestToLettingItIn(t *testing.T) {
+	p := twoSources()
+	p.Jobs[0].Barred = true // A with L
+	absent := Absent(p, Plan{Slots: []Slot{{Node: nodeBL, Start: 13, End: 30}}})
+	for _, r := range absent {
+		switch source := p.Jobs[r.Job].Source; source {
+		case p.Jobs[2].Source:
+			t.Errorf("%s is in the plan and called absent", source)
+		case p.Jobs[0].Source:
+			if r.Job != 1 || r.Kind == Barred {
+				t.Errorf("%s: %+v; its other receiver is not barred", source, r)
+			}
+		}
+	}
+	if len(absent) != 2 {
+		t.Errorf("%d sources absent, want 2: %+v", len(absent), absent)
+	}
+}

@@ -165,7 +165,7 @@ func (in *inserter) reason(job int) Reason {
 	if cost < 0 {
 		verb, cost = "would gain", -cost
 	}
-	return Reason{Job: job, Kind: Outranked, Text: fmt.Sprintf("%s %s: %s at %s %s", verb, cost, best.place.worth, p.span(best.place.slot), in.effects(best))}
+	return Reason{Job: job, Kind: Outranked, Cost: best.cost(), Text: fmt.Sprintf("%s %s: %s at %s %s", verb, cost, best.place.worth, p.span(best.place.slot), in.effects(best))}
 }
 
 // effects names what an insertion takes from the rest of the plan.

@@ -1,6 +1,9 @@
 package sched
 
-import "fmt"
+import (
+	"fmt"
+	"slices"
+)
 
 // ReasonKind says why a job has no slot.
 type ReasonKind string
@@ -23,6 +26,7 @@ const (
 type Reason struct {
 	Job  int
 	Kind ReasonKind
+	Cost Micro // of putting it in all the same, with Outranked; below zero: it would gain
 	Text string
 }
 
@@ -41,6 +45,36 @@ func LeftOut(p *Problem, plan Plan) []Reason {
 		}
 	}
 	return reasons
+}
+
+// Absent returns one reason for each source that has no slot in the plan, in the order of the jobs: of its
+// receivers' reasons the one that comes nearest to letting it in.
+func Absent(p *Problem, plan Plan) []Reason {
+	planned := map[string]bool{}
+	for _, s := range plan.Slots {
+		planned[p.Jobs[p.Nodes[s.Node].Job].Source] = true
+	}
+	var absent []Reason
+	for _, r := range LeftOut(p, plan) {
+		source := p.Jobs[r.Job].Source
+		last := len(absent) - 1
+		switch {
+		case planned[source]:
+		case last < 0 || p.Jobs[absent[last].Job].Source != source:
+			absent = append(absent, r)
+		case r.nearer(absent[last]):
+			absent[last] = r
+		}
+	}
+	return absent
+}
+
+// kinds are the reasons from the firmest to the one that comes nearest to a place in the plan.
+var kinds = []ReasonKind{Barred, NotUp, SunTooClose, Eclipsed, Past, TooLow, NotDue, NoRoom, Outranked, Free}
+
+func (r Reason) nearer(than Reason) bool {
+	a, b := slices.Index(kinds, r.Kind), slices.Index(kinds, than.Kind)
+	return a > b || a == b && r.Cost < than.Cost
 }
 
 func (in *inserter) whyNot(job int) Reason {

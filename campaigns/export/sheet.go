@@ -32,6 +32,7 @@ type Sheet struct {
 	Session  campaigns.Session
 	Rows     []campaigns.SlotRow // in time order
 	LeftOut  []LeftOut           // sources and receivers without a slot
+	Absent   []LeftOut           // sources without any slot, each with the one reason that comes nearest to letting it in
 
 	MadeAt  time.Time // when the plan was made
 	Version string    // of the program
@@ -91,10 +92,14 @@ func New(p *campaigns.Prepared, plan sched.Plan, o Origin) Sheet {
 		j := p.Problem.Jobs[i]
 		return j.Source, p.Problem.Receivers[j.Receiver].Name
 	}
-	for _, r := range sched.LeftOut(p.Problem, plan) {
-		source, receiver := job(r.Job)
-		s.LeftOut = append(s.LeftOut, LeftOut{source, receiver, r.Text})
+	told := func(reasons []sched.Reason) (out []LeftOut) {
+		for _, r := range reasons {
+			source, receiver := job(r.Job)
+			out = append(out, LeftOut{source, receiver, r.Text})
+		}
+		return out
 	}
+	s.LeftOut, s.Absent = told(sched.LeftOut(p.Problem, plan)), told(sched.Absent(p.Problem, plan))
 	for _, i := range sched.Verify(p.Problem, plan).MissingMusts {
 		source, receiver := job(i)
 		s.Missing = append(s.Missing, source+" with "+receiver)

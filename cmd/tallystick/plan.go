@@ -185,9 +185,9 @@ func planText(w io.Writer, made *madePlan) error {
 	for _, m := range s.Missing {
 		b.WriteString(hanging("Incomplete: ", words(m+" should be in this plan and could have been")))
 	}
-	if len(s.LeftOut) > 0 {
-		fmt.Fprintf(&b, "\nLeft out, and why (%d)\n", len(s.LeftOut))
-		for _, l := range s.LeftOut {
+	if len(s.Absent) > 0 {
+		fmt.Fprintf(&b, "\nNot in this plan, and why (%s)\n", count(len(s.Absent), "source"))
+		for _, l := range s.Absent {
 			label := words(l.Source + " " + l.Receiver)
 			b.WriteString(hanging("  "+label+": ", words(l.Reason)))
 		}
