@@ -81,8 +81,8 @@ func commandsTable() string {
 }
 
 func columnsList() string {
-	return fmt.Sprintf("- slot list: `%s`\n- arrears: `%s`\n- passes: `%s`\n", strings.Join(export.Columns, ","),
-		strings.Join(arrearsColumns, ","), strings.Join(passesColumns, ","))
+	return fmt.Sprintf("- slot list: `%s`\n- arrears: `%s`\n- passes: `%s`\n- conjunctions: `%s`\n", strings.Join(export.Columns, ","),
+		strings.Join(arrearsColumns, ","), strings.Join(passesColumns, ","), strings.Join(conjunctionsColumns, ","))
 }
 
 func keysTable() string {
