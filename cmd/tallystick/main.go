@@ -54,7 +54,7 @@ func (p *program) run(args []string) int {
 		p.say("%s", err)
 		return signal.ExitCode()
 	case errors.As(err, &usage):
-		p.say("%s", err)
+		p.sayWrapped(usage.text)
 		return exitUsage
 	}
 	p.say("%s", err)
@@ -65,6 +65,13 @@ func (p *program) run(args []string) int {
 func (p *program) say(form string, a ...any) {
 	for line := range strings.Lines(fmt.Sprintf(form, a...)) {
 		fmt.Fprintf(p.stderr, "tallystick: %s\n", strings.TrimSuffix(line, "\n"))
+	}
+}
+
+// sayWrapped says a remark of words, in 80 columns.
+func (p *program) sayWrapped(text string) {
+	for line := range strings.Lines(text) {
+		fmt.Fprint(p.stderr, hanging("tallystick: ", line))
 	}
 }
 

@@ -79,7 +79,7 @@ func (p *program) open() (*desk, error) {
 		now = p.now().UTC()
 	}
 	if folder.Demo() {
-		p.say("no campaign.toml here: this is the built-in demonstration, invented data, looked at as of %s", now.UTC().Format("2006-01-02T15:04Z"))
+		p.sayWrapped("no campaign.toml here: this is the built-in demonstration, invented data, looked at as of " + now.UTC().Format("2006-01-02T15:04Z"))
 	}
 	return &desk{folder, now}, nil
 }

@@ -1,6 +1,9 @@
 package main
 
-import "runtime/debug"
+import (
+	"runtime/debug"
+	"strings"
+)
 
 // version is the module's version and the commit it was built from, as far as the build knows them.
 func version() string {
@@ -20,5 +23,14 @@ func version() string {
 	if commit == "" {
 		commit = "unknown"
 	}
-	return info.Main.Version + " (commit " + commit + changed + ")"
+	return released(info.Main.Version) + " (commit " + commit + changed + ")"
+}
+
+// released is the version of a release. Between releases the toolchain makes one up from the date and the commit,
+// or says "(devel)"; the commit says it better.
+func released(v string) string {
+	if v == "(devel)" || strings.HasPrefix(v, "v0.0.0-") || strings.Contains(v, "-0.") {
+		return "development"
+	}
+	return strings.TrimSuffix(v, "+dirty")
 }
