@@ -98,7 +98,7 @@ func (f *File) seriesDecay(b *binary, scale timeScale) {
 			b.decay, b.decayNote = rounded(decay, 12), "-FB1/FB0^2"
 		}
 	}
-	if slices.Contains(f.placeless, "FB2") {
+	if f.placeless["FB2"] {
 		f.remark(0, "FB2 and what follows it have no place in a campaign: far from the epoch conjunctions come at other times than predicted")
 	}
 }

@@ -138,6 +138,9 @@ func TestPublishedEphemerides(t *testing.T) {
 					t.Errorf("%s %s is not in\n%s", key, v[0], entry)
 				}
 			}
+			if start := p.values["START"][0]; start != "" && !strings.Contains(entry, "from MJD "+start+" to "+p.values["FINISH"][0]) {
+				t.Error("the span of the data is not told")
+			}
 			p.compare(t, s)
 		})
 	}

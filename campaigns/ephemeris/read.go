@@ -6,6 +6,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"maps"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -13,8 +14,11 @@ import (
 	"unicode/utf8"
 )
 
-// largestFile is the most bytes a file may have; those with twenty years of dispersion steps have a hundredth.
-const largestFile = 4 << 20
+// largestFile is the most bytes a file may have; those with twenty years of dispersion steps have a tenth.
+const largestFile = 1 << 20
+
+// mostRemarks is how many are kept: whoever has more than this has given a wrong file.
+const mostRemarks = 200
 
 // A Remark is something that whoever imports a file should know: a contradiction, an assumption, what was
 // derived and what was left out.
@@ -46,16 +50,17 @@ type File struct {
 	lines     map[string]*Line // the parameters that were understood
 	glitches  []*Line
 	unknown   []*Line
-	placeless []string // keys that are understood and have no place in a campaign
+	placeless map[string]bool // keys that are understood and have no place in a campaign
 
 	source source
+	untold int // remarks beyond those that are kept
 }
 
 // Read reads one ephemeris; name is what the file is called in messages. It errs where no entry can be made:
 // the file cannot be read, is no text, or gives no name or no position; the File then has remarks and nothing else
 // that counts. Everything else that is wrong is a Remark, and what it concerns is left out.
 func Read(r io.Reader, name string) (*File, error) {
-	f := &File{Path: name, lines: map[string]*Line{}}
+	f := &File{Path: name, lines: map[string]*Line{}, placeless: map[string]bool{}}
 	data, err := io.ReadAll(io.LimitReader(r, largestFile+1))
 	switch {
 	case err != nil:
@@ -67,6 +72,9 @@ func Read(r io.Reader, name string) (*File, error) {
 	}
 	f.read(string(data))
 	err = f.interpret()
+	if f.untold > 0 {
+		f.Remarks = append(f.Remarks, Remark{f.Path, 0, fmt.Sprintf("%d more remarks are left out: is this the right file?", f.untold)})
+	}
 	slices.SortStableFunc(f.Remarks, func(a, b Remark) int { return cmp.Compare(uint(a.Line-1), uint(b.Line-1)) }) // those about the file last
 	if err != nil {
 		return f, fmt.Errorf("%s: %w", name, err)
@@ -75,6 +83,10 @@ func Read(r io.Reader, name string) (*File, error) {
 }
 
 func (f *File) remark(line int, form string, a ...any) {
+	if len(f.Remarks) >= mostRemarks {
+		f.untold++
+		return
+	}
 	f.Remarks = append(f.Remarks, Remark{f.Path, line, fmt.Sprintf(form, a...)})
 }
 
@@ -127,9 +139,7 @@ func (f *File) take(l *Line) {
 		return
 	case k.placeless:
 		f.Needless++
-		if !slices.Contains(f.placeless, l.Key) {
-			f.placeless = append(f.placeless, l.Key)
-		}
+		f.placeless[l.Key] = true
 		return
 	}
 	before, twice := f.lines[l.Key]
@@ -152,23 +162,26 @@ func (f *File) take(l *Line) {
 }
 
 func (f *File) sayUnknown() {
-	const most = 12
 	var names []string
 	for _, l := range f.unknown {
-		name := fmt.Sprintf("%s (line %d)", plain(l.Key), l.Number)
-		if len(names) == most {
-			names = append(names, fmt.Sprintf("and %d more", len(f.unknown)-most))
-			break
-		}
-		names = append(names, name)
+		names = append(names, fmt.Sprintf("%s (line %d)", plain(l.Key), l.Number))
 	}
 	switch len(f.unknown) {
 	case 0:
 	case 1:
 		f.remark(0, "1 line with a key that is not known, kept as a comment: %s", names[0])
 	default:
-		f.remark(0, "%d lines with keys that are not known, kept as comments: %s", len(f.unknown), strings.Join(names, ", "))
+		f.remark(0, "%d lines with keys that are not known, kept as comments: %s", len(names), strings.Join(firstOf(names), ", "))
 	}
+}
+
+// firstOf cuts a list to what can be read in a message.
+func firstOf(names []string) []string {
+	const most = 12
+	if len(names) <= most {
+		return names
+	}
+	return append(names[:most:most], fmt.Sprintf("and %d more", len(names)-most))
 }
 
 // line is a parameter, or nil.
@@ -212,8 +225,8 @@ func (f *File) interpret() error {
 	f.glitch(scale)
 	f.orbit(scale)
 	if len(f.placeless) > 0 {
-		slices.Sort(f.placeless)
-		f.remark(0, "a campaign has no place for %s: left out", strings.Join(f.placeless, ", "))
+		names := slices.Sorted(maps.Keys(f.placeless))
+		f.remark(0, "a campaign has no place for %s: left out", strings.Join(firstOf(names), ", "))
 	}
 	return nil
 }

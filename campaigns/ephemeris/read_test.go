@@ -53,7 +53,7 @@ func TestRemarks(t *testing.T) {
 		"odd ecliptic":        {"PSR A\nELONG 10\nELAT 20\nECL FOO", []string{"ECL FOO", "IERS2003"}},
 		"several orbits":      {head + orbit + "PB_2 100\nA1_2 5\nT0_2 60000", []string{"several orbits", "only the first", "3 lines"}},
 		"glitch":              {head + "GLEP_1 60100\nGLF0_1 1.5e-6\nGLPH_1 0", []string{"1 glitch", "60100", "1.5e-06 Hz", "not added"}},
-		"glitch of old":       {head + "GLEP_1 59100\nGLF0_1 1.5e-6\nGLEP_2 59200", []string{"several glitches", "59200"}},
+		"glitch of old":       {head + "GLEP_1 59100\nGLF0_1 1.5e-6\nGLEP_2 59200", []string{"2 glitches", "59200"}},
 		"glitch undated":      {head + "GLF0_1 1.5e-6", []string{"without its date"}},
 		"unknown":             {head + "WHATEVER 5\nOTHER", []string{"2 lines", "WHATEVER (line 7)", "OTHER (line 8)"}},
 		"no place":            {head + "F2 1e-30\nXDOT 5", []string{"no place for F2, XDOT"}},
@@ -120,7 +120,7 @@ func TestRefusals(t *testing.T) {
 		"PSR J1\nRAJ 1:2:3\n":        "RAJ alone",
 		"PSR J1\nRAJ x\nDECJ y\n":    "no position that can be read",
 		"PSR =1\nRAJ 1:2:3\n":        "found \"=1\" as the name",
-		strings.Repeat("#\n", 3<<20): "larger than 4 MB",
+		strings.Repeat("#\n", 1<<20): "larger than 1 MB",
 	} {
 		f, err := Read(strings.NewReader(text), "a.par")
 		if err == nil || !strings.Contains(err.Error(), want) || !strings.HasPrefix(err.Error(), "a.par: ") || f == nil {
@@ -130,6 +130,14 @@ func TestRefusals(t *testing.T) {
 	if _, err := Read(iotest.ErrReader(errors.New("broken disk")), "a.par"); err == nil || err.Error() != "broken disk" {
 		t.Error(err)
 	}
+}
+
+func TestEndlessRemarks(t *testing.T) {
+	f := read(t, head+strings.Repeat("F0 1\nF0 2\n", 1000))
+	if len(f.Remarks) != mostRemarks+1 {
+		t.Errorf("%d remarks", len(f.Remarks))
+	}
+	said(t, f, "1800 more remarks")
 }
 
 // Any blanks, any case, either line end.
@@ -168,6 +176,25 @@ func TestMotionTurnsWithThePosition(t *testing.T) {
 			}
 		}
 	})
+}
+
+// Every beginning of a file, and every file with one byte changed, is read or refused; what is read passes the loader.
+func TestDamagedFiles(t *testing.T) {
+	for _, p := range publishedSets(t)[:3] {
+		whole := p.text()
+		for cut := range whole {
+			if f, err := Read(strings.NewReader(whole[:cut]), "cut.par"); err == nil {
+				load(t, f.Source())
+			}
+		}
+		for i := range whole {
+			for _, b := range []byte{' ', '\n', '0', '-', 'e', '#', 0xff} {
+				if f, err := Read(strings.NewReader(whole[:i]+string([]byte{b})+whole[i+1:]), "changed.par"); err == nil && i%5 == 0 {
+					load(t, f.Source())
+				}
+			}
+		}
+	}
 }
 
 func FuzzRead(f *testing.F) {

@@ -27,6 +27,9 @@ const (
 func (f *File) Source() string {
 	w := &entry{}
 	w.comment("%s, from %s: %s used, %d not needed for planning, %d not known.", f.Name, f.base(), lines(f.Used), f.Needless, f.Unknown)
+	if a, b := f.line("START"), f.line("FINISH"); a != nil && b != nil {
+		w.comment("It was fitted to observations from MJD %s to %s.", a.Text, b.Text)
+	}
 	w.plain("[[source]]")
 	w.set("name", strconv.Quote(f.Name), "")
 	f.writePlace(w)

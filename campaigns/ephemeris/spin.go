@@ -1,8 +1,10 @@
 package ephemeris
 
 import (
+	"fmt"
 	"math"
 	"math/big"
+	"strconv"
 	"strings"
 )
 
@@ -67,18 +69,19 @@ func (f *File) glitch(scale timeScale) {
 	if len(f.glitches) == 0 {
 		return
 	}
+	dates := map[string]*Line{} // by the glitch's number
 	var last *Line
-	count := 0
 	for _, l := range f.glitches {
-		if !strings.HasPrefix(l.Key, "GLEP_") {
-			continue
-		}
-		if l.Value < firstMJD || l.Value > lastMJD {
+		number, isDate := strings.CutPrefix(l.Key, "GLEP_")
+		switch {
+		case !isDate:
+		case l.Value <= firstMJD || l.Value >= lastMJD:
 			f.remark(l.Number, "%s %s: accepted: a modified Julian date from 1900 to 2200; left out", l.Key, l.Text)
-			continue
-		}
-		if count++; last == nil || l.Value > last.Value {
-			last = l
+		default:
+			dates[number] = l
+			if last == nil || l.Value > last.Value {
+				last = l
+			}
 		}
 	}
 	if last == nil {
@@ -86,35 +89,30 @@ func (f *File) glitch(scale timeScale) {
 		return
 	}
 	f.source.glitch = scale.epoch(last.exact)
-	steps := 0.0
-	if spin := f.line("PEPOCH"); spin != nil {
-		for _, l := range f.glitches {
-			at, isStep := strings.CutPrefix(l.Key, "GLF0_")
-			if isStep && f.glitchMJD(at) > spin.Value {
-				steps += l.Value
-			}
-		}
-	}
 	what := "1 glitch"
-	if count > 1 {
-		what = "several glitches"
+	if len(dates) > 1 {
+		what = strconv.Itoa(len(dates)) + " glitches"
 	}
-	text := what + ", the last at MJD " + last.Text
-	switch {
-	case steps != 0:
-		f.remark(last.Number, "%s; those after PEPOCH change F0 by %.3g Hz, which is not added: the spin is that of PEPOCH", text, steps)
-	default:
-		f.remark(last.Number, "%s: noted as glitch_mjd", text)
+	what += ", the last at MJD " + last.Text + ": noted as glitch_mjd"
+	if steps := f.stepsAfterEpoch(dates); steps != 0 {
+		what += fmt.Sprintf("; after PEPOCH F0 changes by %.3g Hz, which is not added: the spin is that of PEPOCH", steps)
 	}
+	f.remark(last.Number, "%s", what)
 }
 
-func (f *File) glitchMJD(number string) float64 {
+// stepsAfterEpoch is by how much the glitches after PEPOCH change the frequency for good.
+func (f *File) stepsAfterEpoch(dates map[string]*Line) (steps float64) {
+	spin := f.line("PEPOCH")
+	if spin == nil {
+		return 0
+	}
 	for _, l := range f.glitches {
-		if l.Key == "GLEP_"+number {
-			return l.Value
+		number, isStep := strings.CutPrefix(l.Key, "GLF0_")
+		if at := dates[number]; isStep && at != nil && at.Value > spin.Value {
+			steps += l.Value
 		}
 	}
-	return 0
+	return steps
 }
 
 // periodDays is 1/f in days, with digits to spare.
