@@ -45,9 +45,7 @@ change_min = 5
 // load puts an entry into a campaign, which must accept it.
 func load(t testing.TB, entry string) *campaigns.Source {
 	t.Helper()
-	c, err := campaigns.LoadFS(fstest.MapFS{
-		campaigns.CampaignFile: {Data: []byte(site)}, "sources/imported.toml": {Data: []byte(entry)},
-	}, "")
+	c, err := campaignWith(entry)
 	if err != nil {
 		t.Fatalf("the entry is refused:\n%v\n%s", err, entry)
 	}
@@ -55,6 +53,12 @@ func load(t testing.TB, entry string) *campaigns.Source {
 		t.Fatalf("%d sources in\n%s", len(c.Sources), entry)
 	}
 	return &c.Sources[0]
+}
+
+func campaignWith(entry string) (*campaigns.Campaign, error) {
+	return campaigns.LoadFS(fstest.MapFS{
+		campaigns.CampaignFile: {Data: []byte(site)}, "sources/imported.toml": {Data: []byte(entry)},
+	}, "")
 }
 
 func read(t testing.TB, text string) *File {

@@ -254,7 +254,7 @@ func (f *File) impossible() {
 	f.within("P1", between(-1e-3, 1e-3), "within 1e-3 of 0")
 	f.within("DM", between(0, 10000), "0 to 10000 pc/cm3")
 	f.within("PB", between(shortestOrbitDays, 1e5), "0.001 to 100000 d")
-	f.within("FB0", between(1/(99999*secPerDay), 1/(shortestOrbitDays*secPerDay)), "that of an orbit of 0.001 to 99999 d")
+	f.within("FB0", between(1.0/(99999*secPerDay), 1/(shortestOrbitDays*secPerDay)), "that of an orbit of 0.001 to 99999 d")
 	f.within("FB1", between(-1, 1), "within 1 Hz/s of 0")
 	f.within("A1", between(1e-9, 1e5), "1e-9 to 100000 light-seconds")
 	f.within("ECC", func(x float64) bool { return x >= 0 && x < 1 }, "0 to below 1: an orbit that is closed")

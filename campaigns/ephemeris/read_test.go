@@ -3,7 +3,10 @@ package ephemeris
 import (
 	"errors"
 	"fmt"
+	"maps"
 	"math"
+	"slices"
+	"strconv"
 	"strings"
 	"testing"
 	"testing/iotest"
@@ -174,6 +177,42 @@ func TestMotionTurnsWithThePosition(t *testing.T) {
 			if math.Abs(m.value-want) > 3e-2 { // what 700 mas bend by at declination 84: 700²/2.06e8 tan 84
 				t.Fatalf("motion %s, followed %.6f", a.motion[i], want)
 			}
+		}
+	})
+}
+
+// Whatever the values, and at every edge of what is possible: an entry passes the loader.
+func TestExtremeValues(t *testing.T) {
+	keys := append(slices.Sorted(maps.Keys(keywords)), "GLEP_1", "GLF0_1", "FB2", "PB_2", "WHATEVER")
+	edges := []float64{0, 1e-320, 1e-21, 1e-15, 1e-12, 1e-9, 1e-7, 1e-5, 1e-3, 0.5, 1, 50, 90, 100, 360, 1000, 1999, 2000, 15020, 20000, 60000, 86400, 1e5, 124594, 1e8, 1e21, 1e300}
+	draw := func(t *rapid.T) string {
+		x := rapid.SampledFrom(edges).Draw(t, "edge") * rapid.SampledFrom([]float64{1, 1, -1, 1 - 1e-12, 1 + 1e-9, 0.7, 1.3}).Draw(t, "factor")
+		return strconv.FormatFloat(x, rapid.SampledFrom([]byte("eg")).Draw(t, "form"), -1, 64)
+	}
+	rapid.Check(t, func(t *rapid.T) {
+		var b strings.Builder
+		b.WriteString("PSR J1\nRAJ 1:2:3\nDECJ -4:5:6\nPEPOCH 60000\n")
+		if rapid.Bool().Draw(t, "binary") {
+			b.WriteString("PB 1.5\nA1 1\nTASC 60000\n")
+		}
+		if rapid.Bool().Draw(t, "tcb") {
+			b.WriteString("UNITS TCB\n")
+		}
+		for _, key := range rapid.SliceOfN(rapid.SampledFrom(keys), 1, 12).Draw(t, "keys") {
+			if k := keywords[key]; k.form == number {
+				fmt.Fprintf(&b, "%s %s 1 %s\n", key, draw(t), strings.TrimPrefix(draw(t), "-"))
+			}
+		}
+		f, err := Read(strings.NewReader(b.String()), "a.par")
+		if err != nil {
+			t.Fatal(err)
+		}
+		entry := f.Source()
+		if strings.Contains(entry, "NaN") || strings.Contains(entry, "Inf") || strings.Contains(fmt.Sprint(f.Remarks), "NaN") {
+			t.Fatalf("%v\n%s", f.Remarks, entry)
+		}
+		if _, err := campaignWith(entry); err != nil {
+			t.Fatalf("%v\n%s\n%s", err, b.String(), entry)
 		}
 	})
 }
