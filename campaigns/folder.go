@@ -87,7 +87,7 @@ func (f *Folder) open() error {
 			f.path(LogbookFile), len(torn), tornFile))
 	}
 	if n := len(f.Damage); n > 0 {
-		f.Notices = append(f.Notices, fmt.Sprintf("%s has %d damaged lines, which do not count; the first: %s", f.path(LogbookFile), n, f.Damage[0].Error()))
+		f.Notices = append(f.Notices, fmt.Sprintf("%s: %s left out; the first: %s", f.path(LogbookFile), count(n, "damaged line"), f.Damage[0].Error()))
 	}
 	f.Notices = append(f.Notices, f.strangers()...)
 	return nil
