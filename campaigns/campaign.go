@@ -29,6 +29,15 @@ type Site struct {
 	SunLimitDeg          float64        // never point closer to the Sun than this
 	HorizonDeg           [][2]float64   // azimuth, elevation: linear between, wraps round through north
 	Mount                Mount
+	Refraction           *Refraction // nil: limits hold for elevations without air, which is the rule
+}
+
+// Refraction is the air at a site. A site that has one counts its elevation limits and mask in elevations as they are
+// seen through it, by radio.
+type Refraction struct {
+	PressureHPa  float64 // at the site, not reduced to sea level
+	TemperatureC float64
+	Humidity     float64 // relative, 0..1
 }
 
 // Mount says how a telescope moves.

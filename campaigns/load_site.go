@@ -44,6 +44,7 @@ func (t *table) site() Site {
 		SettleSec:            t.number("settle_s", between(0, 600)),
 		SunLimitDeg:          t.number("sun_limit_deg", between(0, 90)),
 		HorizonDeg:           t.horizon("horizon_deg"),
+		Refraction:           t.refraction(),
 	}
 	switch s.Mount {
 	case AltAz:
@@ -52,6 +53,22 @@ func (t *table) site() Site {
 		s.HourAngleLimitsDeg = t.limits("hour_angle_limits_deg", between(-180, 180))
 	}
 	return s
+}
+
+// refraction reads the air at a site; nil when limits are to hold without any.
+func (t *table) refraction() *Refraction {
+	r := t.table("refraction", "refraction", false)
+	if r == nil {
+		return nil
+	}
+	air := &Refraction{
+		PressureHPa:  r.number("pressure_hpa", between(100, 1100)),
+		TemperatureC: r.number("temperature_c", between(-80, 60)),
+		Humidity:     r.number("humidity", between(0, 1)),
+	}
+	r.done(nil)
+	t.passOn("refraction", r)
+	return air
 }
 
 // otherMountsKey explains keys that another mount would have. They are not judged when the mount is not known.

@@ -48,6 +48,7 @@ func TestLoadSampleReadsEveryKey(t *testing.T) {
 			ElevationLimitsDeg: [2]float64{8, 87}, AzimuthTravelDeg: [2]float64{-270, 270}, SlewDegPerMin: [2]float64{24, 12},
 			AccelerationDegPerS2: [2]float64{0.1, 0.1}, SettleSec: 20, SunLimitDeg: 5,
 			HorizonDeg: [][2]float64{{0, 9}, {60, 14.5}, {110, 8}}, Mount: AltAz,
+			Refraction: &Refraction{PressureHPa: 985, TemperatureC: 12, Humidity: 0.55},
 		}, {
 			Name: "Birch Sands", LatitudeDeg: -29.5, LongitudeDeg: 140.2, HeightM: 60, TimeZone: time.UTC,
 			ElevationLimitsDeg: [2]float64{15, 90}, HourAngleLimitsDeg: [2]float64{-75, 75}, SlewDegPerMin: [2]float64{15, 15},
@@ -82,7 +83,7 @@ func TestLoadSampleReadsEveryKey(t *testing.T) {
 			}, {
 				Kind: Connect, Receivers: []string{"L", "S", "P"}, Minutes: 25, MinFraction: 0.6, MaxMinutes: 50, MaxPhaseErrorTurns: 0.1,
 			}},
-			File: main, Line: 67,
+			File: main, Line: 68,
 		}, {
 			Name: "C Bright", RADeg: 187.5, DecDeg: -2.25, PositionMJD: 51544.5, Priority: 1,
 			Aims: []Aim{{Kind: Calibration, Receivers: []string{"L"}, Minutes: 5, MinFraction: 0.6, MaxMinutes: 10, PerSession: 1}},

@@ -16,7 +16,27 @@ func (s *Site) limits(src *Source) sky.Limits {
 	for _, p := range s.HorizonDeg {
 		l.Mask = append(l.Mask, sky.MaskPoint{AzimuthDeg: p[0], ElevationDeg: p[1]})
 	}
+	if s.Refraction != nil {
+		l.Refraction = s.Refraction.air()
+	}
 	return s.mount().Limits(l)
+}
+
+// air is the refraction as sky works with it; the loader has checked its ranges.
+func (r *Refraction) air() *sky.Refraction {
+	air, err := sky.NewRefraction(r.PressureHPa, r.TemperatureC, r.Humidity)
+	if err != nil {
+		panic("campaigns: " + err.Error())
+	}
+	return air
+}
+
+// Air says, for an output, which elevations the limits hold for.
+func (s *Site) Air() string {
+	if s.Refraction == nil {
+		return "elevations without refraction"
+	}
+	return fmt.Sprintf("limits with radio refraction at %g hPa, %g C, humidity %g; elevations without", s.Refraction.PressureHPa, s.Refraction.TemperatureC, s.Refraction.Humidity)
 }
 
 // sunLimit is the stricter of the site's and the source's own.

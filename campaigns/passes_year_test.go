@@ -70,3 +70,23 @@ func checkPasses(t *testing.T, site *Site, where *sky.Site, src *Source, rows []
 		}
 	}
 }
+
+// Air lifts a source by some 6 arcmin at 8°: it comes within its limit earlier and leaves it later, by about that over
+// 15 arcmin a minute. Without a refraction of the site's, limits hold without air.
+func TestAirLengthensAPassOnlyWhereTheSiteAsksForIt(t *testing.T) {
+	f, now := openDemo(t)
+	site, src := f.Campaign.Sites[0], &f.Campaign.Sources[0]
+	site.HorizonDeg = nil
+	usable := func() time.Duration {
+		rows, err := Passes(&site, src, now, now.AddDate(0, 0, 1))
+		if err != nil {
+			t.Fatal(err)
+		}
+		return rows[len(rows)-1].UsableEnd.Sub(rows[0].UsableStart)
+	}
+	plain := usable()
+	site.Refraction = &Refraction{PressureHPa: 930, TemperatureC: 5, Humidity: 0.6}
+	if gain := usable() - plain; gain < 30*time.Second || gain > 4*time.Minute {
+		t.Errorf("air lengthens the pass by %s", gain)
+	}
+}

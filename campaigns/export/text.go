@@ -102,7 +102,7 @@ func facts(s Sheet) block {
 		add("local time", fmt.Sprintf("%s to %s, %s", t.Start.In(zone).Format(local), t.End.In(zone).Format(local), zone))
 	}
 	add("Site", fmt.Sprintf("%s, latitude %s, longitude %s, height %.0f m", s.Site.Name, signed(s.Site.LatitudeDeg, "N", "S"), signed(s.Site.LongitudeDeg, "E", "W"), s.Site.HeightM))
-	limits := fmt.Sprintf("elevation %g to %g deg and above the horizon mask; at least %g deg from the Sun", s.Site.ElevationLimitsDeg[0], s.Site.ElevationLimitsDeg[1], s.Site.SunLimitDeg)
+	limits := fmt.Sprintf("elevation %g to %g deg and above the horizon mask; at least %g deg from the Sun; %s", s.Site.ElevationLimitsDeg[0], s.Site.ElevationLimitsDeg[1], s.Site.SunLimitDeg, s.Site.Air())
 	if altaz(s) {
 		limits += fmt.Sprintf("; cable %+g to %+g deg", s.Site.AzimuthTravelDeg[0], s.Site.AzimuthTravelDeg[1])
 	}

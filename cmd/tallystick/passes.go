@@ -110,7 +110,7 @@ func passesCSV(w io.Writer, source string, rows []campaigns.PassRow) error {
 }
 
 func passesText(w io.Writer, site *campaigns.Site, source string, rows []campaigns.PassRow) error {
-	if _, err := fmt.Fprint(w, hanging("", words(fmt.Sprintf("Passes of %s over %s; elevation limits %g to %g deg; all times UTC", source, site.Name, site.ElevationLimitsDeg[0], site.ElevationLimitsDeg[1]))), "\n"); err != nil {
+	if _, err := fmt.Fprint(w, hanging("", words(fmt.Sprintf("Passes of %s over %s; elevation limits %g to %g deg, %s; all times UTC", source, site.Name, site.ElevationLimitsDeg[0], site.ElevationLimitsDeg[1], site.Air()))), "\n"); err != nil {
 		return err
 	}
 	columns := []column{{"Transit", 16, false}, {"El", 4, true}, {"Rise", 5, true}, {"Set", 5, true}, {"Usable", 13, false}, {"Limited by", 31, false}}
