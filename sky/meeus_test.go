@@ -146,6 +146,35 @@ func TestTrapNeverAndAlways(t *testing.T) {
 	}
 }
 
+// The library says that its times lie within the day asked for, and gives the transit of the next day, four minutes of
+// sidereal turning off, for right ascensions just below 24 h.
+func TestTrapTransitDay(t *testing.T) {
+	day := trapInstant.Truncate(24 * time.Hour)
+	s := trapSite(t, 40, 0)
+	f := mustFrame(t, day.Add(12*time.Hour))
+	p := f.Place(Target{RADeg: 359.2, DecDeg: 20})
+	ra, dec := f.RADec(p, day)
+	a, d := unit.RAFromDeg(ra), unit.AngleFromDeg(dec)
+	_, transit, _, err := rise.Times(globe.Coord{Lat: unit.AngleFromDeg(40)}, unit.Time(69.2), 0, sidereal.Apparent0UT(MJD(day)+mjdOffset),
+		[]unit.RA{a, a, a}, []unit.Angle{d, d, d})
+	if err != nil {
+		t.Fatal(err)
+	}
+	theirs := day.Add(time.Duration(transit.Sec() * 1e9))
+	if off := math.Abs(s.Look(f, p, theirs).HourAngleDeg); off < 0.5 && theirs.Sub(day) < 24*time.Hour {
+		t.Errorf("the library's transit is %.2f° off: has it been mended?", off)
+	}
+	for _, e := range s.Passes(f, p, day, day.Add(24*time.Hour), Limits{}).Events {
+		if e.Kind == UpperTransit {
+			if ha := s.Look(f, p, e.At).HourAngleDeg; math.Abs(ha) > 1e-3 || e.At.Before(day) || e.At.After(day.Add(24*time.Hour)) {
+				t.Errorf("transit at %s, hour angle %g°", e.At, ha)
+			}
+			return
+		}
+	}
+	t.Error("no transit in a day")
+}
+
 // The library's refraction is for light; water vapour makes that for radio waves larger.
 func TestTrapRefraction(t *testing.T) {
 	air, err := NewRefraction(1010, 10, 0.8)
