@@ -168,6 +168,9 @@ func shares(minutes float64) int32 {
 	return int32(min(math.Round(minutes*sharesPerMinute), math.MaxInt32/4))
 }
 
+// cadence adds a term for what the aim is owed. A slot with any of its receivers is an observation and is worth the
+// whole need: two receivers take two slots, and halving their worth would leave every pair behind the sources that
+// need one.
 func (jb *jobBuilder) cadence(aim *Aim) {
 	minutes, ok := jb.wantedMinutes(aim)
 	if !ok {
@@ -180,7 +183,7 @@ func (jb *jobBuilder) cadence(aim *Aim) {
 		if need.Receiver == receiver {
 			jb.owes(aim, need.Debt)
 			jb.term(aim, sched.Term{
-				Scale: jb.scale(need.Need / float64(len(aim.Receivers))), Curve: sched.Root,
+				Scale: jb.scale(need.Need), Curve: sched.Root,
 				Wanted: wanted, Least: least, Cum: jb.effective(), Why: need.Why,
 			})
 		}
