@@ -9,9 +9,6 @@ import (
 
 // A clock turns the observatory's time into the time in which a source's ephemeris is given: TDB at the
 // solar-system barycentre, and for a binary the time at which the pulses left its orbit.
-//
-// The Earth's place is taken once a day; in half a day its light time to a source changes by 4 s at
-// most, 0.0008 turns of a 90-minute orbit.
 type clock struct {
 	target sky.Target
 	orbit  *orbit.Orbit // nil for a source without one
@@ -20,19 +17,35 @@ type clock struct {
 
 // barycentreMJD is TDB at the barycentre when a wave front that is at the observatory at t passes there.
 func (c *clock) barycentreMJD(t time.Time) float64 {
-	return tdbMJD(t) + c.frames.at(t).RoemerSec(c.target)/secPerDay
+	return tdbMJD(t) + c.lightSec(t)/secPerDay
 }
 
 // orbitMJD is when what is heard at t left the orbit.
 func (c *clock) orbitMJD(t time.Time) float64 {
-	return c.orbit.FromObservatory(tdbMJD(t), c.frames.at(t).RoemerSec(c.target))
+	return c.orbit.FromObservatory(tdbMJD(t), c.lightSec(t))
 }
 
-// heardAt is when something that left the orbit is heard at the observatory. The result is within a day
-// of near, whose Earth it uses.
-func (c *clock) heardAt(orbitMJD float64, near time.Time) time.Time {
-	tdb := c.orbit.ToObservatory(orbitMJD, c.frames.at(near).RoemerSec(c.target))
-	return utcOf(tdb)
+// heardAt is when something that left the orbit is heard at the observatory.
+func (c *clock) heardAt(orbitMJD float64) time.Time {
+	t := utcOf(orbitMJD)
+	// The Earth moves at a ten-thousandth of the speed of light: of ten minutes' error each round leaves as much.
+	for range 3 {
+		t = utcOf(c.orbit.ToObservatory(orbitMJD, c.lightSec(t)))
+	}
+	return t
+}
+
+// reach is more than orbit time and the observatory's can differ by: the Earth's light time to the barycentre, at
+// most 505 s, that across the orbit, and a minute between TDB and UTC.
+func (c *clock) reach() time.Duration {
+	size := c.orbit.SemimajorLs * (1 + c.orbit.Eccentricity)
+	return 15*time.Minute + time.Duration(size*float64(time.Second))
+}
+
+// lightSec is by how much earlier a wave front is at the Earth at t than at the barycentre.
+func (c *clock) lightSec(t time.Time) float64 {
+	frame, at := c.frames.near(t)
+	return frame.RoemerSecAt(c.target, at)
 }
 
 const secPerDay = 86400
@@ -60,14 +73,24 @@ const firstDay, lastDay = 41318, 88067
 
 // at is the frame of noon of the day of t.
 func (f *frames) at(t time.Time) *sky.Frame {
-	day := min(max(int(sky.MJD(t)), firstDay), lastDay)
+	frame, _ := f.near(t)
+	return frame
+}
+
+// near is the frame of noon of the day of t, and t or, outside the days that frames are made for, the nearest of them.
+func (f *frames) near(t time.Time) (*sky.Frame, time.Time) {
+	mjd := sky.MJD(t)
+	day := min(max(int(mjd), firstDay), lastDay)
+	if mjd < firstDay || mjd > lastDay+1 {
+		t = sky.TimeOfMJD(float64(day) + 0.5)
+	}
 	if fr, ok := f.byDay[day]; ok {
-		return fr
+		return fr, t
 	}
 	fr, err := sky.NewFrame(sky.TimeOfMJD(float64(day) + 0.5))
 	if err != nil {
 		panic("campaigns: " + err.Error()) // the days are within what sky works out
 	}
 	f.byDay[day] = fr
-	return fr
+	return fr, t
 }

@@ -207,12 +207,11 @@ type orbitEvent struct {
 // passing is what is heard of an orbit in a stretch of time.
 func (k *knowledge) passing(s stretch) []orbitEvent {
 	o := k.clock.orbit
-	// What is heard left the orbit that much earlier or later: the Earth's light time to the barycentre, and the orbit's.
-	reach := 20*time.Minute + time.Duration(o.SemimajorLs*float64(time.Second))
+	reach := k.clock.reach()
 	from, to := tdbMJD(s.from.Add(-reach)), tdbMJD(s.to.Add(reach))
 	var out []orbitEvent
 	add := func(kind ConjunctionKind, mjd float64) {
-		if at := k.clock.heardAt(mjd, utcOf(mjd)); !at.Before(s.from) && at.Before(s.to) {
+		if at := k.clock.heardAt(mjd); !at.Before(s.from) && at.Before(s.to) {
 			out = append(out, orbitEvent{kind, at, mjd})
 		}
 	}

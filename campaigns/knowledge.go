@@ -74,11 +74,11 @@ type passage struct {
 func (k *knowledge) superior(halfWidthTurns float64, from, to time.Time) []passage {
 	o := k.clock.orbit
 	period := time.Duration(o.PeriodDays * 24 * float64(time.Hour))
-	reach := time.Duration(halfWidthTurns*float64(period)) + 20*time.Minute
+	// A widened window is at most four times as wide as the wanted one.
+	reach := time.Duration(math.Min(0.5, 4*halfWidthTurns)*float64(period)) + k.clock.reach()
 	var out []passage
 	for _, mjd := range o.Conjunctions(orbit.Superior, tdbMJD(from.Add(-reach)), tdbMJD(to.Add(reach))) {
-		// Orbit time and observatory time are within ten minutes and the orbit's own light time of one another.
-		p := passage{centre: k.clock.heardAt(mjd, utcOf(mjd)), trust: o.ConjunctionError(k.source.Orbit.sigmas(), mjd)}
+		p := passage{centre: k.clock.heardAt(mjd), trust: o.ConjunctionError(k.source.Orbit.sigmas(), mjd)}
 		p.halfWide = time.Duration(p.trust.WidenedTurns(halfWidthTurns) * float64(period))
 		if p.centre.Add(p.halfWide).After(from) && p.centre.Add(-p.halfWide).Before(to) {
 			out = append(out, p)

@@ -143,8 +143,8 @@ func longest(windows []sched.Window) int {
 func (k *knowledge) hidden(in []orbit.Span, start time.Time, last int) []sched.Span {
 	var out []sched.Span
 	for _, s := range in {
-		from := k.clock.heardAt(s.FromMJD, utcOf(s.FromMJD)).Sub(start).Minutes()
-		to := k.clock.heardAt(s.ToMJD, utcOf(s.ToMJD)).Sub(start).Minutes()
+		from := k.clock.heardAt(s.FromMJD).Sub(start).Minutes()
+		to := k.clock.heardAt(s.ToMJD).Sub(start).Minutes()
 		span := sched.Span{From: max(0, int(math.Floor(from))), To: min(last, int(math.Ceil(to)))}
 		if span.To > span.From {
 			out = append(out, span)
@@ -160,7 +160,7 @@ func (k *knowledge) eclipses(start time.Time, last int) (hidden, untimable []sch
 	if o == nil || o.Eclipse == nil {
 		return nil, nil
 	}
-	const margin = time.Hour // orbit time and the observatory's differ by less
+	margin := k.clock.reach()
 	from, to := tdbMJD(start.Add(-margin)), tdbMJD(start.Add(time.Duration(last)*time.Minute+margin))
 	e := o.Eclipse.orbit()
 	return k.hidden(k.clock.orbit.EclipseSpans(e, from, to), start, last), k.hidden(k.clock.orbit.UntimableSpans(e, from, to), start, last)
