@@ -108,25 +108,32 @@ type Flux struct {
 // PeriastronMJD.
 type Orbit struct {
 	PeriodDays       float64
-	AscendingNodeMJD float64 // TDB
-	PeriastronMJD    float64 // TDB
-	SemimajorLs      float64 // projected, light-seconds
-	Eccentricity     float64 // 0 ≤ e < 1
-	PeriastronDeg    float64 // longitude of periastron of the pulsar's orbit
+	FrequencySeries  []float64 // orbital frequency and its derivatives, Hz, Hz/s ...: instead of the period, which is then 1/the first
+	AscendingNodeMJD float64   // TDB
+	PeriastronMJD    float64   // TDB
+	SemimajorLs      float64   // projected, light-seconds
+	Eccentricity     float64   // 0 ≤ e < 1
+	PeriastronDeg    float64   // longitude of periastron of the pulsar's orbit
 	AdvanceDegPerYr  float64
 	Decay            float64 // dPb/dt, s/s
 	CompanionMsun    float64 // 0: not known
 	SinI             float64 // 0: not known
 	SigmaPeriodDays  float64
 	SigmaEpochDays   float64
+	SigmaSemimajorLs float64
+	SigmaDecay       float64
+	SigmaAdvance     float64    // deg/yr
+	DataMJD          [2]float64 // first and last observation behind the ephemeris; 0: not known
 	Eclipse          *Eclipse
 }
 
 // Eclipse is the part of the orbit in which the pulsar is not heard.
 type Eclipse struct {
-	HalfWidthTurns float64
+	HalfWidthTurns float64 // at ReferenceMHz
 	CentreTurns    float64 // orbital phase from the ascending node; superior conjunction, 0.25, unless given
 	MarginTurns    float64 // on both sides: heard, but of no use for timing
+	ReferenceMHz   float64 // 0: as wide at every frequency
+	Index          float64 // width ∝ frequency^Index
 }
 
 // AimKind is a reason to observe a source.

@@ -27,8 +27,9 @@ type ConjunctionRow struct {
 	Kind             ConjunctionKind
 	At               time.Time // as it is heard at the observatory
 	Prediction       orbit.Prediction
-	SigmaKnown       bool    // the ephemeris gives the errors of epoch and period; else the Prediction says nothing
-	HalfWidthTurns   float64 // within which it is wanted: the prediction is judged against it
+	SigmaKnown       bool     // the ephemeris gives the errors of epoch and period; else the Prediction says nothing
+	Receivers        []string // of an eclipse: those of the site that it holds for; eclipses are longer at low frequencies
+	HalfWidthTurns   float64  // within which it is wanted: the prediction is judged against it
 	ElevationDeg     float64
 	SunSeparationDeg float64
 	Usable           bool   // within elevation limits, horizon mask, Sun limit and the mount's hour angles
@@ -107,12 +108,13 @@ type stretch struct{ from, to time.Time }
 
 // passageSky is the sky of a site over the days that are asked about.
 type passageSky struct {
-	site     *Site
-	where    *sky.Site
-	from, to time.Time
-	days     []*sky.Frame // for windows
-	frames   *frames
-	sessions []*Session // at the site, in time order
+	site      *Site
+	where     *sky.Site
+	from, to  time.Time
+	days      []*sky.Frame // for windows
+	frames    *frames
+	sessions  []*Session  // at the site, in time order
+	receivers []*Receiver // of the site
 }
 
 func newPassageSky(c *Campaign, site *Site, from, to time.Time) (*passageSky, error) {
@@ -127,6 +129,11 @@ func newPassageSky(c *Campaign, site *Site, from, to time.Time) (*passageSky, er
 	for i := range c.Sessions {
 		if s := &c.Sessions[i]; s.Site == site.Name && s.End.After(from) && s.Start.Before(to) {
 			p.sessions = append(p.sessions, s)
+		}
+	}
+	for i := range c.Receivers {
+		if r := &c.Receivers[i]; r.Site == site.Name {
+			p.receivers = append(p.receivers, r)
 		}
 	}
 	return p, nil
@@ -146,13 +153,13 @@ func (p *passageSky) add(rows []ConjunctionRow, k *knowledge, stretches []stretc
 	src := k.source
 	limits := p.site.limits(src)
 	windows := p.where.Season(p.days, src.target(), p.from, p.to, limits)
-	sigmas := src.Orbit.sigmas()
+	sigmas := src.orbitSigmas()
 	for _, s := range stretches {
 		if turns := s.to.Sub(s.from).Hours() / 24 / src.Orbit.PeriodDays; turns > mostTurns {
 			return nil, fmt.Errorf("%s: found an orbit of %.3g d, %.0f turns from %s to %s; accepted: at most %d", src.Name, src.Orbit.PeriodDays, turns,
 				s.from.UTC().Format(time.RFC3339), s.to.UTC().Format(time.RFC3339), mostTurns)
 		}
-		for _, e := range k.passing(s) {
+		for _, e := range k.passing(s, p.receivers) {
 			frame := p.frames.at(e.at)
 			place := frame.Place(src.target())
 			_, el := p.where.AzEl(frame, &place, e.at)
@@ -162,7 +169,7 @@ func (p *passageSky) add(rows []ConjunctionRow, k *knowledge, stretches []stretc
 			prediction := k.clock.orbit.ConjunctionError(sigmas, e.orbitMJD)
 			rows = append(rows, ConjunctionRow{
 				Source: src.Name, Kind: e.kind, At: e.at,
-				Prediction: prediction, SigmaKnown: src.Orbit.SigmaEpochDays > 0 && src.Orbit.SigmaPeriodDays > 0,
+				Prediction: prediction, SigmaKnown: sigmaKnown(prediction), Receivers: e.receivers,
 				HalfWidthTurns: src.conjunctionHalfWidth(), ElevationDeg: el, SunSeparationDeg: frame.SunDeg(place, e.at),
 				Usable: within(windows, e.at), Session: p.session(e.at),
 			})
@@ -199,33 +206,65 @@ func (s *Source) conjunctionHalfWidth() float64 {
 
 // An orbitEvent is something that is heard at an instant.
 type orbitEvent struct {
-	kind     ConjunctionKind
-	at       time.Time
-	orbitMJD float64
+	kind      ConjunctionKind
+	at        time.Time
+	orbitMJD  float64
+	receivers []string // of an eclipse
 }
 
-// passing is what is heard of an orbit in a stretch of time.
-func (k *knowledge) passing(s stretch) []orbitEvent {
+// An eclipseFor is an eclipse, and the receivers that see it as wide.
+type eclipseFor struct {
+	eclipse   orbit.Eclipse
+	receivers []string
+}
+
+// eclipsesFor are the source's eclipses, one for all receivers where its width does not depend on frequency, or
+// where there are none.
+func (o *Orbit) eclipsesFor(receivers []*Receiver) []eclipseFor {
+	switch e := o.Eclipse; {
+	case e == nil:
+		return nil
+	case e.ReferenceMHz == 0 || len(receivers) == 0:
+		one := eclipseFor{eclipse: orbit.Eclipse{CentreTurns: e.CentreTurns, HalfWidthTurns: e.HalfWidthTurns, MarginTurns: e.MarginTurns}}
+		for _, r := range receivers {
+			one.receivers = append(one.receivers, r.Name)
+		}
+		return []eclipseFor{one}
+	}
+	var out []eclipseFor
+	for _, r := range receivers {
+		out = append(out, eclipseFor{o.Eclipse.at(r), []string{r.Name}})
+	}
+	return out
+}
+
+// sigmaKnown says that a prediction rests on the errors of both epoch and period.
+func sigmaKnown(p orbit.Prediction) bool {
+	return !slices.Contains(p.Cautions, orbit.EpochUnknown) && !slices.Contains(p.Cautions, orbit.PeriodUnknown)
+}
+
+// passing is what is heard of an orbit in a stretch of time, with some receivers.
+func (k *knowledge) passing(s stretch, receivers []*Receiver) []orbitEvent {
 	o := k.clock.orbit
 	reach := k.clock.reach()
 	from, to := tdbMJD(s.from.Add(-reach)), tdbMJD(s.to.Add(reach))
 	var out []orbitEvent
-	add := func(kind ConjunctionKind, mjd float64) {
+	add := func(kind ConjunctionKind, mjd float64, receivers []string) {
 		if at := k.clock.heardAt(mjd); !at.Before(s.from) && at.Before(s.to) {
-			out = append(out, orbitEvent{kind, at, mjd})
+			out = append(out, orbitEvent{kind, at, mjd, receivers})
 		}
 	}
 	for _, mjd := range o.Conjunctions(orbit.Superior, from, to) {
-		add(SuperiorConjunction, mjd)
+		add(SuperiorConjunction, mjd, nil)
 	}
 	for _, mjd := range o.Conjunctions(orbit.Inferior, from, to) {
-		add(InferiorConjunction, mjd)
+		add(InferiorConjunction, mjd, nil)
 	}
-	if e := k.source.Orbit.Eclipse; e != nil {
+	for _, e := range k.source.Orbit.eclipsesFor(receivers) {
 		// A turn more on either side: spans are cut off there, and the cuts are no ends of eclipses.
-		for _, span := range o.EclipseSpans(e.orbit(), from-o.PeriodDays, to+o.PeriodDays) {
-			add(EclipseStart, span.FromMJD)
-			add(EclipseEnd, span.ToMJD)
+		for _, span := range o.EclipseSpans(e.eclipse, from-o.PeriodDays, to+o.PeriodDays) {
+			add(EclipseStart, span.FromMJD, e.receivers)
+			add(EclipseEnd, span.ToMJD, e.receivers)
 		}
 	}
 	return out

@@ -26,7 +26,7 @@ func (p *Prepared) jobs(b *books, source *preparedSource, t siteTrack, bars map[
 	for r, rec := range p.Problem.Receivers {
 		job := sched.Job{
 			Source: source.src.Name, Receiver: r, Priority: source.src.Priority,
-			MaxSlots: 1, Barred: bars[source.src.Name], Facts: p.facts(source, t),
+			MaxSlots: 1, Barred: bars[source.src.Name], Facts: p.facts(source, r, t),
 		}
 		jb := jobBuilder{prepared: p, books: b, source: source, receiver: r, job: &job}
 		asked := false

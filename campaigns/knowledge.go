@@ -40,24 +40,41 @@ func (s *Source) target() sky.Target {
 }
 
 func (o *Orbit) elements() orbit.Elements {
-	return orbit.Elements{
+	el := orbit.Elements{
 		PeriodDays: o.PeriodDays, AscendingNodeMJD: o.AscendingNodeMJD, PeriastronMJD: o.PeriastronMJD,
 		SemimajorLs: o.SemimajorLs, Eccentricity: o.Eccentricity, PeriastronDeg: o.PeriastronDeg,
 		AdvanceDegPerYr: o.AdvanceDegPerYr, Decay: o.Decay,
 	}
-}
-
-// sigmas are the errors of the orbit. Those of an eclipsing system are let wander beyond its data.
-func (o *Orbit) sigmas() orbit.Sigmas {
-	s := orbit.Sigmas{EpochDays: o.SigmaEpochDays, PeriodDays: o.SigmaPeriodDays}
-	if o.Eclipse != nil {
-		s.WanderSecPerYr = orbit.DefaultWanderSecPerYr
+	if len(o.FrequencySeries) > 0 {
+		el.PeriodDays, el.FrequencySeries = 0, o.FrequencySeries
 	}
-	return s
+	return el
 }
 
-func (e *Eclipse) orbit() orbit.Eclipse {
-	return orbit.Eclipse{CentreTurns: e.CentreTurns, HalfWidthTurns: e.HalfWidthTurns, MarginTurns: e.MarginTurns}
+// orbitSigmas are the errors of the orbit. One of an eclipsing system is let wander beyond its data; a decay that was
+// not measured is bounded by what proper motion at the distance of the parallax makes.
+func (s *Source) orbitSigmas() orbit.Sigmas {
+	o := s.Orbit
+	out := orbit.Sigmas{
+		EpochDays: o.SigmaEpochDays, PeriodDays: o.SigmaPeriodDays, SemimajorLs: o.SigmaSemimajorLs, Decay: o.SigmaDecay,
+		DataStartMJD: o.DataMJD[0], DataFinishMJD: o.DataMJD[1],
+	}
+	if s.ParallaxMas > 0 {
+		out.ProperMotionMasPerYr, out.DistanceKpc = math.Hypot(s.PMMasPerYr[0], s.PMMasPerYr[1]), 1/s.ParallaxMas
+	}
+	if o.Eclipse != nil {
+		out.WanderSecPerYr = orbit.DefaultWanderSecPerYr
+	}
+	return out
+}
+
+// at is the eclipse as a receiver sees it: at the middle of its band.
+func (e *Eclipse) at(r *Receiver) orbit.Eclipse {
+	whole := orbit.Eclipse{
+		CentreTurns: e.CentreTurns, HalfWidthTurns: e.HalfWidthTurns, MarginTurns: e.MarginTurns,
+		ReferenceMHz: e.ReferenceMHz, Index: e.Index,
+	}
+	return whole.At(r.radiometer().CentreMHz())
 }
 
 // phase is the orbital phase heard at t, turns from the ascending node.
@@ -78,7 +95,7 @@ func (k *knowledge) superior(halfWidthTurns float64, from, to time.Time) []passa
 	reach := time.Duration(math.Min(0.5, 4*halfWidthTurns)*float64(period)) + k.clock.reach()
 	var out []passage
 	for _, mjd := range o.Conjunctions(orbit.Superior, tdbMJD(from.Add(-reach)), tdbMJD(to.Add(reach))) {
-		p := passage{centre: k.clock.heardAt(mjd), trust: o.ConjunctionError(k.source.Orbit.sigmas(), mjd)}
+		p := passage{centre: k.clock.heardAt(mjd), trust: o.ConjunctionError(k.source.orbitSigmas(), mjd)}
 		p.halfWide = time.Duration(p.trust.WidenedTurns(halfWidthTurns) * float64(period))
 		if p.centre.Add(p.halfWide).After(from) && p.centre.Add(-p.halfWide).Before(to) {
 			out = append(out, p)

@@ -1,6 +1,11 @@
 package campaigns
 
-import "fmt"
+import (
+	"fmt"
+	"strings"
+
+	"example.org/tallystick/sky/orbit"
+)
 
 // j2000 is the Modified Julian Date of the epoch J2000.0, at which positions hold unless told otherwise.
 const j2000 = 51544.5
@@ -101,8 +106,9 @@ func (t *table) orbit() *Orbit {
 	if o == nil {
 		return nil
 	}
-	orbit := &Orbit{
-		PeriodDays:       o.number("period_days", above(0, 1e5)),
+	out := &Orbit{
+		PeriodDays:       o.numberOr("period_days", periodDays, 0),
+		FrequencySeries:  o.frequencySeries(),
 		AscendingNodeMJD: o.numberOr("ascending_node_mjd", mjd, 0),
 		PeriastronMJD:    o.numberOr("periastron_mjd", mjd, 0),
 		SemimajorLs:      o.number("semimajor_ls", above(0, 1e5)),
@@ -114,12 +120,95 @@ func (t *table) orbit() *Orbit {
 		SinI:             o.numberOr("sin_i", above(0, 1), 0),
 		SigmaPeriodDays:  o.numberOr("sigma_period_days", between(0, 100), 0),
 		SigmaEpochDays:   o.numberOr("sigma_epoch_days", between(0, 1000), 0),
+		SigmaSemimajorLs: o.numberOr("sigma_semimajor_ls", between(0, 1e5), 0),
+		SigmaDecay:       o.numberOr("sigma_decay", between(0, 1e-7), 0),
+		SigmaAdvance:     o.numberOr("sigma_advance_deg_per_yr", between(0, 1000), 0),
+		DataMJD:          o.dataMJD(),
 		Eclipse:          o.eclipse(),
 	}
-	o.epochOfOrbit(orbit)
+	o.periodOfOrbit(out)
+	o.epochOfOrbit(out)
 	o.done(nil)
 	t.passOn("orbit", o)
-	return orbit
+	if len(o.bad) == 0 {
+		t.possible(out)
+	}
+	return out
+}
+
+// periodDays are the periods of orbits: no pulsar's is shorter than a minute and a half.
+var periodDays = between(0.001, 1e5)
+
+// mostTerms is how many terms a frequency series may have; published ones have up to 13.
+const mostTerms = 20
+
+// frequencySeries reads an orbital frequency and its derivatives.
+func (t *table) frequencySeries() []float64 {
+	const key = "frequency_series"
+	accepted := fmt.Sprintf("an array of 1 to %d numbers: orbital frequency in Hz, of a period %s days, and its derivatives in Hz/s, Hz/s2, ...", mostTerms, periodDays)
+	v, ok := t.ask(key, false, accepted)
+	if !ok {
+		return nil
+	}
+	list, ok := v.([]any)
+	if !ok || len(list) == 0 || len(list) > mostTerms {
+		t.complain(key, describe(v), accepted, "")
+		return nil
+	}
+	out := make([]float64, len(list))
+	for i, e := range list {
+		x, ok := asNumber(e)
+		if !ok || !between(-1, 1).holds(x) || i == 0 && !periodDays.holds(1/x/secPerDay) {
+			t.complainAt(t.elementLine(key, i), key, fmt.Sprintf("as term %d %s", i, describe(e)), accepted, "")
+			return nil
+		}
+		out[i] = x
+	}
+	return out
+}
+
+// periodOfOrbit checks that the orbit has one kind of period, and fills it in.
+func (t *table) periodOfOrbit(o *Orbit) {
+	const accepted = "either period_days or frequency_series"
+	period, series := t.has("period_days"), t.has("frequency_series")
+	switch {
+	case period && series:
+		t.complain("frequency_series", "period_days as well", accepted, "")
+	case series && t.has("decay"):
+		t.complain("decay", "frequency_series as well", "one of them: the second term of frequency_series says the decay", "")
+	case !period && !series:
+		t.lack("no period", accepted, "period_days", "frequency_series")
+	case o.FrequencySeries != nil:
+		o.PeriodDays = 1 / o.FrequencySeries[0] / secPerDay
+	}
+}
+
+// dataMJD reads the span of the observations behind an ephemeris.
+func (t *table) dataMJD() [2]float64 {
+	span := t.pair("data_mjd", mjd, false, [2]float64{})
+	if t.has("data_mjd") && t.good("data_mjd") && span[0] >= span[1] {
+		t.complain("data_mjd", describe(t.keys["data_mjd"]), "the first and the last date of the observations, the earlier one first", "")
+	}
+	return span
+}
+
+// possible refuses an orbit whose elements are possible one by one but not together.
+func (t *table) possible(o *Orbit) {
+	_, err := orbit.New(o.elements())
+	if err == nil {
+		return
+	}
+	for _, fault := range strings.Split(err.Error(), "\n") {
+		what, found, ok := strings.Cut(fault, ": found ")
+		if !ok {
+			continue // a remark on the line before
+		}
+		if what != "orbit" {
+			found = what + " " + found
+		}
+		found, accepted, _ := strings.Cut(found, "; accepted ")
+		t.complain("orbit", found, accepted, "")
+	}
 }
 
 // epochOfOrbit checks that the orbit has one epoch, and its orientation where that tells node and periastron apart.
@@ -145,6 +234,11 @@ func (t *table) eclipse() *Eclipse {
 		HalfWidthTurns: e.number("half_width_turns", strictly(0, 0.5)),
 		CentreTurns:    e.numberOr("centre_turns", below(0, 1), 0.25),
 		MarginTurns:    e.numberOr("margin_turns", below(0, 0.5), 0),
+		ReferenceMHz:   e.numberOr("reference_mhz", between(1, 1e6), 0),
+		Index:          e.numberOr("index", between(-10, 10), 0),
+	}
+	if e.has("index") != e.has("reference_mhz") && e.good("index", "reference_mhz") {
+		e.lack("only one of them", "both index and reference_mhz, or neither: the width goes as (frequency/reference_mhz)^index", "index", "reference_mhz")
 	}
 	if e.good("half_width_turns", "margin_turns") && eclipse.HalfWidthTurns+eclipse.MarginTurns >= 0.5 {
 		e.complain("margin_turns", plainNumber(eclipse.MarginTurns), fmt.Sprintf("less than %s: half width and margin stay below half a turn", plainNumber(0.5-eclipse.HalfWidthTurns)), "")

@@ -67,7 +67,9 @@ func TestLoadSampleReadsEveryKey(t *testing.T) {
 			SkyK: 24, SunLimitDeg: 8, GlitchMJD: 59120.5,
 			Orbit: &Orbit{
 				PeriodDays: 1.53344945, AscendingNodeMJD: 58849.31217, SemimajorLs: 1.89799, CompanionMsun: 0.21, SinI: 0.999,
-				SigmaPeriodDays: 2e-10, SigmaEpochDays: 1e-6, Eclipse: &Eclipse{HalfWidthTurns: 0.05, CentreTurns: 0.26, MarginTurns: 0.01},
+				SigmaPeriodDays: 2e-10, SigmaEpochDays: 1e-6, SigmaSemimajorLs: 2e-7, SigmaDecay: 1e-13, SigmaAdvance: 0.01,
+				DataMJD: [2]float64{57023.5, 60310.25},
+				Eclipse: &Eclipse{HalfWidthTurns: 0.05, CentreTurns: 0.26, MarginTurns: 0.01, ReferenceMHz: 1400, Index: -0.4},
 			},
 			Aims: []Aim{{
 				Kind: Cadence, Receivers: []string{"L", "S"}, Minutes: 25, MinFraction: 0.6, MaxMinutes: 45, EveryDays: 14, PairDays: 2, Carry: 0.5,

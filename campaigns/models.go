@@ -237,7 +237,7 @@ func (jb *jobBuilder) gains(m measurement) (gain []float64, best float64, err er
 	for i := range minutes {
 		at := p.Instant(i)
 		minutes[i] = timing.Observation{MJD: ps.knowledge.clock.barycentreMJD(at), SigmaUs: math.Inf(1)}
-		if w := ps.weights[jb.receiver][i]; w > 0 && !ps.untimable[i] {
+		if w := ps.weights[jb.receiver][i]; w > 0 && !jb.untimable(i) {
 			minutes[i].SigmaUs = zenith / math.Sqrt(w)
 		}
 	}

@@ -153,20 +153,32 @@ func (k *knowledge) hidden(in []orbit.Span, start time.Time, last int) []sched.S
 	return out
 }
 
-// eclipses are the minutes of a session in which a source is hidden behind its companion, and those in which
-// it is hidden or too close to the edge to be timed.
-func (k *knowledge) eclipses(start time.Time, last int) (hidden, untimable []sched.Span) {
+// An eclipsed stretch of a session is what one receiver loses.
+type eclipsed struct {
+	halfWidthTurns float64
+	hidden         []sched.Span // minutes in which the source is behind its companion
+	untimable      []bool       // by minute: hidden, or too close to the edge to be timed
+}
+
+// reason names the eclipse where a window is cut by it.
+func (e *eclipsed) reason() string { return fmt.Sprintf("eclipse, ±%.3g turns", e.halfWidthTurns) }
+
+// eclipses is what a receiver loses of the minutes 0 to last of a session.
+func (k *knowledge) eclipses(r *Receiver, start time.Time, last int) eclipsed {
+	out := eclipsed{untimable: make([]bool, last+1)}
 	o := k.source.Orbit
 	if o == nil || o.Eclipse == nil {
-		return nil, nil
+		return out
 	}
 	margin := k.clock.reach()
 	from, to := tdbMJD(start.Add(-margin)), tdbMJD(start.Add(time.Duration(last)*time.Minute+margin))
-	e := o.Eclipse.orbit()
-	return k.hidden(k.clock.orbit.EclipseSpans(e, from, to), start, last), k.hidden(k.clock.orbit.UntimableSpans(e, from, to), start, last)
-}
-
-// eclipseReason names an eclipse where a window is cut by one.
-func eclipseReason(o *Orbit) string {
-	return fmt.Sprintf("eclipse, ±%.3g turns", o.Eclipse.HalfWidthTurns)
+	e := o.Eclipse.at(r)
+	out.halfWidthTurns = e.HalfWidthTurns
+	out.hidden = k.hidden(k.clock.orbit.EclipseSpans(e, from, to), start, last)
+	for _, s := range k.hidden(k.clock.orbit.UntimableSpans(e, from, to), start, last) {
+		for m := s.From; m < s.To; m++ {
+			out.untimable[m] = true
+		}
+	}
+	return out
 }

@@ -33,7 +33,7 @@ func (jb *jobBuilder) phaseCoverage(aim *Aim) {
 			Label: fmt.Sprintf("orbital phase %.2f to %.2f", lo, hi),
 			Scale: jb.scale(missing * full / aim.Minutes), Curve: sched.Share, Wanted: max(1, shares(full)),
 			Cum: jb.gather(func(m int) float64 {
-				if binOf(jb.source.phases[m], aim.Bins) != i || jb.source.untimable[m] {
+				if binOf(jb.source.phases[m], aim.Bins) != i || jb.untimable(m) {
 					return 0
 				}
 				return 1
@@ -65,7 +65,7 @@ func (jb *jobBuilder) conjunction(aim *Aim) {
 			Label: "superior conjunction at " + pass.centre.UTC().Format("15:04"),
 			Scale: jb.scale(math.Min(done.missing(), mostNeed)), Curve: sched.Share, Wanted: max(1, shares(whole)),
 			Cum: jb.gather(func(m int) float64 {
-				if jb.source.untimable[m] {
+				if jb.untimable(m) {
 					return 0
 				}
 				return k.conjunctionWeight(pass, p.Instant(m))
@@ -84,6 +84,11 @@ func (k *knowledge) conjunctionWeight(pass passage, t time.Time) float64 {
 	}
 	turns := off.Hours() / 24 / k.source.Orbit.PeriodDays
 	return timing.ConjunctionWeight(0.25+turns, k.source.Orbit.SinI)
+}
+
+// untimable says that pulses of a minute are of no use with this receiver.
+func (jb *jobBuilder) untimable(minute int) bool {
+	return jb.source.eclipses[jb.receiver].untimable[minute]
 }
 
 // gather adds up, minute by minute, what the receiver's effective minutes bring at a weight from 0 to 1.

@@ -47,8 +47,8 @@ type Track struct {
 	LimitDeg []float64    // the lowest elevation allowed at that azimuth: site limit and horizon mask
 	Up       []sched.Span // minutes within elevation limits, mask and mount limits, Sun and eclipses left aside
 	Usable   []sched.Span // what is left of Up outside the Sun limit, eclipses and breaks
-	Eclipsed []sched.Span
-	SunDeg   float64 // least distance from the Sun in the session
+	Eclipsed []sched.Span // with every receiver: where they differ, the slots' own windows know
+	SunDeg   float64      // least distance from the Sun in the session
 }
 
 // A SlotRow is one line of a slot list, with everything an operator or a script is told about it.
@@ -199,6 +199,7 @@ func (p *Prepared) addSource(i int, k *knowledge, b *books, bars map[string]bool
 	src := &p.Campaign.Sources[i]
 	ps := &p.sources[i]
 	*ps = preparedSource{src: src, knowledge: k, place: p.frame.Place(src.target())}
+	ps.hide(p)
 	track := p.track(i, ps)
 	p.Tracks[i] = track.Track
 	ps.listen(p)
@@ -213,7 +214,7 @@ func (p *Prepared) addSource(i int, k *knowledge, b *books, bars map[string]bool
 		p.Problem.Jobs = append(p.Problem.Jobs, job)
 		for at := first; at < len(p.places); at++ {
 			p.Problem.Nodes = append(p.Problem.Nodes, sched.Node{
-				Job: len(p.Problem.Jobs) - 1, Place: at, Turn: p.places[at].turn, Open: p.places[at].open,
+				Job: len(p.Problem.Jobs) - 1, Place: at, Turn: p.places[at].turn, Open: ps.clear(p.places[at].open, job.Receiver),
 			})
 		}
 	}

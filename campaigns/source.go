@@ -18,7 +18,31 @@ type preparedSource struct {
 	effective [][]int32          // by receiver: hundredths of an effective minute from the start to each minute
 	weights   [][]float64        // by receiver: what each minute counts for, 0..1
 	phases    []float64          // orbital phase heard at each minute; nil without an orbit
-	untimable []bool             // in eclipse or its margin
+	eclipses  []eclipsed         // by receiver
+}
+
+// hide works out what each receiver of the session loses to eclipses.
+func (ps *preparedSource) hide(p *Prepared) {
+	for _, rec := range p.Problem.Receivers {
+		ps.eclipses = append(ps.eclipses, ps.knowledge.eclipses(p.Campaign.receiver(rec.Name, p.Site.Name), p.Problem.Start, p.Problem.Minutes))
+	}
+}
+
+// narrowestEclipse is the one that hides the source with every receiver: they have one centre.
+func (ps *preparedSource) narrowestEclipse() *eclipsed {
+	narrow := &ps.eclipses[0]
+	for i := range ps.eclipses {
+		if ps.eclipses[i].halfWidthTurns < narrow.halfWidthTurns {
+			narrow = &ps.eclipses[i]
+		}
+	}
+	return narrow
+}
+
+// clear is what a receiver's own eclipses leave of windows.
+func (ps *preparedSource) clear(windows []sched.Window, receiver int) []sched.Window {
+	e := &ps.eclipses[receiver]
+	return without(windows, e.hidden, e.reason())
 }
 
 // lookAt is where the source stands at a minute.

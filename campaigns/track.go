@@ -13,7 +13,7 @@ type siteTrack struct {
 	Track
 	up     []sched.Window // within elevation limits and mask, Sun and eclipses left aside
 	sunny  []sched.Window // what is left of up outside the Sun limit
-	usable []sched.Window // what is left of that outside eclipses and breaks; the mount's travel is still to come
+	usable []sched.Window // what is left of that outside breaks and what is eclipsed with every receiver; the mount's travel is still to come
 }
 
 // track works out where a source stands during the session and when it may be observed.
@@ -35,21 +35,10 @@ func (p *Prepared) track(i int, ps *preparedSource) siteTrack {
 		limits.SunDeg = sun
 		t.sunny = inMinutes(p.site.Windows(p.frame, ps.place, p.Session.Start, p.Session.End, limits), p.Problem.Start)
 	}
-	hidden, untimable := ps.knowledge.eclipses(p.Problem.Start, p.Problem.Minutes)
-	t.Eclipsed = hidden
-	t.usable = t.sunny
-	if hidden != nil {
-		t.usable = without(t.usable, hidden, eclipseReason(ps.src.Orbit))
-	}
-	t.usable = without(t.usable, p.Problem.Breaks, "break")
+	narrow := ps.narrowestEclipse()
+	t.Eclipsed = narrow.hidden
+	t.usable = without(without(t.sunny, narrow.hidden, narrow.reason()), p.Problem.Breaks, "break")
 	t.Up, t.Usable = spans(t.up), spans(t.usable)
-
-	ps.untimable = make([]bool, n)
-	for _, s := range untimable {
-		for m := s.From; m < s.To; m++ {
-			ps.untimable[m] = true
-		}
-	}
 	return t
 }
 
@@ -85,10 +74,10 @@ func (p *Prepared) placesOf(i int, t siteTrack) []place {
 	return out
 }
 
-// facts are what a reason for leaving a source out is told from.
-func (p *Prepared) facts(ps *preparedSource, t siteTrack) sched.Facts {
+// facts are what a reason for leaving a source out, with one of the receivers, is told from.
+func (p *Prepared) facts(ps *preparedSource, receiver int, t siteTrack) sched.Facts {
 	f := sched.Facts{
-		UpMin: longest(t.up), SunMin: longest(t.sunny), ClearMin: longest(t.usable),
+		UpMin: longest(t.up), SunMin: longest(t.sunny), ClearMin: longest(ps.clear(t.usable, receiver)),
 		SunDeg: t.SunDeg, SunLimit: p.Site.sunLimit(ps.src), HighestEl: t.ElDeg[0],
 	}
 	for _, el := range t.ElDeg {

@@ -31,16 +31,19 @@ func (k Kind) longitudeTurns() float64 {
 //
 //	ω0 + (1+k) A = 90° + 360° n   (superior; 270° inferior), then A → E → M → t
 //
-// Returns: nothing when toMJD is before fromMJD or either is beyond ±1e7 (27,000 years)
+// Returns: nothing when toMJD is before fromMJD, when either is beyond ±1e7 (27,000 years), or when the elements
+// mean nothing at either (see Meaningful)
 // Source:  Damour & Deruelle 1986, Ann. Inst. H. Poincaré 44, 263
 // Checked: TestConjunctions, TestConjunctionsAgainstScan
 func (o Orbit) Conjunctions(kind Kind, fromMJD, toMJD float64) []float64 {
-	if !(toMJD >= fromMJD) || math.Abs(fromMJD) > 1e7 || math.Abs(toMJD) > 1e7 {
+	if !(toMJD >= fromMJD) || math.Abs(fromMJD) > 1e7 || math.Abs(toMJD) > 1e7 || !o.Meaningful(fromMJD) || !o.Meaningful(toMJD) {
 		return nil
 	}
 	var times []float64
 	// Starting one early costs nothing and forgives rounding at the edge.
-	for n := math.Ceil(o.longitudeTurns(fromMJD)-kind.longitudeTurns()) - 1; ; n++ {
+	first := math.Ceil(o.longitudeTurns(fromMJD)-kind.longitudeTurns()) - 1
+	most := 4 + 4*(toMJD-fromMJD)/o.PeriodDays // a series that runs to and fro between the ends has an end too
+	for n := first; n <= first+most; n++ {
 		t, ok := o.conjunction(kind, n)
 		if !ok || t > toMJD {
 			return times
@@ -49,6 +52,7 @@ func (o Orbit) Conjunctions(kind Kind, fromMJD, toMJD float64) []float64 {
 			times = append(times, t)
 		}
 	}
+	return times
 }
 
 // conjunction returns the instant at which the true longitude has made n whole turns and stands at

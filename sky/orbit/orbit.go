@@ -197,6 +197,13 @@ func (o *Orbit) rate(mjd float64) float64 {
 	return (f + o.series[0]) * secPerDay
 }
 
+// Meaningful reports whether the elements say anything at an instant: whether the orbit still runs at between half
+// and twice the rate that it has at the epoch. A frequency series is a fit to its data and runs away beyond them.
+func (o Orbit) Meaningful(mjd float64) bool {
+	r := o.rate(mjd) * o.PeriodDays
+	return r > 0.5 && r < 2
+}
+
 // whenElapsed is the inverse of elapsed, by Newton's method. The second result is false where the
 // series has run backwards or nowhere: so far from the epoch that it means nothing.
 func (o *Orbit) whenElapsed(turns float64) (mjd float64, ok bool) {

@@ -85,6 +85,15 @@ func (o Orbit) ConjunctionError(s Sigmas, mjd float64) Prediction {
 	return p
 }
 
+// EpochErrorDays returns the error of the epoch as it counts in conjunctions, 0 where it is not known: that of the
+// node for nearly circular orbits, also of those given by periastron, as ConjunctionError says. The second result
+// tells whether it is that of periastron instead.
+func (o Orbit) EpochErrorDays(s Sigmas) (days float64, ofPeriastron bool) {
+	var p Prediction
+	days = o.epochError(s, &p)
+	return days, !o.node && o.Eccentricity >= nearlyCircular
+}
+
 func (o *Orbit) epochError(s Sigmas, p *Prediction) float64 {
 	e := o.Eccentricity
 	switch {
