@@ -71,13 +71,7 @@ type cadenceAccount struct {
 }
 
 func (b *books) cadence(source *Source, aim *Aim) cadenceAccount {
-	rule := sched.CadenceRule{
-		EveryDays: aim.EveryDays, PairDays: aim.PairDays, Carry: aim.Carry, MinGapDays: aim.MinGapDays,
-		MinFraction: aim.MinFraction, Receivers: aim.Receivers,
-	}
-	if aim.Ramp != nil {
-		rule.Ramp = &sched.Ramp{From: aim.Ramp.From, FirstDays: aim.Ramp.FirstDays, Factor: aim.Ramp.Factor}
-	}
+	rule := aim.rule()
 	a := rule.Balance(b.opened, b.visits(source.Name, aim.Receivers), b.at)
 	return cadenceAccount{Account: a, needs: rule.Needs(a, b.at), ramping: rule.IntervalDaysAt(b.at) < rule.EveryDays}
 }

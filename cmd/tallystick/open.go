@@ -103,12 +103,18 @@ func (p *program) moment() (at time.Time, given bool, err error) {
 	if p.flags.at == "" {
 		return time.Time{}, false, nil
 	}
+	at, err = instant("--at", p.flags.at)
+	return at, err == nil, err
+}
+
+// instant reads a time that a flag gives.
+func instant(flag, text string) (time.Time, error) {
 	for _, layout := range []string{time.RFC3339, "2006-01-02T15:04Z07:00", "2006-01-02T15:04:05", "2006-01-02T15:04", time.DateOnly} {
-		if t, err := time.Parse(layout, p.flags.at); err == nil {
-			return t.UTC(), true, nil
+		if t, err := time.Parse(layout, text); err == nil {
+			return t.UTC(), nil
 		}
 	}
-	return time.Time{}, false, usagef("--at: found %q; accepted: a time in ISO 8601, UTC unless it says otherwise, as 2026-12-03T18:00:00Z", p.flags.at)
+	return time.Time{}, usagef("%s: found %q; accepted: a time in ISO 8601, UTC unless it says otherwise, as 2026-12-03T18:00:00Z", flag, text)
 }
 
 // session finds the session that --session names, and says when it has ended.

@@ -14,6 +14,7 @@ import (
 	"time"
 
 	"github.com/google/go-cmp/cmp"
+	"github.com/spf13/cobra"
 
 	"example.org/tallystick/campaigns"
 	"example.org/tallystick/campaigns/export"
@@ -73,16 +74,23 @@ func commandsTable() string {
 	root := p.root()
 	fmt.Fprintf(&b, "| `%s` | opens the screen |\n", root.Use)
 	for _, c := range root.Commands() {
-		if c.IsAvailableCommand() {
-			fmt.Fprintf(&b, "| `tallystick %s` | %s |\n", c.Use, c.Short)
+		for _, c := range append([]*cobra.Command{c}, c.Commands()...) {
+			if c.IsAvailableCommand() {
+				fmt.Fprintf(&b, "| `%s` | %s |\n", strings.TrimSuffix(c.UseLine(), " [flags]"), c.Short)
+			}
 		}
 	}
 	return b.String()
 }
 
 func columnsList() string {
-	return fmt.Sprintf("- slot list: `%s`\n- arrears: `%s`\n- passes: `%s`\n- conjunctions: `%s`\n", strings.Join(export.Columns, ","),
-		strings.Join(arrearsColumns, ","), strings.Join(passesColumns, ","), strings.Join(conjunctionsColumns, ","))
+	text := fmt.Sprintf("- slot list: `%s`\n- arrears: `%s`\n- passes: `%s`\n- conjunctions: `%s`\n- logbook and log show: `%s`\n", strings.Join(export.Columns, ","),
+		strings.Join(arrearsColumns, ","), strings.Join(passesColumns, ","), strings.Join(conjunctionsColumns, ","),
+		strings.Join(campaigns.LogbookColumns(), ","))
+	for _, table := range seasonTables {
+		text += fmt.Sprintf("- season --table %s: `%s`\n", table, strings.Join(seasonColumns[table], ","))
+	}
+	return text
 }
 
 func keysTable() string {
