@@ -38,6 +38,9 @@ const (
 	deleteDraft   verb = "delete draft"
 	doVerb        verb = "do"
 	barThisSource verb = "bar this"
+	goToSource    verb = "go to source" // n: the view, text: the source
+	noteIs        verb = "note is"
+	lostUntilIs   verb = "lost until is"
 )
 
 func (m *model) tell(format string, args ...any) {
@@ -69,17 +72,19 @@ func (m *model) apply(a action) tea.Cmd {
 func (m *model) cannot(v verb) string {
 	d := m.world.desk
 	switch v {
-	case pinSlot, replaceSlot, dropSlot, moveEarlier, moveLater, farEarlier, farLater, shorten, lengthen, startEarlier, startLater:
+	case pinSlot, replaceSlot, dropSlot, moveEarlier, moveLater, farEarlier, farLater, shorten, lengthen, startEarlier, startLater,
+		splitSlot, swapAfter, swapBefore, otherRcvr, noteSlot, startNow:
 		if _, ok := d.slot(); !ok {
 			return "no slot is chosen: the plan is empty (i inserts one, R plans)"
 		}
-	case insertSlot, planAgain, savePlan, exportPlan, barSource:
+	case insertSlot, planAgain, planFromHere, savePlan, exportPlan, barSource, clearPlan, comparePlan, copyList:
 		if d.prepared == nil {
 			return "the session is not ready yet"
 		}
 	}
 	switch v {
-	case planAgain, savePlan, exportPlan, leave, otherSession, pinSlot, replaceSlot, insertSlot, barSource:
+	case planAgain, planFromHere, savePlan, exportPlan, leave, otherSession, pinSlot, replaceSlot, insertSlot, barSource,
+		splitSlot, swapAfter, swapBefore, otherRcvr, noteSlot, clearPlan, slotDone, slotLost, lostUntil, startNow:
 		if d.held != nil {
 			return "the last edit breaks a limit: keep it with ! or take it back with Esc first"
 		}
@@ -89,7 +94,13 @@ func (m *model) cannot(v verb) string {
 		}
 	}
 	switch v {
-	case planAgain:
+	case startNow, slotDone, slotLost, lostUntil, followNow:
+		if _, ok := m.world.nowMinute(); !ok {
+			return "the session is not under way"
+		}
+	}
+	switch v {
+	case planAgain, planFromHere:
 		if m.world.work != nil {
 			return "already planning: Esc stops it"
 		}
@@ -114,9 +125,21 @@ func (m *model) applyMove(a action) (tea.Cmd, bool) {
 	w := &m.world
 	switch a.verb {
 	case chooseSlot:
+		w.follow = false
 		w.desk.choose(a.n)
 	case chooseMinute:
+		w.follow = false
 		w.desk.goTo(a.n)
+	case followNow:
+		w.follow = true
+		w.followClock()
+		m.tell("following the clock")
+	case seeElsewhere:
+		m.elsewhere()
+	case goToSource:
+		m.goToSource(a.n, a.text)
+	case comparePlan:
+		m.over = newComparison(w.desk)
 	case nextView:
 		m.at = (m.at + 1) % len(m.views)
 	case lastView:
@@ -183,7 +206,30 @@ func (m *model) applyEdit(a action) (tea.Cmd, bool) {
 		did, _ := d.on()
 		m.tell("done again: %s; %s", did, worthChange(was, d.read().verdict.Worth))
 	case planAgain:
-		return m.startPlanning(false), true
+		return m.startPlanning(false, m.world.planFrom()), true
+	case planFromHere:
+		return m.startPlanning(false, max(m.world.planFrom(), d.minute)), true
+	case splitSlot:
+		m.split()
+	case swapAfter:
+		m.swap(d.chosen)
+	case swapBefore:
+		m.swap(d.chosen - 1)
+	case otherRcvr:
+		m.otherReceiver()
+	case noteIs:
+		m.over = nil
+		m.note(a.text)
+	case clearPlan:
+		m.clear()
+	case startNow:
+		m.startsNow()
+	case slotDone:
+		return m.done(), true
+	case slotLost:
+		return m.lost(), true
+	case lostUntilIs:
+		return m.loseUntil(a.text), true
 	default:
 		return nil, false
 	}
@@ -206,6 +252,13 @@ func (m *model) applyRest(a action) tea.Cmd {
 	case doVerb:
 		m.over = nil
 		return m.apply(action{verb: verb(a.text)})
+	case noteSlot:
+		slot, _ := d.slot()
+		m.over = newNotePrompt(m.chosenName(), slot.Note)
+	case lostUntil:
+		m.askLostUntil()
+	case copyList:
+		return m.copyCmd()
 	case insertSlot:
 		m.over = newPicker(w, -1)
 	case replaceSlot:
@@ -237,12 +290,13 @@ func (m *model) applyRest(a action) tea.Cmd {
 		return deleteDraftCmd(a.more.(draft))
 	case toggleMouse:
 		w.mouse = !w.mouse
+		keep := keepSettingsCmd(settings{MouseOff: !w.mouse})
 		if !w.mouse {
-			m.tell("mouse off: the terminal marks text as usual")
-			return tea.DisableMouse
+			m.tell("mouse off, and remembered: the terminal marks text as usual")
+			return tea.Batch(tea.DisableMouse, keep)
 		}
-		m.tell("mouse on: the wheel moves, a click chooses")
-		return tea.EnableMouseCellMotion
+		m.tell("mouse on, and remembered: the wheel moves, a click chooses")
+		return tea.Batch(tea.EnableMouseCellMotion, keep)
 	case findAction:
 		m.over = newPalette(m)
 	case showHelp:

@@ -57,7 +57,7 @@ func reviewCmd(f *files, s *campaigns.Session) tea.Cmd {
 		log := f.Logbook
 		f.mu.Unlock()
 		rows, err := campaigns.Arrears(f.Campaign, log, s.Start)
-		return reviewedMsg{session: s.Name, accounts: rows, err: err}
+		return reviewedMsg{session: s.Name, accounts: rows, year: pastYear(log, s.Start), err: err}
 	})
 }
 

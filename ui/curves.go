@@ -6,6 +6,7 @@ import (
 	"math"
 
 	"example.org/tallystick/campaigns"
+	"example.org/tallystick/sched"
 	"example.org/tallystick/ui/cell"
 	"example.org/tallystick/ui/theme"
 )
@@ -83,7 +84,7 @@ func drawCurves(w *world, c *cell.Canvas, g *theme.Glyphs, a axis) {
 	}
 	if t := d.track(); t != nil {
 		drawLimit(c, g, a, s, t)
-		drawChosen(c, g, a, s, t)
+		drawChosen(w, c, g, a, s, t)
 		drawSpan(c, a, s, t, chosen.Start, chosen.End, g.OnSource, theme.Accent)
 	}
 }
@@ -134,20 +135,21 @@ func drawLimit(c *cell.Canvas, g *theme.Glyphs, a axis, s scale, t *campaigns.Tr
 	}
 }
 
-func drawChosen(c *cell.Canvas, g *theme.Glyphs, a axis, s scale, t *campaigns.Track) {
+func drawChosen(w *world, c *cell.Canvas, g *theme.Glyphs, a axis, s scale, t *campaigns.Track) {
 	for x := a.left; x < a.left+a.columns; x++ {
 		m := a.minute(x)
 		row, fifth, ok := s.at(t.ElDeg[m])
 		if !ok {
 			continue
 		}
-		glyph := g.Curve[fifth]
-		for _, e := range t.Eclipsed {
-			if m >= e.From && m <= e.To {
-				glyph = g.Eclipse
-			}
+		glyph, ink := g.Curve[fifth], theme.Accent
+		switch {
+		case within(t.Eclipsed, m):
+			glyph = g.Eclipse
+		case nearSun(w, t, m):
+			glyph, ink = g.NearSun, theme.Sun
 		}
-		c.Put(x, row, glyph, theme.Accent)
+		c.Put(x, row, glyph, ink)
 	}
 }
 
@@ -167,14 +169,67 @@ func drawElevationWords(w *world, c *cell.Canvas) {
 		return
 	}
 	high := highest(t.ElDeg)
-	text := fmt.Sprintf("%s %s: el %.0f deg", p.Campaign.Sources[t.Source].Name, at, t.ElDeg[m])
-	if t.ElDeg[m] < t.LimitDeg[m] {
-		text += fmt.Sprintf(", below its limit %.0f", t.LimitDeg[m])
-	}
-	if more := fmt.Sprintf("; highest %.0f at %s", t.ElDeg[high], clock(p.Instant(high))); cell.Width(text+more)+2 <= x {
-		text += more
+	text := fmt.Sprintf("%s %s: el %.0f deg%s", p.Campaign.Sources[t.Source].Name, at, t.ElDeg[m], limitWords(w, t, m))
+	for _, more := range []string{
+		fmt.Sprintf("; highest %.0f at %s", t.ElDeg[high], clock(p.Instant(high))),
+		fmt.Sprintf("; %.0f deg from the Sun", sunDistance(p, t, m)),
+	} {
+		if cell.Width(text+more)+2 <= x {
+			text += more
+		}
 	}
 	c.Put(1, 0, cell.Fit(text, max(x-2, 0)), theme.Accent)
+}
+
+// limitWords say which limit forbids a source at a minute, with its number.
+func limitWords(w *world, t *campaigns.Track, m int) string {
+	p := w.desk.prepared
+	low, high := p.Site.ElevationLimitsDeg[0], p.Site.ElevationLimitsDeg[1]
+	switch {
+	case t.ElDeg[m] < t.LimitDeg[m] && t.LimitDeg[m] > low:
+		return fmt.Sprintf(", below the horizon mask at %.1f", t.LimitDeg[m])
+	case t.ElDeg[m] < t.LimitDeg[m]:
+		return fmt.Sprintf(", below the limit of %.0f", low)
+	case t.ElDeg[m] > high:
+		return fmt.Sprintf(", above the limit of %.0f", high)
+	case nearSun(w, t, m):
+		return fmt.Sprintf(", %.1f deg from the Sun, limit %.0f", sunDistance(p, t, m), sunLimit(p, t))
+	case within(t.Eclipsed, m):
+		return ", eclipsed"
+	}
+	return ""
+}
+
+func within(spans []sched.Span, m int) bool {
+	for _, s := range spans {
+		if m >= s.From && m <= s.To {
+			return true
+		}
+	}
+	return false
+}
+
+// nearSun reports whether the Sun forbids a source at a minute.
+func nearSun(w *world, t *campaigns.Track, m int) bool {
+	p := w.desk.prepared
+	limit := sunLimit(p, t)
+	return t.SunDeg < limit && sunDistance(p, t, m) < limit
+}
+
+// sunLimit is how close to the Sun a source may be observed.
+func sunLimit(p *campaigns.Prepared, t *campaigns.Track) float64 {
+	return max(p.Site.SunLimitDeg, p.Campaign.Sources[t.Source].SunLimitDeg)
+}
+
+// sunDistance is how far from the Sun a source stands at a minute, in degrees.
+//
+// Formulas: haversine of the great circle between two points,
+// hav(d) = hav(e1 - e2) + cos e1 cos e2 hav(a1 - a2), hav(x) = sin^2(x/2) (Sinnott 1984, Sky and Telescope 68, 159).
+func sunDistance(p *campaigns.Prepared, t *campaigns.Track, m int) float64 {
+	const deg = math.Pi / 180
+	hav := func(x float64) float64 { s := math.Sin(x * deg / 2); return s * s }
+	h := hav(t.ElDeg[m]-p.SunElDeg[m]) + math.Cos(t.ElDeg[m]*deg)*math.Cos(p.SunElDeg[m]*deg)*hav(t.AzDeg[m]-p.SunAzDeg[m])
+	return 2 * math.Asin(math.Min(1, math.Sqrt(h))) / deg
 }
 
 func sunWords(el float64) string {

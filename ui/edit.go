@@ -32,6 +32,9 @@ func (m *model) propose(did string, to snapshot, chosen int) {
 		d.goTo(s.Start)
 	}
 	change := worthChange(before.verdict.Worth, after.verdict.Worth)
+	if loses := whoLoses(after.problem, before.plan, to.plan); loses != "" && after.verdict.Worth != before.verdict.Worth {
+		change += ": " + loses
+	}
 	if len(breaches) > 0 {
 		d.held.breaches = breaches
 		m.tell("%s; %s", did, change)

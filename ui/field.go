@@ -78,11 +78,21 @@ func (f *field) draw(c *cell.Canvas, x, y int) {
 type prompt struct {
 	title, asks string
 	line        field
+	empty       bool // nothing is an answer too
 	done        func(string) action
 }
 
 func newPrompt(title, asks, text string, done func(string) action) *prompt {
-	return &prompt{title, asks, newField(text), done}
+	return &prompt{title: title, asks: asks, line: newField(text), done: done}
+}
+
+// newNotePrompt asks for a note on a slot.
+func newNotePrompt(slot, text string) *prompt {
+	p := newPrompt("Note on "+slot, "the note; it goes into the plan and its exports", text, func(s string) action {
+		return action{verb: noteIs, text: s}
+	})
+	p.empty = true
+	return p
 }
 
 func (p *prompt) key(k tea.KeyMsg, _ *world) action {
@@ -90,7 +100,7 @@ func (p *prompt) key(k tea.KeyMsg, _ *world) action {
 	case "esc", "ctrl+c":
 		return action{verb: closeDialog}
 	case "enter":
-		if s := strings.TrimSpace(p.line.String()); s != "" {
+		if s := strings.TrimSpace(p.line.String()); s != "" || p.empty {
 			return p.done(s)
 		}
 		return action{}

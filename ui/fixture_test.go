@@ -71,6 +71,7 @@ func openCampaign(t testing.TB) *campaigns.Folder {
 func start(t testing.TB, f *campaigns.Folder, change ...func(*Config)) *harness {
 	t.Helper()
 	t.Setenv("XDG_STATE_HOME", t.TempDir())
+	t.Setenv("XDG_CONFIG_HOME", t.TempDir())
 	xdg.Reload()
 	return open(t, f, change...)
 }
@@ -79,7 +80,7 @@ func start(t testing.TB, f *campaigns.Folder, change ...func(*Config)) *harness 
 func open(t testing.TB, f *campaigns.Folder, change ...func(*Config)) *harness {
 	t.Helper()
 	c := Config{
-		Folder: f, Now: func() time.Time { return evening }, Version: "test",
+		Folder: f, Now: func() time.Time { return evening }, Version: "test", Out: io.Discard,
 		Export: func(format, path string, p *campaigns.Prepared, plan sched.Plan) (string, error) {
 			return "wrote " + path + " as " + format, os.WriteFile(path, []byte(format), 0o644)
 		},

@@ -45,6 +45,23 @@ const (
 	undoEdit     verb = "undo"
 	redoEdit     verb = "redo"
 	keepHeld     verb = "keep"
+	splitSlot    verb = "split"
+	swapAfter    verb = "swap with the next"
+	swapBefore   verb = "swap with the one before"
+	otherRcvr    verb = "receiver"
+	noteSlot     verb = "note"
+	clearPlan    verb = "clear"
+	planFromHere verb = "re-plan from the cursor"
+	comparePlan  verb = "compare"
+)
+
+// The session under way.
+const (
+	startNow  verb = "start now"
+	slotDone  verb = "done"
+	slotLost  verb = "lost"
+	lostUntil verb = "lost until"
+	followNow verb = "follow"
 )
 
 // The rest.
@@ -65,6 +82,8 @@ const (
 	showHelp     verb = "help"
 	suspend      verb = "suspend"
 	leave        verb = "quit"
+	copyList     verb = "copy"
+	seeElsewhere verb = "see elsewhere"
 )
 
 // A command is a verb with the keys that do it and the words it is known by. Key handling, the bottom
@@ -94,6 +113,7 @@ const (
 const (
 	moving  = "Moving about"
 	editing = "The plan"
+	onSky   = "Session under way"
 	keeping = "Keeping and leaving"
 	looking = "Looking"
 )
@@ -126,10 +146,24 @@ var commands = []command{
 	bind(startLater, editing, slateTitle, "start later", "start the chosen slot 1 minute later, same end", "]"),
 	bind(pinSlot, editing, slateTitle, "pin", "pin or unpin the chosen slot: re-planning leaves pinned slots alone", "p"),
 	bind(barSource, editing, "", "bar", "bar the chosen source from this session, or lift the bar", "b"),
-	bind(planAgain, editing, "", "re-plan", "plan again around the pinned slots", "R"),
+	bind(splitSlot, editing, slateTitle, "split", "split the chosen slot at the cursor minute, or in the middle", "|"),
+	bind(swapAfter, editing, slateTitle, "swap next", "swap the chosen slot with the one after it", "J"),
+	bind(swapBefore, editing, slateTitle, "swap before", "swap the chosen slot with the one before it", "K"),
+	bind(otherRcvr, editing, slateTitle, "receiver", "change the receiver of the chosen slot", "c"),
+	bind(noteSlot, editing, slateTitle, "note", "write a note on the chosen slot", "n"),
+	bind(clearPlan, editing, slateTitle, "clear", "drop every slot that is neither pinned nor begun", "X"),
+	bind(planAgain, editing, "", "re-plan", "plan again around the pinned slots, from now on if the session is under way", "R"),
+	bind(planFromHere, editing, slateTitle, "re-plan here", "plan again from the cursor minute on", "C"),
+	bind(comparePlan, editing, slateTitle, "compare", "compare the plan with the last planned version", "D"),
 	bind(undoEdit, editing, "", "undo", "undo the last edit", "u"),
 	bind(redoEdit, editing, "", "redo", "redo what was undone", "U", "ctrl+r"),
 	bind(keepHeld, editing, "", "keep", "keep an edit although it breaks a limit", "!"),
+
+	bind(startNow, onSky, slateTitle, "start now", "the chosen slot starts now: a late one keeps its end, an early one its length", "a"),
+	bind(slotDone, onSky, slateTitle, "done", "record the slot in progress as done, into the logbook", "d"),
+	bind(slotLost, onSky, slateTitle, "lost", "record the slot in progress as lost, into the logbook", "f"),
+	bind(lostUntil, onSky, slateTitle, "lost until", "time is lost until ...: record what is lost and plan the rest again", "F"),
+	bind(followNow, onSky, slateTitle, "follow", "go to the present moment and follow the clock", "N"),
 
 	bind(savePlan, keeping, "", "save", "save the plan", "w", "ctrl+s"),
 	bind(exportPlan, keeping, "", "export", "export the slot list to a file", "e"),
@@ -144,6 +178,8 @@ var commands = []command{
 	bind(showArrears, looking, "", "arrears", "arrears: what every source is owed", "2"),
 	bind(sortNext, looking, arrearsTitle, "sort", "sort by the next column", "s"),
 	bind(sortTurn, looking, arrearsTitle, "turn", "turn the order of the rows round", "S"),
+	bind(seeElsewhere, looking, "", "see in", "see the chosen source in another view", "v"),
+	bind(copyList, looking, "", "copy", "copy the slot list to the clipboard of the terminal", "y"),
 	bind(otherTime, looking, "", "LST/local", "second time: LST, local time or MJD", "t"),
 	bind(toggleMouse, looking, "", "mouse", "mouse off, so that text can be marked, or on", "m"),
 	bind(findAction, looking, "", "actions", "find an action by its name", ":", "ctrl+p"),

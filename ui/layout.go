@@ -35,6 +35,7 @@ func frameOf(w, h int) frame {
 
 // slateParts are the parts of the slate's body; an empty rectangle is left out.
 type slateParts struct {
+	now     image.Rectangle // where the session stands, while it is under way
 	words   image.Rectangle // the chosen source's elevation and the Sun, in words
 	plot    image.Rectangle // elevation curves
 	bars    image.Rectangle // slots on the axis
@@ -48,9 +49,14 @@ type slateParts struct {
 // axisMargin is left of the plot and of the axes for their labels.
 const axisMargin = 5
 
-func slateLayout(w, h int) slateParts {
+func slateLayout(w, h int, underWay bool) slateParts {
 	var p slateParts
 	y := 0
+	full := h
+	if underWay && h >= 3 {
+		p.now = row(0, w)
+		y, h = 1, h-1
+	}
 	take := func(n int) image.Rectangle {
 		r := image.Rect(0, y, w, y+n)
 		y += n
@@ -74,19 +80,19 @@ func slateLayout(w, h int) slateParts {
 		p.bars = take(1)
 		p.utc = take(1)
 	}
-	left = h - y
+	left = full - y
 	switch {
 	case w >= wideEnough && left >= 6:
 		p.beside = true
 		table := max(w*11/20, min(w-72, 150))
-		p.table = image.Rect(0, y, table, h)
-		p.details = image.Rect(table+1, y, w, h)
+		p.table = image.Rect(0, y, table, full)
+		p.details = image.Rect(table+1, y, w, full)
 	case left >= 9:
 		details := max(left*2/5, 3)
-		p.table = image.Rect(0, y, w, h-details)
-		p.details = image.Rect(0, h-details, w, h)
+		p.table = image.Rect(0, y, w, full-details)
+		p.details = image.Rect(0, full-details, w, full)
 	default:
-		p.table = image.Rect(0, y, w, h)
+		p.table = image.Rect(0, y, w, full)
 	}
 	return p
 }

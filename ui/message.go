@@ -25,6 +25,7 @@ type preparedMsg struct {
 type reviewedMsg struct {
 	session  string
 	accounts []campaigns.AccountRow
+	year     map[string]string
 	err      error
 }
 

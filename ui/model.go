@@ -169,7 +169,7 @@ func (m *model) key(k tea.KeyMsg) tea.Cmd {
 		}
 		return nil
 	}
-	if c.group == moving || c.group == editing {
+	if c.group == moving || c.group == editing || c.group == onSky {
 		m.world.say = saying{} // it has been read; help and the like leave it alone
 	}
 	if c.verb == openChosen {
@@ -218,6 +218,9 @@ const draftPause = 5 * time.Second
 
 func (m *model) tick() tea.Cmd {
 	m.world.now = m.clock()
+	if m.world.follow && m.over == nil && m.world.desk.held == nil {
+		m.world.followClock()
+	}
 	if m.draftsDue || m.machine().Sub(m.draftsAt) < draftPause {
 		return nil
 	}

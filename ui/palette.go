@@ -59,6 +59,10 @@ func (p *palette) narrow() {
 	slices.SortStableFunc(p.seen, func(i, j int) int {
 		return placeOf(p.names[i], typed) - placeOf(p.names[j], typed)
 	})
+	written := slices.IndexFunc(p.seen, func(i int) bool { return placeOf(p.names[i], typed) == scattered })
+	if written > 0 {
+		p.seen = p.seen[:written] // letters that are only scattered over a name are a last resort
+	}
 }
 
 // placeOf ranks how a name holds a text: as its beginning, at the beginning of a word, anywhere, not as
@@ -73,8 +77,10 @@ func placeOf(name, text string) int {
 	case strings.Contains(name, text):
 		return 2
 	}
-	return 3
+	return scattered
 }
+
+const scattered = 3
 
 func (p *palette) key(k tea.KeyMsg, _ *world) action {
 	switch k.String() {

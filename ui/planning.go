@@ -10,17 +10,13 @@ import (
 
 // startPlanning plans around the pins. The first plan of a session is no edit: it can be had again at
 // any time, so leaving without saving it loses nothing.
-func (m *model) startPlanning(first bool) tea.Cmd {
+func (m *model) startPlanning(first bool, from int) tea.Cmd {
 	d := m.world.desk
 	m.stopPlanning()
 	ctx, cancel := context.WithCancel(context.Background())
 	work := &planning{desk: d, edition: d.edition, first: first, cancel: cancel, reports: make(chan sched.Result, 4)}
 	m.world.work = work
 	p := d.preparedWith(d.state.bars).Problem
-	from := 0
-	if m, ok := m.world.nowMinute(); ok {
-		from = m + 1
-	}
 	return tea.Batch(planCmd(ctx, work, p, d.state, from, first), listenCmd(work))
 }
 
@@ -50,6 +46,7 @@ func (m *model) receiveProgress(msg progressMsg) {
 	}
 	d.state.plan = msg.result.Plan.Clone()
 	d.saved = d.state
+	d.base, d.baseIs = d.state, "the first plan"
 	d.changed()
 	d.choose(0)
 	msg.work.edition = d.edition
@@ -74,20 +71,26 @@ func (m *model) receivePlanned(msg plannedMsg) {
 	d.planned = msg.proved
 	if msg.first {
 		d.state, d.saved = to, to
+		d.base, d.baseIs = to, "the plan as it was first made"
 		d.changed()
 		d.choose(d.chosen)
+		m.takeUpClock(d)
 		if w.say.text == "" {
 			m.tell("planned %s; ? shows the keys", count(len(to.plan.Slots), "slot"))
 		}
 		m.offerDraft()
 		return
 	}
-	was := d.read().verdict.Worth
+	was, before := d.read().verdict.Worth, d.state.plan
+	d.base, d.baseIs = to, "the plan as it was last made, at "+clock(w.now)+" UTC"
 	if d.state.equal(to) {
 		m.tell("planned again: the plan stays as it is, nothing better was found")
 		return
 	}
 	d.commit("re-planned", to)
 	d.choose(d.chosen)
-	m.tell("planned again: %s", worthChange(was, d.read().verdict.Worth))
+	if w.follow && d == w.desk {
+		w.followClock()
+	}
+	m.tell("planned again: %s%s", worthChange(was, d.read().verdict.Worth), inAndOut(d.prepared.Problem, before, to.plan))
 }

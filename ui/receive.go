@@ -23,7 +23,7 @@ func (m *model) receive(msg tea.Msg) tea.Cmd {
 		case msg.err != nil:
 			m.warn("the coming windows are not known: %v", msg.err)
 		default:
-			d.accounts, d.reviewed = msg.accounts, true
+			d.accounts, d.reviewed, d.year = msg.accounts, true, msg.year
 		}
 	case progressMsg:
 		if m.world.work == msg.work {
@@ -32,6 +32,14 @@ func (m *model) receive(msg tea.Msg) tea.Cmd {
 		return listenCmd(msg.work)
 	case plannedMsg:
 		m.receivePlanned(msg)
+	case recordedMsg:
+		return m.receiveRecorded(msg)
+	case copiedMsg:
+		m.receiveCopied(msg)
+	case settingsKeptMsg:
+		if msg.err != nil {
+			m.warn("the setting holds for now only: %v", msg.err)
+		}
 	case savedMsg:
 		return m.receiveSaved(msg)
 	case exportedMsg:
@@ -71,12 +79,14 @@ func (m *model) receivePrepared(msg preparedMsg) tea.Cmd {
 		m.warn("the saved plan could not be read: %v", msg.err)
 	}
 	if msg.saved == nil {
-		return tea.Batch(m.startPlanning(true), review)
+		return tea.Batch(m.startPlanning(true, m.world.planFrom()), review)
 	}
 	d.state = m.bindSaved(d, msg.saved)
 	d.saved, d.onDisk = d.state, true
+	d.base, d.baseIs = d.state, "the plan as it was saved"
 	d.changed()
 	d.choose(0)
+	m.takeUpClock(d)
 	if m.world.say.text == "" {
 		m.tell("the saved plan of %s", msg.saved.MadeAt.UTC().Format("2006-01-02 15:04 UTC"))
 	}
@@ -142,7 +152,7 @@ func (m *model) goToSession(name string) tea.Cmd {
 		return prepareCmd(w.folder, s, w.now)
 	}
 	if d := w.desk; d.planned == nil && !d.onDisk && len(d.past) == 0 {
-		return m.startPlanning(true)
+		return m.startPlanning(true, w.planFrom())
 	}
 	m.offerDraft()
 	return nil
@@ -163,6 +173,9 @@ func (m *model) save(d *desk, over bool) tea.Cmd {
 func (m *model) saveOne(d *desk, over, leave bool) tea.Cmd {
 	s := d.state
 	plan := d.preparedWith(s.bars).Saved(s.plan, d.provenFor(s), m.cfg.Version)
+	if d.held == nil {
+		plan.Accepted = d.read().accepted()
+	}
 	return saveCmd(m.world.folder, d, s, plan, over, leave)
 }
 
@@ -217,4 +230,24 @@ func (m *model) receiveExported(msg exportedMsg) {
 	default:
 		m.tell("%s", msg.note)
 	}
+}
+
+// takeUpClock lets the cursor follow the clock if the session of a desk is under way.
+func (m *model) takeUpClock(d *desk) {
+	if d != m.world.desk {
+		return
+	}
+	if _, ok := m.world.nowMinute(); ok {
+		m.world.follow = true
+		m.world.followClock()
+	}
+}
+
+// accepted tells in words the limits that a plan breaks and the observer has kept.
+func (r *reading) accepted() []string {
+	var all []string
+	for _, b := range r.verdict.Breaches {
+		all = append(all, r.breachWords(b))
+	}
+	return all
 }

@@ -19,6 +19,7 @@ import (
 	tea "github.com/charmbracelet/bubbletea"
 	"github.com/charmbracelet/lipgloss"
 	"github.com/charmbracelet/x/term"
+	"github.com/muesli/termenv"
 
 	"example.org/tallystick/campaigns"
 	"example.org/tallystick/sched"
@@ -87,15 +88,23 @@ func Run(c Config) error {
 	if err := needTerminal(c.In, c.Out, os.Getenv("TERM")); err != nil {
 		return err
 	}
+	if file, ok := c.Out.(*os.File); ok {
+		c.Out = &outlet{File: file}
+	}
+	c.Mouse = c.Mouse && !readSettings().MouseOff
 	r := lipgloss.NewRenderer(c.Out)
 	r.SetHasDarkBackground(theme.DarkFrom(os.Getenv("COLORFGBG")))
-	m := newModel(c, theme.New(r, c.ASCII || !localeIsUTF8(os.Getenv)))
+	st := theme.New(r, c.ASCII || !localeIsUTF8(os.Getenv))
+	if r.ColorProfile() == termenv.ANSI && theme.HasEight(os.Getenv("TERM")) {
+		st.Eight()
+	}
+	m := newModel(c, st)
 
 	options := []tea.ProgramOption{tea.WithAltScreen(), tea.WithInput(c.In), tea.WithOutput(c.Out), tea.WithoutSignalHandler()}
 	if c.Mouse {
 		options = append(options, tea.WithMouseCellMotion())
 	}
-	program := tea.NewProgram(m, options...)
+	program := tea.NewProgram(trimmed{m}, options...)
 	var ended atomic.Int32
 	stop := watchSignals(func(n int) {
 		ended.CompareAndSwap(0, int32(n))

@@ -100,7 +100,7 @@ func TestCeilingOnlyWhereItHolds(t *testing.T) {
 func TestMouse(t *testing.T) {
 	h := start(t, openCampaign(t))
 	f := frameOf(h.w, h.model.h)
-	parts := slateLayout(f.body.Dx(), f.body.Dy())
+	parts := slateLayout(f.body.Dx(), f.body.Dy(), false)
 	click := func(x, y int, button tea.MouseButton) {
 		h.send(tea.MouseMsg{X: x, Y: y, Button: button, Action: tea.MouseActionPress})
 	}

@@ -27,6 +27,9 @@ func (v *slate) hints(w *world) []verb {
 	if _, ok := w.desk.slot(); !ok {
 		return []verb{insertSlot, planAgain, otherSession, nextView}
 	}
+	if _, ok := w.nowMinute(); ok {
+		return []verb{startNow, slotDone, slotLost, lostUntil, planAgain, undoEdit, savePlan, followNow, insertSlot, replaceSlot, moveLater, lengthen, pinSlot, exportPlan, openChosen, nextView}
+	}
 	return []verb{insertSlot, pinSlot, planAgain, undoEdit, savePlan, moveLater, lengthen, replaceSlot, dropSlot, barSource, exportPlan, openChosen, nextView, otherSession}
 }
 
@@ -70,7 +73,8 @@ func (v *slate) click(at, size image.Point, turn int, w *world) action {
 	if turn != 0 {
 		return action{verb: chooseSlot, n: d.chosen + turn}
 	}
-	p := slateLayout(size.X, size.Y)
+	_, underWay := w.nowMinute()
+	p := slateLayout(size.X, size.Y, underWay)
 	if i := v.top + at.Y - p.table.Min.Y - 1; at.In(p.table) && at.Y > p.table.Min.Y && i < len(d.shown().plan.Slots) {
 		return action{verb: chooseSlot, n: i}
 	}
@@ -91,9 +95,13 @@ func (v *slate) click(at, size image.Point, turn int, w *world) action {
 
 func (v *slate) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	cw, ch := c.Size()
-	p := slateLayout(cw, ch)
+	now, underWay := w.present()
+	p := slateLayout(cw, ch, underWay)
 	d := w.desk
 	a := axisOf(d, cw)
+	if !p.now.Empty() {
+		drawNow(w, c.Sub(p.now), now)
+	}
 	if !p.words.Empty() {
 		drawElevationWords(w, c.Sub(p.words))
 	}

@@ -56,7 +56,7 @@ func slotColumns(w *world) []slotColumn {
 		{"move s", 6, true, 7, func(_ *world, r *campaigns.SlotRow, _ int) string { return fmt.Sprint(r.MoveSec) }},
 		{"wait s", 6, true, 11, func(_ *world, r *campaigns.SlotRow, _ int) string { return fmt.Sprint(r.WaitSec) }},
 		{"worth", 5, true, 1, func(_ *world, r *campaigns.SlotRow, _ int) string { return fmt.Sprintf("%.2f", r.Worth) }},
-		{"flags", 5, false, 0, func(_ *world, r *campaigns.SlotRow, _ int) string { return slotFlags(r) }},
+		{"flags", 5, false, 0, func(w *world, r *campaigns.SlotRow, i int) string { return rowFlags(w, r, i) }},
 		{"note", 20, false, 13, func(_ *world, r *campaigns.SlotRow, _ int) string { return r.Note }},
 	}
 }
@@ -70,6 +70,19 @@ func slotFlags(r *campaigns.SlotRow) string {
 		f = append(f, "!")
 	}
 	return strings.Join(f, " ")
+}
+
+// rowFlags are a slot's flags on the screen: what the logbook says of it comes before the pin.
+func rowFlags(w *world, r *campaigns.SlotRow, i int) string {
+	o := w.outcome(i)
+	if o == "" {
+		return slotFlags(r)
+	}
+	word := map[campaigns.Outcome]string{campaigns.Done: "done", campaigns.Partial: "part", campaigns.Lost: "lost"}[o]
+	if len(r.Breaches) > 0 {
+		word += "!"
+	}
+	return word
 }
 
 func phases(r *campaigns.SlotRow) string {

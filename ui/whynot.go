@@ -48,6 +48,13 @@ func (v *arrears) read(w *world) (string, []line) {
 	default:
 		add("next", "%s UTC in session %s", nextWords(w.desk, r), r.NextSession)
 	}
+	if w.desk.reviewed {
+		year, ok := w.desk.year[r.Source]
+		if !ok {
+			year = "never observed in it"
+		}
+		add("year", "%s", year)
+	}
 	if len(r.Receivers) > 0 {
 		add("with", "%s", strings.Join(r.Receivers, ", "))
 	}

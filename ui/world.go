@@ -23,6 +23,7 @@ type world struct {
 	zone     zone
 	work     *planning // a plan being made, or nil
 	mouse    bool
+	follow   bool // the cursor follows the clock while the session is under way
 }
 
 // A saying is a message to the user.
@@ -48,6 +49,13 @@ type desk struct {
 	onDisk  bool // saved is the plan in the campaign's folder, not one that was just made
 	planned *bound
 	edition int // counts changes of state, so that an answer to an older one can be told
+
+	base     snapshot // the plan as it was last planned, or read
+	baseIs   string   // what that was, in words
+	lostTo   int      // minute until which the observer has given the session up as lost
+	logRead  *campaigns.Logbook
+	outcomes map[logKey]campaigns.Outcome // of this session, from logRead
+	year     map[string]string            // the past year's observations by source, week by week
 
 	chosen int // index into the slots shown
 	minute int // under the cursor

@@ -17,6 +17,7 @@ type Glyphs struct {
 	Slot                string // between them
 	Break               string // a break in the session
 	Eclipse             string // the source is behind its companion
+	NearSun             string // the source is closer to the Sun than it may be
 	Full, Half, Nothing string // debt bars
 	Up, Down            string // which way a column is sorted
 	Mark                string // the chosen row
@@ -28,7 +29,7 @@ var drawn = Glyphs{
 	Limit: "╌", Now: "┊", Cursor: "▴",
 	Rule: "─", Upright: "│", Tick: "┴", Axis: "─",
 	SlotFrom: "┝", SlotTo: "┥", Slot: "━",
-	Break: "░", Eclipse: "x",
+	Break: "░", Eclipse: "x", NearSun: "o",
 	Full: "▰", Half: "▱", Nothing: " ",
 	Up: "▴", Down: "▾", Mark: "›",
 }
@@ -39,7 +40,7 @@ var typed = Glyphs{
 	Limit: "_", Now: "|", Cursor: "^",
 	Rule: "-", Upright: "|", Tick: "+", Axis: "-",
 	SlotFrom: "[", SlotTo: "]", Slot: "=",
-	Break: ":", Eclipse: "x",
+	Break: ":", Eclipse: "x", NearSun: "o",
 	Full: "#", Half: "-", Nothing: " ",
 	Up: "^", Down: "v", Mark: ">",
 }
@@ -47,5 +48,5 @@ var typed = Glyphs{
 // All returns every glyph, for checks.
 func (g Glyphs) All() []string {
 	return append(g.Curve[:], g.Other, g.OnSource, g.OtherOnSource, g.Limit, g.Now, g.Cursor, g.Rule, g.Upright,
-		g.Tick, g.Axis, g.SlotFrom, g.SlotTo, g.Slot, g.Break, g.Eclipse, g.Full, g.Half, g.Nothing, g.Up, g.Down, g.Mark)
+		g.Tick, g.Axis, g.SlotFrom, g.SlotTo, g.Slot, g.Break, g.Eclipse, g.NearSun, g.Full, g.Half, g.Nothing, g.Up, g.Down, g.Mark)
 }

@@ -83,6 +83,29 @@ func New(r *lipgloss.Renderer, ascii bool) Styles {
 	return s
 }
 
+// Eight turns bright colours into bold ones of the first eight, for terminals that have no others.
+func (s *Styles) Eight() {
+	for i, open := range s.open {
+		codes := strings.Split(strings.TrimSuffix(strings.TrimPrefix(open, "\x1b["), "m"), ";")
+		for k, c := range codes {
+			if len(c) == 2 && c[0] == '9' && c[1] <= '7' {
+				codes[k] = "3" + c[1:]
+				if codes[0] != "1" {
+					codes = append([]string{"1"}, codes...)
+				}
+				break
+			}
+		}
+		if open != "" {
+			s.open[i] = "\x1b[" + strings.Join(codes, ";") + "m"
+		}
+	}
+}
+
+// HasEight reports whether a terminal of this kind, of which no more than 16 colours are known, has only
+// eight: those whose entries in terminfo say so, all but the ones that say 16 in their name.
+func HasEight(kind string) bool { return !strings.Contains(kind, "16color") }
+
 // Open returns the sequence that begins an ink, "" for plain text.
 func (s *Styles) Open(i Ink) string { return s.open[i] }
 

@@ -1,0 +1,43 @@
+package ui
+
+import (
+	"fmt"
+	"os"
+	"path/filepath"
+
+	"github.com/BurntSushi/toml"
+	"github.com/adrg/xdg"
+	tea "github.com/charmbracelet/bubbletea"
+	"github.com/google/renameio/v2"
+)
+
+// settings are what the interface remembers from one run to the next.
+type settings struct {
+	MouseOff bool `toml:"mouse_off"`
+}
+
+func settingsFile() string { return filepath.Join(xdg.ConfigHome, "tallystick", "settings.toml") }
+
+// readSettings reads what is remembered. What cannot be read is as if it were not there: settings are a
+// comfort.
+func readSettings() settings {
+	var s settings
+	if _, err := toml.DecodeFile(settingsFile(), &s); err != nil {
+		return settings{}
+	}
+	return s
+}
+
+// settingsKeptMsg: the settings are on disk, or are not.
+type settingsKeptMsg struct{ err error }
+
+func keepSettingsCmd(s settings) tea.Cmd {
+	return guarded(func() tea.Msg {
+		path := settingsFile()
+		if err := os.MkdirAll(filepath.Dir(path), 0o700); err != nil {
+			return settingsKeptMsg{err}
+		}
+		text := fmt.Sprintf("# Written by tallystick. The key m changes it.\nmouse_off = %t\n", s.MouseOff)
+		return settingsKeptMsg{renameio.WriteFile(path, []byte(text), 0o600, renameio.WithTempDir(filepath.Dir(path)))}
+	})
+}
