@@ -67,15 +67,26 @@ func (p *program) planCommand() *cobra.Command {
 }
 
 func (p *program) searchFlags(c *cobra.Command) {
-	c.Flags().IntVar(&p.flags.grid, "grid", 1, "slots end on multiples of `MIN` minutes of the session, 1 to 60")
+	p.gridFlag(c)
 	c.Flags().StringVar(&p.flags.effort, "effort", "normal", "`HOW` long to search: "+strings.Join(effortNames, ", "))
 	c.RegisterFlagCompletionFunc("effort", cobra.FixedCompletions(effortNames, cobra.ShellCompDirectiveNoFileComp))
-	c.PreRunE = func(*cobra.Command, []string) error {
-		if p.flags.grid < 1 || p.flags.grid > 60 {
-			return usagef("--grid: found %d; accepted: 1 to 60 minutes", p.flags.grid)
+	c.PreRunE = func(c *cobra.Command, args []string) error {
+		if err := p.checkGrid(c, args); err != nil {
+			return err
 		}
 		return oneOf("--effort", p.flags.effort, effortNames)
 	}
+}
+
+func (p *program) gridFlag(c *cobra.Command) {
+	c.Flags().IntVar(&p.flags.grid, "grid", 1, "slots end on multiples of `MIN` minutes of the session, 1 to 60")
+}
+
+func (p *program) checkGrid(*cobra.Command, []string) error {
+	if p.flags.grid < 1 || p.flags.grid > 60 {
+		return usagef("--grid: found %d; accepted: 1 to 60 minutes", p.flags.grid)
+	}
+	return nil
 }
 
 // A madePlan is a plan with the problem it answers and the sheet that tells it.
@@ -87,9 +98,27 @@ type madePlan struct {
 
 // planAnew plans a session around the pins and bars of its saved plan.
 func (p *program) planAnew(d *desk, s *campaigns.Session) (*madePlan, error) {
-	saved, err := d.Plan(s.Name)
+	prepared, saved, err := p.prepare(d, s)
 	if err != nil {
 		return nil, err
+	}
+	search := sched.Options{Rounds: efforts[p.flags.effort], Workers: runtime.GOMAXPROCS(0), Warm: saved}
+	result, err := sched.Solve(context.Background(), prepared.Problem, search)
+	if err != nil {
+		return nil, fmt.Errorf("session %s: %w", s.Name, err)
+	}
+	return &madePlan{prepared, result, export.New(prepared, result.Plan, export.Origin{
+		MadeAt: d.at, Version: version(), Ceiling: result.Ceiling, HasCeiling: result.HasCeiling,
+		Rounds: result.Rounds, Entries: len(d.Logbook.Entries),
+	})}, nil
+}
+
+// prepare makes the problem of a session with the pins and bars of its saved plan, and returns with it
+// that plan, or nil where there is none.
+func (p *program) prepare(d *desk, s *campaigns.Session) (*campaigns.Prepared, *sched.Plan, error) {
+	saved, err := d.Plan(s.Name)
+	if err != nil {
+		return nil, nil, err
 	}
 	options := campaigns.PrepareOptions{At: d.at, GridMin: p.flags.grid}
 	if saved != nil {
@@ -99,36 +128,25 @@ func (p *program) planAnew(d *desk, s *campaigns.Session) (*madePlan, error) {
 		options.FromMin = int(d.at.Sub(s.Start).Minutes()) + 1
 	}
 	prepared, err := campaigns.Prepare(d.Campaign, d.Logbook, s, options)
-	if err != nil {
-		return nil, err
+	if err != nil || saved == nil {
+		return prepared, nil, err
 	}
-	search := sched.Options{Rounds: efforts[p.flags.effort], Workers: runtime.GOMAXPROCS(0)}
-	if saved != nil {
-		plan, lost := prepared.Bind(saved)
-		p.sayLost(lost)
-		begun := 0
-		for i, slot := range plan.Slots {
-			if slot.Start < options.FromMin && !slot.Pinned {
-				plan.Slots[i].Pinned = true // nobody can change it any more
-				begun++
-			}
-			if plan.Slots[i].Pinned {
-				prepared.Problem.Pins = append(prepared.Problem.Pins, plan.Slots[i])
-			}
+	plan, lost := prepared.Bind(saved)
+	p.sayLost(lost)
+	begun := 0
+	for i, slot := range plan.Slots {
+		if slot.Start < options.FromMin && !slot.Pinned {
+			plan.Slots[i].Pinned = true // nobody can change it any more
+			begun++
 		}
-		if begun > 0 {
-			p.say("%s begun by %s: kept as saved, and pinned", hasBegun(begun), d.at.UTC().Format("15:04Z"))
+		if plan.Slots[i].Pinned {
+			prepared.Problem.Pins = append(prepared.Problem.Pins, plan.Slots[i])
 		}
-		search.Warm = &plan
 	}
-	result, err := sched.Solve(context.Background(), prepared.Problem, search)
-	if err != nil {
-		return nil, fmt.Errorf("session %s: %w", s.Name, err)
+	if begun > 0 {
+		p.say("%s begun by %s: kept as saved, and pinned", hasBegun(begun), d.at.UTC().Format("15:04Z"))
 	}
-	return &madePlan{prepared, result, export.New(prepared, result.Plan, export.Origin{
-		MadeAt: d.at, Version: version(), Ceiling: result.Ceiling, HasCeiling: result.HasCeiling,
-		Rounds: result.Rounds, Entries: len(d.Logbook.Entries),
-	})}, nil
+	return prepared, &plan, nil
 }
 
 func hasBegun(slots int) string {

@@ -37,7 +37,7 @@ func (p *program) root() *cobra.Command {
 	root.Flags().BoolVar(&p.flags.ascii, "ascii", false, "draw with ASCII only")
 	root.Flags().BoolVar(&p.flags.noMouse, "no-mouse", false, "leave the mouse to the terminal, for selecting text")
 	root.AddCommand(p.arrearsCommand(), p.checkCommand(), p.completionCommand(), p.conjunctionsCommand(), p.exportCommand(),
-		p.importCommand(), p.logCommand(), p.newCommand(), p.passesCommand(), p.planCommand(), p.seasonCommand())
+		p.importCommand(), p.logCommand(), p.newCommand(), p.passesCommand(), p.planCommand(), p.problemCommand(), p.seasonCommand())
 	return root
 }
 
