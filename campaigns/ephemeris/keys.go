@@ -53,8 +53,10 @@ var aliases = map[string]string{
 
 var (
 	// higherTerms are those of a series beyond what a campaign takes.
-	higherTerms = regexp.MustCompile(`^(F|FB|DM)[0-9]{1,3}$`)
-	glitchKey   = regexp.MustCompile(`^GL(EP|PH|F[0-9]|F0D|TD)_[0-9]{1,4}$`)
+	higherTerms = regexp.MustCompile(`^(F|DM)[0-9]{1,3}$`)
+	// orbitTerms are those of the orbital frequency.
+	orbitTerms = regexp.MustCompile(`^FB([0-9]|1[0-9])$`)
+	glitchKey  = regexp.MustCompile(`^GL(EP|PH|F[0-9]|F0D|TD)_[0-9]{1,4}$`)
 	// furtherOrbit are the parameters of a second companion and of others beyond it.
 	furtherOrbit = regexp.MustCompile(`^(BINARY|PB|FB[0-9]|A1|X|T0|TASC|ECC|E|OM|EPS1|EPS2|PBDOT|OMDOT|XDOT|A1DOT|GAMMA|SINI|M2)_([2-9]|[1-9][0-9])$`)
 	// needless keys matter to timing, not to planning.
@@ -78,6 +80,8 @@ func known(key string) (keyword, bool) {
 	switch {
 	case glitchKey.MatchString(key):
 		return keyword{}, true
+	case orbitTerms.MatchString(key):
+		return keyword{unit: "Hz/s^" + key[2:]}, true
 	case higherTerms.MatchString(key):
 		return keyword{placeless: true}, true
 	}

@@ -20,7 +20,10 @@ type binary struct {
 	hasOM                               bool
 	advance, decay                      decimal
 	decayNote                           string
+	series                              []decimal // orbital frequency and derivatives: instead of period and decay
 	sigmaPeriod, sigmaEpoch             float64
+	sigmaDecay, sigmaAdvance            float64
+	sigmaSemimajor                      float64
 	companion, sinI                     decimal
 	companionNote, sinINote             string
 }
@@ -41,7 +44,7 @@ func (f *File) orbit(scale timeScale) {
 		}
 	}
 	if l := f.line("OMDOT"); l != nil {
-		b.advance = l.exact
+		b.advance, b.sigmaAdvance = l.exact, l.Sigma
 	}
 	o, err := orbit.New(orbit.Elements{
 		PeriodDays: b.period.value, AscendingNodeMJD: b.node.value, PeriastronMJD: b.periastron.value,
@@ -69,6 +72,7 @@ func (f *File) orbitPeriod(b *binary, scale timeScale) error {
 		if fb != nil && math.Abs(pb.Value*fb.Value*secPerDay-1) > 1e-6 {
 			f.remark(fb.Number, "contradiction: FB0 %s is not 1/PB, PB being %s in line %d; PB is taken", fb.Text, pb.Text, pb.Number)
 		}
+		f.noSeries("PB stands beside it")
 	case fb != nil:
 		frequency := scale.length(fb.exact, -1)
 		b.period = periodDays(frequency)
@@ -82,12 +86,14 @@ func (f *File) orbitPeriod(b *binary, scale timeScale) error {
 		if b.decay.value != 0 && math.Abs(b.decay.value-l.Value) > 0.01*math.Abs(l.Value) {
 			f.remark(l.Number, "contradiction: PBDOT %s is not what FB0 and FB1 make, %.4g; PBDOT is taken", l.Text, b.decay.value)
 		}
-		b.decay, b.decayNote = l.exact, ""
+		b.decay, b.decayNote, b.sigmaDecay = l.exact, "", l.Sigma
+		f.noSeries("PBDOT stands beside it")
+		b.series = nil
 	}
 	return nil
 }
 
-// seriesDecay turns the second term of an orbital frequency to a decay. Further terms have no place.
+// seriesDecay turns the second term of an orbital frequency to a decay. With further terms the series is kept as it is.
 func (f *File) seriesDecay(b *binary, scale timeScale) {
 	l := f.line("FB1")
 	if l != nil {
@@ -96,10 +102,31 @@ func (f *File) seriesDecay(b *binary, scale timeScale) {
 			f.drop("FB1", "it makes a decay of %.3g, and 1e-7 is the most that is accepted", decay)
 		} else if decay != 0 {
 			b.decay, b.decayNote = rounded(decay, 12), "-FB1/FB0^2"
+			f0 := f.line("FB0").Value
+			b.sigmaDecay = l.Sigma / (f0 * f0)
 		}
 	}
-	if f.placeless["FB2"] {
-		f.remark(0, "FB2 and what follows it have no place in a campaign: far from the epoch conjunctions come at other times than predicted")
+	for n := 0; ; n++ {
+		term := f.line(fmt.Sprintf("FB%d", n))
+		if term == nil {
+			break
+		}
+		b.series = append(b.series, scale.length(term.exact, -n-1))
+	}
+	if len(b.series) < 3 {
+		b.series = nil
+		f.noSeries("the terms before it are not all there")
+		return
+	}
+	f.remark(f.line("FB2").Number, "the orbital frequency has %d terms: good within its data only, far from them it means nothing", len(b.series))
+}
+
+// noSeries says of the higher terms of an orbital frequency why they are left out.
+func (f *File) noSeries(why string) {
+	for n := 2; n < 20; n++ {
+		if key := fmt.Sprintf("FB%d", n); f.line(key) != nil {
+			f.drop(key, "%s; far from the epoch conjunctions may come at other times than predicted", why)
+		}
 	}
 }
 
@@ -140,7 +167,7 @@ func (f *File) orbitSize(b *binary, scale timeScale) error {
 	if l == nil {
 		return fmt.Errorf("found no A1")
 	}
-	b.semimajor = scale.length(l.exact, 1)
+	b.semimajor, b.sigmaSemimajor = scale.length(l.exact, 1), l.Sigma
 	return nil
 }
 

@@ -296,19 +296,40 @@ func TestOrthometric(t *testing.T) {
 	}
 }
 
-// An orbital frequency is a period and a decay.
+// An orbital frequency is a period and a decay, or more than that.
 func TestFrequencySeries(t *testing.T) {
 	in, decay, _, _ := values(t, "ORB-056")
-	f := read(t, fmt.Sprintf("PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nA1 0.03484142\nTASC 56567.02609362 1 8e-8\nFB0 %s 3e-14\nFB1 %s\nFB2 2.4e-28", in["FB0"], in["FB1"]))
+	text := fmt.Sprintf("PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nA1 0.03484142\nTASC 56567.02609362 1 8e-8\nFB0 %s 3e-14\nFB1 %s\nFB2 2.4e-28", in["FB0"], in["FB1"])
+	f := read(t, text)
 	o := load(t, f.Source()).Orbit
-	// The row prints eight digits.
-	if math.Abs(o.Decay/decay-1) > 5e-8 || math.Abs(o.PeriodDays*86400*num(t, in["FB0"])-1) > 1e-15 {
-		t.Errorf("period %.17g, decay %.10g, want %g", o.PeriodDays, o.Decay, decay)
-	}
 	if want := 3e-14 * o.PeriodDays / num(t, in["FB0"]); math.Abs(o.SigmaPeriodDays/want-1) > 1e-12 {
 		t.Errorf("error of the period %g, want %g", o.SigmaPeriodDays, want)
 	}
-	said(t, f, "FB2")
+	if o.FrequencySeries[0] != num(t, in["FB0"]) || o.FrequencySeries[1] != num(t, in["FB1"]) || o.FrequencySeries[2] != 2.4e-28 || o.Decay != 0 {
+		t.Errorf("%+v", o)
+	}
+	said(t, f, "3 terms")
+	// Without the third term it is a period and a decay; with a period beside it the further terms have no place.
+	without := strings.Replace(text, "\nFB2 2.4e-28", "", 1)
+	o = load(t, read(t, without).Source()).Orbit
+	// The row prints eight digits.
+	if math.Abs(o.Decay/decay-1) > 5e-8 || math.Abs(o.PeriodDays*86400*num(t, in["FB0"])-1) > 1e-15 || o.FrequencySeries != nil {
+		t.Errorf("period %.17g, decay %.10g, want %g", o.PeriodDays, o.Decay, decay)
+	}
+	beside := read(t, text+"\nPB 0.13879863")
+	if o := load(t, beside.Source()).Orbit; o.FrequencySeries != nil || o.PeriodDays != 0.13879863 {
+		t.Errorf("%+v", o)
+	}
+	said(t, beside, "FB2", "PB stands beside it")
+}
+
+// What the errors of the orbit are, and of when they are, goes along.
+func TestOrbitErrors(t *testing.T) {
+	f := read(t, "PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nPB 1.5 1 1e-9\nA1 2.5 1 3e-7\nT0 60000 1 1e-6\nECC 0.2 1 1e-6\nOM 30\nOMDOT 0.5 1 0.02\nPBDOT -1.2 1 0.3\nSTART 58000.25\nFINISH 61000.5")
+	o := load(t, f.Source()).Orbit
+	if o.SigmaSemimajorLs != 3e-7 || o.SigmaDecay != 0.3e-12 || o.SigmaAdvance != 0.02 || o.DataMJD != [2]float64{58000.25, 61000.5} {
+		t.Errorf("%+v", o)
+	}
 }
 
 // said wants words in one of the remarks.

@@ -91,7 +91,15 @@ func (f *File) writeOrbit(w *entry) {
 		return
 	}
 	w.plain("[source.orbit]")
-	w.number("period_days", b.period, 0, 1e5, b.periodNote)
+	if b.series == nil {
+		w.number("period_days", b.period, 0, 1e5, b.periodNote)
+	} else {
+		var terms []string
+		for _, d := range b.series {
+			terms = append(terms, d.text)
+		}
+		w.set("frequency_series", "["+strings.Join(terms, ", ")+"]", "Hz, Hz/s, ...: FB0, FB1, ...")
+	}
 	note := b.epochNote
 	if note == "" {
 		note = "TDB"
@@ -108,13 +116,19 @@ func (f *File) writeOrbit(w *entry) {
 	if b.advance.value != 0 {
 		w.number("advance_deg_per_yr", b.advance, -1000, 1000, "")
 	}
-	if b.decay.value != 0 {
+	if b.decay.value != 0 && b.series == nil {
 		w.number("decay", b.decay, -1e-7, 1e-7, b.decayNote)
 	}
 	w.number("companion_msun", b.companion, 0, 100, b.companionNote)
 	w.number("sin_i", b.sinI, 0, 1, b.sinINote)
 	w.sigma("sigma_period_days", b.sigmaPeriod, 100)
 	w.sigma("sigma_epoch_days", b.sigmaEpoch, 1000)
+	w.sigma("sigma_semimajor_ls", b.sigmaSemimajor, 1e5)
+	w.sigma("sigma_decay", b.sigmaDecay, 1e-7)
+	w.sigma("sigma_advance_deg_per_yr", b.sigmaAdvance, 1000)
+	if first, last := f.line("START"), f.line("FINISH"); first != nil && last != nil && first.Value < last.Value {
+		w.set("data_mjd", "["+first.exact.text+", "+last.exact.text+"]", "")
+	}
 }
 
 func (f *File) writeUnknown(w *entry) {
