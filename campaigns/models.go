@@ -3,6 +3,7 @@ package campaigns
 import (
 	"fmt"
 	"math"
+	"slices"
 	"time"
 
 	"example.org/tallystick/sched"
@@ -29,8 +30,9 @@ func (s *Source) timingSource() timing.Source {
 	return t
 }
 
-// ephemerisPriors are the errors that the campaign file gives. What it gives none for is held without error.
-func (s *Source) ephemerisPriors() []timing.Prior {
+// ephemerisPriors are the errors that the campaign file gives.
+func (k *knowledge) ephemerisPriors() []timing.Prior {
+	s := k.source
 	var out []timing.Prior
 	add := func(p timing.Parameter, sigma float64) {
 		if sigma > 0 {
@@ -48,13 +50,55 @@ func (s *Source) ephemerisPriors() []timing.Prior {
 	add(timing.Declination, s.SigmaPositionMas[1])
 	if o := s.Orbit; o != nil {
 		add(timing.OrbitalPeriod, o.SigmaPeriodDays)
-		if o.AscendingNodeMJD != 0 {
-			add(timing.AscendingNode, o.SigmaEpochDays)
-		} else if o.Eccentricity > 0 {
-			add(timing.Periastron, o.SigmaEpochDays)
+		add(timing.SemimajorAxis, o.SigmaSemimajorLs)
+		add(timing.OrbitalDecay, o.SigmaDecay)
+		add(timing.AdvanceOfPeriastron, o.SigmaAdvance)
+		if days, ofPeriastron := k.clock.orbit.EpochErrorDays(s.orbitSigmas()); ofPeriastron {
+			add(timing.Periastron, days)
+		} else { // in a nearly circular orbit the error of periastron says nothing of where the pulsar is
+			add(timing.AscendingNode, days)
 		}
 	}
 	return out
+}
+
+// countPriors are the errors by which the count of turns is judged: those that the file gives, and for rotation,
+// position and the orbit's epoch, period and size, where it gives none, as little as nature allows. A count hangs on
+// these, the file has keys for their errors, and an error that was not stated must not pass for none. A spin-down
+// that is given without error is taken to be right within itself. Everything else (proper motion, parallax,
+// dispersion, shape, decay and advance of the orbit) is held unless its error is given: nobody measures these before
+// the count is sure, and there they are too small to break it.
+func (k *knowledge) countPriors() []timing.Prior {
+	stated := k.ephemerisPriors()
+	src := k.source.timingSource()
+	out := slices.Clone(stated)
+	for _, p := range timing.LoosePriors(src, stated)[len(stated):] {
+		switch p.Parameter {
+		case timing.FrequencyDerivative:
+			if src.DerivativeHzPerS != 0 {
+				p.Sigma = math.Abs(src.DerivativeHzPerS)
+			}
+		case timing.RightAscension, timing.Declination, timing.AscendingNode, timing.OrbitalPeriod, timing.SemimajorAxis:
+		default:
+			continue
+		}
+		out = append(out, p)
+	}
+	return out
+}
+
+// A countPart is a part of an ephemeris, beside the rotation, that the error of a predicted phase may come from.
+type countPart struct {
+	name       string
+	parameters []timing.Parameter
+	keys       string // that state its errors
+}
+
+var countParts = []countPart{
+	{"position", []timing.Parameter{timing.RightAscension, timing.Declination}, "sigma_position_mas"},
+	{"orbit", []timing.Parameter{
+		timing.AscendingNode, timing.Periastron, timing.OrbitalPeriod, timing.SemimajorAxis, timing.OrbitalDecay, timing.AdvanceOfPeriastron,
+	}, "sigma_epoch_days, sigma_period_days, sigma_semimajor_ls"},
 }
 
 // arrivals are the logbook's arrival times of a source: those whose error was written down.
@@ -77,6 +121,8 @@ type connection struct {
 	predicted float64 // error of the pulse phase, turns, at the next session
 	next      time.Time
 	deadline  time.Time // when the error passes the limit; zero: not within ten years
+	glitch    time.Time // since which the count had to begin again; zero: it did not
+	most      string    // what most of the error comes from, where it matters and it is not the rotation
 }
 
 // debt is the predicted error over its limit, at most mostNeed.
@@ -85,12 +131,17 @@ func (c connection) debt() float64 { return math.Min(c.predicted/c.limit, mostNe
 func (c connection) why() string {
 	s := fmt.Sprintf("phase good to %.2g turns on %s, limit %.2g", c.predicted, c.next.UTC().Format(time.DateOnly), c.limit)
 	switch {
+	case math.IsInf(c.predicted, 1) && !c.glitch.IsZero():
+		return "no count since the glitch of " + c.glitch.UTC().Format(time.DateOnly) + ": the next visit starts it again"
 	case math.IsInf(c.predicted, 1):
-		return "the count is not connected: nothing says the phase"
+		return "no count yet: neither the ephemeris nor the logbook says the phase"
 	case c.predicted > c.limit:
-		return s + ": the count may be lost by then"
+		s += ": the count may be lost by then"
 	case !c.deadline.IsZero():
-		return s + ", passed on " + c.deadline.UTC().Format(time.DateOnly)
+		s += ", passed on " + c.deadline.UTC().Format(time.DateOnly)
+	}
+	if c.most != "" {
+		s += "; most of it is " + c.most
 	}
 	return s
 }
@@ -98,16 +149,56 @@ func (c connection) why() string {
 // connected predicts the error of the pulse phase at the session after the books' moment, as it will be if the
 // source is not observed before.
 func (b *books) connected(k *knowledge, aim *Aim) (connection, error) {
-	m, err := timing.New(k.source.timingSource(), k.source.ephemerisPriors(), b.arrivals(k))
+	src, priors, arrivals := k.source.timingSource(), k.countPriors(), b.arrivals(k)
+	m, err := timing.New(src, priors, arrivals)
 	if err != nil {
 		return connection{}, fmt.Errorf("%s: %w", k.source.Name, err)
 	}
 	c := connection{limit: aim.MaxPhaseErrorTurns, next: b.nextSession()}
+	if k.glitch.Before(b.at) {
+		c.glitch = k.glitch
+	}
 	c.predicted = m.PhaseErrorTurns(tdbMJD(c.next), 0)
 	if d := m.Deadline(c.limit, tdbMJD(b.at), 0); !d.Never && d.MJD < tdbMJD(b.at)+farDeadlineDays {
 		c.deadline = utcOf(d.MJD)
 	}
+	if c.predicted > c.limit/4 && !math.IsInf(c.predicted, 1) {
+		if c.most, err = k.mostOf(c, src, priors, arrivals); err != nil {
+			return connection{}, fmt.Errorf("%s: %w", k.source.Name, err)
+		}
+	}
 	return c, nil
+}
+
+// mostOf names the part of the ephemeris without whose error less than 0.6 of the predicted error would be left. It is
+// empty where that is the rotation, which is what one expects.
+func (k *knowledge) mostOf(c connection, src timing.Source, priors []timing.Prior, arrivals []timing.Observation) (string, error) {
+	stated := len(k.ephemerisPriors())
+	for _, part := range countParts {
+		var rest []timing.Prior
+		unstated := false
+		for i, p := range priors {
+			if !slices.Contains(part.parameters, p.Parameter) {
+				rest = append(rest, p)
+			} else if i >= stated {
+				unstated = true
+			}
+		}
+		if len(rest) == len(priors) {
+			continue
+		}
+		m, err := timing.New(src, rest, arrivals)
+		if err != nil {
+			return "", err
+		}
+		if m.PhaseErrorTurns(tdbMJD(c.next), 0) < 0.6*c.predicted {
+			if unstated {
+				return fmt.Sprintf("the %s's, whose error is not given (%s)", part.name, part.keys), nil
+			}
+			return fmt.Sprintf("the %s's error", part.name), nil
+		}
+	}
+	return "", nil
 }
 
 // noSession is how far ahead the next session is taken to be when none is listed.
@@ -174,7 +265,7 @@ func (b *books) measured(k *knowledge, aim *Aim) (measurement, error) {
 		return measurement{}, fmt.Errorf("%s: %w", k.source.Name, err)
 	}
 	src := k.source.timingSource()
-	model, err := timing.New(src, timing.LoosePriors(src, k.source.ephemerisPriors()), b.arrivals(k))
+	model, err := timing.New(src, timing.LoosePriors(src, k.ephemerisPriors()), b.arrivals(k))
 	if err != nil {
 		return measurement{}, fmt.Errorf("%s: %w", k.source.Name, err)
 	}
