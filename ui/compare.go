@@ -100,7 +100,7 @@ func inAndOut(p *sched.Problem, before, after sched.Plan) string {
 		if len(side.names) == 0 {
 			continue
 		}
-		const named = 3
+		const named = 2
 		more := ""
 		if len(side.names) > named {
 			more = fmt.Sprintf(" and %d more", len(side.names)-named)
@@ -114,7 +114,10 @@ func inAndOut(p *sched.Problem, before, after sched.Plan) string {
 // newComparison tells the plan from the last that was planned or read.
 func newComparison(d *desk) *reader {
 	p := d.read().problem
-	is := d.shown().plan
+	base, baseIs, is := d.base, d.baseIs, d.shown().plan
+	if d.baseBefore != nil && len(differences(p, base.plan, is)) == 0 {
+		base, baseIs = *d.baseBefore, "the plan as it was before it was last made" // what that has done is of more use
+	}
 	var lines []line
 	add := func(label string, ink theme.Ink, format string, args ...any) {
 		lines = append(lines, line{label, fmt.Sprintf(format, args...), ink})
@@ -123,9 +126,9 @@ func newComparison(d *desk) *reader {
 		return clock(d.prepared.Instant(s.Start)) + "-" + clock(d.prepared.Instant(s.End))
 	}
 	worth := func(s *sched.Slot) sched.Micro { return p.JobWorth(p.Nodes[s.Node].Job, s.Start, s.End) }
-	add("then", theme.Plain, "%s, worth %s", count(len(d.base.plan.Slots), "slot"), p.PlanWorth(d.base.plan))
-	add("now", theme.Plain, "%s, %s", count(len(is.Slots), "slot"), worthChange(p.PlanWorth(d.base.plan), p.PlanWorth(is)))
-	changes := differences(p, d.base.plan, is)
+	add("then", theme.Plain, "%s, worth %s", count(len(base.plan.Slots), "slot"), p.PlanWorth(base.plan))
+	add("now", theme.Plain, "%s, %s", count(len(is.Slots), "slot"), worthChange(p.PlanWorth(base.plan), p.PlanWorth(is)))
+	changes := differences(p, base.plan, is)
 	if len(changes) == 0 {
 		add("", theme.Plain, "Every slot has the times it had.")
 	}
@@ -139,5 +142,5 @@ func newComparison(d *desk) *reader {
 			add("changed", theme.Plain, "%s %s, was %s; %s", span(c.is), jobName(p, p.Nodes[c.is.Node].Job), span(c.was), worthChange(worth(c.was), worth(c.is)))
 		}
 	}
-	return &reader{title: "Against " + d.baseIs, lines: lines}
+	return &reader{title: "Against " + baseIs, lines: lines}
 }

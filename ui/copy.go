@@ -34,7 +34,7 @@ type copiedMsg struct {
 func (m *model) copyCmd() tea.Cmd {
 	d := m.world.desk
 	text := listText(d)
-	what := fmt.Sprintf("%s as text, %d characters", count(len(d.read().rows), "slot"), len(text))
+	what := count(len(d.read().rows), "slot") + " as text"
 	out, sequence := m.cfg.Out, clipboard(text, os.Getenv("TMUX") != "")
 	return guarded(func() tea.Msg {
 		_, err := out.Write([]byte(sequence))
@@ -47,7 +47,7 @@ func (m *model) receiveCopied(msg copiedMsg) {
 		m.warn("not copied: %v", msg.err)
 		return
 	}
-	m.tell("copied: %s, if the terminal allows it (tallystick plan prints the same)", msg.what)
+	m.tell("copied %s, if the terminal allows it; tallystick plan prints them too", msg.what)
 }
 
 // clipboard is the sequence that asks a terminal to put a text into its clipboard: OSC 52 of xterm's

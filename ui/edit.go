@@ -141,12 +141,25 @@ type placing struct {
 	displaces []int // slots that it was said to displace, as indices into the plan
 }
 
+// in returns a plan with the candidate in it, pinned, and its index there.
+func (pl placing) in(before sched.Plan) (sched.Plan, int) {
+	slot := sched.Slot{Node: pl.candidate.Node, Start: pl.candidate.Start, End: pl.candidate.End, Pinned: true}
+	var plan sched.Plan
+	for i, old := range before.Slots {
+		if i != pl.replaces && !slices.Contains(pl.displaces, i) {
+			plan.Slots = append(plan.Slots, old)
+		}
+	}
+	plan.Slots = append(plan.Slots, slot)
+	plan = plan.Sorted()
+	return plan, slices.Index(plan.Slots, slot)
+}
+
 func (m *model) place(pl placing) {
 	m.over = nil
 	d := m.world.desk
 	s := d.shown()
 	p := d.prepared.Problem
-	slot := sched.Slot{Node: pl.candidate.Node, Start: pl.candidate.Start, End: pl.candidate.End, Pinned: true}
 	did := "inserted " + jobName(p, pl.candidate.Job)
 	if pl.replaces >= 0 {
 		did = fmt.Sprintf("replaced %s by %s", m.chosenName(), jobName(p, pl.candidate.Job))
@@ -154,15 +167,8 @@ func (m *model) place(pl placing) {
 	if n := len(pl.displaces); n > 0 {
 		did += fmt.Sprintf(", dropping %s", m.slotNames(pl.displaces))
 	}
-	var plan sched.Plan
-	for i, old := range s.plan.Slots {
-		if i != pl.replaces && !slices.Contains(pl.displaces, i) {
-			plan.Slots = append(plan.Slots, old)
-		}
-	}
-	plan.Slots = append(plan.Slots, slot)
-	plan = plan.Sorted()
-	m.propose(did, snapshot{plan, s.bars}, slices.Index(plan.Slots, slot))
+	plan, at := pl.in(s.plan)
+	m.propose(did, snapshot{plan, s.bars}, at)
 }
 
 func (m *model) slotNames(slots []int) string {

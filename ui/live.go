@@ -130,16 +130,20 @@ func nowWords(w *world, now present) []string {
 	switch {
 	case now.next >= 0:
 		row := &r.rows[now.next]
+		way := "move, takes " + seconds(row.MoveSec)
+		if row.MoveSec == 0 {
+			way = "set-up, takes " + seconds(row.OverheadSec)
+		}
 		lead := time.Duration(row.MoveSec+row.OverheadSec) * time.Second
 		leave := row.Start.Add(-lead)
 		text := fmt.Sprintf("next %s at %s", r.slotName(now.next), clock(row.Start))
 		switch left := leave.Sub(w.now); {
 		case now.slot >= 0:
-			text += fmt.Sprintf(" after %s of move", seconds(row.MoveSec))
+			text += ", " + way
 		case left > 0:
-			text += fmt.Sprintf(": move in %s, takes %s", seconds(int(left.Minutes())*60), seconds(row.MoveSec))
+			text += fmt.Sprintf(", in %d min %s", int(left.Minutes()), way)
 		default:
-			text += ": move now, it takes " + seconds(row.MoveSec)
+			text += ", now " + way
 		}
 		said = append(said, text)
 	case now.slot < 0:

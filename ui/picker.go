@@ -111,7 +111,7 @@ func (p *picker) key(k tea.KeyMsg, _ *world) action {
 			return action{}
 		}
 		i := p.seen[p.rows.at]
-		return action{verb: placeChosen, more: placing{p.all[i], p.replaces, p.displaces[i]}}
+		return action{verb: placeChosen, more: p.placing(i)}
 	case "up", "down", "pgup", "pgdown":
 		p.rows.key(k, len(p.seen))
 		return action{}
@@ -134,7 +134,7 @@ func (p *picker) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	if p.replaces >= 0 {
 		does = "replaces"
 	}
-	in := box(c, g, width, max(min(len(p.all)+2, sh-5), 4), title, "type to narrow, Enter "+does+", Esc goes back")
+	in := box(c, g, width, max(min(len(p.all)+2+consequenceLines, sh-5), 4), title, "type to narrow, Enter "+does+", Esc goes back")
 	x := in.Put(0, 0, "find: ", theme.Muted)
 	p.typed.draw(in, x, 0)
 	iw, ih := in.Size()
@@ -146,6 +146,13 @@ func (p *picker) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 		}
 		in.Put(1, 2, cell.Fit(text, iw-1), theme.Plain)
 		return
+	}
+	if ih >= 3+2*consequenceLines {
+		ih -= consequenceLines
+		lines := cell.Wrap(p.consequences(p.seen[p.rows.at]), iw-1)
+		for i, l := range lines[:min(len(lines), consequenceLines)] {
+			in.Put(1, ih+i, l, theme.Accent)
+		}
 	}
 	h := ih - 2
 	if h <= 0 {
@@ -184,4 +191,34 @@ func (p *picker) change(k int) string {
 		return "+" + d.String()
 	}
 	return d.String()
+}
+
+func (p *picker) placing(k int) placing { return placing{p.all[k], p.replaces, p.displaces[k]} }
+
+// consequenceLines are kept for what picking the row under the cursor would mean.
+const consequenceLines = 2
+
+// consequences say what a candidate brings and what it means for its neighbours.
+func (p *picker) consequences(k int) string {
+	before := p.d.read()
+	plan, at := p.placing(k).in(before.plan)
+	after := &reading{problem: before.problem, plan: plan, verdict: sched.Verify(before.problem, plan)}
+	if new := newBreaches(before, after); len(new) > 0 {
+		return "! " + oneCell.Replace(strings.Join(new, "; "))
+	}
+	rows := p.d.preparedWith(before.bars).SlotRows(plan)
+	text := "move " + seconds(rows[at].MoveSec)
+	if at > 0 {
+		text += " from " + after.slotName(at-1)
+	}
+	if rows[at].WaitSec > 0 {
+		text += ", then " + seconds(rows[at].WaitSec) + " to spare"
+	}
+	if at+1 < len(rows) {
+		text += fmt.Sprintf("; %s stays at %s, %s to spare before it", after.slotName(at+1), clock(rows[at+1].Start), seconds(rows[at+1].WaitSec))
+	}
+	if loses := whoLoses(before.problem, before.plan, plan); loses != "" {
+		text += "; " + loses
+	}
+	return text
 }

@@ -82,6 +82,8 @@ func (m *model) receivePlanned(msg plannedMsg) {
 		return
 	}
 	was, before := d.read().verdict.Worth, d.state.plan
+	stood := d.state
+	d.baseBefore = &stood
 	d.base, d.baseIs = to, "the plan as it was last made, at "+clock(w.now)+" UTC"
 	if d.state.equal(to) {
 		m.tell("planned again: the plan stays as it is, nothing better was found")

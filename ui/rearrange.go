@@ -32,12 +32,9 @@ func (m *model) split() {
 	m.propose(fmt.Sprintf("split %s at %s, both parts pinned", m.chosenName(), clock(d.prepared.Instant(at))), snapshot{plan, s.bars}, d.chosen)
 }
 
-// latestShift is by how many minutes a swapped slot may begin later than the slot it changed places with,
-// for a slew or a receiver change that takes longer.
-const latestShift = 20
-
-// swap lets the slot at index first and the one after it change places: what was second starts where the
-// first did, or as soon after as the way there allows; what was first ends where the second did.
+// swap lets the slot at index first and the one after it change places. What was second starts where the
+// first did, or as soon after as the way there allows, with its length; what was first follows as soon as
+// it can and ends in time for the slot after it, shorter if need be.
 func (m *model) swap(first int) {
 	d := m.world.desk
 	s := d.shown()
@@ -45,32 +42,38 @@ func (m *model) swap(first int) {
 		m.warn("there is no slot to swap with")
 		return
 	}
-	a, b := s.plan.Slots[first], s.plan.Slots[first+1]
 	r := d.read()
+	p, slots := r.problem, s.plan.Slots
+	a, b := slots[first], slots[first+1]
 	did := fmt.Sprintf("swapped %s and %s, both pinned", r.slotName(first), r.slotName(first+1))
-	var best sched.Plan
-	fewest := -1
-	for later := range latestShift {
-		plan, _ := sched.MoveSlot(r.problem, s.plan, first, b.End-a.End)
-		at := slices.Index(plan.Slots, b)
-		plan, at = sched.MoveSlot(r.problem, plan, at, a.Start-b.Start+later)
-		if n := len(sched.Verify(r.problem, plan).Breaches); fewest < 0 || n < fewest {
-			best, fewest = plan, n
-			for i := range best.Slots {
-				if node := best.Slots[i].Node; i == at || r.problem.Nodes[node].Job == r.problem.Nodes[a.Node].Job && best.Slots[i].End == b.End {
-					best.Slots[i].Pinned = true
-				}
-			}
-		}
-		if fewest <= len(r.verdict.Breaches) {
-			break
+
+	starts := a.Start
+	if first > 0 {
+		starts = max(starts, p.ReadyMin(slots[first-1].Node, slots[first-1].End, b.Node, slots[first-1].End))
+	}
+	ends := starts + b.End - b.Start
+	follows := p.ReadyMin(b.Node, ends, a.Node, ends)
+	until := min(follows+a.End-a.Start, p.Minutes)
+	if first+2 < len(slots) {
+		for next := slots[first+2]; until > follows+1 && p.ReadyMin(a.Node, until, next.Node, until) > next.Start; {
+			until--
 		}
 	}
-	chosen := first
+	whole := follows + a.End - a.Start
+	plan, at := sched.MoveSlot(p, s.plan, first, whole-a.End)
+	a = plan.Slots[at]
+	plan, at = sched.MoveSlot(p, plan, slices.Index(plan.Slots, b), ends-b.End)
+	plan.Slots[at].Pinned = true
+	second := at
+	plan, at = sched.Lengthen(p, plan, slices.Index(plan.Slots, a), until-a.End)
+	plan.Slots[at].Pinned = true
+	if short := whole - until; short > 0 {
+		did += fmt.Sprintf(", %s %d min shorter", r.slotName(first), short)
+	}
 	if d.chosen == first {
-		chosen++
+		second = at
 	}
-	m.propose(did, snapshot{best, s.bars}, chosen)
+	m.propose(did, snapshot{plan, s.bars}, second)
 }
 
 // otherReceiver gives the chosen slot the next receiver that an aim of its source asks for.

@@ -88,11 +88,11 @@ func Run(c Config) error {
 	if err := needTerminal(c.In, c.Out, os.Getenv("TERM")); err != nil {
 		return err
 	}
+	c.Mouse = c.Mouse && !readSettings().MouseOff
+	r := lipgloss.NewRenderer(c.Out) // it finds colours only on the file itself
 	if file, ok := c.Out.(*os.File); ok {
 		c.Out = &outlet{File: file}
 	}
-	c.Mouse = c.Mouse && !readSettings().MouseOff
-	r := lipgloss.NewRenderer(c.Out)
 	r.SetHasDarkBackground(theme.DarkFrom(os.Getenv("COLORFGBG")))
 	st := theme.New(r, c.ASCII || !localeIsUTF8(os.Getenv))
 	if r.ColorProfile() == termenv.ANSI && theme.HasEight(os.Getenv("TERM")) {

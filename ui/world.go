@@ -50,12 +50,13 @@ type desk struct {
 	planned *bound
 	edition int // counts changes of state, so that an answer to an older one can be told
 
-	base     snapshot // the plan as it was last planned, or read
-	baseIs   string   // what that was, in words
-	lostTo   int      // minute until which the observer has given the session up as lost
-	logRead  *campaigns.Logbook
-	outcomes map[logKey]campaigns.Outcome // of this session, from logRead
-	year     map[string]string            // the past year's observations by source, week by week
+	base       snapshot  // the plan as it was last planned, or read
+	baseBefore *snapshot // what stood when it was last planned again
+	baseIs     string    // what that was, in words
+	lostTo     int       // minute until which the observer has given the session up as lost
+	logRead    *campaigns.Logbook
+	outcomes   map[logKey]campaigns.Outcome // of this session, from logRead
+	year       map[string]string            // the past year's observations by source, week by week
 
 	chosen int // index into the slots shown
 	minute int // under the cursor
