@@ -75,8 +75,14 @@ func (b *books) accountRow(k *knowledge, aim *Aim) (AccountRow, error) {
 		c := b.coverage(k, aim)
 		row.Debt, row.Why = c.debt(), c.why()
 	case Conjunction:
-		c := b.passages(k, aim)
+		c, err := b.passages(k, aim)
+		if err != nil {
+			return row, err
+		}
 		row.Debt, row.Why = c.debt(), c.why()
+		if flag := c.flag(); flag != "" && row.Debt > 0 {
+			row.Flags = append(row.Flags, flag)
+		}
 	case Measure:
 		m, err := b.measured(k, aim)
 		if err != nil {

@@ -10,16 +10,33 @@ import (
 // books are the accounts of a campaign at one moment: a pure function of the campaign, the logbook and
 // that moment.
 type books struct {
-	at       time.Time
-	opened   time.Time          // when the logbook begins
-	entries  map[string][]Entry // what was done or partly done before the moment, by source, in time order
-	frames   *frames
-	sessions []Session // in order of their start
+	at           time.Time
+	opened       time.Time          // when the logbook begins
+	entries      map[string][]Entry // what was done or partly done before the moment, by source, in time order
+	frames       *frames
+	campaign     *Campaign
+	coverages    map[*Aim]coverage // what has been worked out already, by aim
+	passings     map[*Aim]passages
+	connections  map[*Aim]connection
+	measurements map[*Aim]measurement
+}
+
+// once works out what an aim's account says, or remembers it: a job for each receiver and the account's own row ask.
+func once[T any](known map[*Aim]T, aim *Aim, work func() (T, error)) (T, error) {
+	if have, ok := known[aim]; ok {
+		return have, nil
+	}
+	made, err := work()
+	if err == nil {
+		known[aim] = made
+	}
+	return made, err
 }
 
 // open reads the logbook up to a moment. Lines that are later, or lost, pay nothing.
 func open(c *Campaign, log *Logbook, at time.Time) *books {
-	b := &books{at: at, opened: at, entries: map[string][]Entry{}, frames: newFrames(), sessions: c.Sessions}
+	b := &books{at: at, opened: at, entries: map[string][]Entry{}, frames: newFrames(), campaign: c,
+		coverages: map[*Aim]coverage{}, passings: map[*Aim]passages{}, connections: map[*Aim]connection{}, measurements: map[*Aim]measurement{}}
 	if log == nil {
 		return b
 	}

@@ -85,7 +85,7 @@ func (jb *jobBuilder) add(aim *Aim) error {
 	case PhaseCoverage:
 		jb.phaseCoverage(aim)
 	case Conjunction:
-		jb.conjunction(aim)
+		return jb.conjunction(aim)
 	case Measure:
 		return jb.measure(aim)
 	case Connect:

@@ -80,30 +80,6 @@ func (e *Eclipse) at(r *Receiver) orbit.Eclipse {
 // phase is the orbital phase heard at t, turns from the ascending node.
 func (k *knowledge) phase(t time.Time) float64 { return k.clock.orbit.Phase(k.clock.orbitMJD(t)) }
 
-// A passage is one superior conjunction as it is heard at the observatory.
-type passage struct {
-	centre   time.Time
-	halfWide time.Duration // the aim's half-width, widened where the orbit is not known better
-	trust    orbit.Prediction
-}
-
-// superior returns the superior conjunctions whose windows touch the time from one instant to another.
-func (k *knowledge) superior(halfWidthTurns float64, from, to time.Time) []passage {
-	o := k.clock.orbit
-	period := time.Duration(o.PeriodDays * 24 * float64(time.Hour))
-	// A widened window is at most four times as wide as the wanted one.
-	reach := time.Duration(math.Min(0.5, 4*halfWidthTurns)*float64(period)) + k.clock.reach()
-	var out []passage
-	for _, mjd := range o.Conjunctions(orbit.Superior, tdbMJD(from.Add(-reach)), tdbMJD(to.Add(reach))) {
-		p := passage{centre: k.clock.heardAt(mjd), trust: o.ConjunctionError(k.source.orbitSigmas(), mjd)}
-		p.halfWide = time.Duration(p.trust.WidenedTurns(halfWidthTurns) * float64(period))
-		if p.centre.Add(p.halfWide).After(from) && p.centre.Add(-p.halfWide).Before(to) {
-			out = append(out, p)
-		}
-	}
-	return out
-}
-
 // coverage is how often each orbital-phase bin of an aim has been visited.
 type coverage struct {
 	aim   *Aim
@@ -136,6 +112,11 @@ func (c coverage) why() string {
 // coverage counts the visits of a phase coverage aim since its date. A minute counts in the bin it falls in
 // until the visit is full; a visit is full after the wanted minutes or, where that is shorter, the whole bin.
 func (b *books) coverage(k *knowledge, aim *Aim) coverage {
+	c, _ := once(b.coverages, aim, func() (coverage, error) { return b.cover(k, aim), nil })
+	return c
+}
+
+func (b *books) cover(k *knowledge, aim *Aim) coverage {
 	full := binMinutes(aim, k.source.Orbit)
 	var visits []sched.PhaseVisit
 	for _, e := range b.entries[k.source.Name] {
@@ -162,49 +143,3 @@ func binMinutes(aim *Aim, o *Orbit) float64 {
 }
 
 func binOf(phase float64, bins int) int { return min(int(phase*float64(bins)), bins-1) }
-
-// passages is what has been caught of a conjunction aim's passages.
-type passages struct {
-	wanted int
-	need   float64 // the share of the wanted that is missing
-}
-
-func (p passages) missing() float64 { return p.need * float64(p.wanted) }
-func (p passages) debt() float64    { return p.need }
-func (p passages) why() string {
-	return fmt.Sprintf("%.1f of %d passages caught", float64(p.wanted)-p.missing(), p.wanted)
-}
-
-// passages counts what has been caught since the aim's date: of each passage the share of its weight.
-func (b *books) passages(k *knowledge, aim *Aim) passages {
-	var caught []float64
-	var last time.Time
-	for _, e := range b.entries[k.source.Name] {
-		if e.Start.Before(aim.Since) || !aim.wants(e.Receiver) {
-			continue
-		}
-		for _, pass := range k.superior(aim.HalfWidthTurns, e.Start, e.End) {
-			if !pass.centre.Equal(last) { // a passage seen with two receivers, or in two parts, is one passage
-				caught, last = append(caught, 0), pass.centre
-			}
-			caught[len(caught)-1] += e.paid() * k.shareOf(pass, e.Start, e.End)
-		}
-	}
-	return passages{wanted: aim.Wanted, need: sched.ConjunctionNeed(aim.Wanted, caught)}
-}
-
-// shareOf is the share of a passage's weight that lies between two instants.
-func (k *knowledge) shareOf(pass passage, from, to time.Time) float64 {
-	got, whole := 0.0, 0.0
-	for t := pass.centre.Add(-pass.halfWide); t.Before(pass.centre.Add(pass.halfWide)); t = t.Add(time.Minute) {
-		w := k.conjunctionWeight(pass, t)
-		whole += w
-		if !t.Before(from) && t.Before(to) {
-			got += w
-		}
-	}
-	if whole == 0 {
-		return 0
-	}
-	return got / whole
-}

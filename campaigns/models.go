@@ -149,6 +149,10 @@ func (c connection) why() string {
 // connected predicts the error of the pulse phase at the session after the books' moment, as it will be if the
 // source is not observed before.
 func (b *books) connected(k *knowledge, aim *Aim) (connection, error) {
+	return once(b.connections, aim, func() (connection, error) { return b.connect(k, aim) })
+}
+
+func (b *books) connect(k *knowledge, aim *Aim) (connection, error) {
 	src, priors, arrivals := k.source.timingSource(), k.countPriors(), b.arrivals(k)
 	m, err := timing.New(src, priors, arrivals)
 	if err != nil {
@@ -206,9 +210,9 @@ const noSession = 30 * 24 * time.Hour
 
 // nextSession is the start of the first session after the books' moment.
 func (b *books) nextSession() time.Time {
-	for i := range b.sessions {
-		if b.sessions[i].Start.After(b.at) {
-			return b.sessions[i].Start
+	for i := range b.campaign.Sessions {
+		if s := &b.campaign.Sessions[i]; s.Start.After(b.at) {
+			return s.Start
 		}
 	}
 	return b.at.Add(noSession)
@@ -259,7 +263,12 @@ func (m measurement) why() string {
 	return fmt.Sprintf("%s known to %.2g%s, wanted to %.2g%s", m.parameter, m.sigma, unit, m.goal, unit)
 }
 
+// measured says how well the logbook knows what an aim wants measured.
 func (b *books) measured(k *knowledge, aim *Aim) (measurement, error) {
+	return once(b.measurements, aim, func() (measurement, error) { return b.measure(k, aim) })
+}
+
+func (b *books) measure(k *knowledge, aim *Aim) (measurement, error) {
 	p, err := timing.ParameterNamed(aim.Parameter)
 	if err != nil {
 		return measurement{}, fmt.Errorf("%s: %w", k.source.Name, err)

@@ -44,19 +44,22 @@ func (jb *jobBuilder) phaseCoverage(aim *Aim) {
 }
 
 // conjunction adds a term for each superior conjunction that the session touches.
-func (jb *jobBuilder) conjunction(aim *Aim) {
+func (jb *jobBuilder) conjunction(aim *Aim) error {
 	k, p := jb.source.knowledge, jb.prepared
-	done := jb.books.passages(k, aim)
+	done, err := jb.books.passages(k, aim)
+	if err != nil {
+		return err
+	}
 	jb.owes(aim, done.debt())
 	if done.missing() <= 0 {
-		return
+		return nil
 	}
 	for _, pass := range k.superior(aim.HalfWidthTurns, p.Session.Start, p.Session.End) {
 		if pass.trust.TrustFor(aim.HalfWidthTurns) == orbit.Refuse {
 			continue
 		}
 		whole := 0.0
-		for t := pass.centre.Add(-pass.halfWide); t.Before(pass.centre.Add(pass.halfWide)); t = t.Add(time.Minute) {
+		for t := pass.from(); t.Before(pass.to()); t = t.Add(time.Minute) {
 			whole += k.conjunctionWeight(pass, t)
 		}
 		wide := 2 * pass.halfWide.Minutes()
@@ -70,9 +73,10 @@ func (jb *jobBuilder) conjunction(aim *Aim) {
 				}
 				return k.conjunctionWeight(pass, p.Instant(m))
 			}),
-			Why: done.why() + ", " + pass.trust.Say(aim.HalfWidthTurns),
+			Why: done.caught() + "; " + pass.say(aim.HalfWidthTurns),
 		})
 	}
+	return nil
 }
 
 // conjunctionWeight is how much an instant counts in a passage: the squared signature of the Shapiro delay

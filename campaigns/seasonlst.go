@@ -179,7 +179,11 @@ func (p *player) hoursWanted(start *books, k *knowledge, receiver string, site *
 			minutes = binMinutes(aim, src.Orbit)
 			visits = c.debt() * float64(aim.Bins*aim.PerBin) / float64(len(aim.Receivers))
 		case Conjunction:
-			visits = math.Min(start.passages(k, aim).missing(), days/src.Orbit.PeriodDays) / float64(len(aim.Receivers))
+			done, err := start.passages(k, aim)
+			if err != nil {
+				continue // the sessions have been prepared with it: it cannot be
+			}
+			visits = math.Min(done.missing(), days/src.Orbit.PeriodDays) / float64(len(aim.Receivers))
 			minutes = 2 * aim.HalfWidthTurns * src.Orbit.PeriodDays * 24 * 60
 		case Calibration:
 			visits = float64(sessions * aim.PerSession)
