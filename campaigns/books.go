@@ -1,10 +1,13 @@
 package campaigns
 
 import (
+	"fmt"
+	"math"
 	"sort"
 	"time"
 
 	"example.org/tallystick/sched"
+	"example.org/tallystick/sky/radiometer"
 )
 
 // books are the accounts of a campaign at one moment: a pure function of the campaign, the logbook and
@@ -87,8 +90,39 @@ type cadenceAccount struct {
 	ramping bool // its interval is still growing towards every_days
 }
 
+// pairSpacing is within how many days the receivers of an epoch follow one another: as the aim says, closer near the
+// Sun, where the wind's dispersion changes from hour to hour. Only pulsars are paired for their dispersion.
+func (b *books) pairSpacing(source *Source, aim *Aim) func(time.Time) float64 {
+	if len(aim.Receivers) < 2 || source.Spin == nil {
+		return nil
+	}
+	return func(at time.Time) float64 { return radiometer.PairSpacingDays(aim.PairDays, b.sunDeg(source, at)) }
+}
+
+// sunDeg is how far a source is from the Sun.
+func (b *books) sunDeg(source *Source, at time.Time) float64 {
+	frame, at := b.frames.near(at)
+	return frame.SunDeg(frame.Place(source.target()), at)
+}
+
 func (b *books) cadence(source *Source, aim *Aim) cadenceAccount {
 	rule := aim.rule()
+	rule.PairDaysAt = b.pairSpacing(source, aim)
 	a := rule.Balance(b.opened, b.visits(source.Name, aim.Receivers), b.at)
+	if rule.PairDaysAt != nil {
+		a.Why += b.tighter(source, aim, rule.PairDaysAt(b.at))
+	}
 	return cadenceAccount{Account: a, needs: rule.Needs(a, b.at), ramping: rule.IntervalDaysAt(b.at) < rule.EveryDays}
+}
+
+// tighter says that the Sun brings the visits of a pair together; empty where it does not.
+func (b *books) tighter(source *Source, aim *Aim, pairDays float64) string {
+	if pairDays >= aim.PairDays {
+		return ""
+	}
+	spacing := fmt.Sprintf("%.1f d", pairDays)
+	if pairDays < 1 {
+		spacing = fmt.Sprintf("%.0f h", math.Max(1, pairDays*24))
+	}
+	return fmt.Sprintf("; %.0f° from the Sun: pair within %s", b.sunDeg(source, b.at), spacing)
 }

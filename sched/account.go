@@ -14,8 +14,11 @@ import (
 // credit, it restarts the clock. With several receivers each pays its share of the epoch, and shares
 // lapse when the others do not follow within PairDays.
 type CadenceRule struct {
-	EveryDays   float64 // the interval; above 0
-	PairDays    float64 // all receivers of an epoch lie within this
+	EveryDays float64 // the interval; above 0
+	PairDays  float64 // all receivers of an epoch lie within this
+	// PairDaysAt, where it is given, is what holds instead of PairDays for an epoch that begins at a time: what the
+	// receivers are paired for may change faster at some times than at others.
+	PairDaysAt  func(time.Time) float64
 	Carry       float64 // 0 to 1
 	MinGapDays  float64 // nothing is wanted sooner after a complete epoch than this
 	MinFraction float64 // a visit that reached less pays, but does not hold back the next one
@@ -132,9 +135,16 @@ func (b *balance) lapse(at time.Time) {
 	if b.open == nil {
 		return
 	}
-	if len(b.open) == 1 || at.Sub(b.openAt) > days(b.rule.PairDays) {
+	if len(b.open) == 1 || at.Sub(b.openAt) > days(b.rule.pairDays(b.openAt)) {
 		b.close()
 	}
+}
+
+func (r CadenceRule) pairDays(at time.Time) float64 {
+	if r.PairDaysAt != nil {
+		return r.PairDaysAt(at)
+	}
+	return r.PairDays
 }
 
 // close books the open epoch: its payment if every receiver took part, nothing otherwise.
@@ -169,7 +179,7 @@ func (b *balance) account(opened time.Time, visits []Visit, at time.Time) Accoun
 	if b.open != nil {
 		debt, since = b.paidDebt(), b.paidAt
 		if slices.Contains(b.open, 0) {
-			a.Open, a.LapsesAt = true, b.openAt.Add(days(r.PairDays))
+			a.Open, a.LapsesAt = true, b.openAt.Add(days(r.pairDays(b.openAt)))
 		} else if b.full {
 			a.LastEpoch = b.paidAt
 		}
