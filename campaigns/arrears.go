@@ -68,6 +68,7 @@ func (b *books) accountRow(k *knowledge, aim *Aim) (AccountRow, error) {
 	case Cadence:
 		a := b.cadence(k.source, aim)
 		row.Debt, row.Due, row.Why, row.Last = a.Debt, a.Due, a.Why, a.Last
+		b.tellPair(&row, k.source, aim)
 		if a.ramping {
 			row.Flags = append(row.Flags, fmt.Sprintf("ramp since %s", aim.Ramp.From.Format(time.DateOnly)))
 		}
@@ -98,6 +99,7 @@ func (b *books) accountRow(k *knowledge, aim *Aim) (AccountRow, error) {
 	case Calibration:
 		row.Why = fmt.Sprintf("every session needs %s", count(aim.PerSession, "slot"))
 	}
+	b.tellReach(&row, k.source, aim)
 	if row.Debt > 1 && aim.Kind == Cadence {
 		row.Flags = append(row.Flags, "overdue")
 	}

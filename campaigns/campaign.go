@@ -74,6 +74,7 @@ type Source struct {
 	Spin             *Spin
 	DMPcPerCm3       float64
 	Flux             *Flux
+	Scintillation    *Scintillation
 	WidthMs          float64 // W50 of the profile; 0 when not known
 	JitterUsPerHour  float64 // TOA error from pulse jitter after one hour
 	FloorUs          float64 // TOA error that no amount of time goes below
@@ -101,6 +102,13 @@ type Flux struct {
 	MJy           float64
 	AtMHz         float64
 	SpectralIndex float64
+}
+
+// Scintillation is how the interstellar medium makes the flux vary from visit to visit.
+type Scintillation struct {
+	Minutes float64 // time in which a scintle comes and goes
+	MHz     float64 // its width in frequency
+	AtMHz   float64 // frequency at which that holds
 }
 
 // Orbit is the ephemeris of a binary. Exactly one of the epochs is set (not zero). The period is from

@@ -154,6 +154,17 @@ func (jb *jobBuilder) wantedMinutes(aim *Aim) (minutes float64, ok bool) {
 	return aim.Minutes, true
 }
 
+// chance says how many visits reach the wanted TOA error, where scintillation decides; empty elsewhere.
+func (jb *jobBuilder) chance(aim *Aim) string {
+	src := jb.source.src
+	if aim.ToaUs == 0 || src.Scintillation == nil {
+		return ""
+	}
+	rec := jb.prepared.Problem.Receivers[jb.receiver].Name
+	r := reachWith(src, jb.prepared.Campaign.receiver(rec, jb.prepared.Site.Name), aim.ToaUs)
+	return "; " + r.chanceWords(aim.ToaUs)
+}
+
 // visit stretches the job for an aim of so many wanted minutes and returns the aim's Wanted and Least.
 func (jb *jobBuilder) visit(aim *Aim, minutes float64) (wanted, least int32) {
 	most := aim.MaxMinutes
@@ -172,19 +183,20 @@ func shares(minutes float64) int32 {
 // whole need: two receivers take two slots, and halving their worth would leave every pair behind the sources that
 // need one.
 func (jb *jobBuilder) cadence(aim *Aim) {
+	account := jb.books.cadence(jb.source.src, aim)
 	minutes, ok := jb.wantedMinutes(aim)
 	if !ok {
+		jb.owes(aim, account.Debt)
 		return
 	}
 	wanted, least := jb.visit(aim, minutes)
-	account := jb.books.cadence(jb.source.src, aim)
 	receiver := jb.prepared.Problem.Receivers[jb.receiver].Name
 	for _, need := range account.needs {
 		if need.Receiver == receiver {
 			jb.owes(aim, need.Debt)
 			jb.term(aim, sched.Term{
 				Scale: jb.scale(need.Need), Curve: sched.Root,
-				Wanted: wanted, Least: least, Cum: jb.effective(), Why: need.Why,
+				Wanted: wanted, Least: least, Cum: jb.effective(), Why: need.Why + jb.chance(aim),
 			})
 		}
 	}

@@ -35,6 +35,7 @@ func (l *loader) source(t *table) Source {
 		Spin:             t.spin(),
 		DMPcPerCm3:       t.numberOr("dm_pc_per_cm3", between(0, 10000), 0),
 		Flux:             t.flux(),
+		Scintillation:    t.scintillation(),
 		WidthMs:          t.numberOr("width_ms", above(0, 100000), 0),
 		JitterUsPerHour:  t.numberOr("jitter_us_per_hour", between(0, 1e6), 0),
 		FloorUs:          t.numberOr("floor_us", between(0, 1e6), 0),
@@ -99,6 +100,21 @@ func (t *table) flux() *Flux {
 	f.done(nil)
 	t.passOn("flux", f)
 	return flux
+}
+
+func (t *table) scintillation() *Scintillation {
+	s := t.table("scintillation", "scintillation", false)
+	if s == nil {
+		return nil
+	}
+	out := &Scintillation{
+		Minutes: s.number("minutes", above(0, 1e5)),
+		MHz:     s.number("mhz", above(0, 1e6)),
+		AtMHz:   s.number("at_mhz", between(1, 1e6)),
+	}
+	s.done(nil)
+	t.passOn("scintillation", s)
+	return out
 }
 
 func (t *table) orbit() *Orbit {

@@ -219,16 +219,16 @@ func (b *books) nextSession() time.Time {
 }
 
 func (jb *jobBuilder) connect(aim *Aim) error {
-	minutes, ok := jb.wantedMinutes(aim)
-	if !ok {
-		return nil
-	}
-	wanted, least := jb.visit(aim, minutes)
 	c, err := jb.books.connected(jb.source.knowledge, aim)
 	if err != nil {
 		return err
 	}
 	jb.owes(aim, c.debt())
+	minutes, ok := jb.wantedMinutes(aim)
+	if !ok {
+		return nil
+	}
+	wanted, least := jb.visit(aim, minutes)
 	jb.term(aim, sched.Term{
 		Scale: jb.scale(sched.ConnectNeed(c.predicted, c.limit)), Curve: sched.Root,
 		Wanted: wanted, Least: least, Cum: jb.effective(), Why: c.why(),
@@ -288,15 +288,15 @@ func (b *books) measure(k *knowledge, aim *Aim) (measurement, error) {
 // measure adds a term for what the session's minutes add to the knowledge of a parameter. It is worth 1 times
 // priority and need where a visit of the wanted minutes would add as much as at the best moment there is.
 func (jb *jobBuilder) measure(aim *Aim) error {
-	minutes, ok := jb.wantedMinutes(aim)
-	if !ok {
-		return nil
-	}
 	m, err := jb.books.measured(jb.source.knowledge, aim)
 	if err != nil {
 		return err
 	}
 	jb.owes(aim, m.debt())
+	minutes, ok := jb.wantedMinutes(aim)
+	if !ok {
+		return nil
+	}
 	need := math.Min(1, m.debt())
 	wanted, least := jb.visit(aim, minutes)
 	gain, best, err := jb.gains(m)

@@ -66,6 +66,7 @@ type SlotRow struct {
 	ParStartDeg, ParEndDeg float64  // parallactic angle
 	PhaseStart, PhaseEnd   *float64 // orbital phase from the ascending node, turns; nil without an orbit
 	SNR, ToaUs             float64
+	SNRScatter             float64 // share of itself by which the S/N scatters from visit to visit; 0: steady, or not known
 	Worth                  float64 // in units of worth
 	Pinned                 bool
 	Note                   string

@@ -7,7 +7,6 @@ import (
 
 	"example.org/tallystick/sched"
 	"example.org/tallystick/sky"
-	"example.org/tallystick/sky/radiometer"
 )
 
 // An LSTPressure holds hours by the hour of local sidereal time of a site: 0 is from 0 h to 1 h.
@@ -195,9 +194,7 @@ func (p *player) hoursWanted(start *books, k *knowledge, receiver string, site *
 
 // minutesAtZenith is what an aim with a TOA error asks for; 0 where no amount of time reaches it.
 func (c *Campaign) minutesAtZenith(src *Source, receiver, site string, toaUs float64) float64 {
-	l, b := sky.GalacticDeg(src.RADeg, src.DecDeg)
-	setup := radiometer.Setup{Receiver: c.receiver(receiver, site).radiometer(), Pulsar: src.pulsar(l, b)}
-	minutes, err := setup.MinutesFor(toaUs, 90)
+	minutes, err := src.setup(c.receiver(receiver, site)).MinutesFor(toaUs, 90)
 	if err != nil {
 		return 0
 	}

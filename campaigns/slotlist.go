@@ -63,6 +63,7 @@ func (p *Prepared) slotRow(plan sched.Plan, i int) SlotRow {
 		row.PhaseStart, row.PhaseEnd = &ps.phases[start], &ps.phases[end]
 	}
 	row.SNR, row.ToaUs = ps.expect(job.Receiver, start, end)
+	row.SNRScatter = ps.scatter(job.Receiver, start, end)
 	row.MoveSec, row.OverheadSec, row.WaitSec = p.before(plan, i)
 	return row
 }

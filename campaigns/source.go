@@ -71,11 +71,9 @@ func (ps *preparedSource) icrsAt(t time.Time) (ra, dec float64) {
 
 // listen works out what each receiver of the session hears of the source, and what its orbit does meanwhile.
 func (ps *preparedSource) listen(p *Prepared) {
-	l, b := sky.GalacticDeg(ps.src.RADeg, ps.src.DecDeg)
-	pulsar := ps.src.pulsar(l, b)
 	el := p.Tracks[p.sourceByName[ps.src.Name]].ElDeg
 	for _, rec := range p.Problem.Receivers {
-		set := radiometer.Setup{Receiver: p.Campaign.receiver(rec.Name, p.Site.Name).radiometer(), Pulsar: pulsar}
+		set := ps.src.setup(p.Campaign.receiver(rec.Name, p.Site.Name))
 		weights := set.EffectiveWeights(el, nil)
 		cum := make([]int32, len(el))
 		sum := 0.0
@@ -122,6 +120,17 @@ func (s *Source) pulsar(lDeg, bDeg float64) radiometer.Pulsar {
 func (ps *preparedSource) minutesFor(receiver int, toaUs float64) (minutes float64, ok bool) {
 	minutes, err := ps.setups[receiver].MinutesFor(toaUs, 90)
 	return minutes, err == nil
+}
+
+// scatter is by which share of itself a slot's S/N scatters from visit to visit through scintillation; 0 for a steady
+// source, and where it is not known.
+func (ps *preparedSource) scatter(receiver, start, end int) float64 {
+	if ps.src.Scintillation == nil || end <= start {
+		return 0
+	}
+	r := &ps.setups[receiver].Receiver
+	scintles := ps.src.scintillation(r.CentreMHz()).Scintles(60*float64(end-start), r.BandwidthMHz())
+	return radiometer.ModulationIndex(scintles)
 }
 
 // expect is the S/N and TOA error of a slot; 0 where it is not known.

@@ -5,6 +5,7 @@ import (
 	"image"
 	"strings"
 
+	"example.org/tallystick/campaigns"
 	"example.org/tallystick/sched"
 	"example.org/tallystick/ui/cell"
 	"example.org/tallystick/ui/theme"
@@ -73,7 +74,7 @@ func slotLines(w *world, i int) []line {
 		add("! limit", theme.Broken, "%s", b)
 	}
 	add("points", theme.Plain, "el %.1f to %.1f, az %.1f to %.1f deg, cable turn %d", row.ElStartDeg, row.ElEndDeg, row.AzStartDeg, row.AzEndDeg, row.Turn)
-	add("expects", theme.Plain, "%s", expects(row.SNR, row.ToaUs)+worthWords(row.Worth, why.Terms))
+	add("expects", theme.Plain, "%s", expects(row)+worthWords(row.Worth, why.Terms))
 	for _, t := range why.Terms {
 		if t.Worth > 0 {
 			add(" ", theme.Muted, "%s for %s: %s", t.Worth, t.Label, t.Why)
@@ -106,14 +107,18 @@ func slotLines(w *world, i int) []line {
 	return lines
 }
 
-func expects(snr, toaUs float64) string {
-	switch {
-	case snr == 0 && toaUs == 0:
-		return "no S/N known; "
-	case toaUs == 0:
-		return fmt.Sprintf("S/N %s; ", number(snr))
+func expects(row *campaigns.SlotRow) string {
+	snr := "S/N " + number(row.SNR)
+	if row.SNRScatter >= 0.01 {
+		snr += fmt.Sprintf(" (scintillation scatters it by %.0f %%)", 100*row.SNRScatter)
 	}
-	return fmt.Sprintf("S/N %s, TOA error %s us; ", number(snr), number(toaUs))
+	switch {
+	case row.SNR == 0 && row.ToaUs == 0:
+		return "no S/N known; "
+	case row.ToaUs == 0:
+		return snr + "; "
+	}
+	return fmt.Sprintf("%s, TOA error %s us; ", snr, number(row.ToaUs))
 }
 
 // worthWords adds a slot's worth up, aims of one kind together.

@@ -9,6 +9,21 @@ type Scintillation struct {
 	Filling      float64 // η: the part of time and band that scintles fill; 0: 0.2
 }
 
+// At returns the scales at another observing frequency.
+//
+//	τ_d ∝ f^1.2,  Δν_d ∝ f^4.4
+//
+// Given:   the frequency at which the scales are known, and the other, both above 0
+// Source:  turbulence of the Kolmogorov kind, Rickett 1990, ARA&A 28, 561
+// Checked: TestScintlesAt
+func (s Scintillation) At(fromMHz, mhz float64) Scintillation {
+	if fromMHz > 0 && mhz > 0 {
+		s.TimescaleS *= math.Pow(mhz/fromMHz, 1.2)
+		s.BandwidthMHz *= math.Pow(mhz/fromMHz, 4.4)
+	}
+	return s
+}
+
 // Scintles returns the number of independent scintles in an observation.
 //
 //	N_s = (1 + η t/τ_d)(1 + η B/Δν_d),  η = 0.2..0.3

@@ -17,6 +17,17 @@ func TestScintles(t *testing.T) {
 	}
 }
 
+// The exponents are those of Kolmogorov turbulence, 6/5 and 22/5.
+func TestScintlesAt(t *testing.T) {
+	s := Scintillation{TimescaleS: 600, BandwidthMHz: 50}.At(1400, 700)
+	if math.Abs(s.TimescaleS-600/math.Pow(2, 6.0/5)) > 1e-9 || math.Abs(s.BandwidthMHz-50/math.Pow(2, 22.0/5)) > 1e-9 {
+		t.Errorf("at half the frequency: %+v", s)
+	}
+	if same := (Scintillation{TimescaleS: 600, BandwidthMHz: 50}).At(0, 700); same.TimescaleS != 600 || same.BandwidthMHz != 50 {
+		t.Errorf("without a frequency: %+v", same)
+	}
+}
+
 func TestChanceAbove(t *testing.T) {
 	for _, r := range rows(t, "radiometer.csv", "RAD-064") {
 		r.check(t, 1-ChanceAbove(r.num(t, "x"), 1))
