@@ -74,6 +74,9 @@ func (r CadenceRule) Balance(opened time.Time, visits []Visit, at time.Time) Acc
 			opened = visits[0].At
 		}
 	}
+	if r.Ramp != nil && !at.Before(r.Ramp.From) && opened.Before(r.Ramp.From) && (len(visits) == 0 || !visits[0].At.Before(r.Ramp.From)) {
+		opened = r.Ramp.From // a discovery: nothing was owed before it
+	}
 	b := balance{rule: r, debt: 1, since: opened, due: opened}
 	for _, v := range visits {
 		b.visit(v)
@@ -111,6 +114,7 @@ type balance struct {
 	openAt    time.Time // its first visit
 	paidAt    time.Time // its last visit
 	full      bool      // that reached MinFraction
+	booked    bool      // an epoch has been booked
 	lastEpoch time.Time
 }
 
@@ -151,7 +155,7 @@ func (r CadenceRule) pairDays(at time.Time) float64 {
 func (b *balance) close() {
 	if !slices.Contains(b.open, 0) {
 		b.debt = b.paidDebt()
-		b.since = b.paidAt
+		b.since, b.booked = b.paidAt, true
 		if b.full {
 			b.lastEpoch = b.paidAt
 		}
@@ -201,26 +205,55 @@ func (b *balance) account(opened time.Time, visits []Visit, at time.Time) Accoun
 	if len(visits) > 0 || opened.Before(at) {
 		a.Due = r.dueAfter(debt, since)
 	}
-	a.Why = r.say(a, at)
+	a.Why = r.say(a, debt, since, b.booked || b.open != nil, at)
 	return a
 }
 
-func (r CadenceRule) say(a Account, at time.Time) string {
-	switch {
-	case a.Last.IsZero():
-		return fmt.Sprintf("never observed: debt %.2f", a.Debt)
-	case a.Open:
-		var missing []string
-		for _, b := range a.ByReceiver {
-			if b.Paid == 0 {
-				missing = append(missing, b.Receiver)
-			}
-		}
-		return fmt.Sprintf("debt %.2f; %.2f unless %s follows by %s", a.Debt, a.Owed, join(missing), a.LapsesAt.UTC().Format("2006-01-02 15:04"))
-	case r.ramped(at):
-		return fmt.Sprintf("debt %.2f: last %.1f d ago, every %.3g d now and %.3g d later", a.Debt, daysBetween(a.Last, at), r.IntervalDaysAt(at), r.EveryDays)
+// say explains a debt in one line that adds up. left is what was owed at since: right after the last epoch that was
+// booked, if one was, else at the opening.
+func (r CadenceRule) say(a Account, left float64, since time.Time, booked bool, at time.Time) string {
+	every := fmt.Sprintf("every %.3g d", r.EveryDays)
+	if r.ramped(at) {
+		every = fmt.Sprintf("every %.3g d now and %.3g d later", r.IntervalDaysAt(at), r.EveryDays)
 	}
-	return fmt.Sprintf("debt %.2f: last %.1f d ago, every %.3g d", a.Debt, daysBetween(a.Last, at), r.EveryDays)
+	never := "due now, " + every
+	if since.Before(at) {
+		never = fmt.Sprintf("due since %s, %s", since.UTC().Format(time.DateOnly), every)
+	}
+	if a.Last.IsZero() {
+		return fmt.Sprintf("never observed: debt %.2f, %s", a.Debt, never)
+	}
+	if a.Open {
+		return fmt.Sprintf("debt %.2f; %.2f unless %s follows by %s", a.Debt, a.Owed, join(a.lacking(time.Time{})), a.LapsesAt.UTC().Format("2006-01-02 15:04"))
+	}
+	s := fmt.Sprintf("debt %.2f: last %.1f d ago", a.Debt, daysBetween(a.Last, at))
+	if !booked || since.Before(a.Last) { // the last epoch was no complete epoch, and paid nothing
+		if lacking := a.lacking(a.Last.Add(-days(r.pairDays(a.Last)))); len(lacking) > 0 {
+			s += " without " + join(lacking)
+		}
+		if booked {
+			s += fmt.Sprintf(", complete %.1f d ago", daysBetween(since, at))
+		} else {
+			return s + ", never complete, " + never
+		}
+	}
+	s += ", " + every
+	if left >= 0.005 {
+		s += fmt.Sprintf(", %.2f left from before", left)
+	}
+	return s
+}
+
+// lacking are the receivers whose last visit is not after a time; with the zero time those that have not paid a share of
+// the open epoch.
+func (a *Account) lacking(after time.Time) []string {
+	var names []string
+	for _, b := range a.ByReceiver {
+		if after.IsZero() && b.Paid == 0 || !after.IsZero() && !b.Last.After(after) {
+			names = append(names, b.Receiver)
+		}
+	}
+	return names
 }
 
 // grow returns the debt at a time, given what it was before.

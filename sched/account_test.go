@@ -86,12 +86,41 @@ func TestRamp(t *testing.T) {
 	visit := []Visit{{dayAt(96), "L", 1}}
 	near(t, "before the ramp", r.Balance(day0, visit, dayAt(98)).Debt, 0.25)
 	near(t, "due at once when it begins", r.Balance(day0, visit, dayAt(100)).Debt, 1)
+	near(t, "a discovery owes nothing from before it", r.Balance(day0, nil, dayAt(101)).Debt, 2)
+	near(t, "nor once it has been seen", r.Balance(day0, []Visit{{dayAt(101), "L", 1}}, dayAt(102)).Debt, 0.5)
+	near(t, "before it the usual debt", r.Balance(day0, nil, dayAt(16)).Debt, 3)
 	visit = append(visit, Visit{dayAt(100), "L", 1})
 	for _, c := range []struct{ day, debt float64 }{{100.5, 0.5}, {101, 1}, {103, 2}, {107, 3}, {115, 4}, {123, 5}} {
 		near(t, "intervals 1, 2, 4, 8, 8 d", r.Balance(day0, visit, dayAt(c.day)).Debt, c.debt)
 	}
 	if due := r.Balance(day0, append(visit, Visit{dayAt(101), "L", 1}), dayAt(101)).Due; !due.Equal(dayAt(103)) {
 		t.Errorf("due %v, want %v", due, dayAt(103))
+	}
+}
+
+// The line under a debt lets it be added up: what was left, and what has come since.
+func TestDebtsAddUpInWords(t *testing.T) {
+	r := CadenceRule{EveryDays: 10, PairDays: 2, Carry: 0.5, Receivers: []string{"L"}}
+	full := func(d float64, receiver string) Visit { return Visit{At: dayAt(d), Receiver: receiver, Paid: 1} }
+	ramp, pair := r, r
+	ramp.Ramp = &Ramp{From: dayAt(20), FirstDays: 1, Factor: 2}
+	pair.Receivers = []string{"L", "S"}
+	for _, c := range []struct {
+		rule   CadenceRule
+		visits []Visit
+		day    float64
+		want   string
+	}{
+		{r, nil, 15, "never observed: debt 2.50, due since 2031-01-01, every 10 d"},
+		{r, []Visit{full(0, "L")}, 5, "debt 0.50: last 5.0 d ago, every 10 d"},
+		{r, []Visit{full(0, "L"), full(30, "L")}, 35, "debt 1.50: last 5.0 d ago, every 10 d, 1.00 left from before"},
+		{ramp, []Visit{full(21, "L")}, 22, "debt 1.00: last 1.0 d ago, every 2 d now and 10 d later, 0.50 left from before"},
+		{pair, []Visit{full(0, "L"), full(1, "S"), full(6, "L")}, 11, "debt 1.05: last 5.0 d ago without S, complete 10.0 d ago, every 10 d, 0.05 left from before"},
+		{pair, []Visit{full(0, "L")}, 11, "debt 2.10: last 11.0 d ago without S, never complete, due since 2031-01-01, every 10 d"},
+	} {
+		if got := c.rule.Balance(day0, c.visits, dayAt(c.day)).Why; got != c.want {
+			t.Errorf("got  %q\nwant %q", got, c.want)
+		}
 	}
 }
 
