@@ -56,6 +56,8 @@ func (w *world) followClock() {
 		w.desk.choose(now.slot)
 	case now.next >= 0:
 		w.desk.choose(now.next)
+	case now.last >= 0:
+		w.desk.choose(now.last)
 	}
 	w.desk.goTo(now.minute)
 }

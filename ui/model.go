@@ -128,7 +128,7 @@ func (m *model) Update(msg tea.Msg) (next tea.Model, cmd tea.Cmd) {
 	case tea.WindowSizeMsg:
 		m.w, m.h = msg.Width, msg.Height
 	case tea.KeyMsg:
-		cmd = m.key(msg)
+		cmd = m.keys(msg)
 	case tea.MouseMsg:
 		cmd = m.pointer(msg)
 	case tickMsg:
@@ -147,6 +147,18 @@ func (m *model) Update(msg tea.Msg) (next tea.Model, cmd tea.Cmd) {
 		cmd = tea.Quit
 	}
 	return m, cmd
+}
+
+// keys takes apart what was typed so fast that it came as one: over a slow line that is several keys.
+func (m *model) keys(k tea.KeyMsg) tea.Cmd {
+	if k.Type != tea.KeyRunes || k.Paste || len(k.Runes) < 2 {
+		return m.key(k)
+	}
+	var cmds []tea.Cmd
+	for _, r := range k.Runes {
+		cmds = append(cmds, m.key(tea.KeyMsg{Type: tea.KeyRunes, Runes: []rune{r}, Alt: k.Alt}))
+	}
+	return tea.Sequence(cmds...)
 }
 
 // key sends a key to the dialog, to a text field of the view, to the table of keys.
