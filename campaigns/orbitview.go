@@ -249,11 +249,14 @@ func (v *OrbitView) Eclipsed(turns float64) bool {
 	return turns >= from || turns <= to
 }
 
+// Full says that a bin has its visits, but for a twentieth of one that nobody would go back for.
+func (b *PhaseBin) Full() bool { return b.Had > float64(b.Wanted)-0.05 }
+
 // BinsMissing counts the bins that still lack visits.
 func (v *OrbitView) BinsMissing() int {
 	n := 0
-	for _, b := range v.Bins {
-		if b.Had < float64(b.Wanted)-1e-9 {
+	for i := range v.Bins {
+		if !v.Bins[i].Full() {
 			n++
 		}
 	}

@@ -41,11 +41,7 @@ type ConnectForecast struct {
 	By         time.Time // when the predicted phase error passes the limit without another observation; zero: not within ten years
 	Planned    time.Time // its first planned slot; zero: none in the season
 	ByAtEnd    time.Time // as By, after the season as planned
-}
-
-// Lost says that the source is not observed before its turns can no longer be counted.
-func (c *ConnectForecast) Lost() bool {
-	return !c.By.IsZero() && (c.Planned.IsZero() || c.Planned.After(c.By))
+	Lost       bool      // it is not observed before By, and By lies in the season
 }
 
 // A SunSpan is time in which a source is nearer to the Sun than its limit.
@@ -167,10 +163,12 @@ func (p *player) forecastConnects(start, end *books) error {
 			if err != nil {
 				return err
 			}
-			p.season.Connects = append(p.season.Connects, ConnectForecast{
+			f := ConnectForecast{
 				Source: src.Name, LimitTurns: aim.MaxPhaseErrorTurns, By: before.deadline, ByAtEnd: after.deadline,
 				Planned: p.firstPlanned(src.Name, aim),
-			})
+			}
+			f.Lost = !f.By.IsZero() && f.By.Before(p.season.To) && (f.Planned.IsZero() || f.Planned.After(f.By))
+			p.season.Connects = append(p.season.Connects, f)
 		}
 	}
 	slices.SortStableFunc(p.season.Connects, func(a, b ConnectForecast) int {

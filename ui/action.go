@@ -41,6 +41,8 @@ const (
 	goToSource    verb = "go to source" // n: the view, text: the source
 	noteIs        verb = "note is"
 	lostUntilIs   verb = "lost until is"
+	writeEntries  verb = "write entries"
+	sayThis       verb = "say"
 )
 
 func (m *model) tell(format string, args ...any) {
@@ -144,7 +146,7 @@ func (m *model) applyMove(a action) (tea.Cmd, bool) {
 		m.at = (m.at + 1) % len(m.views)
 	case lastView:
 		m.at = (m.at + len(m.views) - 1) % len(m.views)
-	case showSlate, showArrears:
+	case showSlate, showArrears, showOrbits, showSeason, showLogbook:
 		m.at = slices.Index(viewVerbs, a.verb)
 	case otherTime:
 		w.zone = (w.zone + 1) % zones
@@ -152,7 +154,7 @@ func (m *model) applyMove(a action) (tea.Cmd, bool) {
 	case goToSession:
 		return m.goToSession(a.text), true
 	case moveUp, moveDown, moveLeft, moveRight, farLeft, farRight, pageUp, pageDown, moveFirst, moveLast, openChosen,
-		filterRows, sortNext, sortTurn:
+		filterRows, sortNext, sortTurn, recordDone, recordPartial, recordLost, recordAll:
 		return m.then(m.views[m.at].steer(a.verb, w)), true
 	default:
 		return nil, false
@@ -259,6 +261,15 @@ func (m *model) applyRest(a action) tea.Cmd {
 		m.askLostUntil()
 	case copyList:
 		return m.copyCmd()
+	case takeBackEntry:
+		m.askToTakeBack()
+	case sayThis:
+		m.warn("%s", a.text)
+	case writeEntries:
+		m.over = nil
+		return recordCmd(w.folder, a.more.(recording))
+	case playSeason:
+		return m.startSeason()
 	case insertSlot:
 		m.over = newPicker(w, -1)
 	case replaceSlot:
@@ -328,6 +339,9 @@ func (m *model) goBack() tea.Cmd {
 		}
 	case w.desk.held != nil:
 		m.tell("taken back: %s", w.desk.letGo())
+	case w.season.run != nil:
+		m.stopSeason()
+		m.tell("the season was stopped; P plays it from the start")
 	default:
 		return m.then(m.views[m.at].steer(goBack, w))
 	}

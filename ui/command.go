@@ -21,6 +21,13 @@ type files struct {
 	mu sync.Mutex
 }
 
+// book is the logbook as it is now. What is added later goes into another.
+func (f *files) book() *campaigns.Logbook {
+	f.mu.Lock()
+	defer f.mu.Unlock()
+	return f.Logbook
+}
+
 // guarded turns a fault in a command into a message, so that the terminal and the work are saved.
 func guarded(work func() tea.Msg) tea.Cmd {
 	return func() (msg tea.Msg) {
@@ -40,7 +47,7 @@ func tickCmd() tea.Cmd {
 
 func prepareCmd(f *files, s *campaigns.Session, at time.Time) tea.Cmd {
 	return guarded(func() tea.Msg {
-		p, err := campaigns.Prepare(f.Campaign, f.Logbook, s, campaigns.PrepareOptions{At: at})
+		p, err := campaigns.Prepare(f.Campaign, f.book(), s, campaigns.PrepareOptions{At: at})
 		if err != nil {
 			return preparedMsg{session: s.Name, err: err}
 		}
@@ -53,9 +60,7 @@ func prepareCmd(f *files, s *campaigns.Session, at time.Time) tea.Cmd {
 
 func reviewCmd(f *files, s *campaigns.Session) tea.Cmd {
 	return guarded(func() tea.Msg {
-		f.mu.Lock()
-		log := f.Logbook
-		f.mu.Unlock()
+		log := f.book()
 		rows, err := campaigns.Arrears(f.Campaign, log, s.Start)
 		return reviewedMsg{session: s.Name, accounts: rows, year: pastYear(log, s.Start), err: err}
 	})

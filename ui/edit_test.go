@@ -381,7 +381,7 @@ func TestKeysHelpAndActionsAgree(t *testing.T) {
 	for i := range commands {
 		c := &commands[i]
 		for _, k := range c.Keys() {
-			for _, view := range []string{slateTitle, arrearsTitle} {
+			for _, view := range []string{slateTitle, arrearsTitle, orbitsTitle, seasonTitle, logbookTitle} {
 				if !c.worksIn(view) {
 					continue
 				}
@@ -400,7 +400,7 @@ func TestKeysHelpAndActionsAgree(t *testing.T) {
 	}
 	h := start(t, openCampaign(t))
 	names := newPalette(h.model).names
-	for _, view := range []string{slateTitle, arrearsTitle} {
+	for _, view := range []string{slateTitle, arrearsTitle, orbitsTitle, seasonTitle, logbookTitle} {
 		help := ""
 		for _, l := range newHelp(view).lines {
 			help += l.label + " " + l.text + "\n"
@@ -422,7 +422,7 @@ func TestKeysHelpAndActionsAgree(t *testing.T) {
 
 func TestArrowsAndLettersMoveAlike(t *testing.T) {
 	a, b := start(t, openCampaign(t)), start(t, openCampaign(t))
-	for _, view := range []string{"1", "2"} {
+	for _, view := range []string{"1", "2", "3", "4", "5"} {
 		a.keys(view)
 		b.keys(view)
 		for _, pair := range [][2]string{{"down", "j"}, {"right", "l"}, {"end", "G"}, {"up", "k"}, {"left", "h"}, {"home", "g"}} {

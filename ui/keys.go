@@ -76,6 +76,9 @@ const (
 	lastView     verb = "last view"
 	showSlate    verb = "slate"
 	showArrears  verb = "arrears"
+	showOrbits   verb = "orbits"
+	showSeason   verb = "season"
+	showLogbook  verb = "logbook"
 	otherTime    verb = "time"
 	toggleMouse  verb = "mouse"
 	findAction   verb = "actions"
@@ -84,6 +87,16 @@ const (
 	leave        verb = "quit"
 	copyList     verb = "copy"
 	seeElsewhere verb = "see elsewhere"
+)
+
+// The logbook and the season.
+const (
+	recordDone    verb = "record done"
+	recordPartial verb = "record partial"
+	recordLost    verb = "record lost"
+	recordAll     verb = "record all"
+	takeBackEntry verb = "take back"
+	playSeason    verb = "play"
 )
 
 // A command is a verb with the keys that do it and the words it is known by. Key handling, the bottom
@@ -108,12 +121,16 @@ func bind(v verb, group, view, short, name string, keys ...string) command {
 const (
 	slateTitle   = "Slate"
 	arrearsTitle = "Arrears"
+	orbitsTitle  = "Orbits"
+	seasonTitle  = "Season"
+	logbookTitle = "Logbook"
 )
 
 const (
 	moving  = "Moving about"
 	editing = "The plan"
 	onSky   = "Session under way"
+	logging = "The logbook"
 	keeping = "Keeping and leaving"
 	looking = "Looking"
 )
@@ -121,8 +138,8 @@ const (
 var commands = []command{
 	bind(moveUp, moving, "", "up", "one row up", "up", "k"),
 	bind(moveDown, moving, "", "down", "one row down", "down", "j"),
-	bind(moveLeft, moving, "", "left", "left: 5 minutes back in the slate, the column before in a table", "left", "h"),
-	bind(moveRight, moving, "", "right", "right: 5 minutes on in the slate, the next column in a table", "right", "l"),
+	bind(moveLeft, moving, "", "left", "left: 5 minutes back in the slate, the column or page before in another view", "left", "h"),
+	bind(moveRight, moving, "", "right", "right: 5 minutes on in the slate, the next column or page in another view", "right", "l"),
 	bind(farLeft, moving, slateTitle, "hour back", "an hour back", "shift+left", "H"),
 	bind(farRight, moving, slateTitle, "hour on", "an hour on", "shift+right", "L"),
 	bind(pageUp, moving, "", "page up", "one page up", "pgup"),
@@ -165,6 +182,12 @@ var commands = []command{
 	bind(lostUntil, onSky, slateTitle, "lost until", "time is lost until ...: record what is lost and plan the rest again", "F"),
 	bind(followNow, onSky, slateTitle, "follow", "go to the present moment and follow the clock", "N"),
 
+	bind(recordDone, logging, logbookTitle, "done", "record the chosen slot as done, or correct the chosen entry so", "d"),
+	bind(recordPartial, logging, logbookTitle, "partial", "record the chosen slot as partial, or correct the chosen entry so", "p"),
+	bind(recordLost, logging, logbookTitle, "lost", "record the chosen slot as lost, or correct the chosen entry so", "f"),
+	bind(recordAll, logging, logbookTitle, "all done", "record every slot that is not recorded yet as done", "A"),
+	bind(takeBackEntry, logging, logbookTitle, "take back", "take back the last entry of this run by a correcting line", "z"),
+
 	bind(savePlan, keeping, "", "save", "save the plan", "w", "ctrl+s"),
 	bind(exportPlan, keeping, "", "export", "export the slot list to a file", "e"),
 	bind(saveCampaign, keeping, "", "save campaign", "save the whole campaign into a new folder", "W"),
@@ -176,6 +199,10 @@ var commands = []command{
 	bind(lastView, looking, "", "view before", "view before", "shift+tab"),
 	bind(showSlate, looking, "", "slate", "slate: the session and its plan", "1"),
 	bind(showArrears, looking, "", "arrears", "arrears: what every source is owed", "2"),
+	bind(showOrbits, looking, "", "orbits", "orbits: what has been seen of each binary, and what comes", "3"),
+	bind(showSeason, looking, "", "season", "season: the coming sessions, hours wanted and granted", "4"),
+	bind(showLogbook, looking, "", "logbook", "logbook: record this session's slots, see past entries", "5"),
+	bind(playSeason, looking, seasonTitle, "play", "play the coming sessions forward", "P"),
 	bind(sortNext, looking, arrearsTitle, "sort", "sort by the next column", "s"),
 	bind(sortTurn, looking, arrearsTitle, "turn", "turn the order of the rows round", "S"),
 	bind(seeElsewhere, looking, "", "see in", "see the chosen source in another view", "v"),

@@ -11,6 +11,12 @@ const (
 	leastHeight = 6
 )
 
+// Widths from which the title names every view, and from which it has room for the date too.
+const (
+	narrowTitle = 62
+	wideTitle   = 104
+)
+
 // Width from which a view puts details beside its table.
 const wideEnough = 110
 
@@ -126,4 +132,74 @@ func centred(screen image.Rectangle, w, h int) image.Rectangle {
 	w, h = min(w, screen.Dx()), min(h, screen.Dy())
 	x, y := screen.Min.X+(screen.Dx()-w)/2, screen.Min.Y+(screen.Dy()-h)/2
 	return image.Rect(x, y, x+w, y+h)
+}
+
+// orbitParts are the parts of the orbits' body; an empty rectangle is left out.
+type orbitParts struct {
+	head, list, strip, shape, words image.Rectangle
+	beside                          bool // the list stands beside the rest
+}
+
+// orbitListWidth is what the list of binaries takes beside the rest.
+const orbitListWidth = 46
+
+func orbitLayout(w, h int) orbitParts {
+	p := orbitParts{head: row(0, w)}
+	switch {
+	case w >= wideEnough && h >= 14:
+		p.beside = true
+		x := orbitListWidth + 1
+		p.list = image.Rect(0, 1, orbitListWidth, h)
+		p.strip = image.Rect(x, 1, w, 7)
+		shape := min((h-8)*2, (w-x)/2)
+		p.shape = image.Rect(x, 8, x+shape, min(h, 8+shape/2+2))
+		p.words = image.Rect(x+shape+1, 8, w, h)
+	case h >= 16:
+		list := max(h/4, 4)
+		p.list = image.Rect(0, 1, w, 1+list)
+		p.strip = image.Rect(0, 1+list, w, 7+list)
+		p.words = image.Rect(0, 7+list, w, h)
+		if shape := h - 7 - list; w >= 72 && shape >= 7 {
+			p.shape = image.Rect(w-2*shape-8, 7+list, w, h)
+			p.words.Max.X = p.shape.Min.X - 1
+		}
+	case h >= 6:
+		strip := 2
+		if h >= 9 {
+			strip = 4
+		}
+		p.list = image.Rect(0, 1, w, h-strip)
+		p.strip = image.Rect(0, h-strip, w, h)
+	default:
+		p.list = image.Rect(0, 1, w, h)
+	}
+	return p
+}
+
+// seasonParts are the parts of the season's body; an empty rectangle is left out.
+type seasonParts struct {
+	strip, head, table, details, hours image.Rectangle
+}
+
+func seasonLayout(w, h int) seasonParts {
+	var p seasonParts
+	y := 0
+	if h >= 12 {
+		p.strip = image.Rect(0, 0, w, 2)
+		y = 2
+	}
+	p.head = image.Rect(0, y, w, y+1)
+	y++
+	right := w
+	if w >= wideEnough+30 && h >= 16 {
+		right = w * 5 / 8
+		p.hours = image.Rect(right+1, y, w, h)
+	}
+	bottom := h
+	if h >= 16 {
+		bottom = h - max(h/4, 4)
+		p.details = image.Rect(0, bottom, right, h)
+	}
+	p.table = image.Rect(0, y, right, bottom)
+	return p
 }

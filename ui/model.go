@@ -60,14 +60,14 @@ type model struct {
 
 // newViews are the views in the order of their numbers; viewVerbs go to them. A view that joins is added
 // to both, with a key in the table of keys.
-func newViews() []view { return []view{&slate{}, &arrears{}} }
+func newViews() []view { return []view{&slate{}, &arrears{}, &orbits{}, &season{}, &logbook{}} }
 
-var viewVerbs = []verb{showSlate, showArrears}
+var viewVerbs = []verb{showSlate, showArrears, showOrbits, showSeason, showLogbook}
 
 func newModel(c Config, st theme.Styles) *model {
 	m := &model{cfg: c, st: st, drafted: map[string]int{}, drafts: map[string][]draft{}, machine: time.Now}
 	m.run = m.machine().UnixNano()
-	m.world = world{folder: &files{Folder: c.Folder}, campaign: c.Folder.Campaign, desks: map[string]*desk{}, mouse: c.Mouse}
+	m.world = world{folder: &files{Folder: c.Folder}, campaign: c.Folder.Campaign, desks: map[string]*desk{}, mouse: c.Mouse, book: c.Folder.Logbook}
 	m.world.now = m.clock()
 	m.views = newViews()
 	if len(c.Folder.Notices) > 0 {
@@ -144,9 +144,9 @@ func (m *model) Update(msg tea.Msg) (next tea.Model, cmd tea.Cmd) {
 		cmd = m.receive(msg)
 	}
 	if m.fault != "" {
-		cmd = tea.Quit
+		return m, tea.Quit
 	}
-	return m, cmd
+	return m, withAlso(cmd, m.fetch())
 }
 
 // keys takes apart what was typed so fast that it came as one: over a slow line that is several keys.
@@ -181,7 +181,7 @@ func (m *model) key(k tea.KeyMsg) tea.Cmd {
 		}
 		return nil
 	}
-	if c.group == moving || c.group == editing || c.group == onSky {
+	if c.group == moving || c.group == editing || c.group == onSky || c.group == logging {
 		m.world.say = saying{} // it has been read; help and the like leave it alone
 	}
 	if c.verb == openChosen {

@@ -34,6 +34,14 @@ func (m *model) receive(msg tea.Msg) tea.Cmd {
 		m.receivePlanned(msg)
 	case recordedMsg:
 		return m.receiveRecorded(msg)
+	case refreshedMsg:
+		return m.receiveRefreshed(msg)
+	case orbitsMsg:
+		m.receiveOrbits(msg)
+	case seasonProgressMsg:
+		return m.receiveSeasonProgress(msg)
+	case seasonMsg:
+		m.receiveSeason(msg)
 	case copiedMsg:
 		m.receiveCopied(msg)
 	case settingsKeptMsg:

@@ -22,12 +22,15 @@ type recording struct {
 	settles string   // an edit of the plan, "" for none
 	to      snapshot // what the plan then is
 	again   bool     // plan again afterwards
+	undoes  bool     // it takes the last entry of this run back
 }
 
 // recordedMsg: the entries are in the logbook, or are not.
 type recordedMsg struct {
 	recording
-	err error
+	book *campaigns.Logbook // with the entries
+	debt string             // what became of the accounts, in words
+	err  error
 }
 
 // recordCmd appends to the logbook. It has happened when the answer comes.
@@ -37,13 +40,14 @@ func recordCmd(f *files, r recording) tea.Cmd {
 		defer f.mu.Unlock()
 		for _, e := range r.entries {
 			if err := e.Check(); err != nil {
-				return recordedMsg{r, err}
+				return recordedMsg{recording: r, err: err}
 			}
 		}
-		if len(r.entries) == 0 {
-			return recordedMsg{r, nil}
+		before := f.Logbook
+		if err := f.AppendLog(r.entries); err != nil {
+			return recordedMsg{recording: r, err: err}
 		}
-		return recordedMsg{r, f.AppendLog(r.entries)}
+		return recordedMsg{recording: r, book: f.Logbook, debt: debtWords(f.Campaign, before, f.Logbook, r.entries)}
 	})
 }
 
@@ -54,11 +58,12 @@ func (m *model) receiveRecorded(msg recordedMsg) tea.Cmd {
 		return nil
 	}
 	d := msg.desk
-	m.tell("recorded: %s", msg.did)
+	m.tell("recorded: %s%s", msg.did, msg.debt)
+	refresh := m.bookChanged(msg)
 	if msg.settles != "" {
 		if d.edition != msg.edition {
 			m.warn("recorded: %s; the plan has been edited meanwhile and stays", msg.did)
-			return nil
+			return refresh
 		}
 		d.commit(msg.settles, msg.to)
 		if m.world.follow && d == m.world.desk {
@@ -66,9 +71,9 @@ func (m *model) receiveRecorded(msg recordedMsg) tea.Cmd {
 		}
 	}
 	if msg.again && d == m.world.desk {
-		return m.startPlanning(false, m.world.planFrom())
+		return withAlso(refresh, m.startPlanning(false, m.world.planFrom()))
 	}
-	return m.stopStalePlanning()
+	return withAlso(refresh, m.stopStalePlanning())
 }
 
 // entryOf is the logbook's line about a slot, from its start to an end.

@@ -121,6 +121,7 @@ func Run(c Config) error {
 // outcome keeps what is unsaved, and says how the program ended.
 func (m *model) outcome(signal int, err error) error {
 	m.stopPlanning()
+	m.stopSeason()
 	var drafts []string
 	if !m.discard {
 		drafts = m.keepDrafts()

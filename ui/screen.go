@@ -35,7 +35,11 @@ func (m *model) draw(c *cell.Canvas) {
 	m.drawTitle(c.Sub(f.title))
 	m.drawWorth(c.Sub(f.worth))
 	if m.world.desk.prepared == nil {
-		m.drawNotReady(c.Sub(f.body))
+		if v, ok := m.views[m.at].(free); ok {
+			v.draw(&m.world, c.Sub(f.body), g)
+		} else {
+			m.drawNotReady(c.Sub(f.body))
+		}
 	} else {
 		m.views[m.at].draw(&m.world, c.Sub(f.body), g)
 	}
@@ -77,15 +81,26 @@ func (m *model) drawNotReady(c *cell.Canvas) {
 func (m *model) tabs() []image.Rectangle {
 	x := 0
 	var at []image.Rectangle
-	for i, v := range m.views {
-		n := cell.Width(tabName(i, v))
+	for i := range m.views {
+		n := cell.Width(m.tabName(i))
 		at = append(at, image.Rect(x, 0, x+n, 1))
 		x += n
 	}
 	return at
 }
 
-func tabName(i int, v view) string { return fmt.Sprintf(" %d %s ", i+1, v.title()) }
+// tabName is a view's number and name; on a narrow screen without the blank behind, or the number alone
+// of those not shown.
+func (m *model) tabName(i int) string {
+	switch v := m.views[i]; {
+	case m.w < narrowTitle && i != m.at:
+		return fmt.Sprintf(" %d", i+1)
+	case m.w < wideTitle:
+		return fmt.Sprintf(" %d %s", i+1, v.title())
+	default:
+		return fmt.Sprintf(" %d %s ", i+1, v.title())
+	}
+}
 
 func (m *model) titleClick(x int) action {
 	for i, r := range m.tabs() {
@@ -100,8 +115,8 @@ func (m *model) titleClick(x int) action {
 func (m *model) drawTitle(c *cell.Canvas) {
 	w, _ := c.Size()
 	x := 0
-	for i, v := range m.views {
-		ink, name := theme.Muted, tabName(i, v)
+	for i := range m.views {
+		ink, name := theme.Muted, m.tabName(i)
 		if i == m.at {
 			ink, name = theme.Chosen, strings.Replace(name, " ", m.st.Glyphs.Mark, 1)
 		}
@@ -109,7 +124,7 @@ func (m *model) drawTitle(c *cell.Canvas) {
 	}
 	now := m.world.now.UTC()
 	clock := now.Format("2006-01-02 15:04:05 UTC")
-	if w < 70 {
+	if w < wideTitle {
 		clock = now.Format("15:04:05 UTC")
 	}
 	room := w - x - 2 - len(clock) - 1
@@ -227,6 +242,8 @@ func (m *model) drawMessage(c *cell.Canvas) {
 			}
 		}
 		c.Put(1, 0, cell.Fit(text+"; Esc stops it", w-1), theme.Now)
+	case m.world.season.run != nil:
+		c.Put(1, 0, cell.Fit(m.world.season.run.words(), w-1), theme.Now)
 	default:
 		c.Put(1, 0, cell.Fit(oneCell.Replace(m.world.say.text), w-1), m.world.say.ink)
 	}

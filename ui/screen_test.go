@@ -20,6 +20,17 @@ func TestGoldenScreens(t *testing.T) {
 		golden(t, fmt.Sprintf("slate-%dx%d", size.w, size.h), h.screen())
 		h.keys("2", "down")
 		golden(t, fmt.Sprintf("arrears-%dx%d", size.w, size.h), h.screen())
+		h.keys("3")
+		golden(t, fmt.Sprintf("orbits-%dx%d", size.w, size.h), h.screen())
+		h.keys("4")
+		golden(t, fmt.Sprintf("season-%dx%d", size.w, size.h), h.screen())
+		h.send(seasonMsg{run: running(h), season: seasonByHand(h.world.campaign)})
+		for _, page := range []string{"sessions", "cadences", "hours"} {
+			golden(t, fmt.Sprintf("season-%s-%dx%d", page, size.w, size.h), h.screen())
+			h.keys("right")
+		}
+		h.keys("5", "down")
+		golden(t, fmt.Sprintf("logbook-%dx%d", size.w, size.h), h.screen())
 	}
 }
 
@@ -66,10 +77,10 @@ func TestEverySizeIsExact(t *testing.T) {
 	for _, w := range widths {
 		for height := 1; height <= 100; height += 1 + height/9 {
 			h.size(w, height)
-			h.keys("tab")
-			h.exact()
-			h.keys("tab")
-			h.exact()
+			for range h.views {
+				h.keys("tab")
+				h.exact()
+			}
 			if w%3 == 0 {
 				long.size(w, height)
 				long.exact()
@@ -80,7 +91,7 @@ func TestEverySizeIsExact(t *testing.T) {
 
 func TestDialogsAreExactAtEverySize(t *testing.T) {
 	h := start(t, openCampaign(t))
-	for _, open := range [][]string{{"?"}, {":"}, {"o"}, {"e"}, {"e", "enter"}, {"enter"}, {"r"}, {"W"}, {"/"}, {"2", "/"}} {
+	for _, open := range [][]string{{"?"}, {":"}, {"o"}, {"e"}, {"e", "enter"}, {"enter"}, {"r"}, {"W"}, {"/"}, {"2", "/"}, {"3", "/"}, {"3", "enter"}, {"4", "enter"}, {"5", "/"}, {"5", "d"}, {"5", "p", "tab", "type:x", "enter"}, {"5", "A"}, {"5", "enter"}} {
 		h.size(80, 24)
 		h.keys("esc", "esc", "1")
 		h.keys(open...)
@@ -103,7 +114,7 @@ func TestTooSmallSaysSo(t *testing.T) {
 
 func TestASCIIScreens(t *testing.T) {
 	h := start(t, openCampaign(t), func(c *Config) { c.ASCII = true })
-	for _, keys := range [][]string{{}, {"2"}, {"?"}, {"esc", "1", "i"}, {"esc", ".", ".", ".", ".", ".", ".", ".", ".", "."}} {
+	for _, keys := range [][]string{{}, {"2"}, {"3"}, {"enter"}, {"esc", "4"}, {"P"}, {"right"}, {"right"}, {"enter"}, {"esc", "5"}, {"d"}, {"esc", "?"}, {"esc", "1", "i"}, {"esc", ".", ".", ".", ".", ".", ".", ".", ".", "."}} {
 		h.keys(keys...)
 		for _, r := range h.View() {
 			if r > 126 {
@@ -117,7 +128,7 @@ func TestASCIIScreens(t *testing.T) {
 // box lines.
 func TestNoSignOfDoubtfulWidth(t *testing.T) {
 	h := start(t, openCampaign(t))
-	for _, keys := range [][]string{{}, {"enter"}, {"esc", "2"}, {"enter"}, {"esc", "?"}, {"esc", "1", "i"}} {
+	for _, keys := range [][]string{{}, {"enter"}, {"esc", "2"}, {"enter"}, {"esc", "3"}, {"enter"}, {"esc", "4", "P"}, {"right"}, {"esc", "5"}, {"enter"}, {"esc", "?"}, {"esc", "1", "i"}} {
 		h.keys(keys...)
 		for _, r := range h.screen() {
 			box := r >= 0x2500 && r <= 0x257f

@@ -24,6 +24,12 @@ type world struct {
 	work     *planning // a plan being made, or nil
 	mouse    bool
 	follow   bool // the cursor follows the clock while the session is under way
+
+	book    *campaigns.Logbook // as it was when it was last written here; only read
+	edition int                // counts changes of the book
+	written []written          // entries of this run, for taking back
+	orbits  orbitState
+	season  seasonState
 }
 
 // A saying is a message to the user.

@@ -107,7 +107,7 @@ func seasonCSV(w io.Writer, s *campaigns.Season, table string) error {
 	case "connect":
 		for i := range s.Connects {
 			c := &s.Connects[i]
-			out = append(out, []string{c.Source, fmt.Sprintf("%g", c.LimitTurns), utc(c.By), utc(c.Planned), fmt.Sprint(c.Lost()), utc(c.ByAtEnd)})
+			out = append(out, []string{c.Source, fmt.Sprintf("%g", c.LimitTurns), utc(c.By), utc(c.Planned), fmt.Sprint(c.Lost), utc(c.ByAtEnd)})
 		}
 	case "sun":
 		for _, g := range s.Sun {
@@ -173,18 +173,18 @@ func outcomeCounts(s *campaigns.Season) map[campaigns.CadenceOutcome]int {
 func cadencesText(w io.Writer, s *campaigns.Season) error {
 	n := outcomeCounts(s)
 	fmt.Fprintf(w, "%s: %d kept, %d late, %d missed\n", count(len(s.Cadences), "cadence"), n[campaigns.CadenceKept], n[campaigns.CadenceLate], n[campaigns.CadenceMissed])
-	columns := []column{{"Outcome", 7, false}, {"Source", 14, false}, {"Aim", 19, false}, {"Visits", 8, true}, {"Overdue", 7, true}, {"Debt now", 8, true}, {"at end", 6, true}}
+	columns := []column{{"Outcome", 7, false}, {"Source", 14, false}, {"Aim", 19, false}, {"Due", 3, true}, {"Planned", 7, true}, {"Overdue", 7, true}, {"Debt now", 8, true}, {"at end", 6, true}}
 	var rows [][]string
 	for _, c := range s.Cadences {
 		rows = append(rows, []string{
-			string(c.Outcome), words(c.Source), words(c.Aim), fmt.Sprintf("%d of %d", c.Planned, c.Due), fmt.Sprintf("%d d", c.OverdueDays),
+			string(c.Outcome), words(c.Source), words(c.Aim), fmt.Sprint(c.Due), fmt.Sprint(c.Planned), fmt.Sprintf("%d d", c.OverdueDays),
 			fmt.Sprintf("%.2f", c.DebtNow), fmt.Sprintf("%.2f", c.DebtEnd),
 		})
 	}
 	if err := printTable(w, columns, rows); err != nil {
 		return err
 	}
-	_, err := io.WriteString(w, "Visits: planned of those that fall due. Overdue: days with a debt above 1.\n")
+	_, err := io.WriteString(w, "Due and planned are visits. Overdue: days with a debt above 1.\n")
 	return err
 }
 
@@ -216,7 +216,7 @@ func connectsText(w io.Writer, s *campaigns.Season) error {
 			continue
 		}
 		verdict := "kept"
-		if c.Lost() {
+		if c.Lost {
 			verdict = "count at risk"
 		}
 		rows = append(rows, []string{words(c.Source), day(c.By, ""), day(c.Planned, "never"), verdict, day(c.ByAtEnd, "no date")})
@@ -370,7 +370,7 @@ func seasonJSON(w io.Writer, d *desk, s *campaigns.Season) error {
 	}
 	for i := range s.Connects {
 		c := &s.Connects[i]
-		out.Connect = append(out.Connect, jsonConnect{c.Source, c.LimitTurns, maybe(c.By), maybe(c.Planned), c.Lost(), maybe(c.ByAtEnd)})
+		out.Connect = append(out.Connect, jsonConnect{c.Source, c.LimitTurns, maybe(c.By), maybe(c.Planned), c.Lost, maybe(c.ByAtEnd)})
 	}
 	for i := range s.Pressure {
 		l := &s.Pressure[i]
