@@ -380,7 +380,7 @@ func (v *logbook) read(w *world) (string, []line) {
 		}
 		planned := fmt.Sprintf("%s to %s UTC", r.Start.UTC().Format("2006-01-02 15:04"), clock(r.End))
 		if r.SNR > 0 {
-			planned += "; expected " + strings.TrimSuffix(expects(r.SNR, r.ToaUs), "; ")
+			planned += "; expected " + strings.TrimSuffix(expects(r), "; ")
 		}
 		add("planned", "%s", planned)
 	case entry != nil:
