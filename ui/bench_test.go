@@ -74,3 +74,30 @@ func BenchmarkArrearsAfterEdit(b *testing.B) {
 		h.keys("1")
 	}
 }
+
+// Frames of the views that have more to show, at 200 by 60, with all there is to show.
+func BenchmarkOrbitsView(b *testing.B) { benchmarkView(b, "3") }
+
+func BenchmarkSeasonView(b *testing.B) { benchmarkView(b, "4", "P", "right") }
+
+func BenchmarkLogbookView(b *testing.B) { benchmarkView(b, "5") }
+
+func benchmarkView(b *testing.B, keys ...string) {
+	h := demonstration(b)
+	h.keys(keys...)
+	h.View()
+	for b.Loop() {
+		h.View()
+	}
+}
+
+// BenchmarkLogbookFilterToFrame is a letter of a filter over the whole logbook, and its frame.
+func BenchmarkLogbookFilterToFrame(b *testing.B) {
+	h := demonstration(b)
+	h.keys("5", "/", "type:J0")
+	for b.Loop() {
+		h.keys("type:1")
+		h.View()
+		h.keys("backspace")
+	}
+}

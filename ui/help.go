@@ -75,7 +75,7 @@ var words = map[string][]line{
 		{label: "bin", text: "a part of the orbit that an aim wants visited so often; 1/3 is one visit of the three wanted"},
 		{label: "seen", text: "observed at least once since the date of the aim, or ever without one"},
 		{label: "usable", text: "within elevation limits, horizon mask and Sun limit at that moment"},
-		{label: "trust", text: "trustworthy: three times the error of the prediction lies inside the window that is wanted; widened: one does; refused: none"},
+		{label: "trust", text: "nothing is said of a prediction that is trustworthy and good to half a minute; trustworthy: three times the error of the prediction lies inside the window that is wanted; widened: one does; refused: none"},
 	},
 	seasonTitle: {
 		{label: "season", text: "from now to the end of the last session that is listed"},

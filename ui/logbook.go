@@ -25,6 +25,7 @@ type logbook struct {
 	slots   []logSlot
 	past    []campaigns.Entry
 	entries int // that count, without the filter
+	asked   int // the slot that was last asked about, counted from 1; 0: none
 }
 
 // A logbookKey tells when the rows must be made anew.
@@ -83,6 +84,21 @@ func (v *logbook) prepare(w *world) {
 		})
 	}
 	v.list.at = min(max(v.list.at, 0), max(v.count()-1, 0))
+	v.goOn()
+}
+
+// goOn moves the cursor from a slot that has just been recorded to the next that is not.
+func (v *logbook) goOn() {
+	if at := v.asked - 1; at < 0 || at != v.list.at || at >= len(v.slots) || v.slots[at].entry == nil {
+		return
+	}
+	for i := v.asked; i < len(v.slots); i++ {
+		if v.slots[i].entry == nil {
+			v.list.at = i
+			break
+		}
+	}
+	v.asked = 0
 }
 
 // passes says that an entry holds every word of a filter.
@@ -214,11 +230,27 @@ func (v *logbook) record(w *world, o campaigns.Outcome) action {
 	if slot == nil && entry == nil {
 		return action{verb: sayThis, text: "nothing is chosen to record: the plan is empty and no entry is shown"}
 	}
+	if slot != nil && w.planning() {
+		return action{verb: sayThis, text: beingPlanned}
+	}
+	v.asked = 0
+	if slot != nil && entry == nil {
+		v.asked = v.list.at + 1
+	}
 	return action{verb: openDialog, more: dialog(newRecordForm(w, slot, entry, o))}
 }
 
+// beingPlanned is why no slot is recorded: it could be gone before Enter is pressed.
+const beingPlanned = "the plan is still being made: wait for it, or stop it with Esc"
+
+// planning says that the plan on the desk is being made.
+func (w *world) planning() bool { return w.work != nil && w.work.desk == w.desk }
+
 // recordRest asks whether every slot that is not recorded was done. Of a session under way only what is over.
 func (v *logbook) recordRest(w *world) action {
+	if w.planning() {
+		return action{verb: sayThis, text: beingPlanned}
+	}
 	var entries []campaigns.Entry
 	open, ahead := 0, 0
 	for i := range v.slots {

@@ -112,7 +112,10 @@ func debtWords(c *campaigns.Campaign, before, after *campaigns.Logbook, entries 
 		}
 		for i := range is {
 			if change := math.Abs(is[i].Debt - was[i].Debt); change > best+0.005 {
-				best, said = change, fmt.Sprintf("; %s owed %.2f, now %.2f (%s)", e.Source, was[i].Debt, is[i].Debt, aimWords(&is[i]))
+				best, said = change, fmt.Sprintf("; owed %.2f, now %.2f (%s)", was[i].Debt, is[i].Debt, aimWords(&is[i]))
+				if len(entries) > 1 {
+					said = "; " + e.Source + " " + said[2:]
+				}
 			}
 		}
 		if len(entries) > manyEntries {

@@ -31,6 +31,9 @@ func (v *orbits) hints(*world) []verb {
 
 func (v *orbits) rows(w *world) []int {
 	v.shown = v.shown[:0]
+	if len(w.orbits.views) == 0 {
+		return nil // the cursor stays where seek has put it
+	}
 	want := strings.ToLower(v.filter.String())
 	for i := range w.orbits.views {
 		o := &w.orbits.views[i]
@@ -81,6 +84,9 @@ func typeFilter(k tea.KeyMsg, filter *field, typing *bool) bool {
 
 func (v *orbits) steer(verb verb, w *world) action {
 	n := len(v.rows(w))
+	if len(w.orbits.views) == 0 {
+		return action{}
+	}
 	switch verb {
 	case moveLeft:
 		v.list.steer(moveUp, n, 1)
@@ -148,7 +154,7 @@ func (v *orbits) seek(source string, w *world) {
 func (v *orbits) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	cw, ch := c.Size()
 	p := orbitLayout(cw, ch)
-	shown := v.orderedRows(w)
+	shown := v.rows(w)
 	v.drawHead(w, c.Sub(p.head), len(shown))
 	if len(w.orbits.views) == 0 {
 		return
@@ -178,14 +184,6 @@ func (v *orbits) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 			in.Put(iw-len(more), ih-1, more, theme.Accent)
 		}
 	}
-}
-
-// orderedRows are the rows, with the cursor where seek has put it before the views were there.
-func (v *orbits) orderedRows(w *world) []int {
-	if len(w.orbits.views) == 0 {
-		return nil
-	}
-	return v.rows(w)
 }
 
 func (v *orbits) drawHead(w *world, c *cell.Canvas, n int) {

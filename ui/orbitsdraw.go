@@ -155,6 +155,11 @@ func drawSigns(c *cell.Canvas, y int, g *theme.Glyphs, a phaseAxis, o *campaigns
 	c.Put(0, y, cell.Fit(text, cw), theme.Muted)
 }
 
+// between is a point on the line from one to another.
+func between(a, b campaigns.Point, part float64) campaigns.Point {
+	return campaigns.Point{X: a.X + part*(b.X-a.X), Y: a.Y + part*(b.Y-a.Y)}
+}
+
 // drawShape draws the pulsar's orbit about the centre of mass as seen from its pole, with the Earth below.
 func drawShape(c *cell.Canvas, g *theme.Glyphs, o *campaigns.OrbitView) {
 	cw, h := c.Size()
@@ -173,15 +178,36 @@ func drawShape(c *cell.Canvas, g *theme.Glyphs, o *campaigns.OrbitView) {
 		y = int(math.Round((rows-1)/2 - scale*(p.Y-(low+high)/2)))
 		return x, min(max(y, 0), h-2)
 	}
-	for i, p := range o.Shape {
-		x, y := at(p)
-		switch {
-		case o.Eclipsed((float64(i) + 0.5) / campaigns.OrbitCells):
-			c.Put(x, y, g.Eclipse, theme.Limit)
-		case o.Seen[i] > 0:
-			c.Put(x, y, g.Full, theme.Good)
-		case c.Blank(x, y):
-			c.Put(x, y, g.Half, theme.Muted)
+	// Where several fall into one cell, what was seen covers what was not, and the eclipse covers both. Gaps are filled along
+	// straight lines.
+	const unseen, seen, eclipsed = 0, 1, 2
+	for layer := unseen; layer <= eclipsed; layer++ {
+		for i, p := range o.Shape {
+			is := unseen
+			switch {
+			case o.Eclipsed((float64(i) + 0.5) / campaigns.OrbitCells):
+				is = eclipsed
+			case o.Seen[i] > 0:
+				is = seen
+			}
+			if is != layer {
+				continue
+			}
+			from, to := between(o.Shape[(i+campaigns.OrbitCells-1)%campaigns.OrbitCells], p, 0.5), between(p, o.Shape[(i+1)%campaigns.OrbitCells], 0.5)
+			glyph, ink := g.Half, theme.Muted
+			switch layer {
+			case seen:
+				glyph, ink = g.Full, theme.Good
+			case eclipsed:
+				glyph, ink = g.Eclipse, theme.Limit
+			}
+			for _, part := range [][2]campaigns.Point{{from, p}, {p, to}} {
+				steps := int(4*scale*math.Hypot(part[1].X-part[0].X, part[1].Y-part[0].Y)) + 1
+				for k := range steps {
+					x, y := at(between(part[0], part[1], float64(k)/float64(steps)))
+					c.Put(x, y, glyph, ink)
+				}
+			}
 		}
 	}
 	mark := func(turns float64, sign string, ink theme.Ink) {

@@ -48,19 +48,11 @@ func orbitLines(w *world, g *theme.Glyphs, o *campaigns.OrbitView) []line {
 				add(" ", theme.Muted, "and more, later")
 				break
 			}
-			ink, mark := theme.Plain, ""
+			ink := theme.Plain
 			if inSession {
-				ink, mark = theme.Good, "caught by "+e.Session
-			} else if e.Session != "" {
-				mark = "in session " + e.Session + " but not usable"
-			} else {
-				mark = "no session"
+				ink = theme.Good
 			}
-			usable := ""
-			if !e.Usable && e.Session == "" {
-				usable = ", not usable"
-			}
-			add(e.At.UTC().Format("01-02 15:04"), ink, "%s, %s%s; el %.0f deg, %s", shortKind(e.Kind), mark, usable, e.ElevationDeg, trustWords(e))
+			add(e.At.UTC().Format("01-02 15:04"), ink, "%s, el %.0f deg, %s%s", shortKind(e.Kind), e.ElevationDeg, caughtWords(e), trustWords(e))
 		}
 	}
 	if o.Limited {
@@ -84,10 +76,13 @@ func missingBins(o *campaigns.OrbitView) string {
 	var said []string
 	for _, b := range o.Bins {
 		if !b.Full() {
-			said = append(said, fmt.Sprintf("phase %.2f-%.2f %s/%d", b.FromTurns, b.ToTurns, visits(b.Had), b.Wanted))
+			said = append(said, fmt.Sprintf("%.2f-%.2f %s/%d", b.FromTurns, b.ToTurns, visits(b.Had), b.Wanted))
 		}
 	}
-	return strings.Join(said, ", ")
+	if said == nil {
+		return ""
+	}
+	return "visits at phase " + strings.Join(said, ", ")
 }
 
 // visits writes shares of visits: whole ones without a point.
@@ -150,16 +145,29 @@ func progressWords(a *campaigns.OrbitAim, g *theme.Glyphs) string {
 	return fmt.Sprintf("%s: debt %.2f", aimWords(&a.AccountRow), a.Debt)
 }
 
+// caughtWords says which session catches an event, if one does.
+func caughtWords(e *campaigns.ConjunctionRow) string {
+	switch {
+	case e.Session != "" && e.Usable:
+		return "caught by " + e.Session
+	case e.Session != "":
+		return "not usable in " + e.Session
+	case !e.Usable:
+		return "no session, not usable"
+	}
+	return "no session"
+}
+
+// trustWords says how far a predicted time can be trusted, where that needs saying.
 func trustWords(e *campaigns.ConjunctionRow) string {
-	if !e.SigmaKnown {
-		return "error not known"
+	switch m := e.Prediction.SigmaDays * 24 * 60; {
+	case !e.SigmaKnown:
+		return "; error not known"
+	case m < 0.5 && e.Trust() == "trustworthy":
+		return ""
+	default:
+		return fmt.Sprintf("; +/- %.2g min, %s", m, e.Trust())
 	}
-	m := e.Prediction.SigmaDays * 24 * 60
-	text := fmt.Sprintf("+/- %.2g min", m)
-	if m < 0.01 {
-		text = "+/- under 0.01 min"
-	}
-	return text + ", " + e.Trust()
 }
 
 func pointWords(o *campaigns.OrbitView) string {

@@ -58,7 +58,11 @@ func (m *model) receiveRecorded(msg recordedMsg) tea.Cmd {
 		return nil
 	}
 	d := msg.desk
-	m.tell("recorded: %s%s", msg.did, msg.debt)
+	recorded := "recorded"
+	if m.world.folder.Demo() {
+		recorded = "recorded in memory" // W keeps it
+	}
+	m.tell("%s: %s%s", recorded, msg.did, msg.debt)
 	refresh := m.bookChanged(msg)
 	if msg.settles != "" {
 		if d.edition != msg.edition {

@@ -1,6 +1,9 @@
 package ui
 
 import (
+	"errors"
+	"strings"
+	"testing"
 	"time"
 
 	"example.org/tallystick/campaigns"
@@ -41,4 +44,107 @@ func seasonByHand(c *campaigns.Campaign) *campaigns.Season {
 	}
 	s.Pressure = []campaigns.LSTPressure{l}
 	return s
+}
+
+func TestSeasonIsPlayedAside(t *testing.T) {
+	h := start(t, openCampaign(t))
+	h.keys("4")
+	h.shows("P plays the season")
+	cmd := h.apply(action{verb: playSeason})
+	h.shows("playing the season; Esc stops it")
+	h.keys("1", "down", "4") // everything else can be used meanwhile
+	h.run(cmd)
+	h.shows("the season is played")
+	h.shows("2026-12-09 night")
+	h.keys("right")
+	h.shows("J1347-4410")
+	h.keys("right")
+	h.shows("10-11")
+	for range seasonPages {
+		h.keys("right")
+		h.exact()
+	}
+	// What is recorded makes it out of date.
+	h.keys("5", "d", "enter", "4")
+	h.shows("out of date: P plays again")
+	h.keys("P")
+	if strings.Contains(h.screen(), "out of date") {
+		t.Error("played again, and still out of date")
+	}
+}
+
+func TestEscStopsTheSeason(t *testing.T) {
+	h := start(t, openCampaign(t))
+	h.keys("4")
+	cmd := h.apply(action{verb: playSeason})
+	h.keys("esc")
+	h.shows("the season was stopped")
+	h.run(cmd) // the answer comes too late
+	if h.world.season.result != nil || h.world.season.run != nil {
+		t.Error("a stopped season is shown")
+	}
+	if h.outcome(0, nil); h.world.season.run != nil {
+		t.Error("a season goes on after the end")
+	}
+}
+
+func TestOrbitsAreLookedAtOnce(t *testing.T) {
+	h := start(t, openCampaign(t))
+	if h.world.orbits.views != nil {
+		t.Fatal("looked at before anybody asked")
+	}
+	h.keys("3")
+	first := h.world.orbits.known
+	h.shows("J0231+1905")
+	h.keys("down", "1", "3")
+	if h.world.orbits.known != first {
+		t.Error("looked at again without need")
+	}
+	// A new entry, another hour: again. An older answer is dropped.
+	h.keys("5", "d", "enter", "3")
+	if h.world.orbits.known == first {
+		t.Error("not looked at again after the logbook has changed")
+	}
+	h.send(orbitsMsg{key: first, err: errTest})
+	if h.world.orbits.trouble != "" {
+		t.Error("an answer to an older question is shown")
+	}
+}
+
+var errTest = errors.New("the test says so")
+
+// From a source in one view to the same source in another.
+func TestFromArrearsToOrbitAndLog(t *testing.T) {
+	h := start(t, openCampaign(t))
+	h.keys("2", "/", "type:J0231", "enter", "v")
+	h.shows("Orbits")
+	h.shows("Logbook")
+	h.keys("type:Orb", "enter")
+	h.shows("1 binary")
+	h.keys("v", "type:Log", "enter")
+	h.shows("1 of 6 entries, filter: J0231+1905")
+}
+
+// Views that need no session show what they have when there is none left.
+func TestViewsWithoutASession(t *testing.T) {
+	h := start(t, openCampaign(t), func(c *Config) {
+		c.Now = func() time.Time { return time.Date(2027, 3, 1, 12, 0, 0, 0, time.UTC) }
+	})
+	h.keys("5")
+	h.shows("6 entries, the latest first")
+	h.keys("home", "d", "enter")
+	h.shows("recorded: ")
+	h.keys("3")
+	h.shows("J0231+1905")
+	h.keys("4")
+	h.shows("No session is still to come")
+	h.keys("P")
+	h.shows("no session is left")
+	for _, k := range []string{"1", "2", "3", "4", "5"} {
+		for _, size := range [][2]int{{80, 24}, {40, 10}, {200, 60}} {
+			h.size(size[0], size[1])
+			h.keys(k, "down", "enter", "esc")
+			h.exact()
+		}
+	}
 }
