@@ -5,6 +5,11 @@ import "slices"
 // LogbookColumns are the columns of a logbook, in the order in which a new one is begun.
 func LogbookColumns() []string { return slices.Clone(logbookColumns) }
 
+// MoreColumns are the columns of a logbook that are not ours, in the order of its header.
+func (l *Logbook) MoreColumns() []string {
+	return slices.DeleteFunc(slices.Clone(l.Header), func(c string) bool { return slices.Contains(logbookColumns, c) })
+}
+
 // Cells are what stands in the logbook's own columns, in the order of LogbookColumns.
 func (e Entry) Cells() []string {
 	cells := make([]string, len(logbookColumns))

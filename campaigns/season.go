@@ -87,6 +87,7 @@ type player struct {
 	book     *Logbook // with what was planned
 	at       time.Time
 	season   Season
+	up       []map[string]bool             // by session: sources that are within limits at some time of it
 	pressure map[string]*LSTPressure       // by site
 	mounted  map[string]map[string]float64 // granted hours, by receiver and site
 }
@@ -117,6 +118,13 @@ func (p *player) play(ctx context.Context, s *Session, o SeasonOptions) error {
 			out.Overdue++
 		}
 	}
+	up := map[string]bool{}
+	for i := range prepared.Tracks {
+		if t := &prepared.Tracks[i]; len(t.Usable) > 0 {
+			up[p.campaign.Sources[t.Source].Name] = true
+		}
+	}
+	p.up = append(p.up, up)
 	for i, row := range out.Rows {
 		out.OnSourceMin += int(row.End.Sub(row.Start).Minutes())
 		p.book.Entries = append(p.book.Entries, Entry{

@@ -218,6 +218,9 @@ slot_overhead_min = 0
 	}
 	// Never observed, so due at once; 9.1 days later another 1.3 cycles have passed: 2 visits.
 	pole, south := by["Pole"], by["South"]
+	if pole.Up != 2 || south.Up != 0 {
+		t.Errorf("up in %d and %d sessions, wanted 2 and 0", pole.Up, south.Up)
+	}
 	if pole.Due != 2 || pole.Planned != 2 || pole.Outcome == CadenceMissed || pole.DebtEnd > 0.1 {
 		t.Errorf("Pole: %+v", pole)
 	}

@@ -31,6 +31,7 @@ type CadenceForecast struct {
 	DebtEnd      float64
 	OverdueDays  int
 	Due, Planned int // visits that fall due in the season, those owed now among them; visits with all receivers that are planned
+	Up           int // sessions in which the source is within limits at some time and one of the receivers is mounted
 	Outcome      CadenceOutcome
 }
 
@@ -89,6 +90,7 @@ func (p *player) forecastCadences(start *books) {
 				p.season.Cadences = append(p.season.Cadences, CadenceForecast{
 					Source: src.Name, Aim: aim.label(), Receivers: aim.Receivers, EveryDays: aim.EveryDays, Priority: src.Priority,
 					DebtNow: now, DebtWorst: now, Due: aim.visitsDue(now, p.at, p.season.To), Planned: p.planned(src.Name, aim),
+					Up: p.sessionsUp(src.Name, aim),
 				})
 			}
 		}
@@ -123,6 +125,17 @@ func (p *player) forecastCadences(start *books) {
 	slices.SortStableFunc(p.season.Cadences, func(a, b CadenceForecast) int {
 		return cmp.Or(order[a.Outcome]-order[b.Outcome], b.OverdueDays-a.OverdueDays, cmp.Compare(b.DebtEnd, a.DebtEnd), cmp.Compare(a.Source, b.Source))
 	})
+}
+
+// sessionsUp counts the sessions in which an aim of a source could be served.
+func (p *player) sessionsUp(source string, aim *Aim) int {
+	n := 0
+	for i := range p.season.Sessions {
+		if s := &p.season.Sessions[i]; p.up[i][source] && shareOne(aim.Receivers, s.Session.Receivers) {
+			n++
+		}
+	}
+	return n
 }
 
 // planned counts the planned visits of a source with all receivers of an aim.

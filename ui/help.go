@@ -81,6 +81,7 @@ var words = map[string][]line{
 		{label: "season", text: "from now to the end of the last session that is listed"},
 		{label: "played", text: "every session planned quickly, one after the other, and taken as observed: the best to be hoped for"},
 		{label: "kept", text: "a cadence that is never overdue; late: overdue for a while; missed: overdue at the end"},
+		{label: "up", text: "sessions in which it is within limits at some time and a receiver of the aim is mounted"},
 		{label: "due", text: "visits that fall due in the season, with those owed now"},
 		{label: "wanted", text: "hours that aims ask for at the zenith, spread over the sidereal time in which their source is up"},
 		{label: "granted", text: "hours of the sessions, without breaks"},

@@ -141,7 +141,7 @@ func (m *model) askToTakeBack() {
 	back := e
 	if last.was != nil {
 		back = *last.was
-		back.Extra, back.Line = nil, 0
+		back.Line = 0
 		text += fmt.Sprintf("what stood there before: %s, quality %.2f.", back.Outcome, back.Quality)
 	} else {
 		back.Outcome, back.Quality, back.SNR, back.ToaUs, back.Note = campaigns.Lost, 0, 0, 0, "recorded by mistake"

@@ -56,7 +56,7 @@ func newRecordForm(w *world, slot *logSlot, old *campaigns.Entry, o campaigns.Ou
 	verb := "Record"
 	if old != nil {
 		f.entry, f.fixed, verb = *old, true, "Correct"
-		f.entry.Extra, f.entry.Line = nil, 0
+		f.entry.Line = 0
 	}
 	f.entry.Outcome = o
 	f.entry.Quality = firstQuality(o, old)

@@ -19,7 +19,7 @@ var seasonPages = [...]seasonPage{
 		{"worth", 7, true, 2}, {"overdue", 7, true, 1},
 	}, "overdue: cadences overdue when it starts", sessionsPage},
 	{"Cadences", []textColumn{
-		{"season", 6, false, 0}, {"source", 12, false, 0}, {"aim", 20, false, 2}, {"due", 3, true, 0}, {"planned", 7, true, 0}, {"overdue d", 9, true, 3},
+		{"season", 6, false, 0}, {"source", 12, false, 0}, {"aim", 20, false, 2}, {"up", 3, true, 2}, {"due", 3, true, 0}, {"planned", 7, true, 0}, {"overdue d", 9, true, 3},
 		{"debt", 5, true, 1}, {"worst", 5, true, 4}, {"at end", 6, true, 1},
 	}, "missed first; visits due and planned", cadencesPage},
 	{"Hours", []textColumn{
@@ -76,7 +76,7 @@ func cadencesPage(s *campaigns.Season) seasonTable {
 	for i := range s.Cadences {
 		c := &s.Cadences[i]
 		t.cells = append(t.cells, []string{
-			string(c.Outcome), c.Source, c.Aim, fmt.Sprint(c.Due), fmt.Sprint(c.Planned), fmt.Sprint(c.OverdueDays),
+			string(c.Outcome), c.Source, c.Aim, fmt.Sprint(c.Up), fmt.Sprint(c.Due), fmt.Sprint(c.Planned), fmt.Sprint(c.OverdueDays),
 			fmt.Sprintf("%.2f", c.DebtNow), fmt.Sprintf("%.2f", c.DebtWorst), fmt.Sprintf("%.2f", c.DebtEnd),
 		})
 		t.inks = append(t.inks, outcomeInk(c.Outcome))
@@ -90,6 +90,7 @@ func cadenceLines(s *campaigns.Season, i int) (string, []line) {
 	lines := []line{
 		{label: "season", text: fmt.Sprintf("%s: %s above a debt of 1", c.Outcome, count(c.OverdueDays, "day"))},
 		{label: "visits", text: fmt.Sprintf("%d fall due in the season, %d planned", c.Due, c.Planned)},
+		{label: "up", text: fmt.Sprintf("it could be observed in %d of %s", c.Up, count(len(s.Sessions), "session"))},
 		{label: "debt", text: fmt.Sprintf("%.2f now, %.2f at its worst, %.2f at the end; priority %.3g", c.DebtNow, c.DebtWorst, c.DebtEnd, c.Priority)},
 	}
 	for j := range s.Sessions {

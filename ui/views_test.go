@@ -29,8 +29,8 @@ func seasonByHand(c *campaigns.Campaign) *campaigns.Season {
 	}
 	s.Cadences = []campaigns.CadenceForecast{
 		{Source: "J1347-4410", Aim: "every 14 d with L", EveryDays: 14, Priority: 1, DebtNow: 1, DebtWorst: 1.45, DebtEnd: 1.45, OverdueDays: 6, Due: 1, Outcome: campaigns.CadenceMissed},
-		{Source: "J2216+3344", Aim: "every 7 d with L", EveryDays: 7, Priority: 1.5, DebtNow: 1.7, DebtWorst: 1.72, DebtEnd: 0.02, OverdueDays: 1, Due: 1, Planned: 2, Outcome: campaigns.CadenceLate},
-		{Source: "J0512-0241", Aim: "every 21 d with L", EveryDays: 21, Priority: 1, DebtNow: 0.4, DebtWorst: 0.7, DebtEnd: 0.7, Due: 0, Outcome: campaigns.CadenceKept},
+		{Source: "J2216+3344", Aim: "every 7 d with L", EveryDays: 7, Priority: 1.5, DebtNow: 1.7, DebtWorst: 1.72, DebtEnd: 0.02, OverdueDays: 1, Due: 1, Planned: 2, Up: 2, Outcome: campaigns.CadenceLate},
+		{Source: "J0512-0241", Aim: "every 21 d with L", EveryDays: 21, Priority: 1, DebtNow: 0.4, DebtWorst: 0.7, DebtEnd: 0.7, Due: 0, Up: 1, Outcome: campaigns.CadenceKept},
 	}
 	s.Connects = []campaigns.ConnectForecast{{Source: "J0231+1905", LimitTurns: 0.1, By: day(7, 3), Planned: day(3, 20)}, {Source: "J2216+3344", LimitTurns: 0.2, By: day(8, 4), Lost: true}}
 	s.Debts = []campaigns.AccountRow{{Source: "J1347-4410", Kind: campaigns.Cadence, Aim: "every 14 d with L", Debt: 1.45, Priority: 1, Why: "never observed"}}

@@ -200,6 +200,11 @@ func (p *program) importLog(path string) error {
 	}
 	read, faults := campaigns.ReadLogbook(bytes.NewReader(data), path)
 	told := 0
+	if more, have := read.MoreColumns(), d.Logbook.MoreColumns(); len(more) > 0 && !slices.Equal(more, have) {
+		p.sayWrapped(fmt.Sprintf("%s: found the columns %s beside those that every logbook has; accepted: those of this logbook, %s",
+			path, strings.Join(more, ","), strings.Join(d.Logbook.Header, ",")))
+		told++
+	}
 	for _, f := range faults {
 		p.say("%s", words(f.Error()))
 		told++
@@ -212,13 +217,6 @@ func (p *program) importLog(path string) error {
 		if err := d.knows(&e); err != nil {
 			p.say("%s:%d: %s", path, e.Line, words(err.Error()))
 			told++
-		}
-		for _, cell := range e.Extra {
-			if cell != "" && len(d.Logbook.Header) != len(read.Header) {
-				p.say("%s:%d: found columns beside those of the logbook; accepted: %s", path, e.Line, strings.Join(d.Logbook.Header, ","))
-				told++
-				break
-			}
 		}
 	}
 	if told > 0 {

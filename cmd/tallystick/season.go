@@ -60,7 +60,7 @@ func (p *program) seasonCommand() *cobra.Command {
 
 // Scripts rely on these columns: new ones go at the end.
 var seasonColumns = map[string][]string{
-	"cadences": {"source", "aim", "receivers", "outcome", "due", "planned", "overdue_days", "debt_now", "debt_worst", "debt_end"},
+	"cadences": {"source", "aim", "receivers", "outcome", "due", "planned", "overdue_days", "debt_now", "debt_worst", "debt_end", "sessions_up"},
 	"sessions": {"session", "site", "start_utc", "end_utc", "granted_h", "on_source_h", "slots", "worth", "overdue"},
 	"lst":      {"site", "lst_h", "wanted_h", "granted_h", "planned_h", "ask_h"},
 	"connect":  {"source", "limit_turns", "by_utc", "planned_utc", "lost", "by_at_end_utc"},
@@ -84,6 +84,7 @@ func seasonCSV(w io.Writer, s *campaigns.Season, table string) error {
 			out = append(out, []string{
 				c.Source, c.Aim, strings.Join(c.Receivers, "+"), string(c.Outcome), fmt.Sprint(c.Due), fmt.Sprint(c.Planned),
 				fmt.Sprint(c.OverdueDays), fmt.Sprintf("%.4f", c.DebtNow), fmt.Sprintf("%.4f", c.DebtWorst), fmt.Sprintf("%.4f", c.DebtEnd),
+				fmt.Sprint(c.Up),
 			})
 		}
 	case "sessions":
@@ -173,18 +174,18 @@ func outcomeCounts(s *campaigns.Season) map[campaigns.CadenceOutcome]int {
 func cadencesText(w io.Writer, s *campaigns.Season) error {
 	n := outcomeCounts(s)
 	fmt.Fprintf(w, "%s: %d kept, %d late, %d missed\n", count(len(s.Cadences), "cadence"), n[campaigns.CadenceKept], n[campaigns.CadenceLate], n[campaigns.CadenceMissed])
-	columns := []column{{"Outcome", 7, false}, {"Source", 14, false}, {"Aim", 19, false}, {"Due", 3, true}, {"Planned", 7, true}, {"Overdue", 7, true}, {"Debt now", 8, true}, {"at end", 6, true}}
+	columns := []column{{"Outcome", 7, false}, {"Source", 14, false}, {"Aim", 19, false}, {"Up", 3, true}, {"Due", 3, true}, {"Planned", 7, true}, {"Overdue", 7, true}, {"Debt", 6, true}, {"At end", 6, true}}
 	var rows [][]string
 	for _, c := range s.Cadences {
 		rows = append(rows, []string{
-			string(c.Outcome), words(c.Source), words(c.Aim), fmt.Sprint(c.Due), fmt.Sprint(c.Planned), fmt.Sprintf("%d d", c.OverdueDays),
+			string(c.Outcome), words(c.Source), words(c.Aim), fmt.Sprint(c.Up), fmt.Sprint(c.Due), fmt.Sprint(c.Planned), fmt.Sprintf("%d d", c.OverdueDays),
 			fmt.Sprintf("%.2f", c.DebtNow), fmt.Sprintf("%.2f", c.DebtEnd),
 		})
 	}
 	if err := printTable(w, columns, rows); err != nil {
 		return err
 	}
-	_, err := io.WriteString(w, "Due and planned are visits. Overdue: days with a debt above 1.\n")
+	_, err := io.WriteString(w, "Up: sessions in which it could be observed. Due and planned are visits. Overdue:\ndays with a debt above 1.\n")
 	return err
 }
 
@@ -314,6 +315,7 @@ type jsonCadence struct {
 	DebtNow     float64  `json:"debt_now"`
 	DebtWorst   float64  `json:"debt_worst"`
 	DebtEnd     float64  `json:"debt_end"`
+	SessionsUp  int      `json:"sessions_up"`
 }
 
 type jsonConnect struct {
@@ -365,7 +367,7 @@ func seasonJSON(w io.Writer, d *desk, s *campaigns.Season) error {
 	for _, c := range s.Cadences {
 		out.Cadences = append(out.Cadences, jsonCadence{
 			c.Source, c.Aim, append([]string{}, c.Receivers...), string(c.Outcome), c.Due, c.Planned, c.OverdueDays,
-			round(c.DebtNow, 4), round(c.DebtWorst, 4), round(c.DebtEnd, 4),
+			round(c.DebtNow, 4), round(c.DebtWorst, 4), round(c.DebtEnd, 4), c.Up,
 		})
 	}
 	for i := range s.Connects {
