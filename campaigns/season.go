@@ -146,7 +146,7 @@ func overdue(debt float64) bool { return debt > 1+1e-9 }
 func (p *Prepared) quality(s sched.Slot) float64 {
 	best, asked := 0.0, false
 	for _, t := range p.Problem.Jobs[p.Problem.Nodes[s.Node].Job].Terms {
-		if t.Curve == sched.Root {
+		if t.Curve == sched.Root && t.Kind != sched.Measure {
 			asked = true
 			best = math.Max(best, math.Sqrt(float64(t.Cum[s.End]-t.Cum[s.Start])/float64(t.Wanted)))
 		}
