@@ -18,6 +18,7 @@ type books struct {
 	entries      map[string][]Entry // what was done or partly done before the moment, by source, in time order
 	frames       *frames
 	campaign     *Campaign
+	cadences     map[*Aim]cadenceAccount
 	coverages    map[*Aim]coverage // what has been worked out already, by aim
 	passings     map[*Aim]passages
 	connections  map[*Aim]connection
@@ -39,7 +40,7 @@ func once[T any](known map[*Aim]T, aim *Aim, work func() (T, error)) (T, error) 
 // open reads the logbook up to a moment. Lines that are later, or lost, pay nothing.
 func open(c *Campaign, log *Logbook, at time.Time) *books {
 	b := &books{at: at, opened: at, entries: map[string][]Entry{}, frames: newFrames(), campaign: c,
-		coverages: map[*Aim]coverage{}, passings: map[*Aim]passages{}, connections: map[*Aim]connection{}, measurements: map[*Aim]measurement{}}
+		cadences: map[*Aim]cadenceAccount{}, coverages: map[*Aim]coverage{}, passings: map[*Aim]passages{}, connections: map[*Aim]connection{}, measurements: map[*Aim]measurement{}}
 	if log == nil {
 		return b
 	}
@@ -106,6 +107,11 @@ func (b *books) sunDeg(source *Source, at time.Time) float64 {
 }
 
 func (b *books) cadence(source *Source, aim *Aim) cadenceAccount {
+	a, _ := once(b.cadences, aim, func() (cadenceAccount, error) { return b.balance(source, aim), nil })
+	return a
+}
+
+func (b *books) balance(source *Source, aim *Aim) cadenceAccount {
 	rule := aim.rule()
 	rule.PairDaysAt = b.pairSpacing(source, aim)
 	a := rule.Balance(b.opened, b.visits(source.Name, aim.Receivers), b.at)
