@@ -100,7 +100,7 @@ func TestNoSlewTakesLongerThanItsTable(t *testing.T) {
 		bin := min(depart/p.Problem.Slew.BinMin, p.Problem.Slew.Bins-1)
 		table := float64(p.Problem.Slew.Sec[(bin*n+from)*n+to])
 		// When the telescope gets there: the target moves on, so the move is followed second by second.
-		start, target := p.places[from].axes[depart], holdAhead(p.places[to])
+		start, target := p.places[from].axes[depart], heldWithin(p.places[to])
 		for s := 0.0; s <= table; s++ {
 			if mount.MoveSec(start, whereAt(target, float64(depart)+s/60)) <= s {
 				return
@@ -108,6 +108,21 @@ func TestNoSlewTakesLongerThanItsTable(t *testing.T) {
 		}
 		t.Fatalf("from %d to %d at minute %d: not there after %.0f s", from, to, depart, table)
 	})
+}
+
+// In an eclipse or a break the telescope goes on following; it waits only where a limit holds it.
+func TestATelescopeFollowsThroughEclipses(t *testing.T) {
+	var axes []sky.Axes
+	for m := range 101 {
+		axes = append(axes, sky.Axes{A: float64(m), B: 40})
+	}
+	p := place{axes: axes, within: sched.Window{Span: sched.Span{From: 10, To: 80}}, open: []sched.Window{{Span: sched.Span{From: 10, To: 30}}}}
+	held := heldWithin(p)
+	for m, want := range map[int]float64{0: 10, 10: 10, 30: 30, 60: 60, 80: 80, 100: 80} {
+		if held[m].A != want {
+			t.Errorf("minute %d: the mount stands at %g, want %g", m, held[m].A, want)
+		}
+	}
 }
 
 func openAt(p place, minute int) bool {

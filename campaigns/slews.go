@@ -18,7 +18,8 @@ type place struct {
 	source int
 	turn   int
 	axes   []sky.Axes     // where the mount's axes are at each minute, on this turn
-	open   []sched.Window // minutes at which it may be there, breaks and eclipses taken out
+	within sched.Window   // its window of the limits; empty where there is none
+	open   []sched.Window // what is left of it outside breaks and eclipses
 }
 
 // slewTable measures how long the mount takes between every pair of places at every departure.
@@ -30,9 +31,9 @@ func slewTable(mount sky.Mount, places []place, minutes int, breaks []sched.Span
 	n := len(places)
 	bins := (minutes + slewBinMin) / slewBinMin
 	t := sched.SlewTable{Places: n, BinMin: slewBinMin, Bins: bins, Sec: make([]uint16, (bins+len(breaks))*n*n)}
-	m := mover{mount: mount, places: places, depart: make([][]sky.Axes, n), arrive: make([][]sky.Axes, n), last: minutes}
+	m := mover{mount: mount, places: places, held: make([][]sky.Axes, n), last: minutes}
 	for i := range places {
-		m.depart[i], m.arrive[i] = holdBehind(places[i]), holdAhead(places[i])
+		m.held[i] = heldWithin(places[i])
 	}
 
 	var wg sync.WaitGroup
@@ -50,10 +51,10 @@ func slewTable(mount sky.Mount, places []place, minutes int, breaks []sched.Span
 
 // A mover knows where each place is left from and arrived at, minute by minute.
 type mover struct {
-	mount          sky.Mount
-	places         []place
-	depart, arrive [][]sky.Axes
-	last           int // the last minute
+	mount  sky.Mount
+	places []place
+	held   [][]sky.Axes // by place
+	last   int          // the last minute
 }
 
 // fill writes all moves from one place. Of each bin it keeps the longest move.
@@ -61,7 +62,7 @@ func (m *mover) fill(t *sched.SlewTable, from int, breaks []sched.Span) {
 	n := len(m.places)
 	leaves := m.leaves(from, t.Bins)
 	for to := range n {
-		depart, arrive := m.depart[from], m.arrive[to]
+		depart, arrive := m.held[from], m.held[to]
 		if from != to {
 			before := 0
 			for b := range t.Bins {
@@ -143,42 +144,15 @@ const mostPasses = 12
 
 func ceilSec(s float64) uint16 { return uint16(min(math.Ceil(s), math.MaxUint16)) }
 
-// holdAhead returns a place's axes with every minute outside its windows replaced by where the next
-// window begins, or where the last one ended.
-func holdAhead(p place) []sky.Axes {
+// heldWithin returns a place's axes with every minute before its window replaced by where that begins, every minute
+// after it by where it ends. Within it, in eclipses and breaks too, the telescope follows.
+func heldWithin(p place) []sky.Axes {
 	axes := append([]sky.Axes(nil), p.axes...)
-	next := len(p.open)
-	for m := len(axes) - 1; m >= 0; m-- {
-		for next > 0 && p.open[next-1].From > m {
-			next--
-		}
-		switch {
-		case next > 0 && m <= p.open[next-1].To: // inside a window
-		case next < len(p.open):
-			axes[m] = p.axes[p.open[next].From]
-		case len(p.open) > 0:
-			axes[m] = p.axes[p.open[len(p.open)-1].To]
-		}
+	if p.within.To <= p.within.From {
+		return axes
 	}
-	return axes
-}
-
-// holdBehind returns a place's axes with every minute outside its windows replaced by where the
-// window before it ended, or where the first one begins.
-func holdBehind(p place) []sky.Axes {
-	axes := append([]sky.Axes(nil), p.axes...)
-	prev := -1
 	for m := range axes {
-		for prev+1 < len(p.open) && p.open[prev+1].From <= m {
-			prev++
-		}
-		switch {
-		case prev >= 0 && m <= p.open[prev].To: // inside a window
-		case prev >= 0:
-			axes[m] = p.axes[p.open[prev].To]
-		case len(p.open) > 0:
-			axes[m] = p.axes[p.open[0].From]
-		}
+		axes[m] = p.axes[min(max(m, p.within.From), p.within.To)]
 	}
 	return axes
 }

@@ -65,7 +65,7 @@ func (p *Prepared) placesOf(i int, t siteTrack) []place {
 			if axes == nil {
 				axes = axesOn(turn.Turn)
 			}
-			out = append(out, place{source: i, turn: turn.Turn, axes: axes, open: open})
+			out = append(out, place{source: i, turn: turn.Turn, axes: axes, within: w, open: open})
 		}
 	}
 	if len(out) == 0 {
