@@ -68,7 +68,7 @@ func reviewCmd(f *files, s *campaigns.Session) tea.Cmd {
 
 // planCmd plans around the pins of a plan and around what has begun before a minute. Progress goes to
 // work.reports, which it closes.
-func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapshot, minute int, first bool) tea.Cmd {
+func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapshot, minute int, first bool, rounds int) tea.Cmd {
 	q := startingAt(p, minute)
 	proved := &bound{bars: from.bars}
 	for _, s := range from.plan.Slots {
@@ -86,7 +86,7 @@ func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapsho
 	warm := from.plan.Clone()
 	return guarded(func() tea.Msg {
 		defer close(work.reports)
-		o := sched.Options{Progress: func(r sched.Result) {
+		o := sched.Options{Rounds: rounds, Progress: func(r sched.Result) {
 			select {
 			case work.reports <- r:
 			default: // the screen is behind; the next report says more

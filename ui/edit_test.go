@@ -1,11 +1,13 @@
 package ui
 
 import (
+	"bytes"
 	"os"
 	"path/filepath"
 	"slices"
 	"strings"
 	"testing"
+	"time"
 
 	"github.com/charmbracelet/bubbles/key"
 	"pgregory.net/rapid"
@@ -443,15 +445,23 @@ func TestRandomKeys(t *testing.T) {
 	for _, c := range commands {
 		all = append(all, c.Keys()...)
 	}
-	all = append(all, "enter", "esc", "esc", "y", "d", "s", "a", "0", "é", "日", "backspace", " ", ".", ".", ",", "+", "-", "x", "p", "u")
+	all = append(all, "enter", "esc", "esc", "y", "d", "s", "a", "0", "1", "jj", "+9", "é", "日", "backspace", " ", ".", ".", ",", "+", "-", "x", "p", "u")
 	once := start(t, f)
+	var out bytes.Buffer
+	once.cfg.Out = &out
 	ready := preparedMsg{session: once.world.desk.session.Name, prepared: once.world.desk.prepared}
 	ready.saved = ready.prepared.Saved(once.plan().plan, sched.Result{}, "test")
 	rapid.Check(t, func(rt *rapid.T) {
 		h := &harness{model: newModel(once.cfg, once.st), t: t}
+		h.rounds = 1
 		h.size(80, 24)
 		h.send(ready) // prepared and planned once for all: this is about keys
 		first := h.plan()
+		if rapid.Bool().Draw(rt, "under way") {
+			now := h.world.desk.session.Start.Add(time.Duration(rapid.IntRange(0, 299).Draw(rt, "minute")) * time.Minute)
+			h.cfg.Now = func() time.Time { return now }
+			h.run(h.tick())
+		}
 		for _, k := range rapid.SliceOfN(rapid.SampledFrom(all), 20, 40).Draw(rt, "keys") {
 			if rapid.IntRange(0, 9).Draw(rt, "resize") == 0 {
 				h.size(rapid.IntRange(1, 220).Draw(rt, "w"), rapid.IntRange(1, 70).Draw(rt, "h"))

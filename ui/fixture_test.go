@@ -1,12 +1,15 @@
 package ui
 
 import (
+	"bytes"
+	"context"
 	"flag"
 	"io"
 	"os"
 	"path/filepath"
 	"reflect"
 	"strings"
+	"sync"
 	"testing"
 	"time"
 
@@ -91,10 +94,64 @@ func open(t testing.TB, f *campaigns.Folder, change ...func(*Config)) *harness {
 	h := &harness{model: newModel(c, styles(termenv.Ascii, c.ASCII)), t: t}
 	h.size(80, 24)
 	if h.waiting {
-		h.run(prepareCmd(h.world.folder, h.world.desk.session, h.world.now))
+		h.ready()
 	}
 	h.run(findDraftsCmd(h.campaignKey()))
 	return h
+}
+
+// A firstPlan is a session prepared and planned, which is much of the time that a test takes.
+type firstPlan struct {
+	prepared *campaigns.Prepared
+	result   sched.Result
+}
+
+// firstPlanOf is the test campaign's at the evening, made once for all tests; what is prepared is only
+// read from then on.
+var firstPlanOf = sync.OnceValue(func() firstPlan {
+	dir, err := os.MkdirTemp("", "campaign")
+	if err != nil {
+		panic(err)
+	}
+	defer os.RemoveAll(dir)
+	for name, text := range campaignFiles {
+		if err := os.WriteFile(filepath.Join(dir, name), text, 0o644); err != nil {
+			panic(err)
+		}
+	}
+	f, err := campaigns.Open(dir)
+	if err != nil {
+		panic(err)
+	}
+	s, err := f.Campaign.Session("next", evening)
+	if err != nil {
+		panic(err)
+	}
+	p, err := campaigns.Prepare(f.Campaign, f.Logbook, s, campaigns.PrepareOptions{At: evening})
+	if err != nil {
+		panic(err)
+	}
+	r, err := sched.Solve(context.Background(), p.Problem, sched.Options{})
+	if err != nil {
+		panic(err)
+	}
+	return firstPlan{p, r}
+})
+
+// ready prepares and plans the session, from what was made before if it is the same.
+func (h *harness) ready() {
+	s := h.world.desk.session
+	_, err := os.Stat(filepath.Join(h.world.folder.Name(), "plans"))
+	if h.world.folder.Demo() || h.world.campaign.Name != "Six for the screen" || err == nil || !h.world.now.Equal(evening) || len(h.world.folder.Logbook.Entries) != bytes.Count(campaignFiles["logbook.csv"], []byte("\n"))-1 || s != &h.world.campaign.Sessions[0] {
+		h.run(prepareCmd(h.world.folder, s, h.world.now))
+		return
+	}
+	made := firstPlanOf()
+	p := *made.prepared
+	p.Campaign, p.Session = h.world.campaign, s
+	_, _ = h.Update(preparedMsg{session: s.Name, prepared: &p})
+	h.send(plannedMsg{work: h.world.work, result: made.result, first: true, proved: &bound{result: made.result}})
+	h.run(reviewCmd(h.world.folder, s))
 }
 
 func (h *harness) size(w, height int) { h.send(tea.WindowSizeMsg{Width: w, Height: height}) }

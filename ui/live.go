@@ -120,7 +120,7 @@ func nowWords(w *world, now present) []string {
 	var said []string
 	if now.slot >= 0 {
 		s := r.plan.Slots[now.slot]
-		text := fmt.Sprintf("%s on the sky, %d min left", r.slotName(now.slot), s.End-now.minute)
+		text := fmt.Sprintf("%s, %d min left", r.slotName(now.slot), s.End-now.minute)
 		if late := behind(d, now.slot); late > 0 {
 			text += fmt.Sprintf(", %d min behind the plan", late)
 		}
@@ -132,20 +132,20 @@ func nowWords(w *world, now present) []string {
 	switch {
 	case now.next >= 0:
 		row := &r.rows[now.next]
-		way := "move, takes " + seconds(row.MoveSec)
+		way := "move " + seconds(row.MoveSec)
 		if row.MoveSec == 0 {
-			way = "set-up, takes " + seconds(row.OverheadSec)
+			way = "set-up " + seconds(row.OverheadSec)
 		}
 		lead := time.Duration(row.MoveSec+row.OverheadSec) * time.Second
 		leave := row.Start.Add(-lead)
-		text := fmt.Sprintf("next %s at %s", r.slotName(now.next), clock(row.Start))
+		text := fmt.Sprintf("next %s %s", r.slotName(now.next), clock(row.Start))
 		switch left := leave.Sub(w.now); {
 		case now.slot >= 0:
 			text += ", " + way
 		case left > 0:
-			text += fmt.Sprintf(", in %d min %s", int(left.Minutes()), way)
+			text += fmt.Sprintf(": in %d min %s", int(left.Minutes()), way)
 		default:
-			text += ", now " + way
+			text += ": now " + way
 		}
 		said = append(said, text)
 	case now.slot < 0:

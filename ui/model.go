@@ -55,6 +55,7 @@ type model struct {
 	discard     bool
 	fault       string
 	waiting     bool // the first session is being prepared
+	rounds      int  // of planning at most; 0: as many as pay
 	pendingOpen []draft
 }
 

@@ -17,7 +17,7 @@ func (m *model) startPlanning(first bool, from int) tea.Cmd {
 	work := &planning{desk: d, edition: d.edition, first: first, cancel: cancel, reports: make(chan sched.Result, 4)}
 	m.world.work = work
 	p := d.preparedWith(d.state.bars).Problem
-	return tea.Batch(planCmd(ctx, work, p, d.state, from, first), listenCmd(work))
+	return tea.Batch(planCmd(ctx, work, p, d.state, from, first, m.rounds), listenCmd(work))
 }
 
 func (m *model) stopPlanning() {

@@ -233,7 +233,7 @@ func TestTerminalRecordsASlot(t *testing.T) {
 		t.Fatal(err)
 	}
 	term.start(80, 24, "tallystick --at "+begins.Add(20*time.Minute).Format(time.RFC3339))
-	term.shows("the saved plan of", "on the sky")
+	term.shows("the saved plan of", " min left")
 	term.keys("d")
 	term.shows("recorded: ", "partial, 20 of", "part")
 	term.keys("u")
