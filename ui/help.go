@@ -6,30 +6,52 @@ import (
 	"example.org/tallystick/ui/theme"
 )
 
-// newHelp is the help of one view: its keys, the words it uses, and what must be said about safety.
+// newHelp is the help of one view: its keys, what can be done first and how to move about last; the words
+// it uses, then those of the other views; and what must be said about safety.
 func newHelp(view string) *reader {
 	var lines []line
-	group := ""
-	for i := range commands {
-		c := &commands[i]
-		if !c.worksIn(view) {
-			continue
+	heading := func(text string) {
+		if len(lines) > 0 {
+			lines = append(lines, line{})
 		}
-		if c.group != group {
-			if group != "" {
-				lines = append(lines, line{})
-			}
-			group = c.group
-			lines = append(lines, line{text: group, ink: theme.Strong})
-		}
-		lines = append(lines, line{label: c.Help().Key, text: c.name})
+		lines = append(lines, line{text: text, ink: theme.Strong})
 	}
-	lines = append(lines, line{}, line{text: "What the screen says", ink: theme.Strong})
+	for _, group := range helpOrder {
+		begun := false
+		for i := range commands {
+			c := &commands[i]
+			if c.group != group || !c.worksIn(view) {
+				continue
+			}
+			if !begun {
+				heading(group)
+				begun = true
+			}
+			lines = append(lines, line{label: c.Help().Key, text: c.name})
+		}
+	}
+	heading("What the screen says")
 	lines = append(lines, words[view]...)
-	lines = append(lines, line{}, line{text: "Safety", ink: theme.Strong},
-		line{text: safety})
+	heading("Safety")
+	lines = append(lines, line{text: safety})
+	heading("Words of the other views")
+	said := map[string]bool{}
+	for _, l := range words[view] {
+		said[l.label] = true
+	}
+	for _, v := range newViews() {
+		for _, l := range words[v.title()] {
+			if !said[l.label] {
+				said[l.label] = true
+				lines = append(lines, l)
+			}
+		}
+	}
 	return &reader{title: "Keys and words: " + strings.ToLower(view), lines: lines}
 }
+
+// helpOrder are the groups of keys as the help shows them.
+var helpOrder = []string{logging, editing, onSky, keeping, looking, moving}
 
 // safety stands in the help of every view.
 const safety = "This list is advice. The program moves nothing. The observatory's interlocks, its wind and stow limits, " +

@@ -100,7 +100,7 @@ func Run(c Config) error {
 	}
 	m := newModel(c, st)
 
-	options := []tea.ProgramOption{tea.WithAltScreen(), tea.WithInput(c.In), tea.WithOutput(c.Out), tea.WithoutSignalHandler()}
+	options := []tea.ProgramOption{tea.WithAltScreen(), tea.WithInput(c.In), tea.WithOutput(c.Out), tea.WithoutSignalHandler(), tea.WithFPS(framesPerSecond)}
 	if c.Mouse {
 		options = append(options, tea.WithMouseCellMotion())
 	}
@@ -117,6 +117,9 @@ func Run(c Config) error {
 	}
 	return m.outcome(int(ended.Load()), err)
 }
+
+// framesPerSecond is how often the screen library looks for something new to draw: what a key waits for.
+const framesPerSecond = 120
 
 // outcome keeps what is unsaved, and says how the program ended.
 func (m *model) outcome(signal int, err error) error {
