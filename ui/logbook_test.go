@@ -9,6 +9,7 @@ import (
 	"time"
 
 	tea "github.com/charmbracelet/bubbletea"
+	"github.com/muesli/termenv"
 
 	"example.org/tallystick/campaigns"
 )
@@ -227,9 +228,10 @@ func TestTheDemonstrationRecordsInMemory(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	h := start(t, f)
-	h.keys("5", "d", "enter")
-	h.shows("recorded in memory: ")
+	h := &harness{model: newModel(Config{Folder: f}, styles(termenv.Ascii, false)), t: t}
+	h.size(80, 24)
+	h.keys("5", "/", "type:J1856", "enter", "f", "enter") // past entries need no plan
+	h.shows("recorded in memory: J1856+0410 with L lost")
 	if files, _ := os.ReadDir("."); len(files) > 0 {
 		t.Errorf("%v on the disk", files)
 	}
