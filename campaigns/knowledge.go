@@ -142,4 +142,5 @@ func binMinutes(aim *Aim, o *Orbit) float64 {
 	return math.Min(aim.Minutes, o.PeriodDays*24*60/float64(aim.Bins))
 }
 
-func binOf(phase float64, bins int) int { return min(int(phase*float64(bins)), bins-1) }
+// binOf is the bin that a phase falls in; one that is no number falls in the first.
+func binOf(phase float64, bins int) int { return min(max(int(phase*float64(bins)), 0), bins-1) }

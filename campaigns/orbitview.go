@@ -21,6 +21,7 @@ type OrbitView struct {
 	Eccentricity float64
 	At           time.Time
 	NowTurns     float64 // the phase heard at the present moment
+	Void         bool    // the elements mean nothing at the present moment: there are no phases and no shape
 
 	SuperiorTurns, InferiorTurns float64     // the conjunctions, as they fall about the present moment
 	PeriastronTurns              *float64    // nil where the orbit is circular
@@ -114,6 +115,9 @@ const circular = 1e-3
 func (v *OrbitView) place(k *knowledge, c *Campaign, site *Site) {
 	o := k.clock.orbit
 	now := k.clock.orbitMJD(v.At)
+	if v.Void = !o.Meaningful(now); v.Void {
+		return
+	}
 	v.NowTurns = o.Phase(now)
 	v.SuperiorTurns, v.InferiorTurns = o.ConjunctionPhase(orbit.Superior, now), o.ConjunctionPhase(orbit.Inferior, now)
 	if v.Eccentricity >= circular {
@@ -206,6 +210,9 @@ func unitOf(p timing.Parameter) string { return strings.TrimSpace(p.Unit()) }
 
 // count marks the parts of the orbit that observations have touched.
 func (v *OrbitView) count(b *books, k *knowledge) {
+	if v.Void {
+		return
+	}
 	// Steps of half a cell leave none out.
 	step := time.Duration(k.source.Orbit.PeriodDays * 24 * float64(time.Hour) / (2 * OrbitCells))
 	step = max(min(step, time.Minute), time.Second)

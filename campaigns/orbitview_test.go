@@ -2,6 +2,7 @@ package campaigns
 
 import (
 	"math"
+	"slices"
 	"testing"
 	"time"
 
@@ -127,6 +128,30 @@ func TestOrbitSeen(t *testing.T) {
 	}
 	if first := binOf(v.NowTurns, OrbitCells); v.Seen[(first+2)%OrbitCells] == 0 || v.Seen[(first+OrbitCells/2)%OrbitCells] != 0 {
 		t.Errorf("seen %v with phase %.3f at its start", v.Seen, v.NowTurns)
+	}
+}
+
+// Elements that mean nothing now give no phases, and no fault.
+func TestOrbitThatMeansNothing(t *testing.T) {
+	f, now := coming(t, 1)
+	c := *f.Campaign
+	c.Sources = slices.Clone(c.Sources)
+	for i := range c.Sources {
+		if c.Sources[i].Orbit != nil {
+			o := *c.Sources[i].Orbit
+			o.AscendingNodeMJD, o.PeriastronMJD, o.Decay, o.PeriodDays = 55000, 0, 0, 2
+			o.FrequencySeries = []float64{5.787e-6, 0, 1e-21}
+			c.Sources[i].Orbit = &o
+		}
+	}
+	views, err := Orbits(&c, f.Logbook, &c.Sites[0], now)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i := range views {
+		if v := &views[i]; !v.Void || v.Visits != 0 || len(v.Events) != 0 {
+			t.Errorf("%+v", v)
+		}
 	}
 }
 

@@ -168,6 +168,9 @@ func (v *orbits) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 		x := p.list.Max.X
 		c.Fill(image.Rect(x, p.list.Min.Y, x+1, p.list.Max.Y), g.Upright, theme.Muted)
 	}
+	if o.Void {
+		p.strip, p.shape = image.Rectangle{}, image.Rectangle{}
+	}
 	if !p.strip.Empty() {
 		drawStrip(c.Sub(p.strip), g, o, !p.beside)
 	}

@@ -16,7 +16,11 @@ func orbitLines(w *world, g *theme.Glyphs, o *campaigns.OrbitView) []line {
 	add := func(label string, ink theme.Ink, format string, args ...any) {
 		lines = append(lines, line{label, fmt.Sprintf(format, args...), ink})
 	}
-	add("seen", theme.Plain, "%s", seenWords(o))
+	if o.Void {
+		add("orbit", theme.Overdue, "its elements mean nothing at this date: check the period's derivatives in the ephemeris")
+	} else {
+		add("seen", theme.Plain, "%s", seenWords(o))
+	}
 	if missing := missingBins(o); missing != "" {
 		add("missing", theme.Overdue, "%s", missing)
 	}
@@ -57,6 +61,9 @@ func orbitLines(w *world, g *theme.Glyphs, o *campaigns.OrbitView) []line {
 	}
 	if o.Limited {
 		add(" ", theme.Muted, "of an orbit under a day only what falls within sessions is listed")
+	}
+	if o.Void {
+		return lines
 	}
 	add("orbit", theme.Plain, "period %s, eccentricity %s; phase %.3f now", periodWords(o.PeriodDays), eccentricityWords(o.Eccentricity), o.NowTurns)
 	add("points", theme.Plain, "%s", pointWords(o))

@@ -2,6 +2,7 @@ package ui
 
 import (
 	"errors"
+	"math"
 	"strings"
 	"testing"
 	"time"
@@ -146,5 +147,18 @@ func TestViewsWithoutASession(t *testing.T) {
 			h.keys(k, "down", "enter", "esc")
 			h.exact()
 		}
+	}
+}
+
+// An orbit whose elements mean nothing has no drawing and says so.
+func TestOrbitThatMeansNothing(t *testing.T) {
+	h := start(t, openCampaign(t))
+	h.keys("3")
+	h.world.orbits.views[0].Void = true
+	h.world.orbits.views[0].NowTurns = math.NaN()
+	h.shows("its elements mean nothing")
+	for _, size := range [][2]int{{40, 10}, {120, 40}, {200, 60}} {
+		h.size(size[0], size[1])
+		h.exact()
 	}
 }
