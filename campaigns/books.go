@@ -14,6 +14,7 @@ import (
 // that moment.
 type books struct {
 	at           time.Time
+	now          time.Time          // sessions that end later are still to come; not after at
 	opened       time.Time          // when the logbook begins
 	entries      map[string][]Entry // what was done or partly done before the moment, by source, in time order
 	frames       *frames
@@ -39,7 +40,7 @@ func once[T any](known map[*Aim]T, aim *Aim, work func() (T, error)) (T, error) 
 
 // open reads the logbook up to a moment. Lines that are later, or lost, pay nothing.
 func open(c *Campaign, log *Logbook, at time.Time) *books {
-	b := &books{at: at, opened: at, entries: map[string][]Entry{}, frames: newFrames(), campaign: c,
+	b := &books{at: at, now: at, opened: at, entries: map[string][]Entry{}, frames: newFrames(), campaign: c,
 		cadences: map[*Aim]cadenceAccount{}, coverages: map[*Aim]coverage{}, passings: map[*Aim]passages{}, connections: map[*Aim]connection{}, measurements: map[*Aim]measurement{}}
 	if log == nil {
 		return b

@@ -43,7 +43,9 @@ func (jb *jobBuilder) phaseCoverage(aim *Aim) {
 	}
 }
 
-// conjunction adds a term for each superior conjunction that the session touches.
+// conjunction adds a term for each superior conjunction that the session touches. Its window is worth what is missing
+// of the passages, as many times as it holds ordinary visits of the source: a minute at the conjunction is worth as much
+// as a minute of a visit that is so often due. Counted as one visit, a window of hours would never be kept.
 func (jb *jobBuilder) conjunction(aim *Aim) error {
 	k, p := jb.source.knowledge, jb.prepared
 	done, err := jb.books.passages(k, aim)
@@ -66,7 +68,7 @@ func (jb *jobBuilder) conjunction(aim *Aim) error {
 		jb.stretch(math.Min(wide, 10), wide)
 		jb.term(aim, sched.Term{
 			Label: "superior conjunction at " + pass.centre.UTC().Format("15:04"),
-			Scale: jb.scale(math.Min(done.missing(), mostNeed)), Curve: sched.Share, Wanted: max(1, shares(whole)),
+			Scale: jb.scale(math.Min(done.missing(), mostNeed) * math.Max(1, whole/jb.visitMinutes())), Curve: sched.Share, Wanted: max(1, shares(whole)),
 			Cum: jb.gather(func(m int) float64 {
 				if jb.untimable(m) {
 					return 0
@@ -77,6 +79,23 @@ func (jb *jobBuilder) conjunction(aim *Aim) error {
 		})
 	}
 	return nil
+}
+
+// usualVisitMin is how long a visit is taken to be of a source whose aims do not say.
+const usualVisitMin = 30
+
+// visitMinutes is how long an ordinary visit of the source is: as the first of its aims for one says.
+func (jb *jobBuilder) visitMinutes() float64 {
+	aims := jb.source.src.Aims
+	for i := range aims {
+		if k := aims[i].Kind; k == Conjunction || k == Calibration {
+			continue
+		}
+		if minutes, ok := jb.wantedMinutes(&aims[i]); ok && minutes > 0 {
+			return minutes
+		}
+	}
+	return usualVisitMin
 }
 
 // conjunctionWeight is how much an instant counts in a passage: the squared signature of the Shapiro delay

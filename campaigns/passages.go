@@ -135,7 +135,7 @@ func (b *books) missed(k *knowledge, aim *Aim, caught map[int64]float64) (int, e
 	had := map[int64]float64{}
 	for i := range b.campaign.Sessions {
 		s := &b.campaign.Sessions[i]
-		if s.End.After(b.at) || s.Start.Before(aim.Since) || !shareOne(aim.Receivers, s.Receivers) {
+		if s.End.After(b.now) || s.Start.Before(aim.Since) || !shareOne(aim.Receivers, s.Receivers) {
 			continue
 		}
 		passes := k.superior(aim.HalfWidthTurns, s.Start, s.End)

@@ -121,6 +121,7 @@ func Prepare(c *Campaign, log *Logbook, s *Session, o PrepareOptions) (*Prepared
 	p.drawSun()
 
 	books := open(c, log, s.Start)
+	books.now = earlier(o.At, s.Start)
 	bars := map[string]bool{}
 	for _, name := range o.Bars {
 		bars[name] = true
