@@ -64,7 +64,7 @@ func slotLines(w *world, i int) []line {
 	row := &r.rows[i]
 	slot := r.plan.Slots[i]
 	job := r.problem.Jobs[r.problem.Nodes[slot.Node].Job]
-	why := r.explain(i)
+	why := r.explain(i, w.planFrom())
 
 	var lines []line
 	add := func(label string, ink theme.Ink, format string, args ...any) {
@@ -85,7 +85,7 @@ func slotLines(w *world, i int) []line {
 		length += "; pinned"
 	}
 	add("length", theme.Plain, "%s", length)
-	add("before", theme.Plain, "move %s, set-up %s, wait %s", seconds(row.MoveSec), seconds(row.OverheadSec), seconds(row.WaitSec))
+	add("before", theme.Plain, "move %s, set-up %s, wait %s", seconds(row.MoveSec), seconds(row.OverheadSec), seconds(waitSec(w, i)))
 	if why.StartBy != "" {
 		add("no sooner", theme.Plain, "%s", why.StartBy)
 	}
@@ -105,6 +105,19 @@ func slotLines(w *world, i int) []line {
 		add("note", theme.Plain, "%s", row.Note)
 	}
 	return lines
+}
+
+// waitSec is what is left before a slot after move and set-up: while the session is under way, of the time
+// from now on.
+func waitSec(w *world, i int) int {
+	r := w.desk.read()
+	row := &r.rows[i]
+	now, ok := w.nowMinute()
+	if !ok || r.plan.Slots[i].Start <= now {
+		return row.WaitSec
+	}
+	left := row.Start.Sub(w.desk.prepared.Instant(now))
+	return max(0, min(row.WaitSec, int(left.Seconds())-row.MoveSec-row.OverheadSec))
 }
 
 func expects(row *campaigns.SlotRow) string {

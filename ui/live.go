@@ -171,7 +171,10 @@ func behind(d *desk, i int) int {
 // drawNow writes where the session stands, as much of it as there is room for.
 func drawNow(w *world, c *cell.Canvas, now present) {
 	cw, _ := c.Size()
-	text := "now " + clock(w.now) + ": "
+	text := ""
+	if cw >= 60 {
+		text = "now " + clock(w.now) + ": " // else the clock above says it
+	}
 	for i, s := range nowWords(w, now) {
 		if i > 0 {
 			s = "; " + s

@@ -176,7 +176,7 @@ func TestLiveActionsAreFirstOnTheBottomLine(t *testing.T) {
 	for _, size := range [][2]int{{40, 10}, {30, 7}, {250, 70}, {80, 24}} {
 		h.size(size[0], size[1])
 		h.exact()
-		h.shows("now 19:00")
+		h.shows("J2216+3344 L, 38 min")
 	}
 }
 

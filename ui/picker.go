@@ -138,7 +138,7 @@ func (p *picker) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	x := in.Put(0, 0, "find: ", theme.Muted)
 	p.typed.draw(in, x, 0)
 	iw, ih := in.Size()
-	in.Put(1, 1, cell.Fit(fmt.Sprintf("%-16s %-11s %6s %7s  %s", "source", "UTC", "worth", "change", "room"), iw-1), theme.Muted)
+	in.Put(1, 1, cell.Fit(pickerRow(iw, "source", "UTC", "", "worth", "change", "room"), iw-1), theme.Muted)
 	if len(p.seen) == 0 {
 		text := "nothing matches"
 		if len(p.all) == 0 {
@@ -163,9 +163,20 @@ func (p *picker) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	for i := p.rows.top; i < min(p.rows.top+h, len(p.seen)); i++ {
 		k := p.seen[i]
 		cand := p.all[k]
-		p.rows.draw(list, g, i, fmt.Sprintf("%s %s-%s %6s %7s  %s", cell.Fit(p.names[k], 16),
-			clock(p.d.prepared.Instant(cand.Start)), clock(p.d.prepared.Instant(cand.End)), cand.Worth, p.change(k), p.room(k)))
+		p.rows.draw(list, g, i, pickerRow(iw, p.names[k], clock(p.d.prepared.Instant(cand.Start)), clock(p.d.prepared.Instant(cand.End)),
+			cand.Worth.String(), p.change(k), p.room(k)))
 	}
+}
+
+// pickerRow writes a row for a list of this width; a narrow one leaves out the end and the worth.
+func pickerRow(w int, name, from, to, worth, change, room string) string {
+	if w < 60 {
+		return fmt.Sprintf("%s %-5s %7s  %s", cell.Fit(name, 12), from, change, room)
+	}
+	if to != "" {
+		from += "-" + to
+	}
+	return fmt.Sprintf("%s %-11s %6s %7s  %s", cell.Fit(name, 16), from, worth, change, room)
 }
 
 // room says whether a candidate fits, and who has to go if not.

@@ -46,7 +46,7 @@ func (m *model) draw(c *cell.Canvas) {
 	if d := m.world.desk; d.held != nil && len(d.held.breaches) > 0 {
 		drawHeld(c.Sub(image.Rect(0, 2, m.w, f.message.Max.Y)), d.held)
 	} else {
-		m.drawMessage(c.Sub(f.message))
+		m.drawMessage(c.Sub(image.Rect(0, 2, m.w, f.message.Max.Y)))
 	}
 	m.drawHints(c.Sub(f.hints))
 	if m.over != nil {
@@ -229,9 +229,11 @@ func drawHeld(c *cell.Canvas, held *heldEdit) {
 	}
 }
 
-// drawMessage writes what just happened, or how far planning has come.
+// drawMessage writes at the bottom of a canvas what just happened, or how far planning has come; a long
+// message takes a line of the view above it, until the next key.
 func (m *model) drawMessage(c *cell.Canvas) {
-	w, _ := c.Size()
+	w, h := c.Size()
+	const most = 2
 	switch {
 	case m.world.work != nil:
 		text := "planning"
@@ -241,11 +243,17 @@ func (m *model) drawMessage(c *cell.Canvas) {
 				text += fmt.Sprintf(", ceiling %s", r.Ceiling)
 			}
 		}
-		c.Put(1, 0, cell.Fit(text+"; Esc stops it", w-1), theme.Now)
+		c.Put(1, h-1, cell.Fit(text+"; Esc stops it", w-1), theme.Now)
 	case m.world.season.run != nil:
 		c.Put(1, 0, cell.Fit(m.world.season.run.words(), w-1), theme.Now)
 	default:
-		c.Put(1, 0, cell.Fit(oneCell.Replace(m.world.say.text), w-1), m.world.say.ink)
+		lines := cell.Wrap(oneCell.Replace(m.world.say.text), w-2)
+		if len(lines) > most {
+			lines = append(lines[:most-1], strings.Join(lines[most-1:], " "))
+		}
+		for i, l := range lines {
+			c.Put(0, h-len(lines)+i, cell.Fit(" "+l, w), m.world.say.ink)
+		}
 	}
 }
 

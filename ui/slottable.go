@@ -54,7 +54,7 @@ func slotColumns(w *world) []slotColumn {
 		{"S/N", 5, true, 8, func(_ *world, r *campaigns.SlotRow, _ int) string { return number(r.SNR) }},
 		{"TOA us", 6, true, 8, func(_ *world, r *campaigns.SlotRow, _ int) string { return number(r.ToaUs) }},
 		{"move s", 6, true, 7, func(_ *world, r *campaigns.SlotRow, _ int) string { return fmt.Sprint(r.MoveSec) }},
-		{"wait s", 6, true, 11, func(_ *world, r *campaigns.SlotRow, _ int) string { return fmt.Sprint(r.WaitSec) }},
+		{"wait s", 6, true, 11, func(w *world, _ *campaigns.SlotRow, i int) string { return fmt.Sprint(waitSec(w, i)) }},
 		{"worth", 5, true, 1, func(_ *world, r *campaigns.SlotRow, _ int) string { return fmt.Sprintf("%.2f", r.Worth) }},
 		{"flags", 5, false, 0, func(w *world, r *campaigns.SlotRow, i int) string { return rowFlags(w, r, i) }},
 		{"note", 20, false, 13, func(_ *world, r *campaigns.SlotRow, _ int) string { return r.Note }},

@@ -149,6 +149,7 @@ type reading struct {
 	rows     []campaigns.SlotRow
 	verdict  sched.Verdict
 	why      map[int]sched.SlotWhy // by slot
+	whyFrom  int                   // the minute that why holds for
 	leftOut  []sched.Reason
 	leftFrom int // the minute that leftOut holds for
 }
@@ -176,11 +177,19 @@ func (d *desk) read() *reading {
 	return d.view
 }
 
-// explain returns where a slot's worth comes from and what bounds it.
-func (r *reading) explain(slot int) sched.SlotWhy {
+// explain returns where a slot's worth comes from and what bounds it, as from a minute on if the slot has
+// not begun then.
+func (r *reading) explain(slot, from int) sched.SlotWhy {
+	if r.plan.Slots[slot].Start < from {
+		from = 0
+	}
+	if r.whyFrom != from {
+		clear(r.why)
+		r.whyFrom = from
+	}
 	why, ok := r.why[slot]
 	if !ok {
-		why = sched.Explain(r.problem, r.plan, slot)
+		why = sched.Explain(startingAt(r.problem, from), r.plan, slot)
 		r.why[slot] = why
 	}
 	return why
