@@ -41,7 +41,7 @@ type SeasonOptions struct {
 
 // PlaySeason plans every session that has not ended, one after the other, each time with all that was planned
 // before it written into a copy of the logbook as done; of a session under way only what is left of it. Saved
-// plans are not looked at, nobody is ill and it never rains: what comes out is the best that can be hoped for. The same
+// plans are not looked at and nothing is ever lost: what comes out is the best that can be hoped for. The same
 // campaign, logbook and moment give the same season. It errs when no session is left, when ctx ends, and
 // where Prepare does.
 func PlaySeason(ctx context.Context, c *Campaign, log *Logbook, at time.Time, o SeasonOptions) (*Season, error) {
