@@ -1,55 +1,61 @@
 package sched
 
+import "slices"
+
 // The ceiling is a bound on the worth of any plan, by Lagrangian relaxation: the rule that a job has at most
 // so many slots is given up, and a price is put on each slot of a job instead. The best sequence of slots at
 // those prices, which may come back to a job, is a longest path that the sweep finds exactly; its value
 // plus the price of every slot a job may have bounds every plan, at any prices that are not below
-// zero. The subgradient method looks for the prices at which the bound is least.
+// zero. The bundle looks for the prices at which the bound is least; routes with memory bring it nearer
+// to the best plan than the sweep can, and meet it in the end.
 //
 // Source: Fisher, "The Lagrangian relaxation method for solving integer programming problems", Management
-// Science 27 (1981) 1; step length after Polyak (1969)
+// Science 27 (1981) 1
 //
 // Jobs that must be in the plan cost worth. Once a plan has them all, only plans that do are bounded: their
 // price may then fall below zero, since every plan that counts pays it exactly once.
-//
-// Slots that are worth nothing are not part of the plans that it bounds.
 
 // A bounder looks for the prices of the lowest ceiling.
 type bounder struct {
-	t       *tables
-	sweep   *sweeper
-	used    []uint64 // slots of jobs that pins have
-	gaps    []gap
-	pins    Micro // the worth of the pins
-	spread  int
-	adjust  []Micro
-	price   []float64
-	towards []float64 // smoothed subgradient
-	count   []int     // by job: slots in the best paths
-	forced  []bool    // by job: every plan that is bounded has exactly one slot of it
-	learned []float64 // the prices of the lowest bound so far
-	low     Micro     // that bound, on the grid it was found with
-	stale   int       // steps since
-	reach   float64   // share of the Polyak step
-	ceiling Micro     // the lowest bound on the true grid
-	valid   bool
+	t        *tables
+	sweep    *sweeper
+	router   *router
+	used     []uint64 // slots of jobs that pins have
+	gaps     []gap
+	pins     Micro // the worth of the pins
+	spread   int
+	adjust   []Micro
+	prices   *bundle
+	begin    []float64 // the prices that it starts from
+	stage    stage
+	steps    int  // in this stage
+	coarse   int  // the grid on which prices are learned first
+	changed  bool // the bound at the centre has to be taken anew
+	bitsUsed int
+	ceiling  Micro // the lowest bound on the true grid
+	valid    bool
+	route    []Slot // the last best route, for a plan to be made of
+	work     int
 }
 
 // newBounder starts at the given prices. It is nil where no ceiling can be proved: when jobs or slots
 // had to be left out of the search.
-func newBounder(t *tables, prices []Micro) *bounder {
+func newBounder(t *tables, prices []Micro, halt func() bool) *bounder {
 	if t.cropped {
 		return nil
 	}
 	p := t.p
 	b := &bounder{
-		t: t, sweep: newSweeper(t), used: make([]uint64, t.words), spread: t.setupSpread(),
-		adjust: make([]Micro, len(p.Jobs)), count: make([]int, len(p.Jobs)), forced: make([]bool, len(p.Jobs)), reach: 0.25,
-		price: make([]float64, len(p.Jobs)), towards: make([]float64, len(p.Jobs)), learned: make([]float64, len(p.Jobs)),
+		t: t, sweep: newSweeper(t), router: newRouter(t, halt), used: make([]uint64, t.words), spread: t.setupSpread(),
+		adjust: make([]Micro, len(p.Jobs)), coarse: p.GridMin * max(1, coarseMin/p.GridMin),
 	}
+	low, high := make([]float64, len(p.Jobs)), make([]float64, len(p.Jobs))
+	b.begin = make([]float64, len(p.Jobs))
 	for j := range prices {
-		b.price[j] = 0.9 * float64(prices[j])
+		high[j] = float64(t.best[j]) // at which nobody takes it
+		b.begin[j] = min(float64(Micro(0.9*float64(prices[j]))), high[j])
 	}
+	b.prices = newBundle(low, high, slices.Clone(b.begin))
 	g := gap{prev: None, next: None}
 	for _, pin := range p.Pins {
 		g.next, g.nextStart, g.nextEnd, g.fixed = pin.Node, pin.Start, pin.End, true
@@ -76,29 +82,46 @@ func (b *bounder) force(slots []Slot) {
 		}
 	}
 	for j, bonus := range b.t.bonus {
-		b.forced[j] = bonus > 0 && b.t.left(b.used, j) == 1 && !b.t.begun(b.used, j)
+		if bonus > 0 && b.t.left(b.used, j) == 1 && !b.t.begun(b.used, j) {
+			b.prices.low[j] = -float64(bonus) // every plan that is bounded has exactly one slot of it
+		}
 	}
 }
 
-// bound returns the bound at the present prices with ends on the given grid, and counts the slots of each
-// job in its paths. Only on the problem's own grid does it bound its plans.
-func (b *bounder) bound(grid int) Micro {
+// charge puts the trial's prices on the jobs and returns what the bound is without any route.
+func (b *bounder) charge() Micro {
 	sum := b.pins
-	for j := range b.price {
-		b.adjust[j] = -Micro(b.price[j])
-		b.count[j] = 0
+	for j, price := range b.prices.trial {
+		b.adjust[j] = -Micro(price)
 		if b.t.chosen[j] {
 			sum -= b.adjust[j] * Micro(b.t.left(b.used, j))
 		}
 	}
+	return sum
+}
+
+// swept returns the bound at the trial's prices by the plain sweep, with ends on the given grid, and the
+// routes it comes from. Only on the problem's own grid does it bound its plans.
+func (b *bounder) swept(grid int) (Micro, []Slot) {
+	sum := b.charge()
+	var route []Slot
 	for _, g := range b.gaps {
 		value, path := b.sweep.relax(g, b.used, b.adjust, b.spread, grid)
 		sum += value
-		for _, s := range path {
-			b.count[b.t.p.Nodes[s.Node].Job]++
-		}
+		route = append(route, path...)
 	}
-	return sum
+	b.work += b.sweep.work
+	b.sweep.work = 0
+	return sum, route
+}
+
+// routed returns the bound by routes with memory likewise, or best, the worth of the best plan, and no
+// route when none is better.
+func (b *bounder) routed(grid int, best Micro) (Micro, []Slot) {
+	sum := b.charge()
+	value, route := b.router.route(b.gaps, b.used, b.adjust, best-sum, grid)
+	b.work += b.router.work
+	return sum + value, route
 }
 
 // relax returns the value and the slots of the best path through the gap on which a job may come again,
@@ -108,6 +131,7 @@ func (s *sweeper) relax(g gap, used []uint64, adjust []Micro, spread, grid int) 
 	if !s.enter(g, used, adjust) {
 		return 0, nil
 	}
+	s.clear()
 	s.spread = spread
 	last := s.run(g)
 	if g.next != None {
@@ -124,63 +148,20 @@ func (s *sweeper) relax(g gap, used []uint64, adjust []Micro, spread, grid int) 
 	return s.ended[last], s.path(last)
 }
 
-// learn makes steps towards better prices on a grid, given the worth of the best plan.
-func (b *bounder) learn(steps, grid int, plan Micro) {
-	for range steps {
-		bound := b.bound(grid)
-		b.note(bound, grid)
-		b.step(bound, plan)
-	}
-}
-
-// note remembers the bound at the present prices.
-func (b *bounder) note(bound Micro, grid int) {
-	if b.low == 0 || bound < b.low {
-		b.low, b.stale = bound, 0
-		copy(b.learned, b.price)
-	} else if b.stale++; b.stale >= 4 {
-		b.stale = 0
-		b.reach *= 0.6
-		copy(b.price, b.learned)
-		clear(b.towards)
-	}
-	if grid == b.t.p.GridMin && (!b.valid || bound < b.ceiling) {
-		b.ceiling, b.valid = bound, true
-	}
-}
-
-// step moves the prices against the smoothed subgradient.
-func (b *bounder) step(bound, plan Micro) {
-	const memory = 0.5 // of the former directions: without it the prices of rivals swing to and fro
-	square := 0.0
-	for j := range b.price {
-		if !b.t.chosen[j] {
-			continue
-		}
-		b.towards[j] = memory*b.towards[j] + (1-memory)*float64(b.t.left(b.used, j)-b.count[j])
-		if b.price[j] == 0 && b.towards[j] > 0 && !b.forced[j] {
-			continue
-		}
-		square += b.towards[j] * b.towards[j]
-	}
-	if square == 0 {
-		return
-	}
-	length := b.reach * float64(bound-plan) / square
-	for j := range b.price {
-		b.price[j] -= length * b.towards[j]
-		if !b.forced[j] {
-			b.price[j] = max(0, b.price[j])
+// cutOf returns the linear function of the prices that the routes stand for.
+func (b *bounder) cutOf(route []Slot) cut {
+	c := cut{slope: make([]float64, len(b.adjust)), route: route}
+	for j := range c.slope {
+		if b.t.chosen[j] {
+			c.slope[j] = float64(b.t.left(b.used, j))
 		}
 	}
-}
-
-// prove takes the bound at the best prices learned so far on the problem's own grid.
-func (b *bounder) prove() {
-	now := append([]float64(nil), b.price...)
-	copy(b.price, b.learned)
-	if bound := b.bound(b.t.p.GridMin); !b.valid || bound < b.ceiling {
-		b.ceiling, b.valid = bound, true
+	worth := b.pins
+	for _, s := range route {
+		job := b.t.p.Nodes[s.Node].Job
+		worth += b.t.p.JobWorth(job, s.Start, s.End)
+		c.slope[job]--
 	}
-	copy(b.price, now)
+	c.value = float64(worth)
+	return c
 }

@@ -8,20 +8,24 @@ import (
 	"pgregory.net/rapid"
 )
 
+func never() bool { return false }
+
 // A bound holds at any prices that are not below zero, for every plan there is.
 func TestCeilingIsNeverBelowTheBestPlan(t *testing.T) {
 	for seed := range uint64(150) {
 		p := tiny(seed)
 		best := bruteForce(p)
 		tb := newTables(p)
-		b := newBounder(tb, tb.minutePrices())
+		b := newBounder(tb, tb.minutePrices(), never)
 		r := rand.New(rand.NewPCG(seed, 5))
 		for range 4 {
-			if bound := b.bound(p.GridMin); bound < best {
-				t.Fatalf("seed %d: bound %d, best of all plans %d", seed, bound, best)
+			plain, _ := b.swept(p.GridMin)
+			routed, _ := b.routed(p.GridMin, unreachable/4)
+			if plain < best || routed < best {
+				t.Fatalf("seed %d: bound %d by sweep, %d by routes, best of all plans %d", seed, plain, routed, best)
 			}
-			for j := range b.price {
-				b.price[j] = float64(tb.best[j]) * 1.5 * r.Float64()
+			for j := range b.prices.trial {
+				b.prices.trial[j] = float64(Micro(float64(tb.best[j]) * 1.5 * r.Float64()))
 			}
 		}
 		got := solve(t, p, Options{})

@@ -1,6 +1,7 @@
 package sched
 
 import (
+	"cmp"
 	"math/rand/v2"
 	"slices"
 )
@@ -9,6 +10,7 @@ import (
 // other prices, and keeps the result if it is better or not much worse.
 type lane struct {
 	t        *tables
+	halt     func() bool // tells whether to stop at once
 	prices   []Micro
 	sweep    *sweeper
 	rand     *rand.Rand
@@ -22,9 +24,9 @@ type lane struct {
 	bestValue Micro
 }
 
-func newLane(t *tables, prices []Micro, seed uint64) *lane {
+func newLane(t *tables, prices []Micro, seed uint64, halt func() bool) *lane {
 	return &lane{
-		t: t, prices: prices, sweep: newSweeper(t), rand: rand.New(rand.NewPCG(seed, 20)),
+		t: t, halt: halt, prices: prices, sweep: newSweeper(t), rand: rand.New(rand.NewPCG(seed, 20)),
 		adjust: make([]Micro, len(t.p.Jobs)), used: make([]uint64, t.words),
 	}
 }
@@ -130,23 +132,16 @@ func (l *lane) refill(slots []Slot, a, b int) ([]Slot, bool) {
 	return filled, true
 }
 
-// movesPerRound is how many stretches a lane re-plans in a round.
-const movesPerRound = 15
+// A lane makes so many moves in a round, and more as long as its share of the round's work lasts.
+const (
+	fewestMoves = 8
+	mostMoves   = 60
+)
 
-// replan makes a round of moves. The hotter, the more worth it gives up to get out of a dead end. A lane that
-// starts afresh first makes a plan from nothing at a share of the prices, and goes on from it if it is better.
-func (l *lane) replan(heat float64, afresh bool, scale float64) {
-	if afresh {
-		slots := l.fromNothing(scale)
-		if v := l.t.value(slots); v > l.value {
-			l.slots, l.value = slots, v
-			if v > l.bestValue {
-				l.best, l.bestValue = slots, v
-			}
-		}
-	}
+// replan makes a round of moves. The hotter, the more worth it gives up to get out of a dead end.
+func (l *lane) replan(heat float64, work int) {
 	tolerance := Micro(float64(l.t.p.PlanWorth(Plan{Slots: l.slots})) * 0.004 * heat)
-	for range movesPerRound {
+	for moves := 0; moves < mostMoves && (moves < fewestMoves || l.sweep.work < work) && !l.halt(); moves++ {
 		slots, ok := l.move()
 		if !ok {
 			continue
@@ -159,6 +154,47 @@ func (l *lane) replan(heat float64, afresh bool, scale float64) {
 			l.best, l.bestValue = slots, value
 		}
 	}
+}
+
+// take goes on from the slots if they are better.
+func (l *lane) take(slots []Slot) {
+	if v := l.t.value(slots); v > l.value {
+		l.slots, l.value = slots, v
+		if v > l.bestValue {
+			l.best, l.bestValue = slots, v
+		}
+	}
+}
+
+// adopt makes a plan of a route: of the slots of a job that may not all stay those that are worth most do,
+// and what room the others leave is filled. At the right prices routes are nearly plans.
+func (l *lane) adopt(route []Slot) {
+	if len(route) == 0 {
+		return
+	}
+	p := l.t.p
+	order := slices.Clone(route)
+	slices.SortStableFunc(order, func(a, b Slot) int {
+		return cmp.Compare(p.JobWorth(p.Nodes[b.Node].Job, b.Start, b.End), p.JobWorth(p.Nodes[a.Node].Job, a.Start, a.End))
+	})
+	clear(l.used)
+	var kept []Slot
+	for _, s := range order {
+		if job := p.Nodes[s.Node].Job; !l.t.spent(l.used, job) {
+			l.t.spend(l.used, job)
+			kept = append(kept, s)
+		}
+	}
+	slots := l.t.fitting(Plan{Slots: kept})
+	l.thorough = false
+	for at := 0; at <= len(slots); at++ {
+		l.spendAll(slots)
+		l.price(0.5, 0)
+		n := len(slots)
+		slots, _ = l.refill(slots, at, at)
+		at += len(slots) - n
+	}
+	l.take(l.complete(slots))
 }
 
 // move re-plans one stretch, and half the time another one with it, so that jobs can change places. One

@@ -9,7 +9,8 @@ import (
 
 // Options say how much work Solve does. The zero value is the default effort.
 type Options struct {
-	Rounds   int          // rounds of re-planning after the first plan; 0 is the default, below 0 none
+	Rounds   int          // rounds of search after the first plan, at most; 0 is no limit but Work, below 0 none
+	Work     int          // no round begins once this much has been done, in steps of the search; 0 is the default where Rounds is 0 too
 	Warm     *Plan        // a plan to start from: its slots are kept where they still fit
 	Workers  int          // goroutines; the plan does not depend on their number; 0 is 1
 	Progress func(Result) // called after the first plan and after every round, by the caller's goroutine
@@ -21,21 +22,26 @@ type Result struct {
 	Worth      Micro
 	Ceiling    Micro // no plan with the same grid and rules is worth more, if it has all musts that this one has
 	HasCeiling bool  // a ceiling has been proved; there is none otherwise
-	Rounds     int   // rounds of re-planning done
+	Rounds     int   // rounds of search done
+	Work       int   // steps of the search done
 	Proven     bool  // the plan reaches the ceiling
 }
 
 const (
-	defaultRounds = 8
-	lanes         = 2 // searches side by side: fixed, so that the number of workers changes nothing
+	defaultWork = StepsPerSecond
+	lanes       = 2 // searches side by side: fixed, so that the number of workers changes nothing
 )
+
+// StepsPerSecond is about how many steps of the search one core of a laptop makes in a second. Work is
+// counted, not timed, so that the same effort gives the same plan everywhere.
+const StepsPerSecond = 200_000_000
 
 // Solve plans a session: it keeps the pins, leaves out what is barred, includes the jobs that must be
 // there where that is possible, and otherwise maximises worth. The same problem and the same options give
 // the same plan on any processor and with any number of workers.
 //
 // It fails, without a plan, on a malformed problem and on pins that cannot follow one another. When ctx
-// ends it stops after the round in progress and returns the best plan so far together with ctx's error.
+// ends it stops in the midst of a round and returns the best plan so far together with ctx's error.
 func Solve(ctx context.Context, p *Problem, o Options) (Result, error) {
 	if err := p.Check(); err != nil {
 		return Result{}, fmt.Errorf("malformed problem: %w", err)
@@ -43,22 +49,33 @@ func Solve(ctx context.Context, p *Problem, o Options) (Result, error) {
 	if err := p.checkPinsMeet(); err != nil {
 		return Result{}, err
 	}
-	s := newSearch(p, o)
-	s.first()
+	s := newSearch(p, o, func() bool { return ctx.Err() != nil })
+	s.first(o.Workers)
 	s.report(o)
-	rounds := o.Rounds
-	if rounds == 0 {
-		rounds = defaultRounds
-	}
-	for s.rounds < rounds && !s.proven() {
+	for s.goesOn(o) {
 		if err := ctx.Err(); err != nil {
 			return s.result(), err
 		}
-		s.round(o.Workers, rounds)
+		s.round(o.Workers)
 		s.report(o)
 	}
 	return s.result(), ctx.Err()
 }
+
+func (s *search) goesOn(o Options) bool {
+	work := o.Work
+	if work == 0 && o.Rounds == 0 {
+		work = defaultWork
+	}
+	switch {
+	case s.proven(), o.Rounds < 0, o.Rounds > 0 && s.rounds >= o.Rounds, s.bound == nil && s.rounds >= mostRounds:
+		return false
+	}
+	return work <= 0 || s.work < work
+}
+
+// mostRounds ends a search that cannot know how good its plan is.
+const mostRounds = 64
 
 // checkPinsMeet finds the pair of pins that cannot follow one another. In time past a setup may have been
 // shorter than it is reckoned here, but no two slots were at the same time.
@@ -90,18 +107,19 @@ type search struct {
 	best   []Slot
 	value  Micro
 	rounds int
+	work   int
 	notes  map[int]string // by node, from the warm plan
 }
 
-func newSearch(p *Problem, o Options) *search {
+func newSearch(p *Problem, o Options, halt func() bool) *search {
 	t := newTables(p)
 	s := &search{t: t, prices: t.minutePrices(), value: unreachable, notes: map[int]string{}}
-	s.bound = newBounder(t, s.prices)
+	s.bound = newBounder(t, s.prices, halt)
 	for i := range lanes {
-		s.lanes = append(s.lanes, newLane(t, s.prices, uint64(i)))
+		s.lanes = append(s.lanes, newLane(t, s.prices, uint64(i), halt))
 	}
 	if o.Warm != nil {
-		s.offer(s.lanes[0].complete(s.warm(*o.Warm)))
+		s.offer(s.lanes[0].complete(t.fitting(*o.Warm)))
 		for _, slot := range o.Warm.Slots {
 			if slot.Note != "" && slot.Node >= 0 && slot.Node < len(p.Nodes) {
 				s.notes[slot.Node] = slot.Note
@@ -122,9 +140,19 @@ func (s *search) offer(slots []Slot) {
 var priceScales = []float64{0.95, 0.85, 0.7}
 
 // first makes plans from nothing and keeps the best.
-func (s *search) first() {
-	for _, scale := range priceScales {
-		s.offer(s.lanes[0].fromNothing(scale))
+func (s *search) first(workers int) {
+	plans := make([][]Slot, len(priceScales))
+	var work []func()
+	for i, l := range s.lanes {
+		work = append(work, func() {
+			for k := i; k < len(plans); k += lanes {
+				plans[k] = l.fromNothing(priceScales[k])
+			}
+		})
+	}
+	inParallel(workers, work)
+	for _, plan := range plans {
+		s.offer(plan)
 	}
 	for _, l := range s.lanes {
 		l.start(s.best, s.value)
@@ -132,37 +160,30 @@ func (s *search) first() {
 	if s.bound != nil {
 		s.bound.force(s.best)
 	}
+	s.countWork()
 }
 
-// Steps towards the lowest ceiling in a round. They are made on a coarse grid, where prices are learned
-// faster and serve as well.
-const (
-	stepsPerRound = 3
-	firstSteps    = 10 // in the first round, for all rounds after it to profit from
-	coarseMin     = 3
-)
-
-// round lets every lane re-plan for a while and lowers the ceiling, then gives the best plan to the lane
+// round lowers the ceiling while every lane re-plans for about as long, then gives the best plan to the lane
 // that is furthest behind, and the prices that were learned to all.
-func (s *search) round(workers, rounds int) {
-	heat := 1 - float64(s.rounds+1)/float64(rounds)
+func (s *search) round(workers int) {
+	heat := 1 - float64(s.rounds%8)/8
 	s.rounds++
-	steps := stepsPerRound
-	if s.rounds == 1 {
-		steps = firstSteps
-	}
 	var work []func()
-	for i, l := range s.lanes {
-		work = append(work, func() { l.replan(heat, true, freshScales[(s.rounds+i*2)%len(freshScales)]) })
-	}
+	var route []Slot
+	budget := 0
 	if s.bound != nil {
 		worth := s.t.p.PlanWorth(Plan{Slots: s.best})
-		grid := s.t.p.GridMin * max(1, coarseMin/s.t.p.GridMin)
+		route, budget = s.bound.route, s.bound.work/(2*lanes)
+		work = append(work, func() { s.bound.advance(worth) })
+	}
+	for i, l := range s.lanes {
 		work = append(work, func() {
-			s.bound.learn(steps, grid, worth)
-			if s.rounds%3 == 0 || s.rounds == rounds {
-				s.bound.prove()
+			if s.rounds%lanes == i {
+				l.take(l.fromNothing(freshScales[s.rounds/lanes%len(freshScales)]))
+			} else {
+				l.adopt(route)
 			}
+			l.replan(heat, budget)
 		})
 	}
 	inParallel(workers, work)
@@ -177,13 +198,26 @@ func (s *search) round(workers, rounds int) {
 	}
 	worst.start(s.best, s.value)
 	if s.bound != nil {
-		for j, price := range s.bound.learned {
+		for j, price := range s.bound.prices.center {
 			s.prices[j] = Micro(price)
 		}
 	}
+	s.countWork()
 }
 
-// freshScales are the shares of the learned prices at which plans are made anew, one each round.
+// countWork adds up what was done since it was last called.
+func (s *search) countWork() {
+	if s.bound != nil {
+		s.work += s.bound.work
+	}
+	for _, l := range s.lanes {
+		s.work += l.sweep.work
+		l.sweep.work = 0
+	}
+}
+
+// freshScales are the shares of the learned prices at which plans are made anew, by one lane each round. The
+// other makes one of the best route.
 var freshScales = []float64{1, 0.97, 0.93, 0.98, 0.95}
 
 // inParallel does the work on so many goroutines, or on this one. Each piece works on what is its own.
@@ -219,7 +253,7 @@ func (s *search) result() Result {
 		}
 	}
 	plan := Plan{Slots: slots}
-	r := Result{Plan: plan, Worth: s.t.p.PlanWorth(plan), Rounds: s.rounds, Proven: s.proven()}
+	r := Result{Plan: plan, Worth: s.t.p.PlanWorth(plan), Rounds: s.rounds, Work: s.work, Proven: s.proven()}
 	if s.bound != nil && s.bound.valid {
 		r.Ceiling, r.HasCeiling = s.bound.ceiling, true
 	}
@@ -232,9 +266,9 @@ func (s *search) report(o Options) {
 	}
 }
 
-// warm returns what of the plan still fits the problem, with the problem's pins.
-func (s *search) warm(plan Plan) []Slot {
-	t, p := s.t, s.t.p
+// fitting returns what of the plan fits the problem, with the problem's pins.
+func (t *tables) fitting(plan Plan) []Slot {
+	p := t.p
 	slots := pinned(p)
 	set := make([]uint64, t.words)
 	for _, pin := range slots {

@@ -47,6 +47,7 @@ type sweeper struct {
 	spread  int     // minutes by which a state that is left earlier counts as ahead; beyond the gap when thorough
 	jobBit  []int32 // by job: its first bit in this gap, or None
 	carried []int32 // by target: ready is filled in up to this minute
+	work    int     // steps done
 }
 
 // A target is a node that may follow.
@@ -81,6 +82,7 @@ func (s *sweeper) fill(g gap, used []uint64, adjust []Micro, thorough bool) (pat
 	if thorough || len(s.targets)*s.wide <= alwaysThorough {
 		s.spread = s.wide
 	}
+	s.clear()
 	last := s.run(g)
 	if g.next == None {
 		return s.path(last), 0, true
@@ -102,7 +104,6 @@ func (s *sweeper) enter(g gap, used []uint64, adjust []Micro) bool {
 		return false
 	}
 	s.pickTargets(g, to, used, adjust)
-	s.clear()
 	return true
 }
 
@@ -292,6 +293,7 @@ func (s *sweeper) setupSpread() int {
 func (s *sweeper) clear() {
 	n := len(s.targets)
 	size := n * s.wide
+	s.work += size
 	s.ready, s.parent = grow(s.ready, size), grow(s.parent, size)
 	s.ended, s.came, s.start = grow(s.ended, size), grow(s.came, size), grow(s.start, size)
 	s.set = grow(s.set, size*s.nw)
@@ -348,6 +350,7 @@ func (s *sweeper) depart(l, bin int, id int32, free, until int) {
 	change := s.change[p.Jobs[s.targets[l].job].Receiver][:n]
 	set := s.set[int(id)*s.nw : (int(id)+1)*s.nw]
 	v := s.ended[id]
+	s.work += n
 	overhead := uint32(p.OverheadSec + 59)
 	base, wide := -s.from, s.wide
 	for k, place := range s.places {
@@ -411,6 +414,7 @@ func (s *sweeper) endSlot(l, e int, ahead Micro) (id int32, ok bool) {
 	if s.ready[l*s.wide-s.from+high]+row[high-low]+a.adjust <= ahead {
 		return 0, false
 	}
+	s.work += len(row)
 	best, at := s.bestStart(l, low, high, row)
 	best += a.adjust
 	if at == None || best <= ahead {

@@ -5,6 +5,8 @@ import (
 	"fmt"
 	"io"
 	"runtime"
+	"slices"
+	"strconv"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -14,12 +16,33 @@ import (
 	"example.org/tallystick/sched"
 )
 
-// efforts is how many rounds of search --effort buys after the first plan; below 0 is none. Rounds are
-// counted, not timed, so that the same effort gives the same plan on every machine. On the demonstration's
-// ten-hour session quick answers in a quarter of a second, normal in half a second, thorough in some seconds.
-var efforts = map[string]int{"quick": -1, "normal": 2, "thorough": 64}
+// efforts is what --effort buys in words: steps of search after the first plan. Steps are counted, not
+// timed, so that the same effort gives the same plan on every machine. On the demonstration's ten-hour
+// session quick answers in a fifth of a second, normal in less than half a second, thorough proves its plan in a few seconds.
+var efforts = map[string]sched.Options{
+	"quick":    {Rounds: -1},
+	"normal":   {Work: sched.StepsPerSecond / 4},
+	"thorough": {Work: 30 * sched.StepsPerSecond},
+}
 
 var effortNames = []string{"quick", "normal", "thorough"}
+
+// mostSeconds is an hour: by then every session that can be proved has been.
+const mostSeconds = 3600
+
+// searchOptions reads --effort: a word, or seconds that only choose how many steps of search are made.
+func searchOptions(effort string) (sched.Options, error) {
+	if o, ok := efforts[effort]; ok {
+		return o, nil
+	}
+	if seconds, err := strconv.ParseFloat(effort, 64); err == nil {
+		if seconds > 0 && seconds <= mostSeconds {
+			return sched.Options{Work: max(1, int(seconds*sched.StepsPerSecond))}, nil
+		}
+		return sched.Options{}, usagef("--effort: found %s; accepted: above 0 to %d seconds", effort, mostSeconds)
+	}
+	return sched.Options{}, oneOf("--effort", effort, append(slices.Clone(effortNames), "a number of seconds"))
+}
 
 func (p *program) planCommand() *cobra.Command {
 	c := &cobra.Command{
@@ -68,13 +91,14 @@ func (p *program) planCommand() *cobra.Command {
 
 func (p *program) searchFlags(c *cobra.Command) {
 	p.gridFlag(c)
-	c.Flags().StringVar(&p.flags.effort, "effort", "normal", "`HOW` long to search: "+strings.Join(effortNames, ", "))
+	c.Flags().StringVar(&p.flags.effort, "effort", "normal", "`HOW` long to search: "+strings.Join(effortNames, ", ")+", or about so many seconds of one core")
 	c.RegisterFlagCompletionFunc("effort", cobra.FixedCompletions(effortNames, cobra.ShellCompDirectiveNoFileComp))
 	c.PreRunE = func(c *cobra.Command, args []string) error {
 		if err := p.checkGrid(c, args); err != nil {
 			return err
 		}
-		return oneOf("--effort", p.flags.effort, effortNames)
+		_, err := searchOptions(p.flags.effort)
+		return err
 	}
 }
 
@@ -102,7 +126,11 @@ func (p *program) planAnew(d *desk, s *campaigns.Session) (*madePlan, error) {
 	if err != nil {
 		return nil, err
 	}
-	search := sched.Options{Rounds: efforts[p.flags.effort], Workers: runtime.GOMAXPROCS(0), Warm: saved}
+	search, err := searchOptions(p.flags.effort)
+	if err != nil {
+		return nil, err
+	}
+	search.Workers, search.Warm = runtime.GOMAXPROCS(0), saved
 	result, err := sched.Solve(context.Background(), prepared.Problem, search)
 	if err != nil {
 		return nil, fmt.Errorf("session %s: %w", s.Name, err)

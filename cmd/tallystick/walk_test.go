@@ -476,7 +476,7 @@ func TestWalkRandomCampaigns(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		data := printed(t, "plan", "--campaign", dir, "--session", "s", "--at", "2027-01-01", "--format", "csv", "--effort", "normal")
+		data := printed(t, "plan", "--campaign", dir, "--session", "s", "--at", "2027-01-01", "--format", "csv", "--effort", "0.05")
 		got := readSlots(t, c, data)
 		walk(t, c.Sites[0], c.Sessions[0], c.Receivers, got)
 		slots += len(got)

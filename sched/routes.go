@@ -1,0 +1,479 @@
+package sched
+
+import "slices"
+
+// The ceiling of the plain sweep counts paths that come back to a job after one other. Routes with memory
+// forbid most of that: a path remembers the jobs it has had, but only while all nodes it passes since keep
+// them in mind. Which nodes keep which jobs in mind grows from the cycles of the best paths. Every plan is
+// such a route, so the best route bounds them all.
+//
+// Source: Baldacci, Mingozzi & Roberti, "New route relaxation and pricing strategies for the vehicle
+// routing problem", Operations Research 59 (2011) 1269; growing sets after Roberti & Mingozzi, "Dynamic
+// ng-path relaxation for the delivery man problem", Transportation Science 48 (2014) 413
+
+// A memory is a set of jobs among those that have come back so far: as many as have bits.
+type memory [2]uint64
+
+const memoryBits = 128
+
+// jobMemory is where a job stands in memories: a bit for each slot that it may have, set one after the other.
+// The zero value is a job that is never remembered.
+type jobMemory struct{ first, slots int }
+
+func (m memory) has(bit int) bool { return m[bit>>6]&(1<<(bit&63)) != 0 }
+
+// full tells whether all slots of the job are remembered.
+func (m memory) full(j jobMemory) bool { return j.slots > 0 && m.has(j.first+j.slots-1) }
+
+// with returns the memory with one more slot of the job.
+func (m memory) with(j jobMemory) memory {
+	for bit := j.first; bit < j.first+j.slots; bit++ {
+		if !m.has(bit) {
+			m[bit>>6] |= 1 << (bit & 63)
+			break
+		}
+	}
+	return m
+}
+
+// whole returns the memory with all slots of the job.
+func (m memory) whole(j jobMemory) memory {
+	for bit := j.first; bit < j.first+j.slots; bit++ {
+		m[bit>>6] |= 1 << (bit & 63)
+	}
+	return m
+}
+
+func (m memory) and(o memory) memory { return memory{m[0] & o[0], m[1] & o[1]} }
+
+// within tells whether all of m is in o.
+func (m memory) within(o memory) bool { return m[0]&^o[0] == 0 && m[1]&^o[1] == 0 }
+
+// A routeLabel is a path to being ready for a node, or to the end of a slot of it.
+type routeLabel struct {
+	value  Micro
+	memory memory
+	came   int32 // the ended label before it, or None
+	next   int32 // of the same bucket, or None
+	node   int32
+	start  int32 // when ready; of an ended label the start of its slot
+	end    int32 // of an ended label
+}
+
+// A router finds the best route through a session at given prices, from pin to pin.
+type router struct {
+	t      *tables
+	grid   int
+	width  int // labels kept of each state; more are merged
+	jobs   []jobMemory
+	keep   []memory // by node: the jobs it keeps in mind; pins keep all
+	sweeps []*sweeper
+	rests  []*completion
+	labels []routeLabel
+	least  Micro // values up to this are of no interest
+	best   Micro
+	last   int32
+	work   int
+	halt   func() bool // tells whether to stop at once
+	halted bool        // it did: the last route says nothing
+
+	// By node·span + minute. A state that no route of interest comes by is dead for good: whatever the
+	// prices were, they proved that no better plan comes by it.
+	deadReady, deadEnd   []bool
+	aliveReady, aliveEnd []bool // in the sweep in progress
+
+	// Of the gap in progress.
+	s      *sweeper
+	rest   *completion
+	bucket []int32     // target·wide + minute − from: first label that is ready there, or None
+	live   [][]int32   // by target: labels that are ready, in time order
+	taken  []int32     // by target: buckets before this minute are in live
+	parked [][]int32   // by target: the ended labels to go on from after a break
+	job    []jobMemory // by target
+	front  []routeLabel
+	atPin  []routeLabel // labels that reach the pin after the gap
+}
+
+func newRouter(t *tables, halt func() bool) *router {
+	size := len(t.p.Nodes) * t.span
+	return &router{
+		t: t, halt: halt, width: 8, jobs: make([]jobMemory, len(t.p.Jobs)), keep: make([]memory, len(t.p.Nodes)),
+		deadReady: make([]bool, size), deadEnd: make([]bool, size), aliveReady: make([]bool, size), aliveEnd: make([]bool, size),
+	}
+}
+
+// route returns the value of the best route through the gaps and its slots. Where no route is worth more
+// than least it returns least, and no slots.
+func (r *router) route(gaps []gap, used []uint64, adjust []Micro, least Micro, grid int) (Micro, []Slot) {
+	r.labels, r.grid, r.least, r.best, r.last, r.work = r.labels[:0], grid, least, least, None, 0
+	for len(r.sweeps) < len(gaps) {
+		r.sweeps, r.rests = append(r.sweeps, newSweeper(r.t)), append(r.rests, &completion{})
+	}
+	after := Micro(0)
+	for i := len(gaps) - 1; i >= 0; i-- {
+		s := r.sweeps[i]
+		s.relaxed, s.grid = true, grid
+		s.enter(gaps[i], used, adjust)
+		r.rests[i].of(s, gaps[i], after, r.deadReady, r.deadEnd)
+		after = r.rests[i].origin
+		r.work += s.wide * len(s.targets) * len(s.targets) / grid
+	}
+	if after <= least {
+		return least, nil
+	}
+	clear(r.aliveReady)
+	clear(r.aliveEnd)
+	origins := []routeLabel{{came: None, next: None}}
+	for i, g := range gaps {
+		r.begin(i)
+		r.atPin = nil
+		for _, o := range origins {
+			r.enter(g, o)
+		}
+		r.run()
+		origins = r.atPin
+	}
+	if grid == r.t.p.GridMin && !r.halted {
+		r.bury()
+	}
+	return r.best, r.slots(r.last)
+}
+
+// bury marks what no route came by.
+func (r *router) bury() {
+	for i, alive := range r.aliveReady {
+		r.deadReady[i] = r.deadReady[i] || !alive
+	}
+	for i, alive := range r.aliveEnd {
+		r.deadEnd[i] = r.deadEnd[i] || !alive
+	}
+}
+
+// begin makes ready for a gap.
+func (r *router) begin(i int) {
+	r.s, r.rest = r.sweeps[i], r.rests[i]
+	s := r.s
+	n := len(s.targets)
+	r.bucket = grow(r.bucket, n*s.wide)
+	for i := range r.bucket {
+		r.bucket[i] = None
+	}
+	r.job, r.taken = grow(r.job, n), grow(r.taken, n)
+	for len(r.live) < n {
+		r.live, r.parked = append(r.live, nil), append(r.parked, nil)
+	}
+	for l := range s.targets {
+		a := &s.targets[l]
+		r.live[l], r.parked[l], r.taken[l] = r.live[l][:0], r.parked[l][:0], int32(s.from)
+		r.job[l] = jobMemory{}
+		if l != s.next {
+			r.job[l] = r.jobs[a.job]
+		}
+	}
+}
+
+// enter goes into the gap with the label of a path to its start.
+func (r *router) enter(g gap, from routeLabel) {
+	s := r.s
+	if s.next == None {
+		if from.value > r.best {
+			r.best, r.last = from.value, from.came
+		}
+	} else if from.value+r.rest.after > r.least {
+		r.atPin = offer(r.atPin, from, 4*r.width)
+	}
+	s.eachEntry(g, func(l, at int) {
+		if from.value+r.rest.come[l*s.wide+at-s.from] > r.least && !from.memory.full(r.job[l]) {
+			r.arrive(l, at, from)
+		}
+	})
+}
+
+func (r *router) run() {
+	s, p := r.s, r.s.t.p
+	b := int(s.t.after[s.from])
+	to := s.from + s.wide - 1
+	for e := s.from; e <= to; e++ {
+		if r.halted = r.halted || r.halt(); r.halted {
+			return
+		}
+		if e%s.grid == 0 {
+			for l := range s.targets {
+				r.endSlots(l, e)
+			}
+		}
+		for b < len(p.Breaks) && p.Breaks[b].From == e {
+			r.leaveBreak(b, to)
+			b++
+		}
+	}
+}
+
+// endSlots makes the labels of slots of target l that end at minute e, and leaves from them.
+func (r *router) endSlots(l, e int) {
+	s := r.s
+	a := &s.targets[l]
+	opens := int(a.windows[e])
+	if opens == None || l == s.next {
+		return
+	}
+	low, high := max(opens, e-a.max, s.from), e-a.min
+	if low > high {
+		return
+	}
+	rest := r.rest.ended[l*s.wide+e-s.from]
+	if rest <= unreachable/2 {
+		return
+	}
+	r.take(l, high, low)
+	row := a.rows.row(e)[:high-low+1]
+	least := r.least - rest - a.adjust
+	r.front = r.front[:0]
+	for _, id := range r.live[l] {
+		at := &r.labels[id]
+		start := max(int(at.start), low)
+		v := at.value + row[high-start]
+		if v <= least {
+			continue
+		}
+		r.front = offer(r.front, routeLabel{value: v, memory: at.memory, came: at.came, next: None, node: int32(a.node), start: int32(start), end: int32(e)}, r.width)
+	}
+	r.work += 2 * len(r.live[l])
+	if len(r.front) > 0 {
+		r.aliveEnd[a.node*s.t.span+e] = true
+	}
+	for _, label := range r.front {
+		label.value += a.adjust
+		label.memory = label.memory.with(r.job[l])
+		id := int32(len(r.labels))
+		r.labels = append(r.labels, label)
+		if s.next == None && label.value > r.best {
+			r.best, r.last = label.value, id
+		}
+		r.leave(l, id, e)
+	}
+}
+
+// offer puts a label into the front of those that none other dominates: none that is worth as much
+// remembers no more. Beyond the width it is merged with the last: worth what the better one is,
+// remembering what both do, which can only raise the bound.
+func offer(front []routeLabel, label routeLabel, width int) []routeLabel {
+	for i := range front {
+		if front[i].value >= label.value && front[i].memory.within(label.memory) {
+			return front
+		}
+	}
+	kept := front[:0]
+	for i := range front {
+		if !(label.value >= front[i].value && label.memory.within(front[i].memory)) {
+			kept = append(kept, front[i])
+		}
+	}
+	front = kept
+	if len(front) < width {
+		return append(front, label)
+	}
+	worst := 0
+	for i := range front {
+		if front[i].value < front[worst].value {
+			worst = i
+		}
+	}
+	both := front[worst].memory.and(label.memory)
+	if label.value > front[worst].value {
+		front[worst] = label
+	}
+	front[worst].memory = both
+	return front
+}
+
+// take moves the labels that are ready up to minute high into the live ones, without those that an
+// earlier one dominates. Before low they all start at low, so that of these only a front is kept.
+func (r *router) take(l, high, low int) {
+	s := r.s
+	live := r.live[l]
+	for m := int(r.taken[l]); m <= high; m++ {
+		if s.t.breakTo[m] {
+			live = live[:0]
+		}
+	arrivals:
+		for id := r.bucket[l*s.wide+m-s.from]; id != None; id = r.labels[id].next {
+			label := &r.labels[id]
+			for _, other := range live {
+				if r.labels[other].value >= label.value && r.labels[other].memory.within(label.memory) {
+					continue arrivals
+				}
+			}
+			live = append(live, id)
+		}
+	}
+	r.taken[l] = max(r.taken[l], int32(high+1))
+	stale := 0
+	for stale < len(live) && int(r.labels[live[stale]].start) <= low {
+		stale++
+	}
+	if stale > r.width {
+		live = r.thin(live, stale)
+	}
+	r.live[l] = live
+}
+
+// thin drops those of the first labels that a later one of them dominates.
+func (r *router) thin(live []int32, stale int) []int32 {
+	kept := live[:0]
+next:
+	for i, id := range live[:stale] {
+		for _, other := range live[i+1 : stale] {
+			if r.labels[other].value >= r.labels[id].value && r.labels[other].memory.within(r.labels[id].memory) {
+				continue next
+			}
+		}
+		kept = append(kept, id)
+	}
+	return append(kept, live[stale:]...)
+}
+
+// leave makes targets ready after the ended label, before the next break, and keeps it for after that.
+func (r *router) leave(l int, id int32, e int) {
+	s, p := r.s, r.s.t.p
+	until := s.from + s.wide
+	if b := int(s.t.after[e]); b < len(p.Breaks) {
+		until = min(until, p.Breaks[b].From)
+		if v := r.rest.parked[b*len(s.targets)+l]; v > unreachable/2 && r.labels[id].value+v > r.least {
+			r.park(l, id)
+		}
+	}
+	r.depart(l, p.slewBin(e), id, e, until)
+}
+
+// park keeps the ended label among the front of its target's, to go on from after the next break.
+func (r *router) park(l int, id int32) {
+	label := r.labels[id]
+	kept := r.parked[l][:0]
+	worst := 0
+	for _, other := range r.parked[l] {
+		if o := &r.labels[other]; o.value >= label.value && o.memory.within(label.memory) {
+			return
+		}
+	}
+	for _, other := range r.parked[l] {
+		o := &r.labels[other]
+		if label.value >= o.value && label.memory.within(o.memory) {
+			continue
+		}
+		kept = append(kept, other)
+		if o.value < r.labels[kept[worst]].value {
+			worst = len(kept) - 1
+		}
+	}
+	if len(kept) >= 4*r.width {
+		both := r.labels[kept[worst]].memory.and(label.memory)
+		if r.labels[kept[worst]].value > label.value {
+			label = r.labels[kept[worst]]
+		}
+		label.memory = both
+		id = int32(len(r.labels))
+		r.labels = append(r.labels, label)
+		kept = slices.Delete(kept, worst, worst+1)
+	}
+	r.parked[l] = append(kept, id)
+}
+
+func (r *router) leaveBreak(b, to int) {
+	s, p := r.s, r.s.t.p
+	until := to + 1
+	if b+1 < len(p.Breaks) {
+		until = min(until, p.Breaks[b+1].From+1)
+	}
+	for l := range s.targets {
+		for _, id := range r.parked[l] {
+			r.depart(l, p.Slew.Bins+b, id, p.Breaks[b].To, until)
+		}
+	}
+}
+
+// depart makes targets ready after target l is left at minute free, in a bin of the slew table, before
+// minute until.
+func (r *router) depart(l, bin int, id int32, free, until int) {
+	s, p := r.s, r.s.t.p
+	row := p.Slew.Sec[(bin*p.Slew.Places+int(s.places[l]))*p.Slew.Places:][:p.Slew.Places]
+	n := len(s.places)
+	lasts := s.lasts[:n]
+	change := s.change[p.Jobs[s.targets[l].job].Receiver][:n]
+	overhead := uint32(p.OverheadSec + 59)
+	from := r.labels[id]
+	from.came = id
+	worth := r.least - from.value
+	base, wide := -s.from, s.wide
+	for k, place := range s.places {
+		last := int(lasts[k])
+		if last < free {
+			break
+		}
+		sec := uint32(max(int32(row[place]), change[k])) + overhead
+		if at := free + int(sec/60); at <= last && at < until {
+			if r.rest.come[base+at] > worth && !from.memory.full(r.job[k]) && !s.repeats(l, k) {
+				r.arrive(k, at, from)
+			}
+		}
+		base += wide
+	}
+	r.work += 2 * n
+}
+
+// arrive adds a label that is ready for target k, unless one that is ready at the same minute dominates it.
+func (r *router) arrive(k, at int, label routeLabel) {
+	s := r.s
+	i := k*s.wide + at - s.from
+	if k == s.next {
+		r.atPin = offer(r.atPin, label, 4*r.width)
+		return
+	}
+	label.memory = label.memory.and(r.keep[s.targets[k].node])
+	label.node, label.start = int32(s.targets[k].node), int32(at)
+	r.aliveReady[s.targets[k].node*s.t.span+at] = true
+	size := 0
+	worst := int32(None)
+	before := int32(None)
+	for id := r.bucket[i]; id != None; id = r.labels[id].next {
+		other := &r.labels[id]
+		if other.value >= label.value && other.memory.within(label.memory) {
+			return
+		}
+		if label.value >= other.value && label.memory.within(other.memory) {
+			if before == None {
+				r.bucket[i] = other.next
+			} else {
+				r.labels[before].next = other.next
+			}
+			continue
+		}
+		if worst == None || other.value < r.labels[worst].value {
+			worst = id
+		}
+		before = id
+		size++
+	}
+	if size >= r.width {
+		both := r.labels[worst].memory.and(label.memory)
+		if label.value > r.labels[worst].value {
+			r.labels[worst].value, r.labels[worst].came = label.value, label.came
+		}
+		r.labels[worst].memory = both
+		return
+	}
+	label.next = r.bucket[i]
+	r.bucket[i] = int32(len(r.labels))
+	r.labels = append(r.labels, label)
+}
+
+// slots returns the slots of the route that ends with the label.
+func (r *router) slots(id int32) []Slot {
+	var slots []Slot
+	for ; id != None; id = r.labels[id].came {
+		a := &r.labels[id]
+		slots = append(slots, Slot{Node: int(a.node), Start: int(a.start), End: int(a.end)})
+	}
+	slices.Reverse(slots)
+	return slots
+}
