@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"sort"
 	"time"
+
+	"example.org/tallystick/sky/radiometer"
 )
 
 // Arrears returns every account of the campaign at a moment, worst first: what each aim of each source is
@@ -100,6 +102,9 @@ func (b *books) accountRow(k *knowledge, aim *Aim) (AccountRow, error) {
 		row.Why = fmt.Sprintf("every session needs %s", count(aim.PerSession, "slot"))
 	}
 	b.tellReach(&row, k.source, aim)
+	if k.source.Spin != nil && b.sunDeg(k.source, b.at) < radiometer.WindUnreliableDeg {
+		row.Flags = append(row.Flags, "near the Sun")
+	}
 	if row.Debt > 1 && aim.Kind == Cadence {
 		row.Flags = append(row.Flags, "overdue")
 	}

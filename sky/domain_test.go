@@ -16,7 +16,7 @@ type facts struct {
 
 func readFacts(t *testing.T) facts {
 	f := facts{t, map[string]row{}}
-	for _, r := range table(t, "domain.csv", 42) {
+	for _, r := range table(t, "domain.csv", 46) {
 		f.rows[r.text("id")] = r
 	}
 	return f
@@ -258,6 +258,20 @@ func TestSunGaps(t *testing.T) {
 	}
 	if _, err := SunGaps(target, 5, time.Time{}, to); err == nil {
 		t.Error("the year 1 is accepted")
+	}
+}
+
+// Slews of a steerable dish of published rates, and of one with acceleration: RAD-090, -091, -100, -101.
+func TestSlewRows(t *testing.T) {
+	f := readFacts(t)
+	for _, id := range []string{"RAD-090", "RAD-091", "RAD-100", "RAD-101"} {
+		m := Mount{Kind: AltAz, TravelDeg: [2]float64{-270, 270}}
+		if id < "RAD-100" {
+			m.RateDegPerMin = [2]float64{f.input(id, "rate_az_deg_min"), f.input(id, "rate_el_deg_min")}
+		} else { // both rows have the same rates and accelerations
+			m.RateDegPerMin, m.AccelDegPerS2 = [2]float64{24, 12}, [2]float64{0.1, 0.1}
+		}
+		f.is(id, m.MoveSec(Axes{}, Axes{f.input(id, "dAz_deg"), f.input(id, "dEl_deg")}))
 	}
 }
 

@@ -250,6 +250,18 @@ func TestEclipticAgainstBook(t *testing.T) {
 	}
 }
 
+// Ecliptic positions by the obliquity that ECL names, turned to ICRS by another library (BAR-001, -002).
+func TestEclipticRows(t *testing.T) {
+	for _, id := range []string{"BAR-001", "BAR-002"} {
+		in, ra, tol, row := values(t, id)
+		_, dec, _ := strings.Cut(row[3], " ")
+		f := read(t, fmt.Sprintf("PSR B\nELONG %s\nELAT %s\nECL IERS2010\n", in["ELONG"], in["ELAT"]))
+		if p := f.source.place; math.Abs(p.raDeg-ra) > tol || math.Abs(p.decDeg-num(t, dec)) > tol {
+			t.Errorf("%s: %.9f %.9f, want %s", id, p.raDeg, p.decDeg, row[3])
+		}
+	}
+}
+
 func TestTimeScales(t *testing.T) {
 	in, want, tol, _ := values(t, "ORB-030")
 	tcb := timeScale{tcb: true}

@@ -2,8 +2,11 @@ package orbit
 
 import (
 	"encoding/csv"
+	"flag"
+	"fmt"
 	"math"
 	"os"
+	"path/filepath"
 	"strconv"
 	"strings"
 	"testing"
@@ -77,6 +80,7 @@ func rows(t *testing.T, file string, prefixes ...string) []row {
 		if r.tol, err = strconv.ParseFloat(l[5], 64); err != nil {
 			t.Fatal(err)
 		}
+		asserted[r.id] = true
 		out = append(out, r)
 	}
 	if len(out) == 0 {
@@ -92,4 +96,41 @@ func mustNew(t testing.TB, el Elements) Orbit {
 		t.Fatal(err)
 	}
 	return o
+}
+
+// asserted are the rows that tests have asked for.
+var asserted = map[string]bool{}
+
+// TestMain looks, when all tests have run, for rows of the tables that none of them asked for.
+func TestMain(m *testing.M) {
+	flag.Parse()
+	code := m.Run()
+	if code == 0 && flag.Lookup("test.run").Value.String() == "" && flag.Lookup("test.list").Value.String() == "" && flag.Lookup("test.bench").Value.String() == "" {
+		code = rowsLeft()
+	}
+	os.Exit(code)
+}
+
+func rowsLeft() (code int) {
+	files, _ := filepath.Glob("testdata/*.csv")
+	for _, name := range files {
+		f, err := os.Open(name)
+		if err != nil {
+			fmt.Println(err)
+			return 1
+		}
+		lines, err := csv.NewReader(f).ReadAll()
+		f.Close()
+		if err != nil {
+			fmt.Println(err)
+			return 1
+		}
+		for _, l := range lines[1:] {
+			if !asserted[l[0]] {
+				fmt.Printf("%s: no test asserts row %s\n", name, l[0])
+				code = 1
+			}
+		}
+	}
+	return code
 }

@@ -56,6 +56,13 @@ func PairErrorUs(f1MHz, s1Us, f2MHz, s2Us float64) float64 {
 // WindDensity is the usual density of the solar wind's electrons at 1 au, cm⁻³ (published: 4 to 10).
 const WindDensity = 7.9
 
+// WindUnreliableDeg is the elongation within which the solar wind's structure leaves as much as its smooth part takes away:
+// timing there is flagged.
+//
+// Source:  Tiburzi et al. 2019, MNRAS 487, 394: residuals of up to 0.3 µs at 1400 MHz
+// Checked: TestSolarWindIsUnreliable (DIS-070)
+const WindUnreliableDeg = 20
+
 // SolarWindDM returns the dispersion measure of the solar wind, pc/cm³.
 //
 //	n₀ au (π − ε)/sin ε

@@ -70,3 +70,19 @@ func TestPairSpacing(t *testing.T) {
 		t.Errorf("behind the Sun: %g d", d)
 	}
 }
+
+// At the elongation of the flag, what the spherical wind leaves in the data (DIS-070) is of the size of what it explains; at twice
+// the elongation it is all of it.
+func TestSolarWindIsUnreliable(t *testing.T) {
+	for _, r := range rows(t, "dispersion.csv", "DIS-070") {
+		explained := func(deg float64) float64 {
+			return 1e6 * DispersionSec(SolarWindDM(WindDensity, deg), r.num(t, "f_MHz"))
+		}
+		if at := explained(WindUnreliableDeg); at < r.want || at > 3*r.want {
+			t.Errorf("%s: %.2f µs explained, %.2f left", r.id, at, r.want)
+		}
+		if twice := explained(2 * WindUnreliableDeg); twice > 1.1*r.want {
+			t.Errorf("%s: %.2f µs explained at %d°, %.2f left", r.id, twice, 2*WindUnreliableDeg, r.want)
+		}
+	}
+}

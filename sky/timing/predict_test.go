@@ -25,6 +25,37 @@ func phaseModel(t *testing.T, params string, days []float64, turns float64) *Mod
 	return mustModel(t, src, allFree(free), obs)
 }
 
+// A position error of an arcsecond or ten, once a short fit has absorbed phase and frequency, or the derivative too: by the
+// worst season the error reaches a quarter of a turn as A (ωt)²/2 or A (ωt)³/6 says (PHA-011, -012, -014, -015). The rows
+// stop at that term of the series, so the model is up to a seventh slower for the longest of them, where ωt is above 1.
+func TestPositionErrorGrows(t *testing.T) {
+	for _, r := range rows(t, "phase_connection.csv", "PHA-011", "PHA-012", "PHA-014", "PHA-015") {
+		// A short fit: long enough to tell phase and frequency well, too short to tell the position.
+		span, turns := r.want/100, 2.5e-4
+		params := []Parameter{Phase, Frequency}
+		if r.id == "PHA-012" || r.id == "PHA-015" {
+			params, turns = append(params, FrequencyDerivative), 1.5e-6
+		}
+		worst := math.Inf(1)
+		for day := 0.0; day < 365; day += 5 {
+			// On the ecliptic at longitude 90°, where a step in right ascension is one in longitude.
+			src := Source{FrequencyHz: r.num(t, "F0_Hz"), EpochMJD: start + day, PositionMJD: start + day, RADeg: 90, DecDeg: 23.4392911}
+			var obs []Observation
+			for _, x := range []float64{-1, -0.6, -0.2, 0.2, 0.6, 1} {
+				obs = append(obs, Observation{MJD: start + day + x*span, SigmaUs: turns / src.FrequencyHz * 1e6})
+			}
+			m := mustModel(t, src, append(allFree(params), Prior{RightAscension, 1e3 * r.num(t, "dlambda_arcsec")}), obs)
+			if d := m.Deadline(0.25, start+day+span, 0); !d.Never {
+				worst = math.Min(worst, d.MJD-start-day)
+			}
+		}
+		wt := 2 * math.Pi * r.want / daysPerYear
+		if slow := worst/r.want - 1; slow < -0.03 || slow > 0.02+0.12*wt*wt {
+			t.Errorf("%s: %.2f d, the row says %.2f", r.id, worst, r.want)
+		}
+	}
+}
+
 func TestPhaseConnection(t *testing.T) {
 	for _, r := range rows(t, "phase_connection.csv", "PHA-03") {
 		m := phaseModel(t, r.inputs["params"], r.nums(t, "t_d"), r.num(t, "sphi_turn"))
