@@ -88,6 +88,7 @@ type player struct {
 	at       time.Time
 	season   Season
 	up       []map[string]bool             // by session: sources that are within limits at some time of it
+	asked    map[string][]demand           // by site
 	pressure map[string]*LSTPressure       // by site
 	mounted  map[string]map[string]float64 // granted hours, by receiver and site
 }

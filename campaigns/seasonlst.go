@@ -14,8 +14,9 @@ import (
 // What is wanted is the time on source and set-up that aims ask for in the season, as they would need at the
 // zenith: the visits of cadences that fall due, missing visits of orbital phase, missing passages as far as the season has
 // them, calibration in every session. Of aims that one slot can serve at once only the largest counts.
-// Aims to measure and to connect ask for no hours. A source's hours are spread evenly over the sidereal time in
-// which it is within limits. Slews and receiver changes are not wanted by anybody and not counted.
+// Aims to measure and to connect ask for no hours. A source's hours are put where time is granted while it is within
+// limits, so that as much as possible finds room; what finds none is spread evenly over the sidereal time in which the source is
+// within limits. Slews and receiver changes are not wanted by anybody and not counted.
 type LSTPressure struct {
 	Site     string
 	WantedH  [lstHours]float64
@@ -95,9 +96,10 @@ func (p *player) spend(prepared *Prepared, plan sched.Plan) {
 	}
 }
 
-// want counts what the aims ask for, and spreads it over the sidereal time in which it can be had.
+// want counts what the aims ask for, and finds room for it.
 func (p *player) want(start *books) error {
 	unserved := map[string]bool{}
+	p.asked = map[string][]demand{}
 	for i := range p.campaign.Sources {
 		src := &p.campaign.Sources[i]
 		k, err := newKnowledge(src, start.frames)
@@ -116,7 +118,7 @@ func (p *player) want(start *books) error {
 					continue
 				}
 				hours := p.hoursWanted(start, k, receiver, &s)
-				if err := p.spread(src, &s, hours*bySite[s.Name]/granted); err != nil {
+				if err := p.ask(src, &s, hours*bySite[s.Name]/granted); err != nil {
 					return err
 				}
 			}
@@ -130,6 +132,7 @@ func (p *player) want(start *books) error {
 	}
 	for _, s := range p.campaign.Sites {
 		if l, ok := p.pressure[s.Name]; ok {
+			l.WantedH = placeHours(p.asked[s.Name], l.GrantedH)
 			p.season.Pressure = append(p.season.Pressure, *l)
 		}
 	}
@@ -204,9 +207,9 @@ func (c *Campaign) minutesAtZenith(src *Source, receiver, site string, toaUs flo
 // lstStep is how finely the time within limits is sampled, in sidereal time.
 const lstStep = 5 * time.Minute
 
-// spread adds a source's hours to the sidereal hours in which it is within limits. What never is within limits is
+// ask notes a source's hours with the sidereal time in which it is within limits. What never is within limits is
 // wanted in vain and asked of nobody.
-func (p *player) spread(src *Source, site *Site, hours float64) error {
+func (p *player) ask(src *Source, site *Site, hours float64) error {
 	if hours == 0 {
 		return nil
 	}
@@ -221,22 +224,23 @@ func (p *player) spread(src *Source, site *Site, hours float64) error {
 	}
 	limits := site.limits(src)
 	limits.SunDeg = 0
-	var up [lstHours]float64
+	d := demand{hours: hours}
 	total := 0.0
 	const turn = 23*time.Hour + 56*time.Minute
 	windows := where.Windows(frame, frame.Place(src.target()), middle.Add(-turn/2), middle.Add(turn/2), limits)
 	for _, w := range windows {
 		for t := w.From; t.Before(w.To); t = t.Add(lstStep) {
 			part := math.Min(1, w.To.Sub(t).Minutes()/lstStep.Minutes())
-			up[lstHour(where.LSTHours(frame, t))] += part
+			d.up[lstHour(where.LSTHours(frame, t))] += part
 			total += part
 		}
 	}
-	l := p.at24(site.Name)
-	for h, share := range up {
-		if total > 0 {
-			l.WantedH[h] += hours * share / total
-		}
+	if total == 0 {
+		return nil
 	}
+	for h := range d.up {
+		d.up[h] /= total
+	}
+	p.asked[site.Name] = append(p.asked[site.Name], d)
 	return nil
 }

@@ -105,9 +105,9 @@ var words = map[string][]line{
 		{label: "kept", text: "a cadence that is never overdue; late: overdue for a while; missed: overdue at the end"},
 		{label: "up", text: "sessions in which it is within limits at some time and a receiver of the aim is mounted"},
 		{label: "due", text: "visits that fall due in the season, with those owed now"},
-		{label: "wanted", text: "hours that aims ask for at the zenith, spread over the sidereal time in which their source is up"},
+		{label: "wanted", text: "hours that aims ask for at the zenith, put where time is granted while their source is up, as far as there is room"},
 		{label: "granted", text: "hours of the sessions, without breaks"},
-		{label: "ask", text: "wanted above granted, hour by hour of sidereal time"},
+		{label: "ask", text: "what finds no room, spread over the sidereal time in which its source is up"},
 		{label: "connect", text: "observe by this date, or the turns of the pulsar can no longer be counted"},
 	},
 	logbookTitle: {

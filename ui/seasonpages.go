@@ -134,7 +134,7 @@ func hoursPage(s *campaigns.Season) seasonTable {
 			{label: "season", text: fmt.Sprintf("%.1f h wanted, %.1f granted, %.1f planned; %.1f to ask for, %.1f to spare",
 				campaigns.SumH(l.WantedH), campaigns.SumH(l.GrantedH), campaigns.SumH(l.PlannedH), campaigns.SumH(ask), campaigns.SumH(spare))},
 			{label: "signs", text: "# wanted and granted, + wanted and short, - granted and spare"},
-			{label: "wanted", text: "is at the zenith, with set-up and without slews; measure and connect aims ask for no hours; a source's hours are spread evenly over the sidereal time in which it is up"},
+			{label: "wanted", text: "is at the zenith, with set-up and without slews; measure and connect aims ask for no hours; it is put where time is granted while the source is up, and what finds no room is spread evenly over the time in which it is up"},
 		}
 	}
 	return t

@@ -25,8 +25,8 @@ func (p *program) seasonCommand() *cobra.Command {
 			"at and nothing is ever lost, so this is the best to be hoped for.\n" +
 			"A cadence is kept if it is never overdue, late if it is overdue for a while, missed if it is overdue at the end. " +
 			"Hours wanted are those of visits that fall due, missing phase coverage and passages, and calibration, at the zenith with " +
-			"set-up and without slews, spread evenly over the sidereal time in which the source is within limits; " +
-			"measure and connect aims ask for none, and of aims that one slot can serve at once the largest counts.\n" +
+			"set-up and without slews, put where time is granted while the source is within limits; what finds no room is spread evenly " +
+			"over the sidereal time in which it is up, and asked for. Measure and connect aims ask for none, and of aims that one slot can serve at once the largest counts.\n" +
 			"Columns of csv: " + seasonColumnWords("; ") + ".",
 		Example: "  tallystick season\n  tallystick season --table lst --format csv --out hours.csv",
 		Args:    noArgs,
