@@ -150,7 +150,7 @@ var commands = []command{
 	bind(goBack, moving, "", "back", "back one step: close, stop planning, take back an edit", "esc"),
 	bind(filterRows, moving, "", "filter", "show only rows that hold what is typed", "/"),
 
-	bind(insertSlot, editing, slateTitle, "insert", "insert a slot at the cursor minute", "i"),
+	bind(insertSlot, editing, slateTitle, "insert", "insert a slot: what could be observed at the cursor minute, and what it would cost", "i"),
 	bind(replaceSlot, editing, slateTitle, "replace", "put another source in place of the chosen slot", "r"),
 	bind(dropSlot, editing, slateTitle, "drop", "drop the chosen slot (planning again may choose it again; b keeps the source out)", "x", "delete"),
 	bind(moveEarlier, editing, slateTitle, "earlier", "move the chosen slot 1 minute earlier", ","),
