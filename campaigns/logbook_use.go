@@ -24,8 +24,8 @@ func (e Entry) Corrects(other Entry) bool {
 	return e.Start.Equal(other.Start) && e.Site == other.Site && e.Source == other.Source && e.Receiver == other.Receiver
 }
 
-// Unknown returns those of the entries that would change something: what the logbook has already as the last word, cell for
-// cell, is only counted.
+// Unknown returns those of the entries that would change something: what the logbook has already as the last word,
+// cell for cell, is only counted.
 func (l *Logbook) Unknown(entries []Entry) (fresh []Entry, known int) {
 	type key struct {
 		start                  int64

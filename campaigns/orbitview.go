@@ -38,8 +38,8 @@ type OrbitView struct {
 	Limited bool              // only events within sessions are listed
 }
 
-// A Point is a place in the plane of an orbit, in units of its semi-major axis: at the conjunction behind the companion Y is
-// positive, and the Earth lies towards negative Y. At the ascending node X is positive.
+// A Point is a place in the plane of an orbit, in units of its semi-major axis: at the conjunction behind the
+// companion Y is positive, and the Earth lies towards negative Y. At the ascending node X is positive.
 type Point struct{ X, Y float64 }
 
 // A PhaseBin is a part of the orbit that an aim wants visited so often.
@@ -61,8 +61,8 @@ type OrbitAim struct {
 // eventDays is how far ahead events are listed at most.
 const eventDays = 60
 
-// Orbits returns a view of every binary of a campaign at a moment, as a site sees it, in the order of the campaign. Events are
-// listed until the end of the site's last session, for at most 60 days.
+// Orbits returns a view of every binary of a campaign at a moment, as a site sees it, in the order of the campaign.
+// Events are listed until the end of the site's last session, for at most 60 days.
 func Orbits(c *Campaign, log *Logbook, site *Site, at time.Time) ([]OrbitView, error) {
 	if !slices.ContainsFunc(c.Sources, func(s Source) bool { return s.Orbit != nil }) {
 		return nil, nil

@@ -11,12 +11,12 @@ import (
 
 // An LSTPressure holds hours by the hour of local sidereal time of a site: 0 is from 0 h to 1 h.
 //
-// What is wanted is the time on source and set-up that aims ask for in the season, as they would need at the
-// zenith: the visits of cadences that fall due, missing visits of orbital phase, missing passages as far as the season has
-// them, calibration in every session. Of aims that one slot can serve at once only the largest counts.
-// Aims to measure and to connect ask for no hours. A source's hours are put where time is granted while it is within
-// limits, so that as much as possible finds room; what finds none is spread evenly over the sidereal time in which the source is
-// within limits. Slews and receiver changes are not wanted by anybody and not counted.
+// What is wanted is the time on source and set-up that aims ask for in the season, as they would need at the zenith:
+// the visits of cadences that fall due, missing visits of orbital phase, missing passages as far as the season has
+// them, calibration in every session. Of aims that one slot can serve at once only the largest counts. Aims to
+// measure and to connect ask for no hours. A source's hours are put where time is granted while it is within limits,
+// so that as much as possible finds room; what finds none is spread evenly over the sidereal time in which the source
+// is within limits. Slews and receiver changes are not wanted by anybody and not counted.
 type LSTPressure struct {
 	Site     string
 	WantedH  [lstHours]float64

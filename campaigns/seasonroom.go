@@ -12,17 +12,17 @@ type demand struct {
 // Hours of which a source is up for less than a part of its fullest hour are left to others.
 const leastPartOfHour = 1. / 3
 
-// roomSteps is how often demands are shared out anew. The hours that find no room are then right to better than a hundredth of
-// all that is wanted.
+// roomSteps is how often demands are shared out anew. The hours that find no room are then right to better than a
+// hundredth of all that is wanted.
 const roomSteps = 2000
 
-// placeHours puts demands where hours are granted, so that as much as possible finds room, and nobody has more of the hours that
-// several want than another. It returns the hours wanted by hour of sidereal time: those that found room, and those that
-// did not, spread evenly over the time in which their source is up.
+// placeHours puts demands where hours are granted, so that as much as possible finds room, and nobody has more of the
+// hours that several want than another. It returns the hours wanted by hour of sidereal time: those that found room,
+// and those that did not, spread evenly over the time in which their source is up.
 //
 // Each demand is handed out over the hours in proportion to what it got for it the last time; an hour that many want
-// gives each of them less. This comes to rest where the crowding of all hours that a demand is spread over is the same, and
-// then the least possible finds no room.
+// gives each of them less. This comes to rest where the crowding of all hours that a demand is spread over is the
+// same, and then the least possible finds no room.
 //
 // Source:  proportional response, Zhang 2011, Theor. Comput. Sci. 412, 2691
 // Checked: TestPlaceHours, against a maximum flow

@@ -73,8 +73,8 @@ func refreshCmd(f *files, s *campaigns.Session, at time.Time, edition int) tea.C
 	})
 }
 
-// receiveRefreshed puts the new accounts and worths under the plan, which stays as it is. The sky has not changed, so every slot
-// finds its node again.
+// receiveRefreshed puts the new accounts and worths under the plan, which stays as it is. The sky has not changed, so
+// every slot finds its node again.
 func (m *model) receiveRefreshed(msg refreshedMsg) tea.Cmd {
 	w := &m.world
 	d, ok := w.desks[msg.session]

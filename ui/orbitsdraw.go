@@ -178,8 +178,8 @@ func drawShape(c *cell.Canvas, g *theme.Glyphs, o *campaigns.OrbitView) {
 		y = int(math.Round((rows-1)/2 - scale*(p.Y-(low+high)/2)))
 		return x, min(max(y, 0), h-2)
 	}
-	// Where several fall into one cell, what was seen covers what was not, and the eclipse covers both. Gaps are filled along
-	// straight lines.
+	// Where several fall into one cell, what was seen covers what was not, and the eclipse covers both. Gaps are
+	// filled along straight lines.
 	const unseen, seen, eclipsed = 0, 1, 2
 	for layer := unseen; layer <= eclipsed; layer++ {
 		for i, p := range o.Shape {

@@ -40,7 +40,7 @@ func orbitLines(w *world, g *theme.Glyphs, o *campaigns.OrbitView) []line {
 			other++
 		}
 	}
-	add("comes", theme.Plain, "%d within a session and usable, %d not, until %s", caught, other, date(o.To))
+	add("comes", theme.Plain, "%s that a session catches, %d that none does, until %s", count(caught, "event"), other, date(o.To))
 	for _, inSession := range []bool{true, false} {
 		told := 0
 		for i := range o.Events {

@@ -26,7 +26,7 @@ var seasonPages = [...]seasonPage{
 		{"LST", 5, false, 0}, {"wanted", 6, true, 0}, {"granted", 7, true, 0}, {"planned", 7, true, 2}, {"ask for", 7, true, 0}, {"", 12, false, 1},
 	}, "hours by sidereal time", hoursPage},
 	{"Connect", []textColumn{
-		{"source", 12, false, 0}, {"observe by", 10, false, 0}, {"planned", 10, false, 1}, {"", 13, false, 2}, {"after it, by", 14, false, 3},
+		{"source", 12, false, 0}, {"observe by", 10, false, 0}, {"planned", 10, false, 1}, {"count", 7, false, 0}, {"then by", 14, false, 3},
 	}, "counts of turns and their dates", connectPage},
 	{"Sun", []textColumn{
 		{"source", 12, false, 0}, {"from", 10, false, 0}, {"to", 10, false, 0}, {"closest", 10, false, 2}, {"deg", 5, true, 1}, {"limit", 5, true, 1},
@@ -155,7 +155,7 @@ func connectPage(s *campaigns.Season) seasonTable {
 			planned = date(c.Planned)
 		}
 		if c.Lost {
-			verdict, ink = "count at risk", theme.Overdue
+			verdict, ink = "at risk", theme.Overdue
 		}
 		after := "no date"
 		if !c.ByAtEnd.IsZero() {
@@ -182,7 +182,7 @@ func connectLines(c *campaigns.ConnectForecast) (string, []line) {
 		after = date(c.ByAtEnd)
 	}
 	return c.Source + ", keep count of its turns", []line{
-		{label: "observe by", text: by}, {label: "planned", text: planned}, {label: "after it", text: "observe again by: " + after},
+		{label: "observe by", text: by}, {label: "planned", text: planned}, {label: "then by", text: after},
 	}
 }
 

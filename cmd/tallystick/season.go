@@ -209,7 +209,7 @@ func debtsText(w io.Writer, s *campaigns.Season) error {
 }
 
 func connectsText(w io.Writer, s *campaigns.Season) error {
-	columns := []column{{"Source", 14, false}, {"Observe by", 10, false}, {"Planned", 10, false}, {"", 14, false}, {"After it, by", 12, false}}
+	columns := []column{{"Source", 14, false}, {"Observe by", 10, false}, {"Planned", 10, false}, {"Count", 7, false}, {"Then by", 12, false}}
 	var rows [][]string
 	for i := range s.Connects {
 		c := &s.Connects[i]
@@ -218,7 +218,7 @@ func connectsText(w io.Writer, s *campaigns.Season) error {
 		}
 		verdict := "kept"
 		if c.Lost {
-			verdict = "count at risk"
+			verdict = "at risk"
 		}
 		rows = append(rows, []string{words(c.Source), day(c.By, ""), day(c.Planned, "never"), verdict, day(c.ByAtEnd, "no date")})
 	}
