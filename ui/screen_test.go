@@ -91,7 +91,7 @@ func TestEverySizeIsExact(t *testing.T) {
 
 func TestDialogsAreExactAtEverySize(t *testing.T) {
 	h := start(t, openCampaign(t))
-	for _, open := range [][]string{{"?"}, {":"}, {"o"}, {"e"}, {"e", "enter"}, {"enter"}, {"r"}, {"W"}, {"/"}, {"2", "/"}, {"3", "/"}, {"3", "enter"}, {"4", "enter"}, {"5", "/"}, {"5", "d"}, {"5", "p", "tab", "type:x", "enter"}, {"5", "A"}, {"5", "enter"}} {
+	for _, open := range [][]string{{"?"}, {":"}, {"o"}, {"e"}, {"e", "enter"}, {"enter"}, {"r"}, {"W"}, {"/"}, {"2", "/"}, {"3", "/"}, {"3", "enter"}, {"4", "enter"}, {"4", "P", "/", "type:J"}, {"5", "/"}, {"5", "d"}, {"5", "p", "tab", "type:x", "enter"}, {"5", "A"}, {"5", "enter"}} {
 		h.size(80, 24)
 		h.keys("esc", "esc", "1")
 		h.keys(open...)

@@ -3,6 +3,7 @@ package ui
 import (
 	"fmt"
 	"image"
+	"slices"
 	"strings"
 	"time"
 
@@ -21,6 +22,18 @@ type season struct {
 
 	made   *campaigns.Season // what tables were made of
 	tables [len(seasonPages)]seasonTable
+
+	filter field
+	typing bool
+	sieved sieved
+}
+
+// sieved is what a filter leaves of a page.
+type sieved struct {
+	of    *campaigns.Season
+	page  int
+	by    string
+	table seasonTable
 }
 
 // A seasonTable is a page that is ready to be drawn, with the details of each row.
@@ -47,10 +60,16 @@ func (v *season) hints(w *world) []verb {
 	if w.season.result == nil {
 		return []verb{playSeason, nextView, otherSession}
 	}
-	return []verb{moveRight, playSeason, openChosen, seeElsewhere, nextView, otherSession}
+	return []verb{moveRight, filterRows, playSeason, openChosen, seeElsewhere, nextView, otherSession}
 }
 
-func (v *season) typed(tea.KeyMsg, *world) bool { return false }
+func (v *season) typed(k tea.KeyMsg, _ *world) bool {
+	took := typeFilter(k, &v.filter, &v.typing)
+	if took {
+		v.lists[v.at] = rows{}
+	}
+	return took
+}
 
 // table is the page shown, made anew when the season is another.
 func (v *season) table(w *world) *seasonTable {
@@ -65,7 +84,40 @@ func (v *season) table(w *world) *seasonTable {
 			v.lists[i] = rows{at: min(v.lists[i].at, max(len(v.tables[i].cells)-1, 0))}
 		}
 	}
-	return &v.tables[v.at]
+	return v.sieve()
+}
+
+// sieve is what the filter leaves of the page shown: rows that hold all of its words.
+func (v *season) sieve() *seasonTable {
+	whole := &v.tables[v.at]
+	by := strings.ToLower(v.filter.String())
+	want := strings.Fields(by)
+	if len(want) == 0 {
+		return whole
+	}
+	if s := &v.sieved; s.of == v.made && s.page == v.at && s.by == by {
+		return &s.table
+	}
+	var left []int
+	some := seasonTable{}
+	for i, cells := range whole.cells {
+		text := strings.ToLower(strings.Join(cells, " "))
+		if slices.ContainsFunc(want, func(word string) bool { return !strings.Contains(text, word) }) {
+			continue
+		}
+		left = append(left, i)
+		some.cells = append(some.cells, cells)
+		if whole.inks != nil {
+			some.inks = append(some.inks, whole.inks[i])
+		}
+		if whole.sources != nil {
+			some.sources = append(some.sources, whole.sources[i])
+		}
+	}
+	some.lines = func(i int) (string, []line) { return whole.lines(left[i]) }
+	v.sieved = sieved{v.made, v.at, by, some}
+	v.lists[v.at].at = min(v.lists[v.at].at, max(len(left)-1, 0))
+	return &v.sieved.table
 }
 
 func (v *season) steer(verb verb, w *world) action {
@@ -78,6 +130,10 @@ func (v *season) steer(verb verb, w *world) action {
 		v.at = (v.at + len(seasonPages) - 1) % len(seasonPages)
 	case moveRight:
 		v.at = (v.at + 1) % len(seasonPages)
+	case filterRows:
+		v.typing = true
+	case goBack:
+		v.filter = field{}
 	case barSource:
 		if s := v.subject(w); s != "" {
 			return action{verb: barThisSource, text: s}
@@ -134,7 +190,7 @@ func (v *season) about(source string, w *world) string {
 }
 
 func (v *season) seek(source string, w *world) {
-	v.at = cadencePage
+	v.at, v.filter, v.typing = cadencePage, field{}, false
 	t := v.table(w)
 	for i, s := range t.sources {
 		if s == source {
@@ -177,9 +233,12 @@ func (v *season) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	}
 	v.drawHead(w, c.Sub(p.head), g)
 	v.page = max(p.table.Dy()-1, 1)
-	if len(t.cells) == 0 {
-		c.Sub(p.table).Put(1, 0, "nothing to tell: "+seasonPages[v.at].about, theme.Plain)
-	} else {
+	switch {
+	case len(t.cells) == 0 && v.filter.String() != "":
+		c.Sub(p.table).Put(1, 1, "no row matches", theme.Plain)
+	case len(t.cells) == 0:
+		c.Sub(p.table).Put(1, 1, "nothing to tell", theme.Plain)
+	default:
 		drawRows(c.Sub(p.table), g, seasonPages[v.at].columns, t.cells, t.inks, &v.lists[v.at])
 	}
 	if !p.hours.Empty() {
@@ -236,6 +295,19 @@ func (v *season) drawHead(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	x := v.tabs(w, cw)[len(seasonPages)-1].Max.X + 1
 	text := seasonPages[v.at].about
 	ink := theme.Plain
+	if v.typing || v.filter.String() != "" {
+		if x+12 > cw {
+			x = 0
+			c.Fill(image.Rect(0, 0, cw, 1), " ", theme.Plain)
+		}
+		x = c.Put(x, 0, "filter: ", theme.Muted)
+		if v.typing {
+			v.filter.draw(c, x, 0)
+		} else {
+			c.Put(x, 0, cell.Fit(v.filter.String()+"  (Esc shows all)", max(cw-x, 0)), theme.Plain)
+		}
+		return
+	}
 	if w.season.edition != w.edition {
 		text, ink = "out of date: P plays again", theme.Overdue
 	}

@@ -65,6 +65,12 @@ func TestSeasonIsPlayedAside(t *testing.T) {
 		h.keys("right")
 		h.exact()
 	}
+	h.keys("left", "/", "type:j2216", "enter", "enter")
+	h.shows("J2216+3344, every 7 d with L")
+	h.keys("esc", "/", "type:9", "enter")
+	h.shows("no row matches")
+	h.keys("esc")
+	h.shows("J1347-4410")
 	// What is recorded makes it out of date.
 	h.keys("5", "d", "enter", "4")
 	h.shows("out of date: P plays again")
