@@ -28,7 +28,7 @@ type ConjunctionRow struct {
 	At               time.Time // as it is heard at the observatory
 	Prediction       orbit.Prediction
 	SigmaKnown       bool     // the ephemeris gives the errors of epoch and period; else the Prediction says nothing
-	Receivers        []string // of an eclipse: those of the site that it holds for; eclipses are longer at low frequencies
+	Receivers        []string // of an eclipse whose length goes with frequency: those that it is told for; empty where it is the same for all
 	HalfWidthTurns   float64  // within which it is wanted: the prediction is judged against it
 	ElevationDeg     float64
 	SunSeparationDeg float64
@@ -212,7 +212,7 @@ type orbitEvent struct {
 	receivers []string // of an eclipse
 }
 
-// An eclipseFor is an eclipse, and the receivers that see it as wide.
+// An eclipseFor is an eclipse, and the receivers that see it as wide; none where all do.
 type eclipseFor struct {
 	eclipse   orbit.Eclipse
 	receivers []string
@@ -225,11 +225,7 @@ func (o *Orbit) eclipsesFor(receivers []*Receiver) []eclipseFor {
 	case e == nil:
 		return nil
 	case e.ReferenceMHz == 0 || len(receivers) == 0:
-		one := eclipseFor{eclipse: orbit.Eclipse{CentreTurns: e.CentreTurns, HalfWidthTurns: e.HalfWidthTurns, MarginTurns: e.MarginTurns}}
-		for _, r := range receivers {
-			one.receivers = append(one.receivers, r.Name)
-		}
-		return []eclipseFor{one}
+		return []eclipseFor{{eclipse: orbit.Eclipse{CentreTurns: e.CentreTurns, HalfWidthTurns: e.HalfWidthTurns, MarginTurns: e.MarginTurns}}}
 	}
 	var out []eclipseFor
 	for _, r := range receivers {

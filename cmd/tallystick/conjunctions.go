@@ -74,6 +74,14 @@ type conjunctionsTable struct {
 	short []string // sources of which only sessions are listed
 }
 
+// kindWords is what happens, and with which receiver where that matters.
+func kindWords(r *campaigns.ConjunctionRow) string {
+	if len(r.Receivers) == 0 {
+		return string(r.Kind)
+	}
+	return string(r.Kind) + ", " + words(strings.Join(r.Receivers, "+"))
+}
+
 // sigmaMin is the error of a predicted time in minutes.
 func sigmaMin(r *campaigns.ConjunctionRow) float64 { return r.Prediction.SigmaDays * 24 * 60 }
 
@@ -86,7 +94,7 @@ func (t conjunctionsTable) csv(w io.Writer) error {
 			sigma = fmt.Sprintf("%.6f", sigmaMin(r))
 		}
 		out = append(out, []string{
-			r.Source, string(r.Kind), utc(r.At), sigma, fmt.Sprintf("%.3f", r.ElevationDeg),
+			r.Source, kindWords(r), utc(r.At), sigma, fmt.Sprintf("%.3f", r.ElevationDeg),
 			fmt.Sprintf("%.3f", r.SunSeparationDeg), fmt.Sprint(r.Usable), r.Session,
 		})
 	}
@@ -118,7 +126,7 @@ func (t conjunctionsTable) text(w io.Writer) error {
 			use = "yes"
 		}
 		out = append(out, []string{
-			r.At.UTC().Format("15:04"), r.At.In(t.site.TimeZone).Format("15:04"), words(r.Source), strings.TrimSuffix(string(r.Kind), " conjunction"),
+			r.At.UTC().Format("15:04"), r.At.In(t.site.TimeZone).Format("15:04"), words(r.Source), strings.TrimSuffix(kindWords(r), " conjunction"),
 			shortSigma(r), fmt.Sprintf("%.0f", r.ElevationDeg), fmt.Sprintf("%.0f", r.SunSeparationDeg), use, r.Trust(),
 		})
 	}
@@ -200,7 +208,7 @@ func (t conjunctionsTable) json(w io.Writer) error {
 	for i := range t.rows {
 		r := &t.rows[i]
 		j := jsonConjunction{
-			Source: r.Source, Kind: string(r.Kind), TimeUTC: utc(r.At), ElevationDeg: round(r.ElevationDeg, 3),
+			Source: r.Source, Kind: kindWords(r), TimeUTC: utc(r.At), ElevationDeg: round(r.ElevationDeg, 3),
 			SunSeparationDeg: round(r.SunSeparationDeg, 3), Usable: r.Usable, Prediction: r.Trust(), Why: r.Why(), Cautions: []string{},
 		}
 		if r.SigmaKnown {
