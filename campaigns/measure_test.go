@@ -24,11 +24,14 @@ func eachMeasure(t *testing.T, f func(p *Prepared, job int, term *sched.Term, v 
 	t.Helper()
 	folder, now := openDemo(t)
 	for _, i := range []int{0, 8} {
-		p, err := Prepare(folder.Campaign, folder.Logbook, &folder.Campaign.Sessions[i], PrepareOptions{At: now})
-		if err != nil {
-			t.Fatal(err)
+		p, _ := firstSession()
+		if i > 0 {
+			var err error
+			if p, err = Prepare(folder.Campaign, folder.Logbook, &folder.Campaign.Sessions[i], PrepareOptions{At: now}); err != nil {
+				t.Fatal(err)
+			}
 		}
-		b := open(folder.Campaign, folder.Logbook, p.Session.Start)
+		b := open(p.Campaign, folder.Logbook, p.Session.Start)
 		for j := range p.Problem.Jobs {
 			job := &p.Problem.Jobs[j]
 			for k := range job.Terms {
