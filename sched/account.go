@@ -74,7 +74,7 @@ func (r CadenceRule) Balance(opened time.Time, visits []Visit, at time.Time) Acc
 			opened = visits[0].At
 		}
 	}
-	if r.Ramp != nil && !at.Before(r.Ramp.From) && opened.Before(r.Ramp.From) && (len(visits) == 0 || !visits[0].At.Before(r.Ramp.From)) {
+	if r.Ramp != nil && opened.Before(r.Ramp.From) && (len(visits) == 0 || !visits[0].At.Before(r.Ramp.From)) {
 		opened = r.Ramp.From // a discovery: nothing was owed before it
 	}
 	b := balance{rule: r, debt: 1, since: opened, due: opened}
