@@ -353,14 +353,7 @@ func (v *logbook) drawTable(w *world, c *cell.Canvas, g *theme.Glyphs) {
 		c.Put(1, 1, "no entry matches", theme.Plain)
 		return
 	}
-	// Only what is in sight is written out: there may be thousands of entries.
-	list := v.list
-	list.show(v.count(), v.page)
-	cells, inks := make([][]string, v.count()), make([]theme.Ink, v.count())
-	for i := list.top; i < min(list.top+v.page, v.count()); i++ {
-		cells[i], inks[i] = v.rowCells(i)
-	}
-	drawRows(c, g, logColumns, cells, inks, &v.list)
+	drawRows(c, g, logColumns, v.count(), v.rowCells, &v.list)
 	if y := len(v.slots) - v.list.top + 1; len(v.slots) > 0 && y > 1 && y <= v.page {
 		// Where the past begins, the number's place says so.
 		c.Put(1, y, "log", theme.Muted)

@@ -233,24 +233,26 @@ var orbitColumns = []textColumn{
 func (v *orbits) drawList(w *world, c *cell.Canvas, g *theme.Glyphs, shown []int) {
 	_, h := c.Size()
 	v.page = max(h-1, 1)
-	var cells [][]string
-	for _, i := range shown {
-		o := &w.orbits.views[i]
-		bins := "-"
-		if o.Bins != nil {
-			bins = fmt.Sprintf("%d of %d", o.BinsMissing(), len(o.Bins))
-		}
-		next := "nothing usable"
-		if e := nextUsable(w, o); e != nil {
-			next = shortKind(e.Kind) + " " + e.At.UTC().Format("01-02 15:04")
-		}
-		cells = append(cells, []string{o.Source, periodWords(o.PeriodDays), eccentricityWords(o.Eccentricity), fmt.Sprintf("%.0f %%", 100*o.SeenShare()), bins, next})
-	}
-	if len(cells) == 0 {
+	if len(shown) == 0 {
 		c.Put(1, 1, "no binary matches", theme.Plain)
 		return
 	}
-	drawRows(c, g, orbitColumns, cells, nil, &v.list)
+	drawRows(c, g, orbitColumns, len(shown), func(i int) ([]string, theme.Ink) {
+		return orbitCells(w, &w.orbits.views[shown[i]]), theme.Plain
+	}, &v.list)
+}
+
+// orbitCells are the texts of a binary's row.
+func orbitCells(w *world, o *campaigns.OrbitView) []string {
+	bins := "-"
+	if o.Bins != nil {
+		bins = fmt.Sprintf("%d of %d", o.BinsMissing(), len(o.Bins))
+	}
+	next := "nothing usable"
+	if e := nextUsable(w, o); e != nil {
+		next = shortKind(e.Kind) + " " + e.At.UTC().Format("01-02 15:04")
+	}
+	return []string{o.Source, periodWords(o.PeriodDays), eccentricityWords(o.Eccentricity), fmt.Sprintf("%.0f %%", 100*o.SeenShare()), bins, next}
 }
 
 // nextUsable is the next event that a session catches, or the next that could be observed.

@@ -44,6 +44,14 @@ type seasonTable struct {
 	lines   func(i int) (string, []line)
 }
 
+// row is what is drawn of a row.
+func (t *seasonTable) row(i int) ([]string, theme.Ink) {
+	if t.inks == nil {
+		return t.cells[i], theme.Plain
+	}
+	return t.cells[i], t.inks[i]
+}
+
 // A seasonPage is one table of what a season comes to.
 type seasonPage struct {
 	name    string
@@ -239,7 +247,7 @@ func (v *season) draw(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	case len(t.cells) == 0:
 		c.Sub(p.table).Put(1, 1, "nothing to tell", theme.Plain)
 	default:
-		drawRows(c.Sub(p.table), g, seasonPages[v.at].columns, t.cells, t.inks, &v.lists[v.at])
+		drawRows(c.Sub(p.table), g, seasonPages[v.at].columns, len(t.cells), t.row, &v.lists[v.at])
 	}
 	if !p.hours.Empty() {
 		x := p.hours.Min.X - 1

@@ -37,8 +37,8 @@ func fitTextColumns(columns []textColumn, w int) []int {
 	return kept
 }
 
-// drawRows draws a table of texts with a cursor. Inks are those of the rows; nil: plain.
-func drawRows(c *cell.Canvas, g *theme.Glyphs, columns []textColumn, cells [][]string, inks []theme.Ink, list *rows) {
+// drawRows draws a table of n rows of texts with a cursor; only rows in sight are asked for.
+func drawRows(c *cell.Canvas, g *theme.Glyphs, columns []textColumn, n int, row func(i int) ([]string, theme.Ink), list *rows) {
 	cw, h := c.Size()
 	kept := fitTextColumns(columns, cw)
 	x := 1
@@ -54,24 +54,22 @@ func drawRows(c *cell.Canvas, g *theme.Glyphs, columns []textColumn, cells [][]s
 		x += width(k, x) + 1
 	}
 	page := max(h-1, 1)
-	list.show(len(cells), page)
-	for i := list.top; i < min(list.top+page, len(cells)); i++ {
+	list.show(n, page)
+	for i := list.top; i < min(list.top+page, n); i++ {
 		y := i - list.top + 1
-		ink, mark := theme.Plain, " "
-		if inks != nil {
-			ink = inks[i]
-		}
+		cells, ink := row(i)
+		mark := " "
 		if i == list.at {
 			ink, mark = theme.Chosen, g.Mark
 			c.Put(0, y, cell.Fit("", cw), ink)
 		}
 		x := c.Put(0, y, mark, ink)
 		for _, k := range kept {
-			c.Put(x, y, fitted(oneCell.Replace(cells[i][k]), width(k, x), columns[k].right), ink)
+			c.Put(x, y, fitted(oneCell.Replace(cells[k]), width(k, x), columns[k].right), ink)
 			x += width(k, x) + 1
 		}
 	}
-	drawMore(c, g, list.top, len(cells), page)
+	drawMore(c, g, list.top, n, page)
 }
 
 // joined writes what there is of some texts, with commas.
