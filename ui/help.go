@@ -102,6 +102,7 @@ var words = map[string][]line{
 	seasonTitle: {
 		{label: "season", text: "from now to the end of the last session that is listed"},
 		{label: "played", text: "every session planned quickly, one after the other, and taken as observed: the best to be hoped for"},
+		{label: "overdue", text: "of a session: cadences that are overdue when it starts; of a cadence: days with a debt above 1"},
 		{label: "kept", text: "a cadence that is never overdue; late: overdue for a while; missed: overdue at the end"},
 		{label: "up", text: "sessions in which it is within limits at some time and a receiver of the aim is mounted"},
 		{label: "due", text: "visits that fall due in the season, with those owed now"},

@@ -26,7 +26,7 @@ func (v *orbits) title() string { return orbitsTitle }
 func (v *orbits) withoutSession() {}
 
 func (v *orbits) hints(*world) []verb {
-	return []verb{moveDown, filterRows, openChosen, seeElsewhere, nextView}
+	return []verb{filterRows, openChosen, seeElsewhere, nextView, otherSession}
 }
 
 func (v *orbits) rows(w *world) []int {

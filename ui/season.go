@@ -68,7 +68,7 @@ func (v *season) hints(w *world) []verb {
 	if w.season.result == nil {
 		return []verb{playSeason, nextView, otherSession}
 	}
-	return []verb{moveRight, filterRows, playSeason, openChosen, seeElsewhere, nextView, otherSession}
+	return []verb{playSeason, filterRows, openChosen, seeElsewhere, nextView, otherSession}
 }
 
 func (v *season) typed(k tea.KeyMsg, _ *world) bool {

@@ -17,7 +17,7 @@ var seasonPages = [...]seasonPage{
 	{"Sessions", []textColumn{
 		{"no", 2, true, 0}, {"session", 22, false, 0}, {"start, UTC", 16, false, 1}, {"hours", 5, true, 0}, {"on source", 9, true, 2}, {"slots", 5, true, 1},
 		{"worth", 7, true, 2}, {"overdue", 7, true, 1},
-	}, "overdue: cadences overdue when it starts", sessionsPage},
+	}, "Left and Right turn pages", sessionsPage},
 	{"Cadences", []textColumn{
 		{"season", 6, false, 0}, {"source", 12, false, 0}, {"aim", 20, false, 2}, {"up", 3, true, 2}, {"due", 3, true, 0}, {"planned", 7, true, 0}, {"overdue d", 9, true, 3},
 		{"debt", 5, true, 1}, {"worst", 5, true, 4}, {"at end", 6, true, 1},
