@@ -60,6 +60,12 @@ var accountColumns = []accountColumn{
 
 const debtColumn = 2
 
+// tellsDebt reports whether a column says how much is owed: the figure, its bar and the flags. Only these
+// are coloured, for a screen that is all warning warns of nothing.
+func tellsDebt(column int) bool {
+	return column == debtColumn || column == debtColumn+1 || accountColumns[column].head == "flags"
+}
+
 // byTime orders times with unknown ones last.
 func byTime(a, b time.Time) int {
 	switch {

@@ -28,7 +28,7 @@ type arrears struct {
 func (v *arrears) title() string { return arrearsTitle }
 
 func (v *arrears) hints(*world) []verb {
-	return []verb{filterRows, sortNext, sortTurn, barSource, undoEdit, openChosen, nextView}
+	return []verb{filterRows, sortNext, sortTurn, barSource, seeElsewhere, undoEdit, openChosen, nextView}
 }
 
 // rows lists the accounts that pass the filter, in order.
@@ -218,13 +218,15 @@ func (v *arrears) drawTable(w *world, c *cell.Canvas, g *theme.Glyphs, shown []i
 		case i == v.list.at:
 			ink, mark = theme.Chosen, g.Mark
 			c.Put(0, i-v.list.top+1, cell.Fit("", cw), ink)
-		case r.Debt > 1:
-			ink = theme.Overdue
 		}
 		x := c.Put(0, i-v.list.top+1, mark, ink)
 		for _, k := range columns {
 			col := accountColumns[k]
-			c.Put(x, i-v.list.top+1, fitted(col.text(w, g, r), col.width, col.right), ink)
+			here := ink
+			if r.Debt > 1 && i != v.list.at && tellsDebt(k) {
+				here = theme.Overdue
+			}
+			c.Put(x, i-v.list.top+1, fitted(col.text(w, g, r), col.width, col.right), here)
 			x += col.width + 1
 		}
 	}

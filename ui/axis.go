@@ -108,7 +108,7 @@ func drawBars(w *world, c *cell.Canvas, g *theme.Glyphs, a axis) {
 	c.Put(0, 0, "slot", theme.Muted)
 	for _, b := range r.problem.Breaks {
 		for x := a.column(b.From); x <= a.column(b.To); x++ {
-			c.Put(x, 0, g.Break, theme.Plain)
+			c.Put(x, 0, g.Break, theme.Muted)
 		}
 	}
 	for i := range r.plan.Slots {

@@ -92,7 +92,7 @@ func drawCurves(w *world, c *cell.Canvas, g *theme.Glyphs, a axis) {
 // drawBackdrop shades the breaks and draws the present moment and the cursor minute.
 func drawBackdrop(w *world, c *cell.Canvas, g *theme.Glyphs, a axis, h int) {
 	for _, b := range w.desk.prepared.Problem.Breaks {
-		c.Fill(image.Rect(a.column(b.From), 0, a.column(b.To)+1, h), g.Break, theme.Plain)
+		c.Fill(image.Rect(a.column(b.From), 0, a.column(b.To)+1, h), g.Break, theme.Muted)
 	}
 	if now, ok := w.nowMinute(); ok {
 		x := a.column(now)

@@ -24,7 +24,8 @@ type Glyphs struct {
 }
 
 var drawn = Glyphs{
-	Curve: [5]string{"⎺", "⎻", "─", "⎼", "⎽"},
+	// Three heights: the scan lines of the old terminals would give five, but many fonts do not have them.
+	Curve: [5]string{"¯", "¯", "─", "_", "_"},
 	Other: "∙", OnSource: "━", OtherOnSource: "═",
 	Limit: "╌", Now: "┊", Cursor: "▴",
 	Rule: "─", Upright: "│", Tick: "┴", Axis: "─",
