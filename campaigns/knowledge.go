@@ -117,7 +117,7 @@ func (b *books) coverage(k *knowledge, aim *Aim) coverage {
 }
 
 func (b *books) cover(k *knowledge, aim *Aim) coverage {
-	full := binMinutes(aim, k.source.Orbit)
+	full := b.binMinutes(k.source, aim)
 	var visits []sched.PhaseVisit
 	for _, e := range b.entries[k.source.Name] {
 		if e.Start.Before(aim.Since) || !aim.wants(e.Receiver) {
@@ -137,9 +137,30 @@ func (b *books) cover(k *knowledge, aim *Aim) coverage {
 	return coverage{aim: aim, needs: sched.PhaseNeeds(aim.Bins, aim.PerBin, visits)}
 }
 
-// binMinutes is how long a visit of a phase bin lasts.
-func binMinutes(aim *Aim, o *Orbit) float64 {
-	return math.Min(aim.Minutes, o.PeriodDays*24*60/float64(aim.Bins))
+// usualVisitMin is how long a visit is taken to be of a source whose aims do not say.
+const usualVisitMin = 30
+
+// visitMinutes is how long a visit for an aim is: what it says or, where it wants a precision, what that takes with
+// the receiver that reaches it first.
+func (b *books) visitMinutes(src *Source, aim *Aim) float64 {
+	if aim.Minutes > 0 {
+		return aim.Minutes
+	}
+	least := math.Inf(1)
+	for _, r := range b.reaches(src, aim) {
+		if r.minutes > 0 {
+			least = math.Min(least, r.minutes)
+		}
+	}
+	if math.IsInf(least, 1) {
+		return usualVisitMin
+	}
+	return math.Max(1, least)
+}
+
+// binMinutes is how long a visit of a phase bin lasts: the wanted minutes, but no longer than the bin itself.
+func (b *books) binMinutes(src *Source, aim *Aim) float64 {
+	return math.Min(b.visitMinutes(src, aim), src.Orbit.PeriodDays*24*60/float64(aim.Bins))
 }
 
 // binOf is the bin that a phase falls in; one that is no number falls in the first.

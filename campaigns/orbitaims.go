@@ -21,8 +21,9 @@ func (jb *jobBuilder) phaseCoverage(aim *Aim) {
 	k := jb.source.knowledge
 	c := jb.books.coverage(k, aim)
 	jb.owes(aim, c.debt())
-	full := binMinutes(aim, k.source.Orbit)
-	jb.visit(aim, aim.Minutes)
+	minutes := jb.books.visitMinutes(k.source, aim)
+	full := jb.books.binMinutes(k.source, aim)
+	jb.visit(aim, minutes)
 	for i := range c.needs {
 		missing := math.Min(c.missing(i), mostNeed)
 		if missing <= 0 {
@@ -31,7 +32,7 @@ func (jb *jobBuilder) phaseCoverage(aim *Aim) {
 		lo, hi := float64(i)/float64(aim.Bins), float64(i+1)/float64(aim.Bins)
 		jb.term(aim, sched.Term{
 			Label: fmt.Sprintf("orbital phase %.2f to %.2f", lo, hi),
-			Scale: jb.scale(missing * full / aim.Minutes), Curve: sched.Share, Wanted: max(1, shares(full)),
+			Scale: jb.scale(missing * full / minutes), Curve: sched.Share, Wanted: max(1, shares(full)),
 			Cum: jb.gather(func(m int) float64 {
 				if binOf(jb.source.phases[m], aim.Bins) != i || jb.untimable(m) {
 					return 0
@@ -60,10 +61,7 @@ func (jb *jobBuilder) conjunction(aim *Aim) error {
 		if pass.trust.TrustFor(aim.HalfWidthTurns) == orbit.Refuse {
 			continue
 		}
-		whole := 0.0
-		for t := pass.from(); t.Before(pass.to()); t = t.Add(time.Minute) {
-			whole += k.conjunctionWeight(pass, t)
-		}
+		whole := k.wholeWeight(pass)
 		wide := 2 * pass.halfWide.Minutes()
 		jb.stretch(math.Min(wide, 10), wide)
 		jb.term(aim, sched.Term{
@@ -80,9 +78,6 @@ func (jb *jobBuilder) conjunction(aim *Aim) error {
 	}
 	return nil
 }
-
-// usualVisitMin is how long a visit is taken to be of a source whose aims do not say.
-const usualVisitMin = 30
 
 // visitMinutes is how long an ordinary visit of the source is: as the first of its aims for one says.
 func (jb *jobBuilder) visitMinutes() float64 {

@@ -121,7 +121,7 @@ func (b *books) pass(k *knowledge, aim *Aim) (passages, error) {
 		return p, err
 	}
 	period := time.Duration(k.source.Orbit.PeriodDays * 24 * float64(time.Hour))
-	for _, pass := range k.superior(aim.HalfWidthTurns, b.at, b.at.Add(period+period/10)) {
+	for _, pass := range k.superior(aim.HalfWidthTurns, b.at, b.at.Add(period).Add(period/10)) {
 		if pass.centre.After(b.at) {
 			p.next = &pass
 			break
@@ -165,11 +165,22 @@ func (b *books) missed(k *knowledge, aim *Aim, caught map[int64]float64) (int, e
 	return missed, nil
 }
 
+// step is how finely a passage's window is weighed: by the minute, and long ones in five hundred steps to either side.
+func (p *passage) step() time.Duration { return max(time.Minute, p.halfWide/500) }
+
+// wholeWeight is what a passage's window weighs: minutes at its centre.
+func (k *knowledge) wholeWeight(pass passage) float64 {
+	whole := 0.0
+	for t := pass.from(); t.Before(pass.to()); t = t.Add(pass.step()) {
+		whole += k.conjunctionWeight(pass, t)
+	}
+	return whole * pass.step().Minutes()
+}
+
 // shareOf is the share of a passage's weight that lies between two instants.
 func (k *knowledge) shareOf(pass passage, from, to time.Time) float64 {
 	got, whole := 0.0, 0.0
-	step := max(time.Minute, pass.halfWide/500)
-	for t := pass.from(); t.Before(pass.to()); t = t.Add(step) {
+	for t := pass.from(); t.Before(pass.to()); t = t.Add(pass.step()) {
 		w := k.conjunctionWeight(pass, t)
 		whole += w
 		if !t.Before(from) && t.Before(to) {

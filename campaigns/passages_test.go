@@ -113,3 +113,16 @@ func TestPassagesOfAnOrbitThatMeansNothing(t *testing.T) {
 		t.Error(rows[0].Why)
 	}
 }
+
+// The longest orbit that is accepted lasts 274 years: its next passage is found all the same.
+func TestTheNextPassageOfTheLongestOrbit(t *testing.T) {
+	c, _ := passing(t)
+	c.Sources[0].Orbit.PeriodDays, c.Sources[0].Orbit.SemimajorLs = 1e5, 1000
+	rows, err := Arrears(c, nil, c.Sessions[0].Start)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if !strings.Contains(rows[0].Why, "; next 2095-") {
+		t.Error(rows[0].Why)
+	}
+}

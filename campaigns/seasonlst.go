@@ -178,7 +178,7 @@ func (p *player) hoursWanted(start *books, k *knowledge, receiver string, site *
 			}
 		case PhaseCoverage:
 			c := start.coverage(k, aim)
-			minutes = binMinutes(aim, src.Orbit)
+			minutes = start.binMinutes(src, aim)
 			visits = c.debt() * float64(aim.Bins*aim.PerBin) / float64(len(aim.Receivers))
 		case Conjunction:
 			done, err := start.passages(k, aim)
