@@ -28,6 +28,8 @@ type bounder struct {
 	prices   *bundle
 	begin    []float64 // the prices that it starts from
 	stage    stage
+	rounds   int
+	proof    proof
 	steps    int  // in this stage
 	coarse   int  // the grid on which prices are learned first
 	changed  bool // the bound at the centre has to be taken anew
@@ -88,13 +90,13 @@ func (b *bounder) force(slots []Slot) {
 	}
 }
 
-// charge puts the trial's prices on the jobs and returns what the bound is without any route.
-func (b *bounder) charge() Micro {
+// charge puts prices on the jobs and returns what the bound is without any route.
+func (b *bounder) charge(prices []float64, adjust []Micro) Micro {
 	sum := b.pins
-	for j, price := range b.prices.trial {
-		b.adjust[j] = -Micro(price)
+	for j, price := range prices {
+		adjust[j] = -Micro(price)
 		if b.t.chosen[j] {
-			sum -= b.adjust[j] * Micro(b.t.left(b.used, j))
+			sum -= adjust[j] * Micro(b.t.left(b.used, j))
 		}
 	}
 	return sum
@@ -103,7 +105,7 @@ func (b *bounder) charge() Micro {
 // swept returns the bound at the trial's prices by the plain sweep, with ends on the given grid, and the
 // routes it comes from. Only on the problem's own grid does it bound its plans.
 func (b *bounder) swept(grid int) (Micro, []Slot) {
-	sum := b.charge()
+	sum := b.charge(b.prices.trial, b.adjust)
 	var route []Slot
 	for _, g := range b.gaps {
 		value, path := b.sweep.relax(g, b.used, b.adjust, b.spread, grid)
@@ -118,7 +120,7 @@ func (b *bounder) swept(grid int) (Micro, []Slot) {
 // routed returns the bound by routes with memory likewise, or best, the worth of the best plan, and no
 // route when none is better.
 func (b *bounder) routed(grid int, best Micro) (Micro, []Slot) {
-	sum := b.charge()
+	sum := b.charge(b.prices.trial, b.adjust)
 	value, route := b.router.route(b.gaps, b.used, b.adjust, best-sum, grid)
 	b.work += b.router.work
 	return sum + value, route

@@ -18,7 +18,7 @@ const (
 	mostSweeps     = 15
 	routesPerRound = 3
 	mostCoarse     = 36
-	proveEvery     = 3    // rounds, while on the coarse grid
+	proveEvery     = 2    // rounds, while on the coarse grid
 	slow           = 0.05 // share of the distance that a step must promise for sweeps to go on
 	settled        = 0.1  // likewise, for prices to be good enough to see which routes must go
 )
@@ -26,6 +26,10 @@ const (
 // advance lowers the ceiling by a round of work; best is the worth of the best plan.
 func (b *bounder) advance(best Micro) {
 	b.work = 0
+	b.rounds++
+	if b.stage != sweeping {
+		b.sweep = nil // its memory is wanted elsewhere
+	}
 	switch b.stage {
 	case sweeping:
 		b.sweepOn(best)
@@ -35,9 +39,6 @@ func (b *bounder) advance(best Micro) {
 				b.enter(routing)
 				break
 			}
-		}
-		if b.stage == coarseRouting && b.steps/routesPerRound%proveEvery == 1 {
-			b.prove(best)
 		}
 	case routing:
 		if !b.step(b.t.p.GridMin, best) {
@@ -54,9 +55,8 @@ func (b *bounder) enter(next stage) {
 	b.stage, b.steps = next, 0
 }
 
-// sweepOn makes steps with the plain sweep until they promise little.
+// sweepOn makes steps with the plain sweep until they promise little, then takes the bound on the true grid.
 func (b *bounder) sweepOn(best Micro) {
-	first := b.steps == 0
 	for range sweepsPerRound {
 		if b.router.halt() {
 			return
@@ -78,11 +78,9 @@ func (b *bounder) sweepOn(best Micro) {
 			break
 		}
 	}
-	if first || b.stage != sweeping {
-		copy(b.prices.trial, b.prices.center)
-		bound, _ := b.swept(b.t.p.GridMin)
-		b.lower(bound)
-	}
+	copy(b.prices.trial, b.prices.center)
+	bound, _ := b.swept(b.t.p.GridMin)
+	b.lower(bound)
 }
 
 // step takes the bound by routes with memory at the next prices. It is false when no route is better than
@@ -116,21 +114,6 @@ func (b *bounder) step(grid int, best Micro) bool {
 	b.prices.add(b.cutOf(route), float64(bound), float64(best))
 	b.learnFrom(route)
 	return true
-}
-
-// prove takes the bound at the best prices so far on the true grid, while they are learned on another.
-func (b *bounder) prove(best Micro) {
-	copy(b.prices.trial, b.prices.center)
-	bound, route := b.routed(b.t.p.GridMin, best)
-	if b.router.halted {
-		return
-	}
-	b.lower(bound)
-	if bound <= best {
-		b.enter(proved)
-		return
-	}
-	b.learnFrom(route)
 }
 
 // learnFrom remembers what the route comes back to, and keeps it for a plan to be made of. A route that still

@@ -189,6 +189,17 @@ func (r *router) enter(g gap, from routeLabel) {
 	})
 }
 
+// mostLabels bounds the memory of a sweep to some 80 MB: beyond it only one label of each state is kept.
+const mostLabels = 1_500_000
+
+// room returns how many labels of a state are kept now.
+func (r *router) room() int {
+	if len(r.labels) > mostLabels {
+		return 1
+	}
+	return r.width
+}
+
 func (r *router) run() {
 	s, p := r.s, r.s.t.p
 	b := int(s.t.after[s.from])
@@ -229,6 +240,7 @@ func (r *router) endSlots(l, e int) {
 	row := a.rows.row(e)[:high-low+1]
 	least := r.least - rest - a.adjust
 	r.front = r.front[:0]
+	width := r.room()
 	for _, id := range r.live[l] {
 		at := &r.labels[id]
 		start := max(int(at.start), low)
@@ -236,7 +248,7 @@ func (r *router) endSlots(l, e int) {
 		if v <= least {
 			continue
 		}
-		r.front = offer(r.front, routeLabel{value: v, memory: at.memory, came: at.came, next: None, node: int32(a.node), start: int32(start), end: int32(e)}, r.width)
+		r.front = offer(r.front, routeLabel{value: v, memory: at.memory, came: at.came, next: None, node: int32(a.node), start: int32(start), end: int32(e)}, width)
 	}
 	r.work += 2 * len(r.live[l])
 	if len(r.front) > 0 {
@@ -454,7 +466,7 @@ func (r *router) arrive(k, at int, label routeLabel) {
 		before = id
 		size++
 	}
-	if size >= r.width {
+	if size >= r.room() {
 		both := r.labels[worst].memory.and(label.memory)
 		if label.value > r.labels[worst].value {
 			r.labels[worst].value, r.labels[worst].came = label.value, label.came

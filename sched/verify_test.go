@@ -148,6 +148,10 @@ func TestSolveAnswersOddSessions(t *testing.T) {
 		worthless.Jobs[i].Must = false
 	}
 	minute := generate(instance{sources: 3, minutes: 1, grid: 1, receivers: 1})
+	one := generate(instance{sources: 1, minutes: 300, grid: 1, receivers: 1})
+	if r := solve(t, one, Options{}); !r.Proven || len(r.Plan.Slots) > 1 {
+		t.Errorf("one source: %d slots, proven %v", len(r.Plan.Slots), r.Proven)
+	}
 	for name, p := range map[string]*Problem{"no job": empty, "nothing up": nothing, "worth nothing": worthless, "one minute": minute} {
 		r := solve(t, p, Options{})
 		judged(t, p, r.Plan, r.Worth)
