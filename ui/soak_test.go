@@ -9,7 +9,7 @@ import (
 	"time"
 )
 
-var soak = flag.Int("soak", 1500, "how many random keys to press in TestSoak")
+var soak = flag.Int("soak", 600, "how many random keys to press in TestSoak")
 
 // A long night: keys at random in every view, at every size, before and during the session. No fault, no
 // frame larger than its terminal, no memory and no goroutine left behind.
