@@ -65,6 +65,7 @@ func drawCurves(w *world, c *cell.Canvas, g *theme.Glyphs, a axis) {
 	s := scale{rows: h, low: 0, up: 90}
 	drawDegrees(c, s)
 	drawBackdrop(w, c, g, a, h)
+	drawSun(d.prepared, c, g, a, s)
 
 	chosen, _ := d.slot()
 	crowded := len(r.plan.Slots) > crowd
@@ -97,6 +98,17 @@ func drawBackdrop(w *world, c *cell.Canvas, g *theme.Glyphs, a axis, h int) {
 	if now, ok := w.nowMinute(); ok {
 		x := a.column(now)
 		c.Fill(image.Rect(x, 0, x+1, h), g.Now, theme.Now)
+	}
+}
+
+// drawSun draws where the Sun stands above the horizon.
+func drawSun(p *campaigns.Prepared, c *cell.Canvas, g *theme.Glyphs, a axis, s scale) {
+	for x := a.left + 1; x < a.left+a.columns; x += dotEvery {
+		if el := p.SunElDeg[a.minute(x)]; el > 0 {
+			if row, _, ok := s.at(el); ok {
+				c.Put(x, row, g.Sun, theme.Sun)
+			}
+		}
 	}
 }
 

@@ -70,7 +70,7 @@ var words = map[string][]line{
 		{label: "held", text: "an edit that breaks a limit is shown but is not yet part of the plan: ! keeps it, Esc takes it back"},
 		{label: "bar", text: "keep a source out of this session altogether"},
 		{label: "behind", text: "the slot in progress began so much later than it was planned to"},
-		{label: "curves", text: "elevation over the session: the chosen source drawn through, the other planned ones dotted, double or heavy where they are observed; x where it is eclipsed, o where it is too close to the Sun"},
+		{label: "curves", text: "elevation over the session: the chosen source drawn through, the other planned ones dotted, double or heavy where they are observed; x where it is eclipsed, o where it is too close to the Sun; S is the Sun itself"},
 		{label: "limit", text: "the dashed line: the lowest elevation allowed where the chosen source stands, the horizon mask included"},
 		{label: "el, az", text: "elevation and azimuth of the mount, in degrees; azimuth counts on over the cable's turns"},
 		{label: "turn", text: "turn of the cable: the mount's azimuth is the compass azimuth plus 360 degrees for each turn"},

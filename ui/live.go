@@ -210,21 +210,27 @@ func (w *world) recordable() (int, bool) {
 	return 0, false
 }
 
-// parseUntil reads a time of day in UTC, or minutes from now as +45, into a minute of the session.
+// acceptedUntil is what parseUntil takes.
+const acceptedUntil = "a time of day in UTC as 02:10, minutes from now as +45, or now"
+
+// parseUntil reads the end of lost time into a minute of the session.
 func parseUntil(text string, w *world) (int, error) {
 	d := w.desk
 	now, _ := w.nowMinute()
 	text = strings.TrimSpace(strings.TrimSuffix(strings.TrimSpace(text), "UTC"))
 	var minute int
+	if text == "now" {
+		return now, nil
+	}
 	if rest, ok := strings.CutPrefix(text, "+"); ok {
 		if _, err := fmt.Sscanf(rest+" ", "%d ", &minute); err != nil || minute < 1 {
-			return 0, fmt.Errorf("found %q; accepted: a time of day in UTC as 02:10, or minutes from now as +45", text)
+			return 0, fmt.Errorf("found %q; accepted: %s", text, acceptedUntil)
 		}
 		minute += now
 	} else {
 		at, err := time.Parse("15:04", text)
 		if err != nil {
-			return 0, fmt.Errorf("found %q; accepted: a time of day in UTC as 02:10, or minutes from now as +45", text)
+			return 0, fmt.Errorf("found %q; accepted: %s", text, acceptedUntil)
 		}
 		start := d.prepared.Problem.Start.UTC()
 		day := time.Date(start.Year(), start.Month(), start.Day(), at.Hour(), at.Minute(), 0, 0, time.UTC)

@@ -135,6 +135,10 @@ func TestTimeIsLost(t *testing.T) {
 			t.Errorf("planning again forgot the lost time: %v", h.slots())
 		}
 	}
+	h.keys("F", "ctrl+u", "type:now", "enter")
+	if h.world.planFrom() != d.prepared.Minute(h.now)+1 || len(h.logged()) != 2 {
+		t.Errorf("the lost time goes on: from minute %d, %v", h.world.planFrom(), h.logged())
+	}
 }
 
 func TestStartNow(t *testing.T) {

@@ -177,7 +177,7 @@ func (m *model) askLostUntil() {
 	if until <= now {
 		until = min(now+60, d.prepared.Problem.Minutes)
 	}
-	p := newPrompt("Time is lost", "until when (UTC, or minutes from now as +45)", clock(d.prepared.Instant(until)), func(text string) action {
+	p := newPrompt("Time is lost", "until when (UTC, minutes from now as +45, or now)", clock(d.prepared.Instant(until)), func(text string) action {
 		return action{verb: lostUntilIs, text: text}
 	})
 	m.over = p
@@ -194,6 +194,11 @@ func (m *model) loseUntil(text string) tea.Cmd {
 	}
 	m.over = nil
 	now, _ := w.nowMinute()
+	if until == now { // it can be used again sooner than was thought
+		d.lostTo = 0
+		m.tell("no more time is lost")
+		return m.startPlanning(false, w.planFrom())
+	}
 	s := d.shown()
 	read := d.read()
 	r := recording{desk: d, edition: d.edition, again: true, did: "time lost until " + clock(d.prepared.Instant(until))}

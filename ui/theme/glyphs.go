@@ -18,6 +18,7 @@ type Glyphs struct {
 	Break               string // a break in the session
 	Eclipse             string // the source is behind its companion
 	NearSun             string // the source is closer to the Sun than it may be
+	Sun                 string // where the Sun stands
 	Full, Half, Nothing string // debt bars
 	Up, Down            string // which way a column is sorted
 	Mark                string // the chosen row
@@ -30,7 +31,7 @@ var drawn = Glyphs{
 	Limit: "╌", Now: "┊", Cursor: "▴",
 	Rule: "─", Upright: "│", Tick: "┴", Axis: "─",
 	SlotFrom: "┝", SlotTo: "┥", Slot: "━",
-	Break: "░", Eclipse: "x", NearSun: "o",
+	Break: "░", Eclipse: "x", NearSun: "o", Sun: "S",
 	Full: "▰", Half: "▱", Nothing: " ",
 	Up: "▴", Down: "▾", Mark: "›",
 }
@@ -41,7 +42,7 @@ var typed = Glyphs{
 	Limit: "_", Now: "|", Cursor: "^",
 	Rule: "-", Upright: "|", Tick: "+", Axis: "-",
 	SlotFrom: "[", SlotTo: "]", Slot: "=",
-	Break: ":", Eclipse: "x", NearSun: "o",
+	Break: ":", Eclipse: "x", NearSun: "o", Sun: "S",
 	Full: "#", Half: "-", Nothing: " ",
 	Up: "^", Down: "v", Mark: ">",
 }
@@ -49,5 +50,5 @@ var typed = Glyphs{
 // All returns every glyph, for checks.
 func (g Glyphs) All() []string {
 	return append(g.Curve[:], g.Other, g.OnSource, g.OtherOnSource, g.Limit, g.Now, g.Cursor, g.Rule, g.Upright,
-		g.Tick, g.Axis, g.SlotFrom, g.SlotTo, g.Slot, g.Break, g.Eclipse, g.NearSun, g.Full, g.Half, g.Nothing, g.Up, g.Down, g.Mark)
+		g.Tick, g.Axis, g.SlotFrom, g.SlotTo, g.Slot, g.Break, g.Eclipse, g.NearSun, g.Sun, g.Full, g.Half, g.Nothing, g.Up, g.Down, g.Mark)
 }
