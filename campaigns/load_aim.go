@@ -98,6 +98,9 @@ func (l *loader) aim(t, source *table, s *Source) Aim {
 		if slices.Contains(orbitParameters, a.Parameter) {
 			t.needsOrbit(source, s)
 		}
+		if t.good("parameter") {
+			t.measurable(a.Parameter, source, s)
+		}
 	case Connect:
 		a.MaxPhaseErrorTurns = t.number("max_phase_error_turns", above(0, 0.5))
 		t.needsSpinError(source, s)
@@ -148,6 +151,39 @@ func (t *table) without(key string) bool {
 func (t *table) needsOrbit(source *table, s *Source) {
 	if s.Orbit == nil && source.without("orbit") {
 		t.complain("kind", "an aim that needs an orbit", "it only in a source with [source.orbit]", "")
+	}
+}
+
+// measurable refuses to measure what a share of nothing is wanted of, and anything where no pulses are counted.
+func (t *table) measurable(parameter string, source *table, s *Source) {
+	if s.Spin == nil {
+		if source.without("spin") {
+			t.complain("kind", "an aim that needs the rotation", "it only in a source with spin", "")
+		}
+		return
+	}
+	o := s.Orbit
+	if o == nil {
+		o = &Orbit{}
+	}
+	decay := o.Decay != 0 || len(o.FrequencySeries) > 1
+	values := map[string]struct {
+		key   string
+		known bool
+	}{
+		"companion mass":            {"companion_msun in its orbit", o.CompanionMsun > 0},
+		"sin i":                     {"companion_msun and sin_i in its orbit", o.CompanionMsun > 0 && o.SinI > 0},
+		"orbital decay":             {"decay in its orbit", decay},
+		"advance of periastron":     {"advance_deg_per_yr in its orbit", o.AdvanceDegPerYr != 0},
+		"eccentricity":              {"eccentricity in its orbit", o.Eccentricity > 0},
+		"parallax":                  {"parallax_mas", s.ParallaxMas > 0},
+		"proper motion":             {"pm_mas_per_yr", s.PMMasPerYr != [2]float64{}},
+		"position":                  {"sigma_position_mas", s.SigmaPositionMas[0] > 0 && s.SigmaPositionMas[1] > 0},
+		"spin frequency derivative": {"derivative_hz_per_s in its spin", s.Spin.DerivativeHzPerS != 0},
+	}
+	if v, ok := values[parameter]; ok && !v.known && source.good("orbit", "spin", "parallax_mas", "pm_mas_per_yr", "sigma_position_mas") &&
+		(s.Orbit != nil || !slices.Contains(orbitParameters, parameter)) {
+		t.complain("parameter", fmt.Sprintf("%q", parameter), "it only in a source with "+v.key+": goal_percent is a share of that", "")
 	}
 }
 

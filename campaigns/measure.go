@@ -41,20 +41,43 @@ func (b *books) measured(k *knowledge, aim *Aim) (measurement, error) {
 }
 
 func (b *books) measure(k *knowledge, aim *Aim) (measurement, error) {
-	p, err := timing.ParameterNamed(aim.Parameter)
-	if err != nil {
-		return measurement{}, fmt.Errorf("%s: %w", k.source.Name, err)
-	}
 	src := k.source.timingSource()
 	model, err := timing.New(src, timing.LoosePriors(src, k.ephemerisPriors()), b.arrivals(k))
 	if err != nil {
 		return measurement{}, fmt.Errorf("%s: %w", k.source.Name, err)
 	}
-	m := measurement{model: model, parameter: p, goal: math.Abs(model.Value(p)) * aim.GoalPercent / 100}
+	p, value, err := k.wanted(aim, model)
+	if err != nil {
+		return measurement{}, fmt.Errorf("%s: %w", k.source.Name, err)
+	}
+	m := measurement{model: model, parameter: p, goal: math.Abs(value) * aim.GoalPercent / 100}
 	if sigma, err := model.SigmaOf(p); err == nil {
 		m.sigma = sigma
 	}
 	return m, nil
+}
+
+// wanted is the parameter that an aim is about, and the value that its goal is a share of. Of a position it is the
+// coordinate that is known worse, and the goal is a share of the error that the ephemeris gives: a share of an angle
+// on the sky means nothing.
+func (k *knowledge) wanted(aim *Aim, model *timing.Model) (timing.Parameter, float64, error) {
+	switch aim.Parameter {
+	case "spin frequency derivative":
+		return timing.FrequencyDerivative, model.Value(timing.FrequencyDerivative), nil
+	case "position":
+		ra, errRA := model.SigmaOf(timing.RightAscension)
+		dec, errDec := model.SigmaOf(timing.Declination)
+		stated := k.source.SigmaPositionMas
+		if errRA == nil && errDec == nil && ra > dec {
+			return timing.RightAscension, stated[0], nil
+		}
+		return timing.Declination, stated[1], nil
+	}
+	p, err := timing.ParameterNamed(aim.Parameter)
+	if err != nil {
+		return 0, 0, err
+	}
+	return p, model.Value(p), nil
 }
 
 // measure adds a term for what the session's minutes add to the knowledge of a parameter. It is worth 1 times
@@ -72,20 +95,27 @@ func (jb *jobBuilder) measure(aim *Aim) error {
 	need := math.Min(1, m.debt())
 	wanted, least := jb.visit(aim, minutes)
 	v, err := jb.visits(m, minutes)
-	if err != nil || v.best <= 0 { // not determined yet: any visit helps
+	if err != nil || gain(v.best) < leastGain {
 		jb.term(aim, sched.Term{
 			Scale: jb.scale(need), Curve: sched.Root, Wanted: wanted, Least: least, Cum: jb.effective(), Why: m.why(),
 		})
 		return nil
 	}
 	t := v.rooted(need, jb.scale)
-	if v.logIsCloser() {
+	if jb.source.src.Priority*need/gain(v.best) < mostScale && v.logIsCloser() {
 		t = v.logged(need, jb.scale)
 	}
 	t.Why = m.why()
 	jb.term(aim, t)
 	return nil
 }
+
+// leastGain is what a visit at the best moment must add for its moment to matter. Where it adds less, everything that
+// the parameter hangs on is still unknown, and any visit helps.
+const leastGain = 1e-6
+
+// mostScale is the largest scale of a term, in units of worth, that is still far from what a plan can add up.
+const mostScale = 1e5
 
 // bestSamples is how many moments are tried for the best one.
 const bestSamples = 96

@@ -3,6 +3,7 @@ package campaigns
 import (
 	"math"
 	"slices"
+	"strings"
 	"testing"
 
 	"example.org/tallystick/sched"
@@ -169,4 +170,25 @@ func sourceCalled(t *testing.T, c *Campaign, name string) *Source {
 	}
 	t.Fatalf("no source is called %s", name)
 	return nil
+}
+
+// Whatever check accepts can be measured: every parameter has an account, with a goal, and a worth in a session.
+func TestEveryParameterCanBeMeasured(t *testing.T) {
+	for _, parameter := range Parameters {
+		c := pulsarIn(Aim{Kind: Measure, Receivers: []string{"L"}, Minutes: 30, MinFraction: 0.6, Parameter: parameter, GoalPercent: 1})
+		s := &c.Sources[0]
+		s.Spin.DerivativeHzPerS, s.ParallaxMas, s.PMMasPerYr, s.SigmaPositionMas = -1e-15, 1, [2]float64{3, 4}, [2]float64{5, 6}
+		s.Orbit = &Orbit{
+			PeriodDays: 3, PeriastronMJD: 61000, PeriastronDeg: 40, SemimajorLs: 4, Eccentricity: 0.3, AdvanceDegPerYr: 0.1, Decay: -1e-13,
+			CompanionMsun: 0.3, SinI: 0.9,
+		}
+		row, p := arrearsOf(t, c)
+		if !(row.Debt >= 0) || strings.Contains(row.Why, "wanted to 0 ") {
+			t.Errorf("%s: debt %g, %q", parameter, row.Debt, row.Why)
+		}
+		checkWhy(t, parameter, row.Why)
+		if n := len(p.Problem.Jobs[0].Terms); row.Debt > 0 && n != 1 {
+			t.Errorf("%s: %d terms", parameter, n)
+		}
+	}
 }
