@@ -23,7 +23,7 @@ func (p *passage) to() time.Time   { return p.centre.Add(p.halfWide) }
 // say judges the prediction, for an aim of a half-width, in a line.
 func (p *passage) say(halfWidthTurns float64) string {
 	if !sigmaKnown(p.trust) {
-		return "when it comes is the ephemeris's word: it gives no error of the epoch or of the period"
+		return "taken as the ephemeris has it, which gives no error of the epoch or of the period"
 	}
 	return p.trust.Say(halfWidthTurns)
 }

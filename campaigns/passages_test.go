@@ -74,7 +74,7 @@ func TestPassagesThatAreNotPredictedWell(t *testing.T) {
 		{1e-6, "", "trustworthy", true},
 		{0.03, "window widened", "window widened to 0.065 turns", true},
 		{0.06, "prediction refused", "refused: known to 0.03 turns only", false},
-		{0, "", "it gives no error of the epoch", true},
+		{0, "", "gives no error of the epoch", true},
 	} {
 		campaign, _ := passing(t)
 		campaign.Sources[0].Orbit.SigmaEpochDays = c.sigma

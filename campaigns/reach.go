@@ -7,6 +7,7 @@ import (
 	"slices"
 	"strings"
 	"time"
+	"unicode/utf8"
 
 	"example.org/tallystick/sky"
 	"example.org/tallystick/sky/radiometer"
@@ -101,6 +102,9 @@ func (c *Campaign) longestSession() time.Duration {
 
 // tellReach adds to an account what its wanted TOA error takes, where that is not simply had.
 func (b *books) tellReach(row *AccountRow, src *Source, aim *Aim) {
+	if aim.Kind == Conjunction {
+		return // a passage is wanted as long as its window lasts, whatever each arrival time is good to
+	}
 	longest := b.campaign.longestSession()
 	unreached := map[string]string{} // receivers by the reason that they share
 	var reasons []string
@@ -116,14 +120,24 @@ func (b *books) tellReach(row *AccountRow, src *Source, aim *Aim) {
 			}
 		case least > longest.Minutes():
 			row.Flags = append(row.Flags, "too faint for "+r.receiver)
-			row.Why += fmt.Sprintf("; %.3g µs takes %.0f h with %s, longer than any session", aim.ToaUs, r.minutes/60, r.receiver)
+			row.add(fmt.Sprintf("%.3g µs takes %.0f h with %s, longer than any session", aim.ToaUs, r.minutes/60, r.receiver))
 		case r.chance < 0.995:
 			row.Flags = append(row.Flags, "scintillates")
-			row.Why += "; " + r.chanceWords(aim.ToaUs)
+			row.add(r.chanceWords(aim.ToaUs))
 		}
 	}
 	for _, reason := range reasons {
-		row.Why += "; no answer with " + unreached[reason] + ": " + reason
+		row.add("no answer with " + unreached[reason] + ": " + reason)
+	}
+}
+
+// mostInLine is how long a line that explains a number may be: it is read at 3 a.m.
+const mostInLine = 200
+
+// add appends to the account's line what still has room in it; the flag beside it says the rest.
+func (row *AccountRow) add(words string) {
+	if longer := row.Why + "; " + words; utf8.RuneCountInString(longer) <= mostInLine {
+		row.Why = longer
 	}
 }
 

@@ -7,9 +7,6 @@ import (
 	"unicode/utf8"
 )
 
-// mostInLine is how long a line that explains a number may be: it is read at 3 a.m.
-const mostInLine = 200
-
 var noNumber = regexp.MustCompile(`(?i)\b(nan|[+-]?inf)\b|%!|\n`)
 
 func checkWhy(t *testing.T, where, why string) {
