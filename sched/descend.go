@@ -13,13 +13,14 @@ const (
 
 // How much is done in a round, and when a stage ends.
 const (
-	coarseMin      = 3
+	coarseMin      = 5 // minutes: what is learned on this grid serves on a finer one, and costs a fifth
 	sweepsPerRound = 5
-	mostSweeps     = 15
+	mostSweeps     = 25
 	routesPerRound = 3
 	mostCoarse     = 36
 	proveEvery     = 2    // rounds, while on the coarse grid
 	slow           = 0.05 // share of the distance that a step must promise for sweeps to go on
+	learned        = 2    // times as far from the plan as on the coarse grid: then that has no more to teach
 	settled        = 0.1  // likewise, for prices to be good enough to see which routes must go
 )
 

@@ -56,4 +56,7 @@ func (b *bounder) conclude(best Micro) {
 		return
 	}
 	b.learnFrom(f.route)
+	if float64(f.bound-best) > learned*(b.prices.height-float64(best)) && b.stage == coarseRouting {
+		b.enter(routing) // what is still to be learned on the coarse grid is not what keeps the true one up
+	}
 }
