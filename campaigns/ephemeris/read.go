@@ -288,8 +288,9 @@ func (f *File) impossible() {
 // Dates that are possible: 1900 to 2200.
 const firstMJD, lastMJD = 15020, 124594
 
-// shortestOrbitDays is a minute and a half; no pulsar's orbit comes near it.
-const shortestOrbitDays = 0.001
+// shortestOrbitDays is a minute and a half; no pulsar's orbit comes near it. A campaign accepts 0.001 d, and a period in
+// TCB becomes shorter by 1.6e-8 of itself.
+const shortestOrbitDays = 0.001 * (1 + 1e-7)
 
 // largestErrors are the most that a campaign accepts as errors.
 var largestErrors = []struct {
