@@ -52,7 +52,7 @@ func TestAFaultGivesTheTerminalBack(t *testing.T) {
 	}
 	tmux := func(args ...string) string {
 		c := exec.Command("tmux", append([]string{"-f", "/dev/null"}, args...)...)
-		c.Env = append(os.Environ(), "TMUX_TMPDIR="+sockets, "LC_ALL=C.UTF-8", "XDG_STATE_HOME="+state,
+		c.Env = append(os.Environ(), "TMUX=", "TMUX_TMPDIR="+sockets, "LC_ALL=C.UTF-8", "XDG_STATE_HOME="+state,
 			"XDG_CONFIG_HOME="+state, failingRun+"="+f.Name())
 		out, _ := c.CombinedOutput()
 		return string(out)

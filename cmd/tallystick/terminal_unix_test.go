@@ -17,9 +17,10 @@ import (
 
 // A terminal is the program in a real terminal: one of tmux's, on a server of its own.
 type terminal struct {
-	t   *testing.T
-	dir string
-	env []string
+	t        *testing.T
+	dir      string
+	env      []string
+	settings string // tmux's
 }
 
 // patience is how long the screen may take to show something on a machine that is busy.
@@ -47,7 +48,12 @@ func newTerminal(t *testing.T) *terminal {
 	}
 	home := t.TempDir()
 	term.env = []string{"HOME=" + home, "XDG_STATE_HOME=" + filepath.Join(home, "state"), "XDG_CONFIG_HOME=" + filepath.Join(home, "config"),
-		"LC_ALL=C.UTF-8", "NO_COLOR=", "COLORFGBG=15;0", "CI=", "TMPDIR=" + home, "TMUX_TMPDIR=" + sockets, "PATH=" + os.Getenv("PATH")}
+		"LC_ALL=C.UTF-8", "NO_COLOR=", "COLORFGBG=15;0", "CI=", "TMPDIR=" + home, "TMUX=", "TMUX_TMPDIR=" + sockets, "PATH=" + os.Getenv("PATH")}
+	// Without this the server ends with its last window, perhaps just when the next is asked for.
+	term.settings = filepath.Join(sockets, "tmux.conf")
+	if err := os.WriteFile(term.settings, []byte("set -g exit-empty off\n"), 0o644); err != nil {
+		t.Fatal(err)
+	}
 	t.Cleanup(func() {
 		_, _ = term.tmux("kill-server")
 		_ = os.RemoveAll(sockets)
@@ -56,7 +62,7 @@ func newTerminal(t *testing.T) *terminal {
 }
 
 func (term *terminal) tmux(args ...string) (string, error) {
-	c := exec.Command("tmux", append([]string{"-f", "/dev/null"}, args...)...)
+	c := exec.Command("tmux", append([]string{"-f", term.settings}, args...)...)
 	c.Env = append(os.Environ(), term.env...)
 	c.Dir = term.dir
 	out, err := c.CombinedOutput()
