@@ -43,7 +43,7 @@ func (c class) sessions() []*Problem {
 
 // BenchmarkSet plans the set on two cores and prints for each class the median time to the first plan, the
 // median and worst certified distance after 0.3, 1 and 5 s, how much more the plan is worth than a dispatched one, and the
-// memory that the process has taken from the system, problem and garbage included. Run it with -benchtime 1x.
+// most memory that the search had in use after a round, garbage included. Run it with -benchtime 1x.
 func BenchmarkSet(b *testing.B) {
 	for _, c := range classes {
 		b.Run(c.name, func(b *testing.B) {
@@ -59,11 +59,17 @@ func report(b *testing.B, problems []*Problem) {
 	var first, gain, memory []float64
 	distance := make([][]float64, len(marks))
 	for _, p := range problems {
+		var m runtime.MemStats
+		runtime.GC()
+		runtime.ReadMemStats(&m)
+		before, peak := m.HeapAlloc, m.HeapAlloc
 		ctx, cancel := context.WithTimeout(context.Background(), marks[len(marks)-1])
 		began := time.Now()
 		var last Result
 		passed := 0
 		note := func(r Result) {
+			runtime.ReadMemStats(&m)
+			peak = max(peak, m.HeapAlloc)
 			if r.Rounds == 0 {
 				first = append(first, 1000*time.Since(began).Seconds())
 			}
@@ -78,9 +84,7 @@ func report(b *testing.B, problems []*Problem) {
 		for ; passed < len(marks); passed++ {
 			distance[passed] = append(distance[passed], r.distance())
 		}
-		var m runtime.MemStats
-		runtime.ReadMemStats(&m)
-		memory = append(memory, float64(m.Sys)/1e6)
+		memory = append(memory, float64(peak-before)/1e6)
 		gain = append(gain, 100*(float64(r.Worth)/float64(p.PlanWorth(Dispatch(p)))-1))
 	}
 	b.ReportMetric(0, "ns/op")

@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"os"
+	"runtime"
 	"slices"
 	"sync"
 	"time"
@@ -86,7 +87,7 @@ func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapsho
 	warm := from.plan.Clone()
 	return guarded(func() tea.Msg {
 		defer close(work.reports)
-		o := sched.Options{Rounds: rounds, Progress: func(r sched.Result) {
+		o := sched.Options{Rounds: rounds, Workers: runtime.GOMAXPROCS(0), Progress: func(r sched.Result) {
 			select {
 			case work.reports <- r:
 			default: // the screen is behind; the next report says more

@@ -21,7 +21,7 @@ import (
 // session quick answers in a fifth of a second, normal in less than half a second, thorough proves its plan in a few seconds.
 var efforts = map[string]sched.Options{
 	"quick":    {Rounds: -1},
-	"normal":   {Work: sched.StepsPerSecond / 4},
+	"normal":   {Work: sched.StepsPerSecond / 3},
 	"thorough": {Work: 30 * sched.StepsPerSecond},
 }
 
