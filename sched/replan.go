@@ -185,7 +185,11 @@ func (l *lane) adopt(route []Slot) {
 			kept = append(kept, s)
 		}
 	}
-	slots := l.t.fitting(Plan{Slots: kept})
+	l.take(l.complete(l.fill(l.t.fitting(Plan{Slots: kept}))))
+}
+
+// fill puts more slots in where there is room.
+func (l *lane) fill(slots []Slot) []Slot {
 	l.thorough = false
 	for at := 0; at <= len(slots); at++ {
 		l.spendAll(slots)
@@ -194,7 +198,23 @@ func (l *lane) adopt(route []Slot) {
 		slots, _ = l.refill(slots, at, at)
 		at += len(slots) - n
 	}
-	l.take(l.complete(slots))
+	return slots
+}
+
+// polish re-plans every so many neighbouring slots, from first to last: what an edit has left behind is made
+// good at once wherever it is.
+func (l *lane) polish(size int, share float64) {
+	l.thorough = false
+	for a := 0; a+size <= len(l.slots) && !l.halt(); a++ {
+		if slices.ContainsFunc(l.slots[a:a+size], func(s Slot) bool { return s.Pinned }) {
+			continue
+		}
+		l.spendAll(l.slots[:a], l.slots[a+size:])
+		l.price(share, 0)
+		if slots, ok := l.refill(l.slots, a, a+size); ok {
+			l.take(slots)
+		}
+	}
 }
 
 // move re-plans one stretch, and half the time another one with it, so that jobs can change places. One

@@ -109,6 +109,7 @@ type search struct {
 	rounds int
 	work   int
 	notes  map[int]string // by node, from the warm plan
+	warm   []Slot         // what that plan has become
 }
 
 func newSearch(p *Problem, o Options, halt func() bool) *search {
@@ -119,7 +120,11 @@ func newSearch(p *Problem, o Options, halt func() bool) *search {
 		s.lanes = append(s.lanes, newLane(t, s.prices, uint64(i), halt))
 	}
 	if o.Warm != nil {
-		s.offer(s.lanes[0].complete(t.fitting(*o.Warm)))
+		if kept := t.fitting(*o.Warm); len(kept) > len(p.Pins) {
+			s.warm = s.lanes[0].complete(s.lanes[0].fill(kept))
+			s.offer(s.lanes[0].complete(kept)) // no plan is lost because another was made of it
+			s.offer(s.warm)
+		}
 		for _, slot := range o.Warm.Slots {
 			if slot.Note != "" && slot.Node >= 0 && slot.Node < len(p.Nodes) {
 				s.notes[slot.Node] = slot.Note
@@ -140,12 +145,18 @@ func (s *search) offer(slots []Slot) {
 // Of pairs from 0.6 to 1 these two brought the most on the benchmark set.
 var priceScales = []float64{1, 0.6}
 
-// first makes plans from nothing and keeps the best.
+// first makes plans from nothing, or of the warm plan, and keeps the best.
 func (s *search) first(workers int) {
 	plans := make([][]Slot, len(priceScales))
 	var work []func()
 	for i, l := range s.lanes {
 		work = append(work, func() {
+			if s.warm != nil {
+				l.start(s.best, s.value)
+				l.polish(3+2*i, 0.5)
+				plans[i] = l.best
+				return
+			}
 			for k := i; k < len(plans); k += lanes {
 				plans[k] = l.fromNothing(priceScales[k])
 			}
