@@ -303,10 +303,10 @@ func (m *model) applyRest(a action) tea.Cmd {
 		w.mouse = !w.mouse
 		keep := keepSettingsCmd(settings{MouseOff: !w.mouse})
 		if !w.mouse {
-			m.tell("mouse off, and remembered: the terminal marks text as usual")
+			m.tell("%s", mouseWords(w.mouse, ""))
 			return tea.Batch(tea.DisableMouse, keep)
 		}
-		m.tell("mouse on, and remembered: the wheel moves, a click chooses")
+		m.tell("%s", mouseWords(w.mouse, ""))
 		return tea.Batch(tea.EnableMouseCellMotion, keep)
 	case findAction:
 		m.over = newPalette(m)

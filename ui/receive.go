@@ -47,6 +47,8 @@ func (m *model) receive(msg tea.Msg) tea.Cmd {
 	case settingsKeptMsg:
 		if msg.err != nil {
 			m.warn("the setting holds for now only: %v", msg.err)
+		} else {
+			m.tell("%s", mouseWords(!msg.settings.MouseOff, ", and remembered"))
 		}
 	case savedMsg:
 		return m.receiveSaved(msg)

@@ -29,15 +29,26 @@ func readSettings() settings {
 }
 
 // settingsKeptMsg: the settings are on disk, or are not.
-type settingsKeptMsg struct{ err error }
+type settingsKeptMsg struct {
+	settings settings
+	err      error
+}
+
+// mouseWords say what the mouse does; what is so beside that stands after on and off.
+func mouseWords(on bool, beside string) string {
+	if on {
+		return "mouse on" + beside + ": the wheel moves, a click chooses"
+	}
+	return "mouse off" + beside + ": the terminal marks text as usual"
+}
 
 func keepSettingsCmd(s settings) tea.Cmd {
 	return guarded(func() tea.Msg {
 		path := settingsFile()
 		if err := os.MkdirAll(filepath.Dir(path), 0o700); err != nil {
-			return settingsKeptMsg{err}
+			return settingsKeptMsg{s, err}
 		}
 		text := fmt.Sprintf("# Written by tallystick. The key m changes it.\nmouse_off = %t\n", s.MouseOff)
-		return settingsKeptMsg{renameio.WriteFile(path, []byte(text), 0o600, renameio.WithTempDir(filepath.Dir(path)))}
+		return settingsKeptMsg{s, renameio.WriteFile(path, []byte(text), 0o600, renameio.WithTempDir(filepath.Dir(path)))}
 	})
 }
