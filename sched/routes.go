@@ -69,7 +69,7 @@ type router struct {
 	keep   []memory // by node: the jobs it keeps in mind; pins keep all
 	sweeps []*sweeper
 	rests  []*completion
-	labels []routeLabel
+	labels labelStore
 	least  Micro // values up to this are of no interest
 	best   Micro
 	last   int32
@@ -105,7 +105,8 @@ func newRouter(t *tables, halt func() bool) *router {
 // route returns the value of the best route through the gaps and its slots. Where no route is worth more
 // than least it returns least, and no slots.
 func (r *router) route(gaps []gap, used []uint64, adjust []Micro, least Micro, grid int) (Micro, []Slot) {
-	r.labels, r.grid, r.least, r.best, r.last, r.work = r.labels[:0], grid, least, least, None, 0
+	r.labels.clear()
+	r.grid, r.least, r.best, r.last, r.work = grid, least, least, None, 0
 	for len(r.sweeps) < len(gaps) {
 		r.sweeps, r.rests = append(r.sweeps, newSweeper(r.t)), append(r.rests, &completion{})
 	}
@@ -194,7 +195,7 @@ const mostLabels = 1_500_000
 
 // room returns how many labels of a state are kept now.
 func (r *router) room() int {
-	if len(r.labels) > mostLabels {
+	if r.labels.len() > mostLabels {
 		return 1
 	}
 	return r.width
@@ -242,7 +243,7 @@ func (r *router) endSlots(l, e int) {
 	r.front = r.front[:0]
 	width := r.room()
 	for _, id := range r.live[l] {
-		at := &r.labels[id]
+		at := r.labels.at(id)
 		start := max(int(at.start), low)
 		v := at.value + row[high-start]
 		if v <= least {
@@ -257,8 +258,7 @@ func (r *router) endSlots(l, e int) {
 	for _, label := range r.front {
 		label.value += a.adjust
 		label.memory = label.memory.with(r.job[l])
-		id := int32(len(r.labels))
-		r.labels = append(r.labels, label)
+		id := r.labels.add(label)
 		if s.next == None && label.value > r.best {
 			r.best, r.last = label.value, id
 		}
@@ -309,10 +309,10 @@ func (r *router) take(l, high, low int) {
 			live = live[:0]
 		}
 	arrivals:
-		for id := r.bucket[l*s.wide+m-s.from]; id != None; id = r.labels[id].next {
-			label := &r.labels[id]
+		for id := r.bucket[l*s.wide+m-s.from]; id != None; id = r.labels.at(id).next {
+			label := r.labels.at(id)
 			for _, other := range live {
-				if r.labels[other].value >= label.value && r.labels[other].memory.within(label.memory) {
+				if r.labels.at(other).value >= label.value && r.labels.at(other).memory.within(label.memory) {
 					continue arrivals
 				}
 			}
@@ -321,7 +321,7 @@ func (r *router) take(l, high, low int) {
 	}
 	r.taken[l] = max(r.taken[l], int32(high+1))
 	stale := 0
-	for stale < len(live) && int(r.labels[live[stale]].start) <= low {
+	for stale < len(live) && int(r.labels.at(live[stale]).start) <= low {
 		stale++
 	}
 	if stale > r.width {
@@ -336,7 +336,7 @@ func (r *router) thin(live []int32, stale int) []int32 {
 next:
 	for i, id := range live[:stale] {
 		for _, other := range live[i+1 : stale] {
-			if r.labels[other].value >= r.labels[id].value && r.labels[other].memory.within(r.labels[id].memory) {
+			if r.labels.at(other).value >= r.labels.at(id).value && r.labels.at(other).memory.within(r.labels.at(id).memory) {
 				continue next
 			}
 		}
@@ -351,7 +351,7 @@ func (r *router) leave(l int, id int32, e int) {
 	until := s.from + s.wide
 	if b := int(s.t.after[e]); b < len(p.Breaks) {
 		until = min(until, p.Breaks[b].From)
-		if v := r.rest.parked[b*len(s.targets)+l]; v > unreachable/2 && r.labels[id].value+v > r.least {
+		if v := r.rest.parked[b*len(s.targets)+l]; v > unreachable/2 && r.labels.at(id).value+v > r.least {
 			r.park(l, id)
 		}
 	}
@@ -360,32 +360,31 @@ func (r *router) leave(l int, id int32, e int) {
 
 // park keeps the ended label among the front of its target's, to go on from after the next break.
 func (r *router) park(l int, id int32) {
-	label := r.labels[id]
+	label := *r.labels.at(id)
 	kept := r.parked[l][:0]
 	worst := 0
 	for _, other := range r.parked[l] {
-		if o := &r.labels[other]; o.value >= label.value && o.memory.within(label.memory) {
+		if o := r.labels.at(other); o.value >= label.value && o.memory.within(label.memory) {
 			return
 		}
 	}
 	for _, other := range r.parked[l] {
-		o := &r.labels[other]
+		o := r.labels.at(other)
 		if label.value >= o.value && label.memory.within(o.memory) {
 			continue
 		}
 		kept = append(kept, other)
-		if o.value < r.labels[kept[worst]].value {
+		if o.value < r.labels.at(kept[worst]).value {
 			worst = len(kept) - 1
 		}
 	}
 	if len(kept) >= 4*r.width {
-		both := r.labels[kept[worst]].memory.and(label.memory)
-		if r.labels[kept[worst]].value > label.value {
-			label = r.labels[kept[worst]]
+		both := r.labels.at(kept[worst]).memory.and(label.memory)
+		if r.labels.at(kept[worst]).value > label.value {
+			label = *r.labels.at(kept[worst])
 		}
 		label.memory = both
-		id = int32(len(r.labels))
-		r.labels = append(r.labels, label)
+		id = r.labels.add(label)
 		kept = slices.Delete(kept, worst, worst+1)
 	}
 	r.parked[l] = append(kept, id)
@@ -413,7 +412,7 @@ func (r *router) depart(l, bin int, id int32, free, until int) {
 	lasts := s.lasts[:n]
 	change := s.change[p.Jobs[s.targets[l].job].Receiver][:n]
 	overhead := uint32(p.OverheadSec + 59)
-	from := r.labels[id]
+	from := *r.labels.at(id)
 	from.came = id
 	worth := r.least - from.value
 	base, wide := -s.from, s.wide
@@ -447,8 +446,8 @@ func (r *router) arrive(k, at int, label routeLabel) {
 	size := 0
 	worst := int32(None)
 	before := int32(None)
-	for id := r.bucket[i]; id != None; id = r.labels[id].next {
-		other := &r.labels[id]
+	for id := r.bucket[i]; id != None; id = r.labels.at(id).next {
+		other := r.labels.at(id)
 		if other.value >= label.value && other.memory.within(label.memory) {
 			return
 		}
@@ -456,34 +455,33 @@ func (r *router) arrive(k, at int, label routeLabel) {
 			if before == None {
 				r.bucket[i] = other.next
 			} else {
-				r.labels[before].next = other.next
+				r.labels.at(before).next = other.next
 			}
 			continue
 		}
-		if worst == None || other.value < r.labels[worst].value {
+		if worst == None || other.value < r.labels.at(worst).value {
 			worst = id
 		}
 		before = id
 		size++
 	}
 	if size >= r.room() {
-		both := r.labels[worst].memory.and(label.memory)
-		if label.value > r.labels[worst].value {
-			r.labels[worst].value, r.labels[worst].came = label.value, label.came
+		both := r.labels.at(worst).memory.and(label.memory)
+		if label.value > r.labels.at(worst).value {
+			r.labels.at(worst).value, r.labels.at(worst).came = label.value, label.came
 		}
-		r.labels[worst].memory = both
+		r.labels.at(worst).memory = both
 		return
 	}
 	label.next = r.bucket[i]
-	r.bucket[i] = int32(len(r.labels))
-	r.labels = append(r.labels, label)
+	r.bucket[i] = r.labels.add(label)
 }
 
 // slots returns the slots of the route that ends with the label.
 func (r *router) slots(id int32) []Slot {
 	var slots []Slot
-	for ; id != None; id = r.labels[id].came {
-		a := &r.labels[id]
+	for ; id != None; id = r.labels.at(id).came {
+		a := r.labels.at(id)
 		slots = append(slots, Slot{Node: int(a.node), Start: int(a.start), End: int(a.end)})
 	}
 	slices.Reverse(slots)
