@@ -190,12 +190,24 @@ func (r *router) enter(g gap, from routeLabel) {
 	})
 }
 
-// mostLabels bounds the memory of a sweep to some 80 MB: beyond it only one label of each state is kept.
-const mostLabels = 1_500_000
+// How many labels a sweep keeps, 48 bytes each: beyond it only one of each state. A search that is to end in seconds,
+// as the screen's, must stay small beside what else an observer runs, and loses nothing by it; a long one needs them.
+const (
+	mostLabels = 1_500_000
+	fewLabels  = 300_000
+	longWork   = 2 * defaultWork
+)
+
+func labelsFor(o Options) int {
+	if work := o.budget(); work > 0 && work <= longWork {
+		return fewLabels
+	}
+	return mostLabels
+}
 
 // room returns how many labels of a state are kept now.
 func (r *router) room() int {
-	if r.labels.len() > mostLabels {
+	if r.labels.len() > r.t.labels {
 		return 1
 	}
 	return r.width

@@ -62,11 +62,16 @@ func Solve(ctx context.Context, p *Problem, o Options) (Result, error) {
 	return s.result(), ctx.Err()
 }
 
-func (s *search) goesOn(o Options) bool {
-	work := o.Work
-	if work == 0 && o.Rounds == 0 {
-		work = defaultWork
+// budget is the work after which no round begins; 0 or less is without end.
+func (o Options) budget() int {
+	if o.Work == 0 && o.Rounds == 0 {
+		return defaultWork
 	}
+	return o.Work
+}
+
+func (s *search) goesOn(o Options) bool {
+	work := o.budget()
 	switch {
 	case s.proven(), o.Rounds < 0, o.Rounds > 0 && s.rounds >= o.Rounds, s.bound == nil && s.rounds >= mostRounds:
 		return false
@@ -114,6 +119,7 @@ type search struct {
 
 func newSearch(p *Problem, o Options, halt func() bool) *search {
 	t := newTables(p)
+	t.labels = labelsFor(o)
 	s := &search{t: t, prices: t.minutePrices(), value: unreachable, notes: map[int]string{}}
 	s.bound = newBounder(t, s.prices, halt)
 	for i := range lanes {

@@ -1,6 +1,9 @@
 package sched
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // unreachable is below every value and far enough from the end of 64 bits that worth can be added to it.
 const unreachable Micro = math.MinInt64 / 4
@@ -8,6 +11,7 @@ const unreachable Micro = math.MinInt64 / 4
 // tables is what the search looks up instead of working out again: the worth of every slot, when each
 // node can be observed, which jobs are worth considering. It is made once and then only read.
 type tables struct {
+	labels  int // that a sweep for the ceiling keeps
 	p       *Problem
 	span    int         // Minutes + 1
 	rows    []worthRows // by job
@@ -41,14 +45,15 @@ const maxSearched = 320
 const maxSlotsSearched = 8
 
 func newTables(p *Problem) *tables {
-	t := &tables{p: p, span: p.Minutes + 1, breakTo: make([]bool, p.Minutes+1)}
+	t := &tables{p: p, span: p.Minutes + 1, labels: mostLabels, breakTo: make([]bool, p.Minutes+1)}
 	t.cutWindows()
 	t.rows = make([]worthRows, len(p.Jobs))
 	t.best = make([]Micro, len(p.Jobs))
 	t.choose()
+	var memo termMemo
 	for j := range p.Jobs {
 		if t.chosen[j] {
-			t.rows[j] = t.worthRows(j)
+			t.rows[j] = t.worthRows(j, &memo)
 			t.chosen[j] = t.best[j] > 0 || p.Jobs[j].Must
 		}
 	}
@@ -140,7 +145,7 @@ func (t *tables) choose() {
 	}
 }
 
-func (t *tables) worthRows(job int) worthRows {
+func (t *tables) worthRows(job int, memo *termMemo) worthRows {
 	p, j := t.p, &t.p.Jobs[job]
 	opens := make([]int32, t.span) // by end: the earliest start that any node of the job allows
 	for i := range opens {
@@ -164,7 +169,7 @@ func (t *tables) worthRows(job int) worthRows {
 		}
 	}
 	rows := worthRows{offset: opens, worth: make([]Micro, 0, entries)}
-	memo := newTermMemo(j)
+	memo.of(j)
 	for e, from := range opens {
 		if from == None {
 			continue
@@ -191,12 +196,17 @@ type termMemo struct {
 // maxMemo keeps the memory of a term small; what is gathered beyond it is worked out each time.
 const maxMemo = 1 << 14
 
-func newTermMemo(j *Job) termMemo {
-	m := termMemo{job: j, seen: make([][]Micro, len(j.Terms))}
-	for i := range m.seen {
-		m.seen[i] = make([]Micro, min(maxMemo, int(j.Terms[i].gathered(0, len(j.Terms[i].Cum)))+1))
+// of makes the memo that of a job; what it remembered of another is forgotten, its memory used again.
+func (m *termMemo) of(j *Job) {
+	m.job = j
+	for len(m.seen) < len(j.Terms) {
+		m.seen = append(m.seen, nil)
 	}
-	return m
+	for i := range j.Terms {
+		n := min(maxMemo, int(j.Terms[i].gathered(0, len(j.Terms[i].Cum)))+1)
+		m.seen[i] = slices.Grow(m.seen[i][:0], n)[:n]
+		clear(m.seen[i])
+	}
 }
 
 func (m *termMemo) worth(start, end int) Micro {
