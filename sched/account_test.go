@@ -148,8 +148,6 @@ func TestOtherNeeds(t *testing.T) {
 	near(t, "connect at the limit", ConnectNeed(0.1, 0.1), 10)
 	near(t, "connect at half of it", ConnectNeed(0.05, 0.1), 0.625)
 	near(t, "connect beyond", ConnectNeed(3, 0.1), 10)
-	near(t, "calibration", CalibrationNeed(2, 1), 1)
-	near(t, "calibration done", CalibrationNeed(1, 3), 0)
 }
 
 func TestDebtGrowsWithTime(t *testing.T) {

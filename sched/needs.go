@@ -112,6 +112,3 @@ func ConnectNeed(predictedTurns, limitTurns float64) float64 {
 	x := max(0, min(predictedTurns/limitTurns, 1))
 	return connectNeed * x * x * x * x
 }
-
-// CalibrationNeed returns how many of the calibrations wanted in a session are missing.
-func CalibrationNeed(perSession, done int) float64 { return float64(max(0, perSession-done)) }

@@ -116,11 +116,7 @@ func (m *model) bindSaved(d *desk, s *campaigns.SavedPlan) snapshot {
 	}
 	bars := slices.Clone(s.Bars)
 	slices.Sort(bars)
-	if s.Ceiling > 0 {
-		pins := slices.DeleteFunc(slices.Clone(plan.Slots), func(s sched.Slot) bool { return !s.Pinned })
-		ceiling := sched.Result{Ceiling: sched.Micro(s.Ceiling * float64(sched.Unit)), HasCeiling: len(lost) == 0}
-		d.planned = &bound{result: ceiling, bars: bars, pins: pins}
-	}
+	d.planned = nil // what was proved when it was saved, was proved for the accounts of then
 	return snapshot{plan, bars}
 }
 

@@ -2,13 +2,11 @@ package main
 
 import (
 	"io"
-	"math"
 
 	"github.com/spf13/cobra"
 
 	"example.org/tallystick/campaigns"
 	"example.org/tallystick/campaigns/export"
-	"example.org/tallystick/sched"
 )
 
 func (p *program) exportCommand() *cobra.Command {
@@ -69,17 +67,7 @@ func (p *program) sheet(d *desk, s *campaigns.Session) (*export.Sheet, error) {
 	p.sayLost(lost)
 	sheet := export.New(prepared, plan, export.Origin{
 		MadeAt: saved.MadeAt, Version: version(), Saved: true, Entries: len(d.Logbook.Entries),
-		Ceiling: ceilingOf(saved), HasCeiling: saved.Ceiling > 0 && sameWorth(prepared.Problem.PlanWorth(plan), saved.Worth),
+		// Its ceiling was proved for the campaign as it was then; what another source is owed may have risen since.
 	})
 	return &sheet, nil
-}
-
-func ceilingOf(saved *campaigns.SavedPlan) sched.Micro {
-	return sched.Micro(math.Round(saved.Ceiling * float64(sched.Unit)))
-}
-
-// sameWorth tells whether a plan is still worth what it was when its ceiling was proved; if not, the
-// accounts have moved since, and the ceiling proves nothing.
-func sameWorth(now sched.Micro, then float64) bool {
-	return now == sched.Micro(math.Round(then*float64(sched.Unit)))
 }
