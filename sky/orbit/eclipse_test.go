@@ -5,28 +5,30 @@ import (
 	"testing"
 
 	"pgregory.net/rapid"
+
+	"example.org/tallystick/internal/outside"
 )
 
 func TestEclipseWidths(t *testing.T) {
-	for _, r := range rows(t, "orbits.csv", "ORB-092") {
-		e := Eclipse{CentreTurns: 0.25, HalfWidthTurns: 0.045, ReferenceMHz: 430, Index: r.num(t, "index")}
-		r.check(t, r.num(t, "d430_min")*e.At(r.num(t, "f")).HalfWidthTurns/e.HalfWidthTurns)
+	for _, r := range outside.Rows(t, "orbits.csv", "ORB-092") {
+		e := Eclipse{CentreTurns: 0.25, HalfWidthTurns: 0.045, ReferenceMHz: 430, Index: r.Num("index")}
+		r.Check(r.Num("d430_min") * e.At(r.Num("f")).HalfWidthTurns / e.HalfWidthTurns)
 	}
-	for _, r := range rows(t, "orbits.csv", "ORB-090", "ORB-093") {
-		minutes, period := r.inputs["d_min"], r.num(t, "PB_d")
+	for _, r := range outside.Rows(t, "orbits.csv", "ORB-090", "ORB-093") {
+		minutes, period := r.Inputs["d_min"], r.Num("PB_d")
 		d := 0.0
 		if minutes != "" {
-			d = r.num(t, "d_min") * 60
+			d = r.Num("d_min") * 60
 		} else {
-			d = r.num(t, "duration_s")
+			d = r.Num("duration_s")
 		}
 		o := mustNew(t, Elements{PeriodDays: period, AscendingNodeMJD: 55000})
 		half := d / 2 / secPerDay / period
 		spans := o.EclipseSpans(Eclipse{CentreTurns: 0.25, HalfWidthTurns: half}, 55000, 55000+period)
 		if len(spans) != 1 {
-			t.Fatalf("%s: spans %v", r.id, spans)
+			t.Fatalf("%s: spans %v", r.ID, spans)
 		}
-		r.check(t, (spans[0].ToMJD-spans[0].FromMJD)/period)
+		r.Check((spans[0].ToMJD - spans[0].FromMJD) / period)
 	}
 }
 

@@ -5,25 +5,27 @@ import (
 	"slices"
 	"strings"
 	"testing"
+
+	"example.org/tallystick/internal/outside"
 )
 
 func TestConjunctionError(t *testing.T) {
-	for _, r := range rows(t, "orbits.csv", "ORB-080", "ORB-081") {
-		o := mustNew(t, Elements{PeriodDays: r.num(t, "PB"), AscendingNodeMJD: 55000})
-		s := Sigmas{EpochDays: r.num(t, "sT"), PeriodDays: r.num(t, "sPB"), Decay: r.num(t, "sPBDOT")}
-		p := o.ConjunctionError(s, 55000+r.num(t, "N")*o.PeriodDays)
-		r.check(t, p.SigmaDays)
+	for _, r := range outside.Rows(t, "orbits.csv", "ORB-080", "ORB-081") {
+		o := mustNew(t, Elements{PeriodDays: r.Num("PB"), AscendingNodeMJD: 55000})
+		s := Sigmas{EpochDays: r.Num("sT"), PeriodDays: r.Num("sPB"), Decay: r.Num("sPBDOT")}
+		p := o.ConjunctionError(s, 55000+r.Num("N")*o.PeriodDays)
+		r.Check(p.SigmaDays)
 		if math.Abs(p.SigmaTurns*o.PeriodDays-p.SigmaDays) > 1e-18 {
-			t.Errorf("%s: turns %g and days %g disagree", r.id, p.SigmaTurns, p.SigmaDays)
+			t.Errorf("%s: turns %g and days %g disagree", r.ID, p.SigmaTurns, p.SigmaDays)
 		}
 	}
-	for _, r := range rows(t, "orbits.csv", "ORB-053") {
-		r.check(t, NodeErrorDays(r.num(t, "PB"), r.num(t, "A1"), r.num(t, "sigma_A1")))
+	for _, r := range outside.Rows(t, "orbits.csv", "ORB-053") {
+		r.Check(NodeErrorDays(r.Num("PB"), r.Num("A1"), r.Num("sigma_A1")))
 	}
 	// The published errors of periastron and of its longitude say one and the same thing (ORB-050, -051),
 	// so the conjunction must come out far better known than periastron.
-	for _, r := range rows(t, "orbits.csv", "ORB-050", "ORB-051") {
-		r.check(t, r.num(t, "PB")*r.num(t, "sigma_OM_deg")/360)
+	for _, r := range outside.Rows(t, "orbits.csv", "ORB-050", "ORB-051") {
+		r.Check(r.Num("PB") * r.Num("sigma_OM_deg") / 360)
 	}
 }
 

@@ -11,13 +11,14 @@ const EphemerisDispersionConstant = 1 / 2.41e-4
 
 // ChannelSmearingUs returns by how much dispersion widens a pulse across one channel, µs.
 //
-//	2 K DM Δf/f³
+//	8.3 µs DM Δf/f³,  Δf in MHz, f in GHz
 //
 // Given:   the width of the channel and its frequency in MHz
-// Source:  Lorimer & Kramer 2005, Handbook of Pulsar Astronomy
+// Source:  Lorimer & Kramer 2005, Handbook of Pulsar Astronomy, with the coefficient that is printed there (2 K is 8.298)
 // Checked: TestDispersion
 func ChannelSmearingUs(dmPcPerCm3, channelMHz, mhz float64) float64 {
-	return 2e6 * DispersionConstant * dmPcPerCm3 * channelMHz / (mhz * mhz * mhz)
+	ghz := mhz / 1000
+	return 8.3 * dmPcPerCm3 * channelMHz / (ghz * ghz * ghz)
 }
 
 // DispersionSec returns the delay against infinite frequency, seconds.

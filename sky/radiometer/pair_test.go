@@ -3,30 +3,31 @@ package radiometer
 import (
 	"math"
 	"testing"
+
+	"example.org/tallystick/internal/outside"
 )
 
 func TestDispersion(t *testing.T) {
-	for _, r := range rows(t, "dispersion.csv", "DIS-001") {
-		r.check(t, DispersionConstant)
+	for _, r := range outside.Rows(t, "dispersion.csv", "DIS-001") {
+		r.Check(DispersionConstant)
 	}
-	for _, r := range rows(t, "dispersion.csv", "DIS-002") {
-		r.check(t, EphemerisDispersionConstant)
+	for _, r := range outside.Rows(t, "dispersion.csv", "DIS-002") {
+		r.Check(EphemerisDispersionConstant)
 	}
-	for _, r := range rows(t, "dispersion.csv", "DIS-020") {
-		r.tol = 6e-3 // the published coefficient, 8.3 µs, has two digits
-		r.check(t, ChannelSmearingUs(r.num(t, "DM"), r.num(t, "chan_MHz"), 1e3*r.num(t, "f_GHz")))
+	for _, r := range outside.Rows(t, "dispersion.csv", "DIS-020") {
+		r.Check(ChannelSmearingUs(r.Num("DM"), r.Num("chan_MHz"), 1e3*r.Num("f_GHz")))
 	}
-	for _, r := range rows(t, "dispersion.csv", "DIS-01") {
-		r.check(t, DispersionSec(r.num(t, "DM"), r.num(t, "f_MHz")))
+	for _, r := range outside.Rows(t, "dispersion.csv", "DIS-01*") {
+		r.Check(DispersionSec(r.Num("DM"), r.Num("f_MHz")))
 	}
 }
 
 func TestPairs(t *testing.T) {
-	for _, r := range rows(t, "dispersion.csv", "DIS-030", "DIS-032", "DIS-036") {
-		r.check(t, PairDMError(r.num(t, "f1_MHz"), r.num(t, "s1_us"), r.num(t, "f2_MHz"), r.num(t, "s2_us")))
+	for _, r := range outside.Rows(t, "dispersion.csv", "DIS-030", "DIS-032", "DIS-036") {
+		r.Check(PairDMError(r.Num("f1_MHz"), r.Num("s1_us"), r.Num("f2_MHz"), r.Num("s2_us")))
 	}
-	for _, r := range rows(t, "dispersion.csv", "DIS-031", "DIS-033", "DIS-037") {
-		r.check(t, PairErrorUs(r.num(t, "f1_MHz"), r.num(t, "s1_us"), r.num(t, "f2_MHz"), r.num(t, "s2_us")))
+	for _, r := range outside.Rows(t, "dispersion.csv", "DIS-031", "DIS-033", "DIS-037") {
+		r.Check(PairErrorUs(r.Num("f1_MHz"), r.Num("s1_us"), r.Num("f2_MHz"), r.Num("s2_us")))
 	}
 	if !math.IsInf(PairErrorUs(1400, 1, 1400, 1), 1) || !math.IsInf(PairDMError(1400, 1, 1400, 1), 1) {
 		t.Error("a receiver paired with itself gives a finite error")
@@ -34,15 +35,15 @@ func TestPairs(t *testing.T) {
 }
 
 func TestSolarWind(t *testing.T) {
-	for _, r := range rows(t, "dispersion.csv", "DIS-05", "DIS-06") {
-		if _, ok := r.inputs["elong_deg"]; !ok {
+	for _, r := range outside.Rows(t, "dispersion.csv", "DIS-05*", "DIS-06*") {
+		if _, ok := r.Inputs["elong_deg"]; !ok {
 			continue
 		}
-		dm := SolarWindDM(r.num(t, "n0_cm3"), r.num(t, "elong_deg"))
-		if r.inputs["r_au"] != "" || r.id == "DIS-050" {
-			r.check(t, dm)
+		dm := SolarWindDM(r.Num("n0_cm3"), r.Num("elong_deg"))
+		if r.Inputs["r_au"] != "" || r.ID == "DIS-050" {
+			r.Check(dm)
 		} else {
-			r.check(t, 1e6*DispersionSec(dm, 1400))
+			r.Check(1e6 * DispersionSec(dm, 1400))
 		}
 	}
 	if dm, near := SolarWindDM(7.9, 180), SolarWindDM(7.9, 179.999); math.Abs(dm/near-1) > 1e-6 {
@@ -74,15 +75,16 @@ func TestPairSpacing(t *testing.T) {
 // At the elongation of the flag, what the spherical wind leaves in the data (DIS-070) is of the size of what it explains; at twice
 // the elongation it is all of it.
 func TestSolarWindIsUnreliable(t *testing.T) {
-	for _, r := range rows(t, "dispersion.csv", "DIS-070") {
+	for _, r := range outside.Rows(t, "dispersion.csv", "DIS-070") {
 		explained := func(deg float64) float64 {
-			return 1e6 * DispersionSec(SolarWindDM(WindDensity, deg), r.num(t, "f_MHz"))
+			return 1e6 * DispersionSec(SolarWindDM(WindDensity, deg), r.Num("f_MHz"))
 		}
-		if at := explained(WindUnreliableDeg); at < r.want || at > 3*r.want {
-			t.Errorf("%s: %.2f µs explained, %.2f left", r.id, at, r.want)
+		r.Asserted() // what the published fits left, beside which the flag must stand
+		if at := explained(WindUnreliableDeg); at < r.Want() || at > 3*r.Want() {
+			t.Errorf("%s: %.2f µs explained, %.2f left", r.ID, at, r.Want())
 		}
-		if twice := explained(2 * WindUnreliableDeg); twice > 1.1*r.want {
-			t.Errorf("%s: %.2f µs explained at %d°, %.2f left", r.id, twice, 2*WindUnreliableDeg, r.want)
+		if twice := explained(2 * WindUnreliableDeg); twice > 1.1*r.Want() {
+			t.Errorf("%s: %.2f µs explained at %d°, %.2f left", r.ID, twice, 2*WindUnreliableDeg, r.Want())
 		}
 	}
 }

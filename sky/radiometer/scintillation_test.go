@@ -3,17 +3,19 @@ package radiometer
 import (
 	"math"
 	"testing"
+
+	"example.org/tallystick/internal/outside"
 )
 
 func TestScintles(t *testing.T) {
-	scales := func(r row) Scintillation {
-		return Scintillation{r.num(t, "tau_d_s"), r.num(t, "dnu_d_MHz"), r.num(t, "eta")}
+	scales := func(r outside.Row) Scintillation {
+		return Scintillation{r.Num("tau_d_s"), r.Num("dnu_d_MHz"), r.Num("eta")}
 	}
-	for _, r := range rows(t, "radiometer.csv", "RAD-060") {
-		r.check(t, scales(r).Scintles(r.num(t, "t_s"), r.num(t, "bw_MHz")))
+	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-060") {
+		r.Check(scales(r).Scintles(r.Num("t_s"), r.Num("bw_MHz")))
 	}
-	for _, r := range rows(t, "radiometer.csv", "RAD-061") {
-		r.check(t, ModulationIndex(scales(r).Scintles(r.num(t, "t_s"), r.num(t, "bw_MHz"))))
+	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-061") {
+		r.Check(ModulationIndex(scales(r).Scintles(r.Num("t_s"), r.Num("bw_MHz"))))
 	}
 }
 
@@ -29,8 +31,8 @@ func TestScintlesAt(t *testing.T) {
 }
 
 func TestChanceAbove(t *testing.T) {
-	for _, r := range rows(t, "radiometer.csv", "RAD-064") {
-		r.check(t, 1-ChanceAbove(r.num(t, "x"), 1))
+	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-064") {
+		r.Check(1 - ChanceAbove(r.Num("x"), 1))
 	}
 	// Many scintles leave the mean flux; none at all are a steady source.
 	if c := ChanceAbove(0.9, 1e4); c < 0.9999 {

@@ -3,42 +3,44 @@ package radiometer
 import (
 	"math"
 	"testing"
+
+	"example.org/tallystick/internal/outside"
 )
 
 func TestSkyAt408(t *testing.T) {
-	for _, r := range rows(t, "radiometer.csv", "RAD-075", "RAD-076", "RAD-077") {
-		r.check(t, SkyAt408(r.num(t, "l_deg"), r.num(t, "b_deg")))
-		r.check(t, SkyAt408(r.num(t, "l_deg")+360, r.num(t, "b_deg")))
+	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-075", "RAD-076", "RAD-077") {
+		r.Check(SkyAt408(r.Num("l_deg"), r.Num("b_deg")))
+		r.Check(SkyAt408(r.Num("l_deg")+360, r.Num("b_deg")))
 	}
 }
 
 func TestSkyScales(t *testing.T) {
-	for _, r := range rows(t, "radiometer.csv", "RAD-071", "RAD-072", "RAD-073") {
-		r.check(t, scaleSky(r.num(t, "T1_K"), r.num(t, "f1"), r.num(t, "f2"), r.num(t, "index")))
+	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-071", "RAD-072", "RAD-073") {
+		r.Check(scaleSky(r.Num("T1_K"), r.Num("f1"), r.Num("f2"), r.Num("index")))
 	}
-	for _, r := range rows(t, "radiometer.csv", "RAD-071") {
-		r.check(t, SkyK(30, 1400)-2.73)
+	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-071") {
+		r.Check(SkyK(30, 1400) - 2.73)
 	}
 }
 
 func TestSystemTemperature(t *testing.T) {
-	for _, r := range rows(t, "radiometer.csv", "RAD-080", "RAD-082", "RAD-086") {
+	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-080", "RAD-082", "RAD-086") {
 		// These rows quote the receiver without any atmosphere: the zenith's is added first.
-		tau := r.num(t, "tau0")
-		zenith := r.num(t, "T0_K") + r.num(t, "Tatm_K")*(1-math.Exp(-tau))
-		r.check(t, SystemK(zenith, 0, tau, r.num(t, "el_deg")))
+		tau := r.Num("tau0")
+		zenith := r.Num("T0_K") + r.Num("Tatm_K")*(1-math.Exp(-tau))
+		r.Check(SystemK(zenith, 0, tau, r.Num("el_deg")))
 	}
-	for _, r := range rows(t, "radiometer.csv", "RAD-105", "RAD-106") {
-		r.check(t, SystemK(r.num(t, "tsys_zenith_K"), r.num(t, "tsky_K"), r.num(t, "tau0"), r.num(t, "el_deg")))
+	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-105", "RAD-106") {
+		r.Check(SystemK(r.Num("tsys_zenith_K"), r.Num("tsky_K"), r.Num("tau0"), r.Num("el_deg")))
 	}
 }
 
 func TestEffectiveWeight(t *testing.T) {
-	for _, r := range rows(t, "radiometer.csv", "RAD-081", "RAD-083", "RAD-087") {
-		tau, el := r.num(t, "tau0"), r.num(t, "el_deg")
-		zenith := r.num(t, "T0_K") + r.num(t, "Tatm_K")*(1-math.Exp(-tau))
+	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-081", "RAD-083", "RAD-087") {
+		tau, el := r.Num("tau0"), r.Num("el_deg")
+		zenith := r.Num("T0_K") + r.Num("Tatm_K")*(1-math.Exp(-tau))
 		ratio := SystemK(zenith, 0, tau, el) / SystemK(zenith, 0, tau, 90) * math.Exp(tau*(AirMass(el)-1))
-		r.check(t, ratio*ratio)
+		r.Check(ratio * ratio)
 	}
 	// A minute weighs as much as its share of the squared signal-to-noise ratio.
 	s := example()
