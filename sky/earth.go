@@ -229,6 +229,3 @@ func sunFromBarycentre(jd float64) vec {
 	}
 	return aboutX(-obliquityJ2000).apply(r.times(1 / all))
 }
-
-// obliquityJ2000 is the obliquity of the ecliptic at J2000.0, IAU 2006.
-const obliquityJ2000 = 84381.406 * radPerSec

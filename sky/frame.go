@@ -43,18 +43,16 @@ type node struct {
 //
 // Given:    jd, Julian day of TT
 // Neglects: what the nutation theory of 2000 adds to that of 1980 (0.01 arcsec)
-// Source:   the 1976 precession is brought to that of 2000 by the rates of IERS Conventions 2003, eq. 31,
-// and the frame tied to ICRS by the bias of its eq. 19 and 20
+// Source:   the precession of 2006; the frame is tied to ICRS by the bias of IERS Conventions 2003, eq. 19 and 20
 func newNode(jd float64) node {
 	t := (jd - mjdOffset - j2000MJD) / daysPerCentury
-	psi, eps, obliquity := nutationOf(jd)
-	precession := precessionMatrix(jd)
+	psi, eps := nutationOf(jd)
+	obliquity := meanObliquity(t)
+	precession := precessionMatrix(t)
 	bias := chain(aboutX(0.0068192*radPerSec), aboutY(-0.041775*radPerSec*math.Sin(obliquityJ2000)), aboutZ(-0.0146*radPerSec))
 
-	allPsi := psi - 0.29965*radPerSec*t
-	allEps := eps - 0.02524*radPerSec*t
-	trueObliquity := obliquity + allEps
-	nutation := chain(aboutX(-trueObliquity), aboutZ(-allPsi), aboutX(obliquity))
+	trueObliquity := obliquity + eps
+	nutation := chain(aboutX(-trueObliquity), aboutZ(-psi), aboutX(obliquity))
 	mean := precession.after(&bias)
 
 	return node{

@@ -4,16 +4,14 @@ import (
 	"math"
 
 	"github.com/soniakeys/meeus/v3/apparent"
-	"github.com/soniakeys/meeus/v3/base"
-	"github.com/soniakeys/meeus/v3/coord"
 	"github.com/soniakeys/meeus/v3/nutation"
-	"github.com/soniakeys/meeus/v3/precess"
 	"github.com/soniakeys/unit"
 )
 
 // This file is the only one that knows the library, and it takes from it only series that were
-// measured to be right: precession, nutation, obliquity, the Earth's velocity. What is left out, and why:
+// measured to be right: nutation and the Earth's velocity. What is left out, and why:
 //
+//   - precession and obliquity are those of 1976 and 1980, a third of an arcsecond out in a century
 //   - longitude is positive west and azimuth from the south there; here nothing of it is passed on
 //   - time arguments are Julian years, days of TT, days of UT or centuries; here always a Julian day of TT
 //   - proper motion in right ascension is an hour angle without cos dec; here it is a vector
@@ -24,34 +22,15 @@ import (
 //   - refraction is optical
 //   - the full solar theory wants data files at run time
 
-// precessionMatrix returns the rotation from the mean equator and equinox of J2000.0 to those of date.
-//
-// Given:    jd, Julian day of TT
-// Returns:  IAU 1976 precession, made by precessing the three axes one by one
-// Source:   Lieske et al. 1977, by way of Meeus, Astronomical Algorithms, eq. 21.2 to 21.4
-// Checked:  TestBookPrecession, TestAzEl
-func precessionMatrix(jd float64) mat {
-	p := precess.NewPrecessor(2000, base.JDEToJulianYear(jd))
-	var m mat
-	for i, axis := range [3]coord.Equatorial{{}, {RA: math.Pi / 2}, {Dec: math.Pi / 2}} {
-		p.Precess(&axis, &axis)
-		d := direction(axis.RA.Rad(), axis.Dec.Rad())
-		for j := range d {
-			m[j][i] = d[j]
-		}
-	}
-	return m
-}
-
-// nutationOf returns the nutation in longitude and in obliquity, and the mean obliquity, in radians.
+// nutationOf returns the nutation in longitude and in obliquity, in radians.
 //
 // Given:    jd, Julian day of TT
 // Neglects: terms under 0.0003 arcsec of the 1980 theory, and what the theory of 2000 added to it (0.01 arcsec)
 // Source:   IAU 1980 theory, by way of Meeus, chapter 22
 // Checked:  TestBookNutation
-func nutationOf(jd float64) (psi, eps, obliquity float64) {
+func nutationOf(jd float64) (psi, eps float64) {
 	p, e := nutation.Nutation(jd)
-	return p.Rad(), e.Rad(), nutation.MeanObliquity(jd).Rad()
+	return p.Rad(), e.Rad()
 }
 
 // earthVelocity returns the Earth's barycentric velocity in units of the speed of light, on the axes of J2000.0.

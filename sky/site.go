@@ -42,10 +42,22 @@ func NewSite(latitudeDeg, longitudeDeg, heightM, dut1Sec float64) (*Site, error)
 	s := &Site{LatitudeDeg: latitudeDeg, LongitudeDeg: longitudeDeg, HeightM: heightM, DUT1Sec: dut1Sec}
 	s.sinLat, s.cosLat = math.Sincos(latitudeDeg * radPerDeg)
 	s.longitude = longitudeDeg*radPerDeg + dut1Sec/secondsPerDay*earthRotationPerDay
-	const e = (1 - earthFlatness) * (1 - earthFlatness)
-	axis := (earthRadius/math.Sqrt(s.cosLat*s.cosLat+e*s.sinLat*s.sinLat) + heightM) * s.cosLat // distance from the Earth's axis
+	axis, _ := s.geocentric()
 	s.spin = axis * earthRotationPerDay / secondsPerDay / speedOfLight
 	return s, nil
+}
+
+// geocentric returns the site's distances from the Earth's axis and from the plane of its equator, north positive, in
+// metres.
+//
+//	(C + h) cos φ and (C (1−f)² + h) sin φ,  C = a/√(cos²φ + (1−f)² sin²φ)
+//
+// Source:   Explanatory Supplement 1992, eq. 3.351-3.353; ellipsoid WGS84
+// Checked:  TestGeocentric (AST-050, AST-074)
+func (s *Site) geocentric() (axisM, equatorM float64) {
+	const e = (1 - earthFlatness) * (1 - earthFlatness)
+	c := earthRadius / math.Sqrt(s.cosLat*s.cosLat+e*s.sinLat*s.sinLat)
+	return (c + s.HeightM) * s.cosLat, (c*e + s.HeightM) * s.sinLat
 }
 
 // LSTHours returns local apparent sidereal time in hours, 0 to 24.
@@ -75,12 +87,20 @@ func (s *Site) meridian(f *Frame, p *Place, x float64) (m, w, z float64) {
 
 // horizon returns where a place stands x days after the frame's instant, diurnal aberration and parallax included.
 func (s *Site) horizon(f *Frame, p *Place, x float64) horizon {
-	m, w, z := s.meridian(f, p, x)
-	return horizon{
-		e: s.spin - w,
-		n: z*s.cosLat - m*s.sinLat,
-		u: z*s.sinLat + m*s.cosLat - p.parallax,
-	}
+	h := s.toHorizon(s.meridian(f, p, x))
+	h.e += s.spin
+	h.u -= p.parallax
+	return h
+}
+
+// toHorizon turns a direction, given by its parts toward the meridian, toward west and toward the pole, to the horizon.
+func (s *Site) toHorizon(m, w, z float64) horizon {
+	return horizon{e: -w, n: z*s.cosLat - m*s.sinLat, u: z*s.sinLat + m*s.cosLat}
+}
+
+// toEquator is the way back.
+func (s *Site) toEquator(h horizon) (m, w, z float64) {
+	return h.u*s.cosLat - h.n*s.sinLat, -h.e, h.u*s.sinLat + h.n*s.cosLat
 }
 
 // azEl returns azimuth in (−π, π] and elevation, radians.
@@ -114,10 +134,12 @@ func positive(az float64) float64 {
 
 // Look returns all of where a place of the frame f stands.
 func (s *Site) Look(f *Frame, p Place, at time.Time) Look {
-	h := s.horizon(f, &p, f.days(at))
+	return s.look(s.horizon(f, &p, f.days(at)))
+}
+
+func (s *Site) look(h horizon) Look {
 	az, el := h.azEl()
-	// Back to the equator, so that hour angle and declination are those seen from the site.
-	m, w, z := h.u*s.cosLat-h.n*s.sinLat, -h.e, h.u*s.sinLat+h.n*s.cosLat
+	m, w, z := s.toEquator(h) // so that hour angle and declination are those seen from the site
 	equator := m*m + w*w
 	return Look{
 		AzDeg:          positive(az) * degPerRad,

@@ -66,10 +66,12 @@ var leapSeconds = [...]struct {
 	{57754, 37}, // 2017-01-01
 }
 
+// ttMinusTAI is TT − TAI in seconds, by definition.
+const ttMinusTAI = 32.184
+
 // TTMinusUTCSec returns TT − UTC in seconds at a UTC instant: 69.184 s since 2017. Before 1972 UTC ran
 // at other rates; the value of 1972 is returned then.
 func TTMinusUTCSec(t time.Time) float64 {
-	const ttMinusTAI = 32.184
 	mjd := MJD(t)
 	for i := len(leapSeconds) - 1; i > 0; i-- {
 		if mjd >= leapSeconds[i].fromMJD {

@@ -68,3 +68,9 @@ func TestGalactic(t *testing.T) {
 		}
 	}
 }
+
+func TestAirMass(t *testing.T) {
+	for _, r := range outside.Rows(t, "airmass.csv", "AST-10*") {
+		r.Check(AirMass(r.Num("el_deg")))
+	}
+}
