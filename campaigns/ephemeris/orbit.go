@@ -219,7 +219,7 @@ func (f *File) companion(b *binary, o orbit.Orbit) {
 	if l := f.line("M2"); l != nil {
 		b.companion = l.exact
 		if b.sinI.value > 0 {
-			if pulsar := math.Sqrt(math.Pow(l.Value*b.sinI.value, 3)/function) - l.Value; pulsar <= 0 {
+			if pulsar := orbit.PulsarMsun(function, l.Value, b.sinI.value); pulsar <= 0 {
 				f.remark(l.Number, "contradiction: M2 %s and the inclination leave the pulsar a mass of %.3g Msun in this orbit", l.Text, pulsar)
 			}
 		}

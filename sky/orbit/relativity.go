@@ -46,6 +46,23 @@ func EinsteinSec(pulsarMsun, companionMsun, periodDays, e float64) float64 {
 	return e * math.Pow(SunSec, 2.0/3) / math.Cbrt(n) / math.Pow(m, 4.0/3) * companionMsun * (pulsarMsun + 2*companionMsun)
 }
 
+// EinsteinGR returns the amplitude of the Einstein delay that general relativity predicts for the orbit from the
+// companion's mass and the inclination, seconds: the pulsar's mass follows from the size of the orbit.
+//
+// Returns: 0 where mass or inclination is not known (0), or where they leave the pulsar no mass
+// Checked: TestEinsteinFromTheOrbit
+func (o Orbit) EinsteinGR(companionMsun, sinI float64) float64 {
+	pulsar := PulsarMsun(MassFunctionMsun(o.SemimajorLs, o.PeriodDays), companionMsun, sinI)
+	if !(pulsar > 0) || math.IsInf(pulsar, 0) {
+		return 0
+	}
+	return EinsteinSec(pulsar, companionMsun, o.PeriodDays, o.Eccentricity)
+}
+
+// LargestEinsteinSec is the largest amplitude of the Einstein delay, seconds, that is taken for possible in an orbit: that of a
+// companion of 100 solar masses.
+func LargestEinsteinSec(periodDays, e float64) float64 { return EinsteinSec(1.4, 100, periodDays, e) }
+
 // MassFunctionMsun returns (m₂ sin i)³/M² from the size and period of the orbit.
 //
 //	4π² x³/(T Pb²)
@@ -54,6 +71,17 @@ func EinsteinSec(pulsarMsun, companionMsun, periodDays, e float64) float64 {
 func MassFunctionMsun(semimajorLs, periodDays float64) float64 {
 	n := turn / (periodDays * secPerDay)
 	return n * n * semimajorLs * semimajorLs * semimajorLs / SunSec
+}
+
+// PulsarMsun returns the pulsar's mass from the companion's and the inclination.
+//
+//	m₁ = √[(m₂ sin i)³/f] − m₂
+//
+// Given:   a mass function > 0, companionMsun ≥ 0, 0 ≤ sinI ≤ 1
+// Returns: below 0 where the three contradict one another: the orbit is too large for such a companion
+// Checked: TestEinsteinFromTheOrbit
+func PulsarMsun(massFunctionMsun, companionMsun, sinI float64) float64 {
+	return math.Sqrt(math.Pow(companionMsun*sinI, 3)/massFunctionMsun) - companionMsun
 }
 
 // CompanionMsun returns the companion's mass for a pulsar of given mass and an inclination of which

@@ -3,6 +3,8 @@ package timing
 import (
 	"math"
 	"slices"
+
+	"example.org/tallystick/sky/orbit"
 )
 
 // LoosePriors completes the stated errors of an ephemeris: every other parameter that has a meaning for
@@ -11,7 +13,8 @@ import (
 //
 // The ranges: a position within a beam of 10′, 200 mas/yr, 10 mas, 1 pc/cm³, a frequency within 1e-5 and a
 // derivative of 1e-11 Hz/s at most, an orbit within a tenth of its size and a hundredth of its period, a
-// companion within a solar mass. They are common practice and wide on purpose.
+// companion within a solar mass, an Einstein delay as a companion of ten would make it. They are common
+// practice and wide on purpose.
 //
 // Given:   stated, which is kept as it is and comes first
 // Returns: a new slice
@@ -53,6 +56,7 @@ func LoosePriors(src Source, stated []Prior) []Prior {
 	add(Eps2, 0.1)
 	if src.Orbit.Eccentricity > 0.001 {
 		add(AdvanceOfPeriastron, 10)
+		add(EinsteinDelay, max(src.EinsteinSec, orbit.EinsteinSec(1.4, 10, period, src.Orbit.Eccentricity)))
 	}
 	if src.CompanionMsun > 0 {
 		add(CompanionMass, 1)

@@ -126,6 +126,103 @@ func TestTextbookVariances(t *testing.T) {
 	}
 }
 
+// An orbit that general relativity turns, as that of two neutron stars: twice the span at a steady rate of observations
+// tells the Einstein delay 2^(3/2) times better. The power is that of Damour & Taylor 1992, Phys. Rev. D 45, 1840, their
+// table of the errors' dependence on the span, from memory. It follows from the slopes: with ω = ω₀ + ω̇t the parts of
+// the delay along sin E and cos E change as −x√(1−e²) ω̇t sin ω₀ and x ω̇t cos ω₀, whose ratio gives ω₀, then size and γ; the
+// error of a slope falls as T^(−3/2), for as long as periastron has turned by less than half a radian.
+func TestEinsteinDelayGrowsWithSpan(t *testing.T) {
+	at := func(years float64) float64 {
+		return sigma(t, doubleNeutronStar(t, years, 54), EinsteinDelay)
+	}
+	for _, years := range []float64{0.25, 0.5, 1} {
+		if ratio, want := at(years)/at(2*years), math.Pow(2, 1.5); math.Abs(ratio/want-1) > 0.03 {
+			t.Errorf("from %g to twice as many years: %g times better, want %g", years, ratio, want)
+		}
+	}
+}
+
+// doubleNeutronStar is J0737-3039A, fitted as it was published after 2.7 years: Kramer et al. 2006, Science 314, 97.
+func doubleNeutronStar(t *testing.T, years, sigmaUs float64) *Model {
+	src := Source{
+		FrequencyHz: 44.054069392744, DerivativeHzPerS: -3.4156e-15, EpochMJD: 53156, PositionMJD: 53156, RADeg: 114.4635, DecDeg: -30.6613,
+		Orbit: &orbit.Elements{PeriodDays: 0.10225156248, PeriastronMJD: 53155.907428, SemimajorLs: 1.415032, Eccentricity: 0.0877775,
+			PeriastronDeg: 87.0331, AdvanceDegPerYr: 16.89947, Decay: -1.252e-12},
+		CompanionMsun: 1.2489, SinI: 0.99974,
+	}
+	fitted := slices.DeleteFunc(slices.Clone(inPeriastronForm), func(p Parameter) bool { return p == Dispersion })
+	var obs []Observation
+	for i := range int(2000 * years) {
+		day := (float64(i) + 0.5) / 2000 * daysPerYear
+		obs = append(obs, Observation{53156 + day - years*daysPerYear/2 + 0.37*math.Sin(float64(i)*12.9898), sigmaUs, 0})
+	}
+	return mustModel(t, src, allFree(fitted), obs)
+}
+
+// The published errors of J0737-3039A's parameters stand to one another as the model says, to a factor 1.5: the span from
+// MJD 52760 to 53736, as published; the errors are multiples of one unknown number, how well an arrival is truly known.
+func TestEinsteinDelayAgainstPublishedErrors(t *testing.T) {
+	m := doubleNeutronStar(t, 2.67, 54)
+	if got := m.Value(EinsteinDelay); math.Abs(got-3.856e-4) > 2.6e-6 {
+		t.Errorf("general relativity has γ = %g s, measured is 3.856(26)e-4", got)
+	}
+	const published = 2.6e-6 // s
+	for p, other := range map[Parameter]float64{AdvanceOfPeriastron: 6.8e-4, OrbitalDecay: 1.7e-14, OrbitalPeriod: 5e-11, CompanionMass: 0.33 / 4.9255} {
+		if got, want := sigma(t, m, EinsteinDelay)/sigma(t, m, p), published/other; got > 1.5*want || got < want/1.5 {
+			t.Errorf("error of γ over that of %v: %.3g, published %.3g", p, got, want)
+		}
+	}
+}
+
+// While periastron stands still γ sin E is a part of the orbit's size and orientation: the model names what it cannot tell
+// apart, and tells everything else. A little turning makes it known badly, never NaN. No companion's mass is given here:
+// where the Shapiro delay peaks would tell, badly, how the orbit lies.
+func TestEinsteinDelayHidesBehindTheOrbit(t *testing.T) {
+	src := example()
+	src.Orbit.AdvanceDegPerYr, src.CompanionMsun, src.SinI, src.EinsteinSec = 0, 0, 0, 1e-3
+	free := slices.DeleteFunc(allFree(inPeriastronForm), func(p Prior) bool { return p.Parameter == CompanionMass || p.Parameter == SinI })
+	obs := weekly(56000, 3)
+	still := mustModel(t, src, free, obs)
+	if got := still.Undetermined(); !slices.Equal(got, []Parameter{EinsteinDelay}) {
+		t.Fatalf("undetermined %v, want the Einstein delay", got)
+	}
+	for _, p := range []Parameter{EinsteinDelay, SemimajorAxis, LongitudeOfPeriastron} {
+		if s, err := still.SigmaOf(p); !errors.As(err, new(Undetermined)) {
+			t.Errorf("%v: got %g, %v; it cannot be told apart", p, s, err)
+		}
+	}
+	if _, err := still.SigmaOf(EinsteinDelay); err == nil || !strings.Contains(err.Error(), "cannot be told from semimajor axis and longitude of periastron") {
+		t.Errorf("got %v", err)
+	}
+	for _, p := range []Parameter{Frequency, Eccentricity, OrbitalPeriod} {
+		if s := sigma(t, still, p); !(s > 0) || math.IsInf(s, 0) {
+			t.Errorf("%v: %g", p, s)
+		}
+	}
+	if s := still.PhaseErrorTurns(57200, 1400); !(s > 0) || math.IsInf(s, 0) {
+		t.Errorf("phase: %g turns", s)
+	}
+	last := math.Inf(1)
+	for _, degPerYr := range []float64{1e-6, 1e-4, 1e-2, 1} {
+		src.Orbit.AdvanceDegPerYr = degPerYr
+		s, err := mustModel(t, src, free, obs).SigmaOf(EinsteinDelay)
+		if err == nil && !(s < last/50) || math.IsNaN(s) {
+			t.Errorf("advancing by %g deg/yr: %g s, %v, before %g s", degPerYr, s, err, last)
+		}
+		if err == nil {
+			last = s
+		}
+	}
+	if !(last < 1e-5) {
+		t.Errorf("advancing by a degree a year it is known to %g s only", last)
+	}
+	// By what nature allows alone.
+	loose := mustModel(t, example(), LoosePriors(example(), nil), nil)
+	if s := sigma(t, loose, EinsteinDelay); s < 3*loose.Value(EinsteinDelay) || s > 1 {
+		t.Errorf("without any observation: %g s, of %g", s, loose.Value(EinsteinDelay))
+	}
+}
+
 // The error of the decay falls as the span to the power 5/2 at a steady rate of observations.
 func TestDecayGrowsWithSpan(t *testing.T) {
 	at := func(years float64) float64 {
@@ -266,7 +363,7 @@ func TestPriorsAtTheirOwnEpochs(t *testing.T) {
 // A node is far better known than periastron when the orbit is nearly circular and both are fitted.
 func TestNodeAgainstPeriastron(t *testing.T) {
 	src := circular()
-	m := mustModel(t, src, allFree(inNodeForm), weekly(56000, 6))
+	m := mustModel(t, src, allFree(slices.DeleteFunc(slices.Clone(inNodeForm), func(p Parameter) bool { return p == EinsteinDelay })), weekly(56000, 6))
 	node, peri, om := sigma(t, m, AscendingNode), sigma(t, m, Periastron), sigma(t, m, LongitudeOfPeriastron)
 	if node > 1e-3*peri || math.Abs(peri/(src.Orbit.PeriodDays*om/360)-1) > 0.01 {
 		t.Errorf("node %g d, periastron %g d, longitude %g deg", node, peri, om)
@@ -305,6 +402,10 @@ func TestNewRefuses(t *testing.T) {
 	}{
 		{"no frequency", func(s *Source) { s.FrequencyHz = 0 }, nil, nil, "spin frequency: found 0 Hz"},
 		{"negative mass", func(s *Source) { s.CompanionMsun = -1 }, nil, nil, "companion mass: found -1"},
+		{"negative Einstein delay", func(s *Source) { s.EinsteinSec = -1e-3 }, nil, nil, "einstein delay: found -0.001 s"},
+		{"Einstein delay in a circle", func(s *Source) { s.EinsteinSec, s.Orbit.Eccentricity = 1e-3, 0 }, nil, nil, "einstein delay: found 0.001 s; accepted at most 0 s"},
+		{"Einstein delay of no orbit", func(s *Source) { s.EinsteinSec, s.CompanionMsun, s.Orbit = 1e-3, 0, nil }, nil, nil, "found without an orbit"},
+		{"error of an Einstein delay in a circle", func(s *Source) { s.Orbit.Eccentricity = 0 }, []Prior{{EinsteinDelay, 1}}, nil, "a circular orbit has none"},
 		{"sin i above 1", func(s *Source) { s.SinI = 1.1 }, nil, nil, "sin i: found 1.1"},
 		{"orbit with no epoch", func(s *Source) { s.Orbit = &orbit.Elements{PeriodDays: 1} }, nil, nil, "epoch: found none"},
 		{"mass without orbit", func(s *Source) { s.Orbit = nil }, nil, nil, "without an orbit"},
@@ -351,7 +452,7 @@ func TestNeverNaN(t *testing.T) {
 		d := func(name string) float64 { return any.Draw(t, name) }
 		src := example()
 		for i, f := range []*float64{&src.FrequencyHz, &src.DerivativeHzPerS, &src.EpochMJD, &src.RADeg, &src.DecDeg, &src.PositionMJD, &src.ParallaxMas,
-			&src.CompanionMsun, &src.SinI, &src.GlitchMJD, &src.Orbit.PeriodDays, &src.Orbit.SemimajorLs, &src.Orbit.Eccentricity, &src.Orbit.AdvanceDegPerYr} {
+			&src.CompanionMsun, &src.SinI, &src.EinsteinSec, &src.GlitchMJD, &src.Orbit.PeriodDays, &src.Orbit.SemimajorLs, &src.Orbit.Eccentricity, &src.Orbit.AdvanceDegPerYr} {
 			if rapid.IntRange(0, 9).Draw(t, "change") == i%10 {
 				*f = d("value")
 			}

@@ -1,6 +1,7 @@
 package timing
 
 import (
+	"fmt"
 	"math"
 
 	"example.org/tallystick/sky/orbit"
@@ -28,6 +29,7 @@ const (
 	colAdvance              // deg/yr
 	colMass                 // M_sun
 	colSinI                 //
+	colEinstein             // seconds
 	colOldPhase             // before the glitch
 	colOldFrequency         // before the glitch
 	colOldDerivative        // before the glitch
@@ -54,6 +56,7 @@ type geometry struct {
 	orb      orbit.Orbit
 	shapiroR float64 // of the companion, seconds
 	sinI     float64
+	einstein float64 // amplitude of the Einstein delay, seconds
 }
 
 func newGeometry(src Source, ref float64) (geometry, error) {
@@ -74,8 +77,24 @@ func newGeometry(src Source, ref float64) (geometry, error) {
 			return geometry{}, err
 		}
 		g.binary = true
+		if err = g.setEinstein(); err != nil {
+			return geometry{}, err
+		}
 	}
 	return g, nil
+}
+
+// setEinstein takes the Einstein delay that is given, or the one that general relativity has for the masses.
+func (g *geometry) setEinstein() error {
+	e := g.orb.Eccentricity
+	if g.einstein = g.src.EinsteinSec; g.einstein == 0 {
+		g.einstein = g.orb.EinsteinGR(g.src.CompanionMsun, g.src.SinI)
+		return nil
+	}
+	if most := orbit.LargestEinsteinSec(g.orb.PeriodDays, e); !(g.einstein <= most) {
+		return fmt.Errorf("einstein delay: found %g s; accepted at most %.3g s in this orbit", g.einstein, most)
+	}
+	return nil
 }
 
 func dot(a, b [3]float64) float64 { return a[0]*b[0] + a[1]*b[1] + a[2]*b[2] }
@@ -125,10 +144,9 @@ func (g *geometry) row(o Observation, a *vec) {
 //	λ = F − k sin F + h cos F                     Kepler's equation, λ the mean longitude
 //	S = sin F − h − b k (k sin F − h cos F)       b = 1/(1+√(1−h²−k²))
 //	D = 1 − k cos F − h sin F
-//	delay = x S − 2 r ln(D − s S)
+//	delay = x S + γ (k sin F − h cos F)/e − 2 r ln(D − s S)
 //
-// Neglects: the periodic part of the advance of periastron, k(A − M): a few 1e-5 of the derivatives; the
-// Einstein delay
+// Neglects: the periodic part of the advance of periastron, k(A − M): a few 1e-5 of the derivatives
 // Source:   Blandford & Teukolsky 1976, ApJ 205, 580; Damour & Deruelle 1986; the elements after
 // Broucke & Cefola 1972, Celest. Mech. 5, 303
 // Checked:  TestPartials
@@ -163,6 +181,15 @@ func (g *geometry) orbitRow(mjd float64, a *vec) {
 	gL := x*sL + pull*(dL-g.sinI*sL)
 	gH := x*sH + pull*(dH-g.sinI*sH)
 	gK := x*sK + pull*(dK-g.sinI*sK)
+
+	if e > 0 {
+		sinE, cosE := cross/e, (k*cosF+h*sinF)/e
+		a[colEinstein] = sinE
+		perE, along := g.einstein/e, g.einstein*cosE/d
+		gL += along
+		gH -= perE*(cosF+sinE*h/e) + along*cosF
+		gK += perE*(sinF-sinE*k/e) + along*sinF
+	}
 
 	days := at - g.ref
 	a[colX] = s

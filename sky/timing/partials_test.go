@@ -26,10 +26,10 @@ func circular() Source {
 }
 
 var inNodeForm = []Parameter{Phase, Frequency, FrequencyDerivative, RightAscension, Declination, ProperMotionRA, ProperMotionDec, Parallax, Dispersion,
-	SemimajorAxis, AscendingNode, OrbitalPeriod, OrbitalDecay, Eps1, Eps2, AdvanceOfPeriastron, CompanionMass, SinI}
+	SemimajorAxis, AscendingNode, OrbitalPeriod, OrbitalDecay, Eps1, Eps2, AdvanceOfPeriastron, CompanionMass, SinI, EinsteinDelay}
 
 var inPeriastronForm = []Parameter{Phase, Frequency, FrequencyDerivative, RightAscension, Declination, ProperMotionRA, ProperMotionDec, Parallax, Dispersion,
-	SemimajorAxis, Periastron, OrbitalPeriod, OrbitalDecay, Eccentricity, LongitudeOfPeriastron, AdvanceOfPeriastron, CompanionMass, SinI}
+	SemimajorAxis, Periastron, OrbitalPeriod, OrbitalDecay, Eccentricity, LongitudeOfPeriastron, AdvanceOfPeriastron, CompanionMass, SinI, EinsteinDelay}
 
 // arrival is the time at which a pulse arrives, up to a constant, seconds, when the parameters are changed by
 // the given amounts: written in the usual orbital elements, apart from the program's own form. It is taken at
@@ -67,7 +67,7 @@ func arrival(s Source, change [parameterCount]float64, o Observation, at float64
 	turns := (at - epoch) / pb
 	turns -= 0.5 * (el.Decay + change[OrbitalDecay]) * turns * turns
 	omega := om + (el.AdvanceDegPerYr+change[AdvanceOfPeriastron])*degToRad*(at-epoch)/daysPerYear
-	mean := turn * turns
+	mean := turn * (turns - math.Round(turns))
 	if el.AscendingNodeMJD != 0 {
 		mean -= omega
 	}
@@ -76,6 +76,7 @@ func arrival(s Source, change [parameterCount]float64, o Observation, at float64
 	sinO, cosO := math.Sincos(omega)
 	proj := sinO*(cosE-e) + math.Sqrt(1-e*e)*cosO*sinE
 	t += (el.SemimajorLs + change[SemimajorAxis]) * proj
+	t += (s.EinsteinSec + change[EinsteinDelay]) * sinE
 	t -= 2 * (s.CompanionMsun + change[CompanionMass]) * orbit.SunSec * math.Log(1-e*cosE-(s.SinI+change[SinI])*proj)
 	return t
 }
@@ -89,7 +90,7 @@ func direction(s Source) [3]float64 {
 // steps are changes that shift the arrival by something between rounding and curvature.
 var steps = [parameterCount]float64{Phase: 1, Frequency: 1e-9, FrequencyDerivative: 1e-17, RightAscension: 2000, Declination: 2000, ProperMotionRA: 500,
 	ProperMotionDec: 500, Parallax: 1e4, Dispersion: 10, SemimajorAxis: 0.1, AscendingNode: 1e-4, Periastron: 1e-4, OrbitalPeriod: 2e-7, OrbitalDecay: 3e-10,
-	Eps1: 1e-4, Eps2: 1e-4, Eccentricity: 1e-4, LongitudeOfPeriastron: 0.01, AdvanceOfPeriastron: 15, CompanionMass: 0.5, SinI: 2e-3}
+	Eps1: 1e-6, Eps2: 1e-6, Eccentricity: 1e-4, LongitudeOfPeriastron: 0.01, AdvanceOfPeriastron: 15, CompanionMass: 0.5, SinI: 2e-3, EinsteinDelay: 0.1}
 
 // Every partial derivative, with respect to the parameters as ephemerides give them, against finite
 // differences of the arrival time: to 1e-6 of the largest along the orbit and the year.
@@ -106,6 +107,7 @@ func TestPartials(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
+			c.source.EinsteinSec = geo.einstein // as general relativity has it
 			n := len(c.params)
 			v := mat.NewDense(n, n, nil)
 			for i, p := range c.params {
@@ -158,7 +160,7 @@ func difference(f func(float64) float64) float64 {
 }
 
 // natural is the size of a change in each column that shifts arrivals noticeably over a few years.
-var natural = vec{1, 1e-8, 1e-16, 1e3, 1e3, 1e3, 1e3, 1e3, 10, 0.1, 1e-3, 1e-6, 1e-9, 1e-3, 1e-3, 0.1, 1, 0.1}
+var natural = vec{1, 1e-8, 1e-16, 1e3, 1e3, 1e3, 1e3, 1e3, 10, 0.1, 1e-3, 1e-6, 1e-9, 1e-3, 1e-3, 0.1, 1, 0.1, 1e-3}
 
 func TestEarth(t *testing.T) {
 	// 1 au is 499.0 s; perihelion in early January at 0.983 au, aphelion in early July at 1.017 (2020: 5 January

@@ -45,6 +45,8 @@ func (g *geometry) vectorOf(p Parameter) (v vec, err error) {
 		v[colMass] = 1
 	case SinI:
 		v[colSinI] = 1
+	case EinsteinDelay:
+		v[colEinstein] = 1
 	default:
 		v = g.orbitVector(p)
 	}
@@ -169,6 +171,8 @@ func (g *geometry) applies(p Parameter) error {
 		return fmt.Errorf("%v: the source has no orbit", p)
 	case (p == Eccentricity || p == LongitudeOfPeriastron || p == Periastron) && g.orb.Eccentricity == 0:
 		return fmt.Errorf("%v: has no meaning in a circular orbit; accepted: eps1, eps2, ascending node", p)
+	case p == EinsteinDelay && g.orb.Eccentricity == 0:
+		return fmt.Errorf("%v: a circular orbit has none", p)
 	case p == SinI && g.shapiroR == 0:
 		return fmt.Errorf("%v: needs a companion mass", p)
 	case p == ProperMotion && g.src.PMMasPerYr == [2]float64{}:
@@ -199,7 +203,8 @@ func parameterOf(column int) Parameter {
 }
 
 // Value returns the parameter's value in the ephemeris, for goals that are a share of it. It is 0 where
-// the ephemeris does not say.
+// the ephemeris does not say. Of the Einstein delay it is that of general relativity where only the masses
+// are known.
 func (m *Model) Value(p Parameter) float64 {
 	s, o := &m.geo.src, &m.geo.orb
 	switch p {
@@ -221,6 +226,8 @@ func (m *Model) Value(p Parameter) float64 {
 		return s.CompanionMsun
 	case SinI:
 		return s.SinI
+	case EinsteinDelay:
+		return m.geo.einstein
 	}
 	if !m.geo.binary {
 		return 0

@@ -43,17 +43,55 @@ func (t *root) take(b *batch, free *[columns]bool) {
 		head := top - norm // no digits are lost: the signs differ
 		scale := -1 / (norm * head)
 		t.r[c][c] = norm
-		for k := c + 1; k < columns; k++ {
-			if !free[k] {
-				continue
+		// Two columns at a time, so that the first is read once for both.
+		for k := nextFree(free, c+1); k < columns; k = nextFree(free, k+1) {
+			y, first := b.col[k][:len(x)], k
+			if k = nextFree(free, k+1); k == columns {
+				dot := scale * (head*t.r[c][first] + product(x, y))
+				t.r[c][first] -= dot * head
+				subtract(y, x, dot)
+				break
 			}
-			y := b.col[k][:len(x)]
-			dot := scale * (head*t.r[c][k] + product(x, y))
-			t.r[c][k] -= dot * head
-			subtract(y, x, dot)
+			z := b.col[k][:len(x)]
+			dotY, dotZ := products(x, y, z)
+			dotY = scale * (head*t.r[c][first] + dotY)
+			dotZ = scale * (head*t.r[c][k] + dotZ)
+			t.r[c][first] -= dotY * head
+			t.r[c][k] -= dotZ * head
+			for i, v := range x {
+				y[i] -= dotY * v
+				z[i] -= dotZ * v
+			}
 		}
 	}
 	b.n = 0
+}
+
+// nextFree is the first free column from c on.
+func nextFree(free *[columns]bool, c int) int {
+	for c < columns && !free[c] {
+		c++
+	}
+	return c
+}
+
+// products are the scalar products of x with y and with z.
+func products(x, y, z []float64) (xy, xz float64) {
+	y, z = y[:len(x)], z[:len(x)]
+	var a, b, c, d float64
+	i := 0
+	for ; i+2 <= len(x); i += 2 {
+		u, v := x[i], x[i+1]
+		a += u * y[i]
+		c += u * z[i]
+		b += v * y[i+1]
+		d += v * z[i+1]
+	}
+	if i < len(x) {
+		a += x[i] * y[i]
+		c += x[i] * z[i]
+	}
+	return a + b, c + d
 }
 
 // product is the scalar product, summed in four strands so that the additions need not wait for one another.

@@ -17,6 +17,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"example.org/tallystick/sky/orbit"
@@ -47,6 +48,7 @@ type Source struct {
 	Orbit         *orbit.Elements // nil: a single pulsar
 	CompanionMsun float64         // 0: not known, no Shapiro delay
 	SinI          float64         // 0: not known; 60° is assumed when the mass is known
+	EinsteinSec   float64         // amplitude of the Einstein delay; 0: as general relativity has it, where companion mass and sin i are known
 
 	// GlitchMJD is the date of the last glitch, 0 for none. Rotation before it says nothing of rotation
 	// after it: phase, frequency and derivative are then fitted apart on both sides.
@@ -91,6 +93,7 @@ const (
 	AdvanceOfPeriastron                    // deg/yr
 	CompanionMass                          // solar masses
 	SinI                                   // –
+	EinsteinDelay                          // seconds: its amplitude γ
 	ProperMotion                           // mas/yr: the total
 	Periastron                             // days: epoch of periastron
 	Eccentricity                           // –
@@ -117,6 +120,7 @@ var parameterNames = [parameterCount]struct{ name, unit string }{
 	AdvanceOfPeriastron:   {"advance of periastron", "deg/yr"},
 	CompanionMass:         {"companion mass", "Msun"},
 	SinI:                  {"sin i", ""},
+	EinsteinDelay:         {"einstein delay", "s"},
 	ProperMotion:          {"proper motion", "mas/yr"},
 	Periastron:            {"periastron", "d"},
 	Eccentricity:          {"eccentricity", ""},
@@ -162,7 +166,11 @@ func (u Undetermined) Error() string {
 	for _, p := range u.Parameters {
 		names = append(names, p.String())
 	}
-	return "undetermined: " + strings.Join(names, ", ") + "; the ephemeris gives no error and the observations do not reach"
+	words := "undetermined: " + strings.Join(names, ", ") + "; the ephemeris gives no error and the observations do not reach"
+	if slices.Contains(u.Parameters, EinsteinDelay) {
+		words += "; an einstein delay shows only by periastron's turning: until then it cannot be told from semimajor axis and longitude of periastron"
+	}
+	return words
 }
 
 // check reports every fault of a source, joined.
@@ -197,6 +205,12 @@ func (s Source) check() error {
 	}
 	if !(s.SinI >= 0 && s.SinI <= 1) {
 		faults = append(faults, fmt.Errorf("sin i: found %g; accepted from 0 to 1", s.SinI))
+	}
+	if !(s.EinsteinSec >= 0) || math.IsInf(s.EinsteinSec, 0) {
+		faults = append(faults, fmt.Errorf("einstein delay: found %g s; accepted 0 or more", s.EinsteinSec))
+	}
+	if s.Orbit == nil && s.EinsteinSec > 0 {
+		faults = append(faults, errors.New("einstein delay: found without an orbit; accepted with one"))
 	}
 	if s.Orbit == nil && s.CompanionMsun > 0 {
 		faults = append(faults, errors.New("companion mass: found without an orbit; accepted with one"))
