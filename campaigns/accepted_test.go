@@ -59,6 +59,8 @@ func TestWhatIsAcceptedHasAccounts(t *testing.T) {
 		put("advance_deg_per_yr", 1e-6, 100)
 		put("companion_msun", 0.01, 30)
 		put("sin_i", 0.1, 1)
+		put("einstein_delay_s", 1e-7, 1)
+		put("sigma_einstein_delay_s", 1e-9, 0.1)
 		put("sigma_period_days", 1e-12, 10)
 		put("sigma_epoch_days", 1e-9, 100)
 		put("sigma_semimajor_ls", 1e-9, 1)

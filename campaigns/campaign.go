@@ -126,11 +126,13 @@ type Orbit struct {
 	Decay            float64 // dPb/dt, s/s
 	CompanionMsun    float64 // 0: not known
 	SinI             float64 // 0: not known
+	EinsteinDelaySec float64 // amplitude γ; 0: that of general relativity where companion mass and sin i are known
 	SigmaPeriodDays  float64
 	SigmaEpochDays   float64
 	SigmaSemimajorLs float64
 	SigmaDecay       float64
-	SigmaAdvance     float64    // deg/yr
+	SigmaAdvance     float64 // deg/yr
+	SigmaEinsteinSec float64
 	DataMJD          [2]float64 // first and last observation behind the ephemeris; 0: not known
 	Eclipse          *Eclipse
 }
@@ -181,7 +183,7 @@ type Aim struct {
 	Since          time.Time
 
 	// measure
-	Parameter   string // "companion mass", "sin i", "orbital decay", "advance of periastron", "parallax", "proper motion", ...
+	Parameter   string // "companion mass", "sin i", "orbital decay", "advance of periastron", "einstein delay", "parallax", "proper motion", ...
 	GoalPercent float64
 
 	// connect

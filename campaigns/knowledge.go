@@ -51,6 +51,18 @@ func (o *Orbit) elements() orbit.Elements {
 	return el
 }
 
+// einsteinSec is the amplitude of the Einstein delay: as given, or as general relativity has it; 0 where neither is known.
+func (o *Orbit) einsteinSec() float64 {
+	if o.EinsteinDelaySec > 0 || o.Eccentricity == 0 {
+		return o.EinsteinDelaySec
+	}
+	of, err := orbit.New(o.elements())
+	if err != nil {
+		return 0
+	}
+	return of.EinsteinGR(o.CompanionMsun, o.SinI)
+}
+
 // orbitSigmas are the errors of the orbit. One of an eclipsing system is let wander beyond its data; a decay that was
 // not measured is bounded by what proper motion at the distance of the parallax makes.
 func (s *Source) orbitSigmas() orbit.Sigmas {

@@ -29,12 +29,12 @@ var aimKeys = map[string][]AimKind{
 
 // Parameters are what a measure aim can be about, in the words of campaign.toml.
 var Parameters = []string{
-	"companion mass", "sin i", "orbital decay", "advance of periastron", "orbital period", "eccentricity",
+	"companion mass", "sin i", "orbital decay", "advance of periastron", "einstein delay", "orbital period", "eccentricity",
 	"semimajor axis", "parallax", "proper motion", "position", "spin frequency", "spin frequency derivative",
 }
 
 // orbitParameters are those of them that only a binary has.
-var orbitParameters = Parameters[:7]
+var orbitParameters = Parameters[:8]
 
 // defaults of an aim, for keys that are left out.
 const (
@@ -175,6 +175,7 @@ func (t *table) measurable(parameter string, source *table, s *Source) {
 		"sin i":                     {"companion_msun and sin_i in its orbit", o.CompanionMsun > 0 && o.SinI > 0},
 		"orbital decay":             {"decay in its orbit", decay},
 		"advance of periastron":     {"advance_deg_per_yr in its orbit", o.AdvanceDegPerYr != 0},
+		"einstein delay":            {"eccentricity and einstein_delay_s, or companion_msun and sin_i that fit its size, in its orbit", o.einsteinSec() > 0},
 		"eccentricity":              {"eccentricity in its orbit", o.Eccentricity > 0},
 		"parallax":                  {"parallax_mas", s.ParallaxMas > 0},
 		"proper motion":             {"pm_mas_per_yr", s.PMMasPerYr != [2]float64{}},

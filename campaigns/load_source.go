@@ -134,16 +134,19 @@ func (t *table) orbit() *Orbit {
 		Decay:            o.numberOr("decay", between(-1e-7, 1e-7), 0),
 		CompanionMsun:    o.numberOr("companion_msun", above(0, 100), 0),
 		SinI:             o.numberOr("sin_i", above(0, 1), 0),
+		EinsteinDelaySec: o.numberOr("einstein_delay_s", above(0, 100), 0),
 		SigmaPeriodDays:  o.numberOr("sigma_period_days", between(0, 100), 0),
 		SigmaEpochDays:   o.numberOr("sigma_epoch_days", between(0, 1000), 0),
 		SigmaSemimajorLs: o.numberOr("sigma_semimajor_ls", between(0, 1e5), 0),
 		SigmaDecay:       o.numberOr("sigma_decay", between(0, 1e-7), 0),
 		SigmaAdvance:     o.numberOr("sigma_advance_deg_per_yr", between(0, 1000), 0),
+		SigmaEinsteinSec: o.numberOr("sigma_einstein_delay_s", between(0, 100), 0),
 		DataMJD:          o.dataMJD(),
 		Eclipse:          o.eclipse(),
 	}
 	o.periodOfOrbit(out)
 	o.epochOfOrbit(out)
+	o.einsteinDelay(out)
 	o.done(nil)
 	t.passOn("orbit", o)
 	if len(o.bad) == 0 {
@@ -196,6 +199,24 @@ func (t *table) periodOfOrbit(o *Orbit) {
 		t.lack("no period", accepted, "period_days", "frequency_series")
 	case o.FrequencySeries != nil:
 		o.PeriodDays = 1 / o.FrequencySeries[0] / secPerDay
+	}
+}
+
+// einsteinDelay refuses the Einstein delay of a circular orbit, which has none, and one larger than any companion makes.
+func (t *table) einsteinDelay(o *Orbit) {
+	if !t.good("period_days", "frequency_series", "eccentricity") {
+		return
+	}
+	if o.Eccentricity == 0 {
+		for _, key := range []string{"einstein_delay_s", "sigma_einstein_delay_s"} {
+			if t.has(key) && t.good(key) {
+				t.complain(key, "it in a circular orbit", "it only with an eccentricity above 0", "")
+			}
+		}
+		return
+	}
+	if most := orbit.LargestEinsteinSec(o.PeriodDays, o.Eccentricity); t.good("einstein_delay_s") && o.EinsteinDelaySec > most {
+		t.complain("einstein_delay_s", plainNumber(o.EinsteinDelaySec), fmt.Sprintf("at most %.3g s, as a companion of 100 Msun makes in this orbit", most), "")
 	}
 }
 

@@ -14,6 +14,7 @@ type measurement struct {
 	parameter timing.Parameter
 	sigma     float64 // 0: not determined
 	goal      float64 // the error wanted
+	hides     string  // why the parameter cannot be told from others yet; empty where it can
 }
 
 // debt is how often the error must still be halved, at most mostNeed.
@@ -31,6 +32,9 @@ func (m measurement) why() string {
 	}
 	if m.sigma == 0 {
 		return fmt.Sprintf("%s not determined yet, wanted to %.2g%s", m.parameter, m.goal, unit)
+	}
+	if m.hides != "" {
+		return fmt.Sprintf("%s not told apart yet: %.2g%s uncertain, wanted to %.2g%s; %s", m.parameter, m.sigma, unit, m.goal, unit, m.hides)
 	}
 	return fmt.Sprintf("%s known to %.2g%s, wanted to %.2g%s", m.parameter, m.sigma, unit, m.goal, unit)
 }
@@ -54,7 +58,19 @@ func (b *books) measure(k *knowledge, aim *Aim) (measurement, error) {
 	if sigma, err := model.SigmaOf(p); err == nil {
 		m.sigma = sigma
 	}
+	if p == timing.EinsteinDelay && m.sigma > math.Abs(value) {
+		m.hides = k.source.Orbit.hidesEinstein()
+	}
 	return m, nil
+}
+
+// hidesEinstein says what an Einstein delay that is less than its error waits for: γ sin E is a part of the orbit's size and
+// orientation until periastron has turned.
+func (o *Orbit) hidesEinstein() string {
+	if o.AdvanceDegPerYr == 0 {
+		return "without advance_deg_per_yr it passes for semimajor axis and longitude of periastron"
+	}
+	return "until periastron has turned further it passes for semimajor axis and longitude of periastron"
 }
 
 // wanted is the parameter that an aim is about, and the value that its goal is a share of. Of a position it is the

@@ -172,6 +172,37 @@ func sourceCalled(t *testing.T, c *Campaign, name string) *Source {
 	return nil
 }
 
+// An Einstein delay that cannot be told from the orbit yet is said so in plain words; when periastron turns fast enough it is
+// known to a number, and its goal is a share of what general relativity has for the masses (J0737-3039A: Kramer et al. 2021).
+func TestEinsteinDelayIsToldInWords(t *testing.T) {
+	c := pulsarIn(Aim{Kind: Measure, Receivers: []string{"L"}, Minutes: 30, MinFraction: 0.6, Parameter: "einstein delay", GoalPercent: 1})
+	s := &c.Sources[0]
+	s.Orbit = &Orbit{
+		PeriodDays: 0.1022515592973, PeriastronMJD: 61000, PeriastronDeg: 204.75, SemimajorLs: 1.415028603, Eccentricity: 0.087777023,
+		CompanionMsun: 1.248868, SinI: 0.999936,
+	}
+	row, _ := arrearsOf(t, c)
+	for _, want := range []string{"einstein delay not told apart yet", "wanted to 3.8e-06 s", "without advance_deg_per_yr it passes for semimajor axis"} {
+		if !strings.Contains(row.Why, want) {
+			t.Errorf("standing still: %q, want it to say %q", row.Why, want)
+		}
+	}
+	checkWhy(t, "standing still", row.Why)
+	s.Orbit.AdvanceDegPerYr = 16.899323
+	row, _ = arrearsOf(t, c)
+	if !strings.Contains(row.Why, "until periastron has turned further") {
+		t.Errorf("nothing observed yet: %q", row.Why)
+	}
+	checkWhy(t, "turning", row.Why)
+	s.Orbit.SigmaEinsteinSec = 5e-6
+	if row, _ = arrearsOf(t, c); row.Why != "einstein delay known to 5e-06 s, wanted to 3.8e-06 s" {
+		t.Errorf("with a stated error: %q", row.Why)
+	}
+	if s.Orbit.EinsteinDelaySec = 1e-3; !strings.Contains(func() string { row, _ := arrearsOf(t, c); return row.Why }(), "wanted to 1e-05 s") {
+		t.Error("a given value counts before that of general relativity")
+	}
+}
+
 // Whatever check accepts can be measured: every parameter has an account, with a goal, and a worth in a session.
 func TestEveryParameterCanBeMeasured(t *testing.T) {
 	for _, parameter := range Parameters {

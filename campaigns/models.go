@@ -25,7 +25,7 @@ func (s *Source) timingSource() timing.Source {
 	}
 	if s.Orbit != nil {
 		el := s.Orbit.elements()
-		t.Orbit, t.CompanionMsun, t.SinI = &el, s.Orbit.CompanionMsun, s.Orbit.SinI
+		t.Orbit, t.CompanionMsun, t.SinI, t.EinsteinSec = &el, s.Orbit.CompanionMsun, s.Orbit.SinI, s.Orbit.EinsteinDelaySec
 	}
 	return t
 }
@@ -53,6 +53,7 @@ func (k *knowledge) ephemerisPriors() []timing.Prior {
 		add(timing.SemimajorAxis, o.SigmaSemimajorLs)
 		add(timing.OrbitalDecay, o.SigmaDecay)
 		add(timing.AdvanceOfPeriastron, o.SigmaAdvance)
+		add(timing.EinsteinDelay, o.SigmaEinsteinSec)
 		if days, ofPeriastron := k.clock.orbit.EpochErrorDays(s.orbitSigmas()); ofPeriastron {
 			add(timing.Periastron, days)
 		} else { // in a nearly circular orbit the error of periastron says nothing of where the pulsar is
@@ -97,7 +98,7 @@ type countPart struct {
 var countParts = []countPart{
 	{"position", []timing.Parameter{timing.RightAscension, timing.Declination}, "sigma_position_mas"},
 	{"orbit", []timing.Parameter{
-		timing.AscendingNode, timing.Periastron, timing.OrbitalPeriod, timing.SemimajorAxis, timing.OrbitalDecay, timing.AdvanceOfPeriastron,
+		timing.AscendingNode, timing.Periastron, timing.OrbitalPeriod, timing.SemimajorAxis, timing.OrbitalDecay, timing.AdvanceOfPeriastron, timing.EinsteinDelay,
 	}, "sigma_epoch_days, sigma_period_days, sigma_semimajor_ls"},
 }
 

@@ -34,14 +34,14 @@ var keywords = map[string]keyword{
 	"DM": {unit: "pc/cm3"},
 	"PB": {unit: "d"}, "A1": {unit: "lt-s"}, "T0": {unit: "MJD"}, "TASC": {unit: "MJD"},
 	"ECC": {}, "OM": {unit: "deg"}, "EPS1": {}, "EPS2": {},
-	"PBDOT": {unit: "s/s", hugeIsScaled: true}, "OMDOT": {unit: "deg/yr"},
+	"PBDOT": {unit: "s/s", hugeIsScaled: true}, "OMDOT": {unit: "deg/yr"}, "GAMMA": {unit: "s"},
 	"FB0": {unit: "Hz"}, "FB1": {unit: "Hz/s"},
 	"M2": {unit: "Msun"}, "SINI": {}, "KIN": {unit: "deg"}, "SHAPMAX": {}, "H3": {unit: "s"}, "H4": {unit: "s"}, "STIG": {},
 	"START": {unit: "MJD"}, "FINISH": {unit: "MJD"},
 
 	"XDOT": {unit: "lt-s/s", hugeIsScaled: true, placeless: true}, "EDOT": {unit: "1/s", hugeIsScaled: true, placeless: true},
 	"EPS1DOT": {unit: "1/s", hugeIsScaled: true, placeless: true}, "EPS2DOT": {unit: "1/s", hugeIsScaled: true, placeless: true},
-	"GAMMA": {unit: "s", placeless: true}, "MTOT": {unit: "Msun", placeless: true}, "KOM": {unit: "deg", placeless: true},
+	"MTOT": {unit: "Msun", placeless: true}, "KOM": {unit: "deg", placeless: true},
 }
 
 // aliases are other names of the same parameter.

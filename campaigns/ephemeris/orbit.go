@@ -24,6 +24,8 @@ type binary struct {
 	sigmaPeriod, sigmaEpoch             float64
 	sigmaDecay, sigmaAdvance            float64
 	sigmaSemimajor                      float64
+	einstein                            decimal
+	sigmaEinstein                       float64
 	companion, sinI                     decimal
 	companionNote, sinINote             string
 }
@@ -55,8 +57,26 @@ func (f *File) orbit(scale timeScale) {
 		f.refuseOrbit(err)
 		return
 	}
+	f.einstein(b, o, scale)
 	f.companion(b, o)
 	f.source.orbit = b
+}
+
+// einstein reads the amplitude of the Einstein delay, which only an eccentric orbit has.
+func (f *File) einstein(b *binary, o orbit.Orbit, scale timeScale) {
+	l := f.line("GAMMA")
+	if l == nil || l.Value == 0 && l.Sigma == 0 {
+		return
+	}
+	most := orbit.LargestEinsteinSec(o.PeriodDays, o.Eccentricity)
+	switch {
+	case o.Eccentricity == 0:
+		f.drop("GAMMA", "a circular orbit has no Einstein delay")
+	case l.Value > most:
+		f.drop("GAMMA", "more than the %.3g s that a companion of 100 Msun makes in this orbit", most)
+	default:
+		b.einstein, b.sigmaEinstein = scale.length(l.exact, 1), l.Sigma
+	}
 }
 
 func (f *File) refuseOrbit(err error) {

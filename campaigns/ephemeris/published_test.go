@@ -131,11 +131,11 @@ func TestPublishedEphemerides(t *testing.T) {
 			for key, name := range map[string]string{
 				"F0": "frequency_hz", "F1": "derivative_hz_per_s", "PEPOCH": "epoch_mjd", "DM": "dm_pc_per_cm3",
 				"PB": "period_days", "A1": "semimajor_ls", "TASC": "ascending_node_mjd", "T0": "periastron_mjd",
-				"ECC": "eccentricity", "OM": "periastron_deg", "OMDOT": "advance_deg_per_yr", "PBDOT": "decay",
+				"ECC": "eccentricity", "OM": "periastron_deg", "OMDOT": "advance_deg_per_yr", "PBDOT": "decay", "GAMMA": "einstein_delay_s",
 				"M2": "companion_msun", "SINI": "sin_i", "PX": "parallax_mas", "POSEPOCH": "position_epoch_mjd",
 			} {
 				v, given := p.values[key]
-				if !given || s.Orbit == nil && strings.Contains("PB A1 TASC T0 ECC OM OMDOT PBDOT M2 SINI", key) {
+				if !given || s.Orbit == nil && strings.Contains("PB A1 TASC T0 ECC OM OMDOT PBDOT GAMMA M2 SINI", key) {
 					continue
 				}
 				if !strings.Contains(entry, fmt.Sprintf("\n%s = %s", name, v[0])) {
@@ -176,6 +176,8 @@ func (p published) compare(t *testing.T, s *campaigns.Source) {
 	same("T0", s.Orbit.PeriastronMJD, 0)
 	same("T0", s.Orbit.SigmaEpochDays, 1)
 	same("OMDOT", s.Orbit.AdvanceDegPerYr, 0)
+	same("GAMMA", s.Orbit.EinsteinDelaySec, 0)
+	same("GAMMA", s.Orbit.SigmaEinsteinSec, 1)
 	if v, ok := p.values["EPS1"]; ok {
 		sin, cos := math.Sincos(s.Orbit.PeriastronDeg * math.Pi / 180)
 		for _, e := range []struct{ got, want float64 }{{s.Orbit.Eccentricity * sin, num(t, v[0])}, {s.Orbit.Eccentricity * cos, num(t, p.values["EPS2"][0])}} {
@@ -337,9 +339,9 @@ func TestFrequencySeries(t *testing.T) {
 
 // What the errors of the orbit are, and of when they are, goes along.
 func TestOrbitErrors(t *testing.T) {
-	f := read(t, "PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nPB 1.5 1 1e-9\nA1 2.5 1 3e-7\nT0 60000 1 1e-6\nECC 0.2 1 1e-6\nOM 30\nOMDOT 0.5 1 0.02\nPBDOT -1.2 1 0.3\nSTART 58000.25\nFINISH 61000.5")
+	f := read(t, "PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nPB 1.5 1 1e-9\nA1 2.5 1 3e-7\nT0 60000 1 1e-6\nECC 0.2 1 1e-6\nOM 30\nOMDOT 0.5 1 0.02\nGAMMA 0.0031 1 4e-5\nPBDOT -1.2 1 0.3\nSTART 58000.25\nFINISH 61000.5")
 	o := load(t, f.Source()).Orbit
-	if o.SigmaSemimajorLs != 3e-7 || o.SigmaDecay != 0.3e-12 || o.SigmaAdvance != 0.02 || o.DataMJD != [2]float64{58000.25, 61000.5} {
+	if o.SigmaSemimajorLs != 3e-7 || o.SigmaDecay != 0.3e-12 || o.SigmaAdvance != 0.02 || o.EinsteinDelaySec != 0.0031 || o.SigmaEinsteinSec != 4e-5 || o.DataMJD != [2]float64{58000.25, 61000.5} {
 		t.Errorf("%+v", o)
 	}
 }

@@ -265,6 +265,7 @@ func (f *File) impossible() {
 	f.within("OM", between(-360, 360), "-360 to 360 degrees")
 	f.within("OMDOT", between(-1000, 1000), "-1000 to 1000 deg/yr")
 	f.within("PBDOT", between(-1e-7, 1e-7), "within 1e-7 of 0")
+	f.within("GAMMA", between(0, 100), "0 to 100 s; an amplitude below 0 is noise")
 	f.within("M2", above(100), "a mass above 0, at most 100 Msun")
 	if s := f.line("SINI"); s != nil && !s.isText() {
 		f.within("SINI", above(1), "a sine above 0, at most 1")
@@ -297,7 +298,7 @@ var largestErrors = []struct {
 	key  string
 	most float64
 }{
-	{"F0", 100}, {"F1", 1e-6}, {"PB", 100}, {"A1", 1e5}, {"PBDOT", 1e-7}, {"OMDOT", 1000}, {"T0", 1000}, {"TASC", 1000}, {"RAJ", 27}, {"DECJ", 27}, {"ELONG", 27}, {"ELAT", 27},
+	{"F0", 100}, {"F1", 1e-6}, {"PB", 100}, {"A1", 1e5}, {"PBDOT", 1e-7}, {"OMDOT", 1000}, {"GAMMA", 100}, {"T0", 1000}, {"TASC", 1000}, {"RAJ", 27}, {"DECJ", 27}, {"ELONG", 27}, {"ELAT", 27},
 }
 
 const longestName = 80

@@ -121,11 +121,15 @@ func (f *File) writeOrbit(w *entry) {
 	}
 	w.number("companion_msun", b.companion, 0, 100, b.companionNote)
 	w.number("sin_i", b.sinI, 0, 1, b.sinINote)
+	if b.einstein.value > 0 {
+		w.number("einstein_delay_s", b.einstein, 0, 100, "")
+	}
 	w.sigma("sigma_period_days", b.sigmaPeriod, 100)
 	w.sigma("sigma_epoch_days", b.sigmaEpoch, 1000)
 	w.sigma("sigma_semimajor_ls", b.sigmaSemimajor, 1e5)
 	w.sigma("sigma_decay", b.sigmaDecay, 1e-7)
 	w.sigma("sigma_advance_deg_per_yr", b.sigmaAdvance, 1000)
+	w.sigma("sigma_einstein_delay_s", b.sigmaEinstein, 100)
 	if first, last := f.line("START"), f.line("FINISH"); first != nil && last != nil && first.Value < last.Value {
 		w.set("data_mjd", "["+first.exact.text+", "+last.exact.text+"]", "")
 	}
