@@ -20,6 +20,7 @@ type Season struct {
 	Pressure []LSTPressure     // by site, in the order of Campaign.Sites
 	Sun      []SunSpan         // in order of their start
 	Unserved []string          // receivers that aims ask for and that no coming session mounts
+	Array    ArrayForecast     // what the planned hours buy for all pulsars together
 }
 
 // A SeasonSession is a session as it was played.
@@ -91,6 +92,7 @@ type player struct {
 	asked    map[string][]demand           // by site
 	pressure map[string]*LSTPressure       // by site
 	mounted  map[string]map[string]float64 // granted hours, by receiver and site
+	heard    map[string]*hearing           // by source
 }
 
 // play plans a session and writes its slots into the book.
@@ -135,6 +137,7 @@ func (p *player) play(ctx context.Context, s *Session, o SeasonOptions) error {
 	}
 	out.Hours = p.grant(prepared, options.FromMin)
 	p.spend(prepared, result.Plan)
+	p.hear(prepared, options.FromMin)
 	p.season.Sessions = append(p.season.Sessions, out)
 	return nil
 }
@@ -171,6 +174,9 @@ func (p *player) reckon() error {
 		return err
 	}
 	if err := p.want(start); err != nil {
+		return err
+	}
+	if err := p.forecastArray(start); err != nil {
 		return err
 	}
 	return p.findSun()

@@ -63,6 +63,7 @@ func TestSeasonOfTheDemonstration(t *testing.T) {
 	f, now := coming(t, 2)
 	s := play(t, f, now, SeasonOptions{})
 	hoursAddUp(t, s, f)
+	arrayAddsUp(t, s)
 	debtsAreTheArrears(t, s, f)
 }
 

@@ -110,6 +110,7 @@ var words = map[string][]line{
 		{label: "granted", text: "hours of the sessions, without breaks"},
 		{label: "ask", text: "what finds no room, spread over the sidereal time in which its source is up"},
 		{label: "connect", text: "observe by this date, or the turns of the pulsar can no longer be counted"},
+		{label: "best", text: "of the array: hours so divided that one more is worth the same on every pulsar, above a least; advice for asking for time, no plan follows it"},
 	},
 	logbookTitle: {
 		{label: "done", text: "observed as planned; partial: in part, quality says how much; lost: nothing that counts"},

@@ -29,6 +29,10 @@ func TestGoldenScreens(t *testing.T) {
 			golden(t, fmt.Sprintf("season-%s-%dx%d", page, size.w, size.h), h.screen())
 			h.keys("right")
 		}
+		h.keys("left", "left", "left", "left")
+		golden(t, fmt.Sprintf("season-array-%dx%d", size.w, size.h), h.screen())
+		h.keys("down")
+		golden(t, fmt.Sprintf("season-pulsar-%dx%d", size.w, size.h), h.screen())
 		h.keys("5", "down")
 		golden(t, fmt.Sprintf("logbook-%dx%d", size.w, size.h), h.screen())
 	}

@@ -318,6 +318,10 @@ func (v *season) drawHead(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	}
 	if w.season.edition != w.edition {
 		text, ink = "out of date: P plays again", theme.Overdue
+		if over := x + cell.Width(text) - cw; over > 0 { // it matters more than the names of the last pages
+			x = max(x-over, 1)
+			c.Put(x-1, 0, " ", theme.Plain)
+		}
 	}
 	if x+cell.Width(text) <= cw {
 		c.Put(x, 0, text, ink)

@@ -44,6 +44,17 @@ func seasonByHand(c *campaigns.Campaign) *campaigns.Season {
 		}
 	}
 	s.Pressure = []campaigns.LSTPressure{l}
+	s.Array = campaigns.ArrayForecast{
+		Rows: []campaigns.ArrayRow{
+			{Source: "J0018+5210", Site: l.Site, Receiver: "L", HourErrorUs: 0.312, FloorUs: 0.05, UpH: 7.75, LeastH: 0.25, PlannedH: 0.8, BestH: 2.61, PlannedUs: 0.352, BestUs: 0.2},
+			{Source: "J0231+1905", Site: l.Site, Receiver: "L", HourErrorUs: 0.9, UpH: 6.5, LeastH: 0.4, BestH: 0.4, PlannedUs: math.Inf(1), BestUs: 1.42},
+			{Source: "J2216+3344", Site: l.Site, Receiver: "S", HourErrorUs: 1.27, UpH: 5, LeastH: 0.3, PlannedH: 2.4, BestH: 0.3, PlannedUs: 0.82, BestUs: 2.32},
+		},
+		LeftOut: []campaigns.ArrayLeftOut{{Source: "J0512-0241", Reason: "no flux, no width_ms, no spin"}, {Source: "J1347-4410", Reason: "no flux, no width_ms, no spin"}},
+		Least:   campaigns.LeastOnce, CadencesH: 4.1, TotalH: 3.2, NoFloor: 2, HourMore: 0.21, Pairs: 1, NearShare: 0,
+		Planned: campaigns.ArrayValue{SumPerUs2: 9.56, PairPerUs2: 0.51}, Best: campaigns.ArrayValue{SumPerUs2: 25.7, PairPerUs2: 2.21},
+		Gains: [4]campaigns.ArrayGain{{What: "twice the years", Weak: 20.16, Intermediate: 1.414}, {What: "twice the cadence", Weak: 2, Intermediate: 1.083}, {What: "half the noise", Weak: 4, Intermediate: 1.173}, {What: "one source more", Weak: 1.5, Intermediate: 1.5}},
+	}
 	return s
 }
 
@@ -64,6 +75,20 @@ func TestSeasonIsPlayedAside(t *testing.T) {
 	for range seasonPages {
 		h.keys("right")
 		h.exact()
+	}
+	for range 4 {
+		h.keys("right")
+	}
+	h.shows("Array")
+	h.shows("2 pulsars together")
+	h.keys("enter")
+	h.shows("3, no flux, no width_ms, no spin: J0512-0241")
+	h.keys("end")
+	h.shows("4.00, 1.17   half the noise")
+	h.keys("esc", "down")
+	h.shows("J0231+1905, its hours")
+	for range len(seasonPages) - 4 {
+		h.keys("right")
 	}
 	h.keys("left", "/", "type:j2216", "enter", "enter")
 	h.shows("J2216+3344, every 7 d with L")

@@ -14,7 +14,7 @@ import (
 )
 
 // seasonTables are what a season comes to, each a table of its own in csv.
-var seasonTables = []string{"cadences", "sessions", "lst", "connect", "sun", "debts"}
+var seasonTables = []string{"cadences", "sessions", "lst", "connect", "sun", "debts", "array"}
 
 func (p *program) seasonCommand() *cobra.Command {
 	table := seasonTables[0]
@@ -27,6 +27,8 @@ func (p *program) seasonCommand() *cobra.Command {
 			"Hours wanted are those of visits that fall due, missing phase coverage and passages, and calibration, at the zenith with " +
 			"set-up and without slews, put where time is granted while the source is within limits; what finds no room is spread evenly " +
 			"over the sidereal time in which it is up, and asked for. Measure and connect aims ask for none, and of aims that one slot can serve at once the largest counts.\n" +
+			"The array's table compares the hours planned on each pulsar with the division of as many in which one hour more is worth the " +
+			"same on every pulsar, above a least that keeps its count. It is advice for asking for time; no plan follows it.\n" +
 			"Columns of csv: " + seasonColumnWords("; ") + ".",
 		Example: "  tallystick season\n  tallystick season --table lst --format csv --out hours.csv",
 		Args:    noArgs,
@@ -66,6 +68,7 @@ var seasonColumns = map[string][]string{
 	"connect":  {"source", "limit_turns", "by_utc", "planned_utc", "lost", "by_at_end_utc"},
 	"sun":      {"source", "limit_deg", "from_utc", "to_utc", "closest_utc", "closest_deg"},
 	"debts":    {"source", "aim", "receivers", "debt_end", "last_utc", "due_utc", "flags"},
+	"array":    {"source", "site", "receiver", "hour_error_us", "floor_us", "up_h", "least_h", "planned_h", "best_h", "planned_us", "best_us", "left_out"},
 }
 
 func seasonColumnWords(sep string) string {
@@ -122,6 +125,8 @@ func seasonCSV(w io.Writer, s *campaigns.Season, table string) error {
 				r.Source, r.Aim, strings.Join(r.Receivers, "+"), fmt.Sprintf("%.4f", r.Debt), utc(r.Last), utc(r.Due), strings.Join(r.Flags, "; "),
 			})
 		}
+	case "array":
+		out = append(out, arrayCells(&s.Array)...)
 	}
 	return printCSV(w, out)
 }
@@ -132,7 +137,7 @@ func seasonText(w io.Writer, d *desk, s *campaigns.Season) error {
 		s.From.UTC().Format("2006-01-02 15:04"), s.To.UTC().Format("2006-01-02 15:04"), count(len(s.Sessions), "session"))
 	b.WriteString(hanging("", words(title)))
 	for _, part := range []func(io.Writer, *campaigns.Season) error{
-		sessionsText, cadencesText, debtsText, connectsText, lstText, sunText,
+		sessionsText, cadencesText, debtsText, connectsText, lstText, sunText, arrayText,
 	} {
 		b.WriteString("\n")
 		if err := part(&b, s); err != nil {
@@ -290,6 +295,7 @@ type jsonSeason struct {
 	Sun      []jsonSun      `json:"sun"`
 	Debts    []jsonDebt     `json:"debts"`
 	Unserved []string       `json:"receivers_in_no_session"`
+	Array    jsonArray      `json:"array"`
 }
 
 type jsonPlayed struct {
@@ -356,7 +362,7 @@ func seasonJSON(w io.Writer, d *desk, s *campaigns.Season) error {
 	out := jsonSeason{
 		Format: 1, Version: version(), Campaign: d.Campaign.Name, FromUTC: utc(s.From), ToUTC: utc(s.To), Sessions: []jsonPlayed{},
 		Cadences: []jsonCadence{}, Connect: []jsonConnect{}, LST: []jsonPressure{}, Sun: []jsonSun{}, Debts: []jsonDebt{},
-		Unserved: append([]string{}, s.Unserved...),
+		Unserved: append([]string{}, s.Unserved...), Array: arrayJSON(&s.Array),
 	}
 	for _, x := range s.Sessions {
 		out.Sessions = append(out.Sessions, jsonPlayed{
