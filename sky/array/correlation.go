@@ -12,7 +12,7 @@ const degToRad = math.Pi / 180
 // Given:   the angle ξ between two different pulsars, degrees within 0..180
 // Returns: 1/2 at 0, least, −0.152, at 82.5°, and 1/4 at 180°
 // Source:  Hellings & Downs 1983, ApJ 265, L39
-// Checked: TestRows (ALL-001 to -005), TestCorrelation
+// Checked: TestCorrelationRows, TestCorrelation
 func Correlation(separationDeg float64) float64 {
 	s := math.Sin(separationDeg / 2 * degToRad)
 	return correlation(s * s)
@@ -30,5 +30,5 @@ func correlation(c float64) float64 {
 // beyond it, up to 121.7°, against each other.
 //
 // Source:  Hellings & Downs 1983, ApJ 265, L39
-// Checked: TestRows (ALL-006), TestFirstZero
+// Checked: TestCorrelationRows, TestFirstZero
 const FirstZeroDeg = 49.317268

@@ -34,7 +34,7 @@ const backgroundSlope = 13. / 3
 // Given:    factors above 0
 // Neglects: that an array passes from one regime to the other, and that pulsars differ
 // Source:   Siemens et al. 2013, CQG 30, 224015; β: Phinney 2001, arXiv:astro-ph/0108028
-// Checked:  TestRows (ALL-010 to -012), TestGain
+// Checked:  TestGainRows, TestGain
 func (r Regime) Gain(c Change) float64 {
 	heard := c.Cadence / (c.Noise * c.Noise)
 	if r == Weak {

@@ -25,7 +25,7 @@ type Pairs struct {
 // Neglects: the background's own part of the noise, which sets in as it is heard and makes pulsars count for more
 // and errors for less
 // Source:   Anholm et al. 2009, Phys. Rev. D 79, 084030; Siemens et al. 2013, CQG 30, 224015
-// Checked:  TestRows (ALL-030), TestPair, TestPairOfMore
+// Checked:  TestPairRows, TestPair, TestPairOfMore
 func Pair(set []Timed) Pairs {
 	type placed struct{ x, y, z, info float64 }
 	timed := make([]placed, 0, len(set))

@@ -83,7 +83,7 @@ type Division struct {
 // Neglects: when a pulsar is up, but for its most
 // Source:   water-filling: Kuhn & Tucker's conditions for a concave sum under one constraint; gains over equal time on
 // single sources, Christy et al. 2014, ApJ 794, 163
-// Checked:  TestRows, TestShareProperties, TestShareIsMonotone, TestShareAgainstHandingOut, TestShareAtTheEnds
+// Checked:  TestShareRows, TestShareProperties, TestShareIsMonotone, TestShareAgainstHandingOut, TestShareAtTheEnds
 func Share(set []Pulsar, totalH float64) (Division, error) {
 	if err := checkAll(set, totalH); err != nil {
 		return Division{}, err
