@@ -10,6 +10,8 @@ import (
 	"strings"
 	"testing"
 	"time"
+
+	"example.org/tallystick/internal/outside"
 )
 
 // The test program is also the program that is killed: with this variable it saves into the folder that it
@@ -20,7 +22,7 @@ func TestMain(m *testing.M) {
 	if dir := os.Getenv(saverVariable); dir != "" {
 		saveWithoutEnd(dir)
 	}
-	os.Exit(m.Run())
+	outside.Main(m, nil)
 }
 
 func saveWithoutEnd(dir string) {

@@ -11,7 +11,9 @@ import (
 	"github.com/BurntSushi/toml"
 
 	"example.org/tallystick/campaigns"
+	"example.org/tallystick/internal/outside"
 	"example.org/tallystick/sky/orbit"
+	"example.org/tallystick/sky/timing"
 )
 
 // site is the least that a campaign needs beside its sources.
@@ -213,65 +215,49 @@ func TestEclipticPositions(t *testing.T) {
 
 // Another program's ICRS positions of two of them, to the eight decimals that it prints.
 func TestEclipticAgainstERFA(t *testing.T) {
-	rows := map[string]string{}
-	for _, row := range table(t, "testdata/values.csv") {
-		rows[row[0]] = row[2]
-	}
 	for _, c := range []struct{ name, set, id string }{{"J1614-2230", "12.5-yr wideband", "BAR-010"}, {"J0740+6620", "2021", "BAR-016"}} {
-		in := fields(rows[c.id])
+		row := outside.One(t, "values.csv", c.id)
+		row.Asserted() // its inputs are another program's position; the conjunction is asserted in sky/orbit
 		for _, p := range publishedSets(t) {
 			if p.name != c.name || p.set != c.set {
 				continue
 			}
 			s := load(t, read(t, p.text()).Source())
-			if math.Abs(s.RADeg-num(t, in["ra_deg"])) > 5.1e-9 || math.Abs(s.DecDeg-num(t, in["dec_deg"])) > 5.1e-9 {
-				t.Errorf("%s: %.9f %.9f, want %s %s", c.name, s.RADeg, s.DecDeg, in["ra_deg"], in["dec_deg"])
+			if math.Abs(s.RADeg-row.Num("ra_deg")) > 5.1e-9 || math.Abs(s.DecDeg-row.Num("dec_deg")) > 5.1e-9 {
+				t.Errorf("%s: %.9f %.9f, want %s %s", c.name, s.RADeg, s.DecDeg, row.Inputs["ra_deg"], row.Inputs["dec_deg"])
 			}
 		}
 	}
 }
 
-func values(t *testing.T, id string) (in map[string]string, want, tol float64, row []string) {
-	t.Helper()
-	for _, row := range table(t, "testdata/values.csv") {
-		if row[0] == id {
-			want, _, _ := strings.Cut(row[3], " ")
-			return fields(row[2]), num(t, want), num(t, row[5]), row
-		}
-	}
-	t.Fatal("no row " + id)
-	return
-}
-
 func TestEclipticAgainstBook(t *testing.T) {
-	in, long, tol, row := values(t, "AST-023")
-	_, latText, _ := strings.Cut(row[3], " ")
-	f := read(t, fmt.Sprintf("PSR B\nELONG %.6f\nELAT %s\nECL IAU1976\n", long, latText))
-	if p := f.source.place; math.Abs(p.raDeg-num(t, in["ra_deg"])) > tol || math.Abs(p.decDeg-num(t, in["dec_deg"])) > tol {
-		t.Errorf("%.7f %.7f, want %s %s", p.raDeg, p.decDeg, in["ra_deg"], in["dec_deg"])
+	row := outside.One(t, "values.csv", "AST-023")
+	row.Asserted() // the way back: what the row expects is given here
+	long, lat, _ := strings.Cut(row.Expected, " ")
+	f := read(t, fmt.Sprintf("PSR B\nELONG %s\nELAT %s\nECL IAU1976\n", long, lat))
+	if p := f.source.place; math.Abs(p.raDeg-row.Num("ra_deg")) > row.Tol || math.Abs(p.decDeg-row.Num("dec_deg")) > row.Tol {
+		t.Errorf("%.7f %.7f, want %s %s", p.raDeg, p.decDeg, row.Inputs["ra_deg"], row.Inputs["dec_deg"])
 	}
 }
 
 // Ecliptic positions by the obliquity that ECL names, turned to ICRS by another library (BAR-001, -002).
 func TestEclipticRows(t *testing.T) {
-	for _, id := range []string{"BAR-001", "BAR-002"} {
-		in, ra, tol, row := values(t, id)
-		_, dec, _ := strings.Cut(row[3], " ")
-		f := read(t, fmt.Sprintf("PSR B\nELONG %s\nELAT %s\nECL IERS2010\n", in["ELONG"], in["ELAT"]))
-		if p := f.source.place; math.Abs(p.raDeg-ra) > tol || math.Abs(p.decDeg-num(t, dec)) > tol {
-			t.Errorf("%s: %.9f %.9f, want %s", id, p.raDeg, p.decDeg, row[3])
-		}
+	for _, row := range outside.Rows(t, "values.csv", "BAR-001", "BAR-002") {
+		f := read(t, fmt.Sprintf("PSR B\nELONG %s\nELAT %s\nECL IERS2010\n", row.Inputs["ELONG"], row.Inputs["ELAT"]))
+		row.Check(f.source.place.raDeg, f.source.place.decDeg)
 	}
 }
 
 func TestTimeScales(t *testing.T) {
-	in, want, tol, _ := values(t, "ORB-030")
+	row := outside.One(t, "values.csv", "ORB-030")
 	tcb := timeScale{tcb: true}
-	d, _ := parseDecimal(in["t_TCB"])
+	d, _ := parseDecimal(row.Inputs["t_TCB"])
 	// The published file was converted without the constant TDB0 of the resolution, -65.5 µs.
-	want -= 6.55e-5 / 86400
-	if got := tcb.epoch(d); math.Abs(got.value-want) > tol || math.Abs(got.value-orbit.TDBFromTCB(d.value)) > 1e-11 {
-		t.Errorf("%s, want %.13f", got.text, want)
+	const tdb0 = -6.55e-5 / 86400
+	got := tcb.epoch(d)
+	row.Check(got.value - tdb0)
+	if math.Abs(got.value-orbit.TDBFromTCB(d.value)) > 1e-11 {
+		t.Errorf("%s, want %.13f", got.text, orbit.TDBFromTCB(d.value))
 	}
 	file := "PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nF0 317.3789419337928734\nF1 -9.7e-16\nPEPOCH 59000\nPB 8.68661942255073\nA1 11.291197529\nTASC 59000\nUNITS "
 	s, plain := load(t, read(t, file+"TCB\n").Source()), load(t, read(t, file+"TDB\n").Source())
@@ -285,7 +271,7 @@ func TestTimeScales(t *testing.T) {
 	if ratio := s.Spin.DerivativeHzPerS/plain.Spin.DerivativeHzPerS - 1; math.Abs(ratio-2*1.550519768e-8) > 1e-14 {
 		t.Errorf("derivative changes by %g", ratio)
 	}
-	if s.Spin.EpochMJD != s.Orbit.AscendingNodeMJD || math.Abs(s.Spin.EpochMJD-want) > tol {
+	if s.Spin.EpochMJD != s.Orbit.AscendingNodeMJD || s.Spin.EpochMJD != got.value {
 		t.Errorf("epochs %.12f, %.12f", s.Spin.EpochMJD, s.Orbit.AscendingNodeMJD)
 	}
 }
@@ -301,18 +287,21 @@ func TestOrthometric(t *testing.T) {
 			t.Errorf("mass %g, sin i %g", s.Orbit.CompanionMsun, s.Orbit.SinI)
 		}
 	}
-	in, stig, tol, _ := values(t, "SHA-030")
-	_, h3, _, _ := values(t, "SHA-031")
+	ratio, amplitude := outside.One(t, "values.csv", "SHA-030"), outside.One(t, "values.csv", "SHA-031")
+	stig, h3 := ratio.Want(), amplitude.Want()
 	f := read(t, fmt.Sprintf("PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nPB 2.44576\nA1 10.848\nTASC 58001\nH3 %g\nSTIG %g", h3*1e-6, stig))
 	o := load(t, f.Source()).Orbit
-	if back := o.SinI / (1 + math.Sqrt(1-o.SinI*o.SinI)); math.Abs(back-stig) > 1e-6 || math.Abs(o.SinI-num(t, in["SINI"])) > tol {
-		t.Errorf("sin i %g gives STIG %g back, want %g", o.SinI, back, stig)
+	ratio.CheckWithin(1e-6, o.SinI/(1+math.Sqrt(1-o.SinI*o.SinI)))
+	amplitude.Check(1e6 * timing.H3Sec(o.CompanionMsun, o.SinI))
+	if math.Abs(o.SinI-ratio.Num("SINI")) > ratio.Tol {
+		t.Errorf("sin i %g, want %s", o.SinI, ratio.Inputs["SINI"])
 	}
 }
 
 // An orbital frequency is a period and a decay, or more than that.
 func TestFrequencySeries(t *testing.T) {
-	in, decay, _, _ := values(t, "ORB-056")
+	row := outside.One(t, "values.csv", "ORB-056")
+	in := row.Inputs
 	text := fmt.Sprintf("PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nA1 0.03484142\nTASC 56567.02609362 1 8e-8\nFB0 %s 3e-14\nFB1 %s\nFB2 2.4e-28", in["FB0"], in["FB1"])
 	f := read(t, text)
 	o := load(t, f.Source()).Orbit
@@ -326,9 +315,9 @@ func TestFrequencySeries(t *testing.T) {
 	// Without the third term it is a period and a decay; with a period beside it the further terms have no place.
 	without := strings.Replace(text, "\nFB2 2.4e-28", "", 1)
 	o = load(t, read(t, without).Source()).Orbit
-	// The row prints eight digits.
-	if math.Abs(o.Decay/decay-1) > 5e-8 || math.Abs(o.PeriodDays*86400*num(t, in["FB0"])-1) > 1e-15 || o.FrequencySeries != nil {
-		t.Errorf("period %.17g, decay %.10g, want %g", o.PeriodDays, o.Decay, decay)
+	row.Check(o.Decay)
+	if math.Abs(o.PeriodDays*86400*num(t, in["FB0"])-1) > 1e-15 || o.FrequencySeries != nil {
+		t.Errorf("period %.17g, decay %.10g", o.PeriodDays, o.Decay)
 	}
 	beside := read(t, text+"\nPB 0.13879863")
 	if o := load(t, beside.Source()).Orbit; o.FrequencySeries != nil || o.PeriodDays != 0.13879863 {

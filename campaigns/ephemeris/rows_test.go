@@ -1,27 +1,15 @@
 package ephemeris
 
 import (
-	"encoding/csv"
 	"math"
-	"os"
 	"strconv"
 	"strings"
 	"testing"
+
+	"example.org/tallystick/internal/outside"
 )
 
-func table(t *testing.T, file string) [][]string {
-	t.Helper()
-	f, err := os.Open(file)
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer f.Close()
-	rows, err := csv.NewReader(f).ReadAll()
-	if err != nil {
-		t.Fatal(err)
-	}
-	return rows[1:]
-}
+func TestMain(m *testing.M) { outside.Main(m, nil) }
 
 func fields(list string) map[string]string {
 	m := map[string]string{}
@@ -51,13 +39,10 @@ func lastDigit(s string) float64 {
 
 // Every line out of a published file means what it is known to mean.
 func TestLines(t *testing.T) {
-	rows := table(t, "testdata/lines.csv")
-	if len(rows) != 18 {
-		t.Fatalf("%d rows", len(rows))
-	}
-	for _, row := range rows {
-		id, want := row[0], fields(row[3])
-		l, ok, err := ParseLine(strings.TrimPrefix(row[2], "line="))
+	for _, row := range outside.Rows(t, "lines.csv", "EPH-*") {
+		row.Asserted()
+		id, want := row.ID, fields(row.Expected)
+		l, ok, err := ParseLine(row.Inputs["line"])
 		if want["value"] == "none" {
 			if ok {
 				t.Errorf("%s: not taken for a comment: %+v", id, l)
@@ -68,7 +53,7 @@ func TestLines(t *testing.T) {
 			t.Errorf("%s: %v, %v", id, ok, err)
 			continue
 		}
-		if key := strings.TrimPrefix(row[1], "reading one line: "); l.Key != key {
+		if key := strings.TrimPrefix(row.Quantity, "reading one line: "); l.Key != key {
 			t.Errorf("%s: key %q, want %q", id, l.Key, key)
 		}
 		if l.Unit != want["unit"] {
