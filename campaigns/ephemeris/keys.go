@@ -56,7 +56,9 @@ var (
 	higherTerms = regexp.MustCompile(`^(F|DM)[0-9]{1,3}$`)
 	// orbitTerms are those of the orbital frequency.
 	orbitTerms = regexp.MustCompile(`^FB([0-9]|1[0-9])$`)
-	glitchKey  = regexp.MustCompile(`^GL(EP|PH|F[0-9]|F0D|TD)_[0-9]{1,4}$`)
+	// spinTerms are those of the spin that a campaign has no place for.
+	spinTerms = regexp.MustCompile(`^F([2-9]|1[0-9])$`)
+	glitchKey = regexp.MustCompile(`^GL(EP|PH|F[0-9]|F0D|TD)_[0-9]{1,4}$`)
 	// furtherOrbit are the parameters of a second companion and of others beyond it.
 	furtherOrbit = regexp.MustCompile(`^(BINARY|PB|FB[0-9]|A1|X|T0|TASC|ECC|E|OM|EPS1|EPS2|PBDOT|OMDOT|XDOT|A1DOT|GAMMA|SINI|M2)_([2-9]|[1-9][0-9])$`)
 	// needless keys matter to timing, not to planning.

@@ -130,12 +130,18 @@ func TestPublishedEphemerides(t *testing.T) {
 				t.Errorf("%d unknown: %v", f.Unknown, f.Remarks)
 			}
 			// Text for text: no digit of a published number is lost.
-			for key, name := range map[string]string{
+			byText := map[string]string{
 				"F0": "frequency_hz", "F1": "derivative_hz_per_s", "PEPOCH": "epoch_mjd", "DM": "dm_pc_per_cm3",
 				"PB": "period_days", "A1": "semimajor_ls", "TASC": "ascending_node_mjd", "T0": "periastron_mjd",
 				"ECC": "eccentricity", "OM": "periastron_deg", "OMDOT": "advance_deg_per_yr", "PBDOT": "decay", "GAMMA": "einstein_delay_s",
 				"M2": "companion_msun", "SINI": "sin_i", "PX": "parallax_mas", "POSEPOCH": "position_epoch_mjd",
-			} {
+			}
+			for key := range p.values {
+				if byText[key] == "" && elsewhere[key] == "" {
+					t.Errorf("no test asserts %s", key)
+				}
+			}
+			for key, name := range byText {
 				v, given := p.values[key]
 				if !given || s.Orbit == nil && strings.Contains("PB A1 TASC T0 ECC OM OMDOT PBDOT GAMMA M2 SINI", key) {
 					continue
@@ -152,6 +158,20 @@ func TestPublishedEphemerides(t *testing.T) {
 	}
 }
 
+// elsewhere are the keys of the published sets that the list above leaves out, and where they are asserted or why not.
+var elsewhere = map[string]string{
+	"RAJ": "compare", "DECJ": "compare",
+	"ELONG": "TestEclipticPositions, TestEclipticAgainstERFA", "ELAT": "as ELONG",
+	"PMRA": "compare", "PMDEC": "compare",
+	"PMELONG": "compare, by its size; TestMotionTurnsWithThePosition by its direction", "PMELAT": "as PMELONG",
+	"EPS1": "compare", "EPS2": "compare",
+	"H3": "TestOrthometric", "STIG": "TestOrthometric",
+	"FB0": "compare", "FB1": "compare", "FB2": "compare",
+	"START": "below, where the span of the data is told", "FINISH": "as START",
+	"M1":              "no key of these files: kept as a comment, which is counted",
+	"PBDOT_intrinsic": "as M1",
+}
+
 // compare checks what the loader made of it.
 func (p published) compare(t *testing.T, s *campaigns.Source) {
 	t.Helper()
@@ -159,6 +179,21 @@ func (p published) compare(t *testing.T, s *campaigns.Source) {
 		t.Helper()
 		if v := p.values[key][which]; v != "" && got != num(t, v) {
 			t.Errorf("%s: %.17g, want %s", key, got, v)
+		}
+	}
+	for key, got := range map[string]float64{"RAJ": s.RADeg, "DECJ": s.DecDeg} {
+		if v, given := p.values[key]; given {
+			if l, _, err := ParseLine(key + " " + v[0]); err != nil || math.Abs(l.Value-got) > 1e-12 {
+				t.Errorf("%s: %.17g, want %s, %v", key, got, v[0], err)
+			}
+		}
+	}
+	same("PMRA", s.PMMasPerYr[0], 0)
+	same("PMDEC", s.PMMasPerYr[1], 0)
+	if v, given := p.values["PMELONG"]; given {
+		want := math.Hypot(num(t, v[0]), num(t, p.values["PMELAT"][0]))
+		if got := math.Hypot(s.PMMasPerYr[0], s.PMMasPerYr[1]); math.Abs(got-want) > 1e-4 {
+			t.Errorf("proper motion %.6f mas/yr, want %.6f", got, want)
 		}
 	}
 	if s.Spin != nil {
@@ -171,6 +206,12 @@ func (p published) compare(t *testing.T, s *campaigns.Source) {
 			t.Error("no orbit")
 		}
 		return
+	}
+	for n, got := range s.Orbit.FrequencySeries {
+		same(fmt.Sprintf("FB%d", n), got, 0)
+	}
+	if (s.Orbit.FrequencySeries != nil) != (p.values["FB2"][0] != "") {
+		t.Errorf("an orbital frequency of %d terms", len(s.Orbit.FrequencySeries))
 	}
 	same("PB", s.Orbit.SigmaPeriodDays, 1)
 	same("TASC", s.Orbit.AscendingNodeMJD, 0)

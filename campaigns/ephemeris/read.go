@@ -140,6 +140,9 @@ func (f *File) take(l *Line) {
 	case k.placeless:
 		f.Needless++
 		f.placeless[l.Key] = true
+		if spinTerms.MatchString(l.Key) {
+			f.lines[l.Key] = l // a glitch moves the spin to another date
+		}
 		return
 	}
 	before, twice := f.lines[l.Key]
@@ -222,7 +225,7 @@ func (f *File) interpret() error {
 		return err
 	}
 	f.spin(scale)
-	f.glitch(scale)
+	f.glitched(scale)
 	f.orbit(scale)
 	if len(f.placeless) > 0 {
 		names := slices.Sorted(maps.Keys(f.placeless))

@@ -58,7 +58,13 @@ func TestRemarks(t *testing.T) {
 		"no ecliptic":          {"PSR A\nELONG 10\nELAT 20\nF0 1", []string{"no ECL", "IERS2010"}},
 		"odd ecliptic":         {"PSR A\nELONG 10\nELAT 20\nECL FOO", []string{"ECL FOO", "IERS2003"}},
 		"several orbits":       {head + orbit + "PB_2 100\nA1_2 5\nT0_2 60000", []string{"several orbits", "only the first", "3 lines"}},
-		"glitch":               {head + "GLEP_1 60100\nGLF0_1 1.5e-6\nGLPH_1 0", []string{"1 glitch", "60100", "1.5e-06 Hz", "not added"}},
+		"glitch":               {head + "GLEP_1 60100\nGLF0_1 1.5e-6\nGLPH_1 0", []string{"1 glitch", "60100", "60100, the last glitch", "+1.5e-06 Hz by glitches", "not every term has an error"}},
+		"glitch, data on":      {head + "GLEP_1 60100\nGLF0_1 1.5e-6\nFINISH 60300", []string{"60300, FINISH"}},
+		"glitch, recovering":   {head + "GLEP_1 60100\nGLF0D_1 1.5e-6\nGLTD_1 30\nFINISH 60107", []string{"79 % of the recovery within 30 d"}},
+		"glitch, no recovery":  {head + "GLEP_1 60100\nGLF0D_1 1.5e-6\nFINISH 60107", []string{"without a GLTD_1"}},
+		"glitch twice":         {head + "GLEP_1 60100\nGLEP_1 60101", []string{"contradiction", "60100"}},
+		"glitch of nonsense":   {head + "GLEP_1 60100\nGLF0_1 1e6", []string{"more than any glitch does"}},
+		"glitch, odd F1":       {head + "GLEP_1 60100\nF1 9e-7\nF0 1", []string{"until then: nothing is added"}},
 		"glitch of old":        {head + "GLEP_1 59100\nGLF0_1 1.5e-6\nGLEP_2 59200", []string{"2 glitches", "59200"}},
 		"glitch undated":       {head + "GLF0_1 1.5e-6", []string{"without its date"}},
 		"unknown":              {head + "WHATEVER 5\nOTHER", []string{"2 lines", "WHATEVER (line 7)", "OTHER (line 8)"}},
@@ -186,7 +192,7 @@ func TestMotionTurnsWithThePosition(t *testing.T) {
 
 // Whatever the values, and at every edge of what is possible: an entry passes the loader.
 func TestExtremeValues(t *testing.T) {
-	keys := append(slices.Sorted(maps.Keys(keywords)), "GLEP_1", "GLF0_1", "FB2", "PB_2", "WHATEVER")
+	keys := append(slices.Sorted(maps.Keys(keywords)), "GLEP_1", "GLF0_1", "GLF1_1", "GLF2_1", "GLF0D_1", "GLTD_1", "GLPH_1", "GLEP_2", "GLF0_2", "F2", "F3", "FB2", "PB_2", "WHATEVER")
 	edges := []float64{0, 1e-320, 1e-21, 1e-15, 1e-12, 1e-9, 1e-7, 1e-5, 1e-3, 0.5, 1, 50, 90, 100, 360, 1000, 1999, 2000, 15020, 20000, 60000, 86400, 1e5, 124594, 1e8, 1e21, 1e300}
 	draw := func(t *rapid.T) string {
 		x := rapid.SampledFrom(edges).Draw(t, "edge") * rapid.SampledFrom([]float64{1, 1, -1, 1 - 1e-12, 1 + 1e-9, 0.7, 1.3}).Draw(t, "factor")

@@ -1,6 +1,7 @@
 package ephemeris
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"strconv"
@@ -80,7 +81,7 @@ func (f *File) writeSpin(w *entry) {
 	if s.derivative.value != 0 {
 		w.number("derivative_hz_per_s", s.derivative, -1e-6, 1e-6, s.derivativeNote)
 	}
-	w.number("epoch_mjd", s.epoch, firstMJD, lastMJD, "TDB")
+	w.number("epoch_mjd", s.epoch, firstMJD, lastMJD, cmp.Or(s.epochNote, "TDB"))
 	w.sigma("sigma_frequency_hz", s.sigmaFrequency, 100)
 	w.sigma("sigma_derivative_hz_per_s", s.sigmaDerivative, 1e-6)
 }

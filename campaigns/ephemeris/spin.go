@@ -1,17 +1,15 @@
 package ephemeris
 
 import (
-	"fmt"
 	"math"
 	"math/big"
-	"strconv"
-	"strings"
 )
 
 // A rotation is the spin of an entry.
 type rotation struct {
 	frequency, derivative, epoch decimal
 	note                         string // beside the frequency
+	epochNote                    string
 	derivativeNote               string
 	sigmaFrequency               float64
 	sigmaDerivative              float64
@@ -62,57 +60,6 @@ func (f *File) spinDown(r *rotation, scale timeScale) {
 			r.derivative, r.sigmaDerivative = decimal{}, 0
 		}
 	}
-}
-
-// glitch finds the last glitch. Its step is said and not added: the frequency is that of its own epoch.
-func (f *File) glitch(scale timeScale) {
-	if len(f.glitches) == 0 {
-		return
-	}
-	dates := map[string]*Line{} // by the glitch's number
-	var last *Line
-	for _, l := range f.glitches {
-		number, isDate := strings.CutPrefix(l.Key, "GLEP_")
-		switch {
-		case !isDate:
-		case l.Value <= firstMJD || l.Value >= lastMJD:
-			f.remark(l.Number, "%s %s: accepted: a modified Julian date from 1900 to 2200; left out", l.Key, l.Text)
-		default:
-			dates[number] = l
-			if last == nil || l.Value > last.Value {
-				last = l
-			}
-		}
-	}
-	if last == nil {
-		f.remark(f.glitches[0].Number, "terms of a glitch without its date: left out")
-		return
-	}
-	f.source.glitch = scale.epoch(last.exact)
-	what := "1 glitch"
-	if len(dates) > 1 {
-		what = strconv.Itoa(len(dates)) + " glitches"
-	}
-	what += ", the last at MJD " + last.Text + ": noted as glitch_mjd"
-	if steps := f.stepsAfterEpoch(dates); steps != 0 {
-		what += fmt.Sprintf("; after PEPOCH F0 changes by %.3g Hz, which is not added: the spin is that of PEPOCH", steps)
-	}
-	f.remark(last.Number, "%s", what)
-}
-
-// stepsAfterEpoch is by how much the glitches after PEPOCH change the frequency for good.
-func (f *File) stepsAfterEpoch(dates map[string]*Line) (steps float64) {
-	spin := f.line("PEPOCH")
-	if spin == nil {
-		return 0
-	}
-	for _, l := range f.glitches {
-		number, isStep := strings.CutPrefix(l.Key, "GLF0_")
-		if at := dates[number]; isStep && at != nil && at.Value > spin.Value {
-			steps += l.Value
-		}
-	}
-	return steps
 }
 
 // periodDays is 1/f in days, with digits to spare.

@@ -17,7 +17,7 @@ func (p *program) importCommand() *cobra.Command {
 		Short: "Turn keyword-value ephemeris files into [[source]] entries",
 		Long: "The entries go to standard output, as TOML to paste into campaign.toml or to include from it; every digit is " +
 			"kept. What is derived, assumed, left out or in contradiction goes to standard error, and is said beside " +
-			"the number. Times in TCB are changed to TDB, ecliptic positions to ICRS. Each entry has a cadence of " +
+			"the number. Times in TCB are changed to TDB, ecliptic positions to ICRS; glitches are added to the spin, which is then that of a later date. Each entry has a cadence of " +
 			fmt.Sprintf("%d days to start with: set it right. ", ephemeris.StarterEveryDays) +
 			"Exit 1 when a file could not be read; the others are written all the same.",
 		Example: "  tallystick import J0102+0304.par\n  tallystick import ephemerides/*.par --out sources/imported.toml",
