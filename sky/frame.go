@@ -61,7 +61,7 @@ func newNode(jd float64) node {
 		earth:    mean.applyBack(earthFromSun(jd, obliquity)),
 		wobble:   sunFromBarycentre(jd),
 		equinox:  precessionInRA(t) + equationOfEquinoxes(psi, trueObliquity, t),
-		days:     jd - mjdOffset - j2000MJD,
+		days:     daysSinceJ2000(jd),
 	}
 }
 
@@ -79,6 +79,42 @@ func NewFrame(at time.Time) (*Frame, error) {
 	jd := jdTT(at)
 	return newFrame(at, [3]node{newNode(jd - 1), newNode(jd), newNode(jd + 1)}), nil
 }
+
+// NewFrameBeside is NewFrame, and the same to the last bit, for less work where frames of other instants lie one or
+// two days off: what frames have in common is taken from them. Those that are nil or have nothing in common do no harm.
+func NewFrameBeside(at time.Time, others ...*Frame) (*Frame, error) {
+	if err := checkDate(at); err != nil {
+		return nil, err
+	}
+	jd := jdTT(at)
+	var nodes [3]node
+	for i, jd := range [3]float64{jd - 1, jd, jd + 1} {
+		if known := nodeAmong(others, jd); known != nil {
+			nodes[i] = *known
+		} else {
+			nodes[i] = newNode(jd)
+		}
+	}
+	return newFrame(at, nodes), nil
+}
+
+// nodeAmong finds the node of a Julian day of TT in frames: exactly that of that instant.
+func nodeAmong(frames []*Frame, jd float64) *node {
+	for _, f := range frames {
+		if f == nil {
+			continue
+		}
+		for i := range f.nodes {
+			if f.nodes[i].days == daysSinceJ2000(jd) {
+				return &f.nodes[i]
+			}
+		}
+	}
+	return nil
+}
+
+// daysSinceJ2000 is exact: two dates never become one.
+func daysSinceJ2000(jd float64) float64 { return jd - mjdOffset - j2000MJD }
 
 func checkDate(at time.Time) error {
 	if at.Before(firstDate) || !at.Before(lastDate) {

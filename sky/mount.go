@@ -91,39 +91,108 @@ type Axes struct{ A, B float64 }
 
 // MoveSec returns how long the mount takes from one position to another, in seconds: the slower axis counts,
 // and any motion is followed by settling. The path is the shortest in each axis; azimuth is the mount's own, so
-// a move never passes a stop.
+// a move never passes a stop. Of many moves, ask the mount's Pace.
 //
 // Neglects: that both ends move with the sky meanwhile; give the position at arrival
 func (m Mount) MoveSec(from, to Axes) float64 {
-	t := axisSec(to.B-from.B, m.RateDegPerMin[1], m.AccelDegPerS2[1])
-	if m.Kind != Transit {
-		t = max(t, axisSec(to.A-from.A, m.RateDegPerMin[0], m.AccelDegPerS2[0]))
+	p := m.Pace()
+	return p.MoveSec(to.A-from.A, to.B-from.B)
+}
+
+// A Pace is how fast a mount turns, made ready for a great many moves.
+type Pace struct {
+	Still     [2]bool // an axis that does not turn
+	axes      [2]axisPace
+	settleSec float64
+}
+
+// Pace returns the mount's.
+func (m Mount) Pace() Pace {
+	p := Pace{Still: [2]bool{m.Kind == Transit, false}, settleSec: m.SettleSec}
+	for i := range p.axes {
+		p.axes[i] = newAxisPace(m.RateDegPerMin[i], m.AccelDegPerS2[i])
+	}
+	return p
+}
+
+// MoveSec is Mount.MoveSec for a move by so many degrees on either axis.
+func (p *Pace) MoveSec(a, b float64) float64 {
+	a, b = math.Abs(a), math.Abs(b)
+	var t float64
+	switch {
+	case p.Slower(0, a, b):
+		t = p.axes[0].sec(a)
+	case p.Slower(1, b, a):
+		t = p.axes[1].sec(b)
+	default:
+		if t = p.axes[1].sec(b); !p.Still[0] {
+			t = max(t, p.axes[0].sec(a))
+		}
 	}
 	if t == 0 {
 		return 0
 	}
-	return t + m.SettleSec
+	return t + p.settleSec
 }
 
-// axisSec returns how long one axis takes to turn.
+// Slower says that turning one axis by at least least degrees certainly takes longer than turning the other by at most
+// most: it compares bounds, and where they overlap, does not say so. Neither may be negative.
+func (p *Pace) Slower(axis int, least, most float64) bool {
+	if p.Still[axis] {
+		return false
+	}
+	return p.Still[1-axis] || p.axes[axis].atLeastSec(least) > p.axes[1-axis].atMostSec(most)
+}
+
+// axisPace is how fast one axis turns.
+type axisPace struct {
+	degPerSec float64
+	accel     float64 // degrees a second squared
+	reachDeg  float64 // what it turns by at least when it comes to full speed; negative: it has full speed at once
+	spareSec  float64 // what speeding up and braking then costs
+	secPerDeg float64 // at full speed
+}
+
+func newAxisPace(degPerMin, a float64) axisPace {
+	v := degPerMin / 60
+	x := axisPace{degPerSec: v, accel: a, reachDeg: -1, secPerDeg: 1 / v}
+	if a != 0 {
+		x.reachDeg, x.spareSec = v*v/a, v/a
+	}
+	return x
+}
+
+// sec returns how long the axis takes to turn.
 //
 //	2 √(θ/a)  while θ ≤ v²/a,  θ/v + v/a  beyond
 //
-// Given:    θ in degrees, v in degrees a minute, a in degrees a second squared (0: full speed at once)
+// Given:    θ in degrees, not negative
 // Source:   motion with constant acceleration and braking, and a greatest speed
 // Checked:  TestMoveSec
-func axisSec(theta, degPerMin, a float64) float64 {
-	theta = math.Abs(theta)
-	v := degPerMin / 60
+func (x *axisPace) sec(theta float64) float64 {
 	switch {
 	case theta == 0:
 		return 0
-	case a == 0:
-		return theta / v
-	case theta <= v*v/a:
-		return 2 * math.Sqrt(theta/a)
+	case theta <= x.reachDeg:
+		return 2 * math.Sqrt(theta/x.accel)
 	}
-	return theta/v + v/a
+	return theta/x.degPerSec + x.spareSec
+}
+
+// roundingShare is more than what rounding does to the bounds below.
+const roundingShare = 1e-12
+
+// atMostSec and atLeastSec bound sec without a root or a division: θ/v ≤ 2 √(θ/a) ≤ θ/v + v/a while θ ≤ v²/a.
+func (x *axisPace) atMostSec(theta float64) float64 {
+	return (theta*x.secPerDeg + x.spareSec) * (1 + roundingShare)
+}
+
+func (x *axisPace) atLeastSec(theta float64) float64 {
+	t := theta * x.secPerDeg
+	if theta > x.reachDeg {
+		t += x.spareSec
+	}
+	return t * (1 - roundingShare)
 }
 
 // AxesTrack fills dst with the positions a mount takes to follow a place of the frame f, at from, from + step
@@ -131,15 +200,17 @@ func axisSec(theta, degPerMin, a float64) float64 {
 // enough that azimuth changes by less than half a turn in it.
 func (s *Site) AxesTrack(m Mount, f *Frame, p Place, from time.Time, step time.Duration, turn int, dst []Axes) {
 	for i := range dst {
-		look := s.Look(f, p, from.Add(time.Duration(i)*step))
+		at := from.Add(time.Duration(i) * step)
 		if m.Kind != AltAz {
+			look := s.Look(f, p, at)
 			dst[i] = Axes{look.HourAngleDeg, look.DecDeg}
 			continue
 		}
-		az := look.AzDeg + 360*float64(turn)
+		az, el := s.AzEl(f, &p, at)
+		az += 360 * float64(turn)
 		if i > 0 {
 			az = dst[i-1].A + half(az-dst[i-1].A, 360)
 		}
-		dst[i] = Axes{az, look.ElDeg}
+		dst[i] = Axes{az, el}
 	}
 }

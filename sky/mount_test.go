@@ -52,6 +52,9 @@ func TestMoveSec(t *testing.T) {
 			t.Fatalf("%g s there, %g s back", a, b)
 		}
 		still := to.B == from.B && (to.A == from.A || m.Kind == Transit)
+		if got, want := m.MoveSec(from, to), plainMoveSec(m, to.A-from.A, to.B-from.B); got != want {
+			t.Fatalf("%g s, worked out on both axes %g", got, want)
+		}
 		if got := m.MoveSec(from, to); still != (got == 0) || got < 0 || !still && got < m.SettleSec {
 			t.Fatalf("%v to %v: %g s", from, to, got)
 		}
@@ -60,6 +63,28 @@ func TestMoveSec(t *testing.T) {
 			t.Fatalf("%v to %v is quicker than to %v", from, further, to)
 		}
 	})
+}
+
+// plainMoveSec works out both axes and takes no bounds.
+func plainMoveSec(m Mount, byDeg ...float64) float64 {
+	longest := 0.0
+	for i, theta := range byDeg {
+		v, a, theta := m.RateDegPerMin[i]/60, m.AccelDegPerS2[i], math.Abs(theta)
+		sec := theta / v
+		switch {
+		case i == 0 && m.Kind == Transit, theta == 0:
+			sec = 0
+		case a > 0 && theta <= v*v/a:
+			sec = 2 * math.Sqrt(theta/a)
+		case a > 0:
+			sec = theta/v + v/a
+		}
+		longest = max(longest, sec)
+	}
+	if longest == 0 {
+		return 0
+	}
+	return longest + m.SettleSec
 }
 
 // Following a place in a turn, the mount never leaves its travel while the turn is open, and is outside whenever it
