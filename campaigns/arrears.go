@@ -2,6 +2,7 @@ package campaigns
 
 import (
 	"fmt"
+	"slices"
 	"sort"
 	"time"
 
@@ -25,39 +26,51 @@ func Arrears(c *Campaign, log *Logbook, at time.Time) ([]AccountRow, error) {
 	if err != nil {
 		return nil, err
 	}
-	for i := range rows {
+	sideBySide(len(rows), func(i int) {
 		r := &rows[i]
 		if w, ok := next.of(r.Source, r.Receivers); ok {
 			r.NextStart, r.NextEnd, r.NextSession = w.start, w.end, w.session
 		} else {
 			r.Flags = append(r.Flags, "not up in any coming session")
 		}
-	}
+	})
 	return rows, nil
 }
 
 // accountRows makes a row for each aim of each source, worst first.
 func accountRows(c *Campaign, b *books) ([]AccountRow, error) {
-	var rows []AccountRow
-	for i := range c.Sources {
-		k, err := newKnowledge(&c.Sources[i], b.frames)
+	bySource := make([][]AccountRow, len(c.Sources))
+	errs := make([]error, len(c.Sources))
+	sideBySide(len(c.Sources), func(i int) { bySource[i], errs[i] = b.accountsOf(&c.Sources[i]) })
+	for _, err := range errs {
 		if err != nil {
 			return nil, err
 		}
-		for j := range c.Sources[i].Aims {
-			row, err := b.accountRow(k, &c.Sources[i].Aims[j])
-			if err != nil {
-				return nil, err
-			}
-			rows = append(rows, row)
-		}
 	}
+	rows := slices.Concat(bySource...)
 	sort.SliceStable(rows, func(i, j int) bool {
 		if rows[i].Debt != rows[j].Debt {
 			return rows[i].Debt > rows[j].Debt
 		}
 		return rows[i].Source < rows[j].Source
 	})
+	return rows, nil
+}
+
+// accountsOf makes the rows of one source, in the order of its aims.
+func (b *books) accountsOf(source *Source) ([]AccountRow, error) {
+	k, err := newKnowledge(source, b.frames)
+	if err != nil {
+		return nil, err
+	}
+	var rows []AccountRow
+	for j := range source.Aims {
+		row, err := b.accountRow(k, &source.Aims[j])
+		if err != nil {
+			return nil, err
+		}
+		rows = append(rows, row)
+	}
 	return rows, nil
 }
 

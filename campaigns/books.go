@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"sort"
+	"sync"
 	"time"
 
 	"example.org/tallystick/sched"
@@ -11,7 +12,7 @@ import (
 )
 
 // books are the accounts of a campaign at one moment: a pure function of the campaign, the logbook and
-// that moment.
+// that moment. Goroutines may ask them side by side.
 type books struct {
 	at           time.Time
 	now          time.Time          // sessions that end later are still to come; not after at
@@ -19,6 +20,7 @@ type books struct {
 	entries      map[string][]Entry // what was done or partly done before the moment, by source, in time order
 	frames       *frames
 	campaign     *Campaign
+	known        sync.Mutex // guards what follows
 	cadences     map[*Aim]cadenceAccount
 	coverages    map[*Aim]coverage // what has been worked out already, by aim
 	passings     map[*Aim]passages
@@ -27,13 +29,18 @@ type books struct {
 }
 
 // once works out what an aim's account says, or remembers it: a job for each receiver and the account's own row ask.
-func once[T any](known map[*Aim]T, aim *Aim, work func() (T, error)) (T, error) {
-	if have, ok := known[aim]; ok {
+func once[T any](b *books, known map[*Aim]T, aim *Aim, work func() (T, error)) (T, error) {
+	b.known.Lock()
+	have, ok := known[aim]
+	b.known.Unlock()
+	if ok {
 		return have, nil
 	}
 	made, err := work()
 	if err == nil {
+		b.known.Lock()
 		known[aim] = made
+		b.known.Unlock()
 	}
 	return made, err
 }
@@ -108,7 +115,7 @@ func (b *books) sunDeg(source *Source, at time.Time) float64 {
 }
 
 func (b *books) cadence(source *Source, aim *Aim) cadenceAccount {
-	a, _ := once(b.cadences, aim, func() (cadenceAccount, error) { return b.balance(source, aim), nil })
+	a, _ := once(b, b.cadences, aim, func() (cadenceAccount, error) { return b.balance(source, aim), nil })
 	return a
 }
 

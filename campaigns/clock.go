@@ -1,6 +1,7 @@
 package campaigns
 
 import (
+	"sync/atomic"
 	"time"
 
 	"example.org/tallystick/sky"
@@ -62,10 +63,17 @@ func utcOf(tdb float64) time.Time {
 	return sky.TimeOfMJD(tdb - (sky.TTMinusUTCSec(t)+sky.TDBMinusTTSec(tdb))/secPerDay)
 }
 
-// frames keeps a day's frame once it has been made.
-type frames struct{ byDay map[int]*sky.Frame }
+// frames keeps a day's frame once it has been made. Goroutines may ask it side by side.
+type frames struct {
+	pages [1 + (lastDay-firstDay)/framesInPage]atomic.Pointer[framePage]
+}
 
-func newFrames() *frames { return &frames{byDay: map[int]*sky.Frame{}} }
+// A framePage holds the frames of some days, each once it has been asked for.
+type framePage [framesInPage]atomic.Pointer[sky.Frame]
+
+const framesInPage = 256
+
+func newFrames() *frames { return &frames{} }
 
 // The first and last day that frames are made for, modified Julian dates: inside what sky works out. A log line
 // from before it is given the light time of the first day, which is wrong by minutes and harms nobody.
@@ -84,13 +92,36 @@ func (f *frames) near(t time.Time) (*sky.Frame, time.Time) {
 	if mjd < firstDay || mjd > lastDay+1 {
 		t = sky.TimeOfMJD(float64(day) + 0.5)
 	}
-	if fr, ok := f.byDay[day]; ok {
-		return fr, t
+	if have := f.of(day); have != nil {
+		return have, t
 	}
-	fr, err := sky.NewFrame(sky.TimeOfMJD(float64(day) + 0.5))
+	fr, err := sky.NewFrameBeside(sky.TimeOfMJD(float64(day)+0.5), f.of(day-2), f.of(day-1), f.of(day+1), f.of(day+2))
 	if err != nil {
 		panic("campaigns: " + err.Error()) // the days are within what sky works out
 	}
-	f.byDay[day] = fr
+	f.keep(day, fr)
 	return fr, t
+}
+
+// of is a day's frame, or nil while it has not been made.
+func (f *frames) of(day int) *sky.Frame {
+	if day < firstDay || day > lastDay {
+		return nil
+	}
+	page := f.pages[(day-firstDay)/framesInPage].Load()
+	if page == nil {
+		return nil
+	}
+	return page[(day-firstDay)%framesInPage].Load()
+}
+
+// keep keeps a day's frame. Where two goroutines have made one, they are the same.
+func (f *frames) keep(day int, frame *sky.Frame) {
+	at := &f.pages[(day-firstDay)/framesInPage]
+	page := at.Load()
+	if page == nil {
+		at.CompareAndSwap(nil, new(framePage))
+		page = at.Load()
+	}
+	page[(day-firstDay)%framesInPage].Store(frame)
 }

@@ -124,7 +124,7 @@ func (c coverage) why() string {
 // coverage counts the visits of a phase coverage aim since its date. A minute counts in the bin it falls in
 // until the visit is full; a visit is full after the wanted minutes or, where that is shorter, the whole bin.
 func (b *books) coverage(k *knowledge, aim *Aim) coverage {
-	c, _ := once(b.coverages, aim, func() (coverage, error) { return b.cover(k, aim), nil })
+	c, _ := once(b, b.coverages, aim, func() (coverage, error) { return b.cover(k, aim), nil })
 	return c
 }
 

@@ -41,7 +41,7 @@ func (m measurement) why() string {
 
 // measured says how well the logbook knows what an aim wants measured.
 func (b *books) measured(k *knowledge, aim *Aim) (measurement, error) {
-	return once(b.measurements, aim, func() (measurement, error) { return b.measure(k, aim) })
+	return once(b, b.measurements, aim, func() (measurement, error) { return b.measure(k, aim) })
 }
 
 func (b *books) measure(k *knowledge, aim *Aim) (measurement, error) {

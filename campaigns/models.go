@@ -150,7 +150,7 @@ func (c connection) why() string {
 // connected predicts the error of the pulse phase at the session after the books' moment, as it will be if the
 // source is not observed before.
 func (b *books) connected(k *knowledge, aim *Aim) (connection, error) {
-	return once(b.connections, aim, func() (connection, error) { return b.connect(k, aim) })
+	return once(b, b.connections, aim, func() (connection, error) { return b.connect(k, aim) })
 }
 
 func (b *books) connect(k *knowledge, aim *Aim) (connection, error) {

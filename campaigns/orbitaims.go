@@ -24,6 +24,10 @@ func (jb *jobBuilder) phaseCoverage(aim *Aim) {
 	minutes := jb.books.visitMinutes(k.source, aim)
 	full := jb.books.binMinutes(k.source, aim)
 	jb.visit(aim, minutes)
+	bins := make([]int, jb.prepared.Problem.Minutes+1) // by minute
+	for m := range bins {
+		bins[m] = binOf(k.phase(jb.prepared.Instant(m)), aim.Bins)
+	}
 	for i := range c.needs {
 		missing := math.Min(c.missing(i), mostNeed)
 		if missing <= 0 {
@@ -34,7 +38,7 @@ func (jb *jobBuilder) phaseCoverage(aim *Aim) {
 			Label: fmt.Sprintf("orbital phase %.2f to %.2f", lo, hi),
 			Scale: jb.scale(missing * full / minutes), Curve: sched.Share, Wanted: max(1, shares(full)),
 			Cum: jb.gather(func(m int) float64 {
-				if binOf(jb.source.phases[m], aim.Bins) != i || jb.untimable(m) {
+				if bins[m] != i || jb.untimable(m) {
 					return 0
 				}
 				return 1

@@ -96,7 +96,7 @@ func (p *passages) flag() string {
 // passages counts what has been caught since the aim's date, of each passage the share of its weight, and what of the
 // rest was missed.
 func (b *books) passages(k *knowledge, aim *Aim) (passages, error) {
-	return once(b.passings, aim, func() (passages, error) { return b.pass(k, aim) })
+	return once(b, b.passings, aim, func() (passages, error) { return b.pass(k, aim) })
 }
 
 func (b *books) pass(k *knowledge, aim *Aim) (passages, error) {

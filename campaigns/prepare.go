@@ -172,11 +172,12 @@ func (p *Prepared) drawSun() {
 }
 
 // addSources fills in tracks, places, nodes and jobs: jobs in order of source name and receiver, and for each
-// its nodes in order of cable turn.
+// its nodes in order of cable turn. Each source is worked out for itself; what it adds is joined in order.
 func (p *Prepared) addSources(b *books, bars map[string]bool) error {
-	p.sources = make([]preparedSource, len(p.Campaign.Sources))
-	p.Tracks = make([]Track, len(p.Campaign.Sources))
-	order := make([]int, len(p.Campaign.Sources))
+	n := len(p.Campaign.Sources)
+	p.sources = make([]preparedSource, n)
+	p.Tracks = make([]Track, n)
+	order := make([]int, n)
 	for i := range order {
 		order[i] = i
 		p.sourceByName[p.Campaign.Sources[i].Name] = i
@@ -184,21 +185,32 @@ func (p *Prepared) addSources(b *books, bars map[string]bool) error {
 	sort.Slice(order, func(a, b int) bool {
 		return p.Campaign.Sources[order[a]].Name < p.Campaign.Sources[order[b]].Name
 	})
-	for _, i := range order {
-		k, err := newKnowledge(&p.Campaign.Sources[i], b.frames)
-		if err != nil {
-			return err
+	added := make([]addedSource, n)
+	sideBySide(n, func(at int) { added[at] = p.addSource(order[at], b, bars) })
+	for i := range added {
+		if added[i].err != nil {
+			return added[i].err
 		}
-		if err := p.addSource(i, k, b, bars); err != nil {
-			return err
-		}
+		p.join(&added[i])
 	}
 	return nil
 }
 
-// addSource does the work for one source.
-func (p *Prepared) addSource(i int, k *knowledge, b *books, bars map[string]bool) error {
+// An addedSource is what one source adds to a session's problem.
+type addedSource struct {
+	places []place
+	jobs   []sched.Job
+	open   [][][]sched.Window // by job and place
+	err    error
+}
+
+// addSource does the work for one source. It writes nothing of p but the source's own track and preparedSource.
+func (p *Prepared) addSource(i int, b *books, bars map[string]bool) (added addedSource) {
 	src := &p.Campaign.Sources[i]
+	k, err := newKnowledge(src, b.frames)
+	if err != nil {
+		return addedSource{err: err}
+	}
 	ps := &p.sources[i]
 	*ps = preparedSource{src: src, knowledge: k, place: p.frame.Place(src.target())}
 	ps.hide(p)
@@ -206,19 +218,29 @@ func (p *Prepared) addSource(i int, k *knowledge, b *books, bars map[string]bool
 	p.Tracks[i] = track.Track
 	ps.listen(p)
 
-	first := len(p.places)
-	p.places = append(p.places, p.placesOf(i, track)...)
-	jobs, err := p.jobs(b, ps, track, bars)
-	if err != nil {
-		return err
+	added.places = p.placesOf(i, track)
+	if added.jobs, added.err = p.jobs(b, ps, track, bars); added.err != nil {
+		return added
 	}
-	for _, job := range jobs {
-		p.Problem.Jobs = append(p.Problem.Jobs, job)
-		for at := first; at < len(p.places); at++ {
+	added.open = make([][][]sched.Window, len(added.jobs))
+	for j := range added.jobs {
+		for at := range added.places {
+			added.open[j] = append(added.open[j], ps.clear(added.places[at].open, added.jobs[j].Receiver))
+		}
+	}
+	return added
+}
+
+// join appends what a source adds.
+func (p *Prepared) join(added *addedSource) {
+	first := len(p.places)
+	p.places = append(p.places, added.places...)
+	for j := range added.jobs {
+		p.Problem.Jobs = append(p.Problem.Jobs, added.jobs[j])
+		for at := range added.places {
 			p.Problem.Nodes = append(p.Problem.Nodes, sched.Node{
-				Job: len(p.Problem.Jobs) - 1, Place: at, Turn: p.places[at].turn, Open: ps.clear(p.places[at].open, job.Receiver),
+				Job: len(p.Problem.Jobs) - 1, Place: first + at, Turn: added.places[at].turn, Open: added.open[j][at],
 			})
 		}
 	}
-	return nil
 }

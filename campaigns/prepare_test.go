@@ -4,6 +4,7 @@ import (
 	"context"
 	"math"
 	"reflect"
+	"runtime"
 	"slices"
 	"strconv"
 	"strings"
@@ -82,6 +83,71 @@ func TestPreparingTwiceGivesTheSameProblem(t *testing.T) {
 	if !reflect.DeepEqual(a.Problem, b.Problem) {
 		t.Error(cmp.Diff(a.Problem, b.Problem))
 	}
+}
+
+// Sources are worked out side by side, and slews too: nothing may depend on how many are at a time.
+func TestPreparingOnAnyNumberOfCoresGivesTheSameProblem(t *testing.T) {
+	f, now := openDemo(t)
+	on := func(cores int, s *Session) *Prepared {
+		defer runtime.GOMAXPROCS(runtime.GOMAXPROCS(cores))
+		p, err := Prepare(f.Campaign, f.Logbook, s, PrepareOptions{At: now})
+		if err != nil {
+			t.Fatal(err)
+		}
+		return p
+	}
+	for i := range f.Campaign.Sessions {
+		s := &f.Campaign.Sessions[i]
+		one, many := on(1, s), on(8, s)
+		if !reflect.DeepEqual(one.Problem, many.Problem) {
+			t.Errorf("%s: the problem: %s", s.Name, cmp.Diff(one.Problem, many.Problem))
+		}
+		if !reflect.DeepEqual(one.Tracks, many.Tracks) {
+			t.Errorf("%s: the tracks differ", s.Name)
+		}
+		if !reflect.DeepEqual(one.Accounts, many.Accounts) {
+			t.Errorf("%s: the accounts: %s", s.Name, cmp.Diff(one.Accounts, many.Accounts))
+		}
+	}
+}
+
+// The table takes a short cut where one axis is slower whatever the other does. Here the longest way is sought on both.
+func TestTheLongestMoveIsThatOfBothAxes(t *testing.T) {
+	const last = 40
+	rapid.Check(t, func(t *rapid.T) {
+		mount := sky.Mount{
+			Kind:          rapid.SampledFrom([]sky.MountKind{sky.AltAz, sky.Equatorial, sky.Transit}).Draw(t, "mount"),
+			RateDegPerMin: [2]float64{rapid.Float64Range(1, 60).Draw(t, "rate a"), rapid.Float64Range(1, 60).Draw(t, "rate b")},
+			AccelDegPerS2: [2]float64{rapid.Float64Range(0, 1).Draw(t, "acceleration a"), rapid.Float64Range(0, 1).Draw(t, "acceleration b")},
+			SettleSec:     rapid.Float64Range(0, 30).Draw(t, "settling"),
+		}
+		track := func() []sky.Axes {
+			a, b := rapid.Float64Range(-200, 200).Draw(t, "a"), rapid.Float64Range(5, 85).Draw(t, "b")
+			rateA, rateB := rapid.Float64Range(-20, 20).Draw(t, "drift a"), rapid.Float64Range(-1, 1).Draw(t, "drift b")
+			bend := rapid.Float64Range(-0.2, 0.2).Draw(t, "bend")
+			var axes []sky.Axes
+			for m := range last + 1 {
+				x := float64(m)
+				axes = append(axes, sky.Axes{A: a + rateA*x + bend*x*x, B: b + rateB*x - bend*x*x})
+			}
+			return axes
+		}
+		from, to := track(), track()
+		first, early := rapid.IntRange(0, last).Draw(t, "first"), rapid.IntRange(0, last).Draw(t, "early")
+		end, late := min(first+slewBinMin, last), early+rapid.IntRange(1, 4).Draw(t, "more")
+		way := sky.Axes{}
+		for d := first; d <= end; d++ {
+			for at := d + early; at <= d+late; at++ {
+				q := to[min(at, last)]
+				way.A, way.B = math.Max(way.A, math.Abs(q.A-from[d].A)), math.Max(way.B, math.Abs(q.B-from[d].B))
+			}
+		}
+		m := mover{pace: mount.Pace(), last: last}
+		depart, arrive := newHeldTrack(from), newHeldTrack(to)
+		if got, want := m.longest(&depart, &arrive, first, end, early, late), mount.MoveSec(sky.Axes{}, way); got != want {
+			t.Fatalf("%g s, want %g", got, want)
+		}
+	})
 }
 
 // The table of slews is what the planner and its judge go by, so no move may take longer than it says.

@@ -2,8 +2,6 @@ package campaigns
 
 import (
 	"math"
-	"runtime"
-	"sync"
 
 	"example.org/tallystick/sched"
 	"example.org/tallystick/sky"
@@ -31,59 +29,50 @@ func slewTable(mount sky.Mount, places []place, minutes int, breaks []sched.Span
 	n := len(places)
 	bins := (minutes + slewBinMin) / slewBinMin
 	t := sched.SlewTable{Places: n, BinMin: slewBinMin, Bins: bins, Sec: make([]uint16, (bins+len(breaks))*n*n)}
-	m := mover{mount: mount, places: places, held: make([][]sky.Axes, n), last: minutes}
+	m := mover{pace: mount.Pace(), places: places, held: make([]heldTrack, n), last: minutes}
 	for i := range places {
-		m.held[i] = heldWithin(places[i])
+		m.held[i] = newHeldTrack(heldWithin(places[i]))
 	}
-
-	var wg sync.WaitGroup
-	workers := min(runtime.GOMAXPROCS(0), n)
-	for w := range workers {
-		wg.Go(func() {
-			for from := w; from < n; from += workers {
-				m.fill(&t, from, breaks)
-			}
-		})
-	}
-	wg.Wait()
+	sideBySide(n, func(from int) { m.fill(&t, from, breaks) })
 	return t
 }
 
 // A mover knows where each place is left from and arrived at, minute by minute.
 type mover struct {
-	mount  sky.Mount
+	pace   sky.Pace
 	places []place
-	held   [][]sky.Axes // by place
-	last   int          // the last minute
+	held   []heldTrack // by place
+	last   int         // the last minute
 }
 
 // fill writes all moves from one place. Of each bin it keeps the longest move.
 func (m *mover) fill(t *sched.SlewTable, from int, breaks []sched.Span) {
 	n := len(m.places)
 	leaves := m.leaves(from, t.Bins)
+	depart := &m.held[from]
 	for to := range n {
-		depart, arrive := m.held[from], m.held[to]
+		arrive := &m.held[to]
 		if from != to {
 			before := 0
 			for b := range t.Bins {
 				first, last := b*slewBinMin, min((b+1)*slewBinMin, m.last)
 				sec := &t.Sec[(b*n+from)*n+to]
 				if !leaves[b] {
-					*sec = ceilSec(m.mount.MoveSec(depart[first], arrive[first]))
+					*sec = ceilSec(m.pace.MoveSec(arrive.axes[0][first]-depart.axes[0][first], arrive.axes[1][first]-depart.axes[1][first]))
 					continue
 				}
 				if b == 0 || !leaves[b-1] {
-					before = m.minutesToReach(depart[first], arrive, first, 0)
+					before = m.minutesToReach(depart, first, arrive, first, 0)
 				}
-				after := m.minutesToReach(depart[last], arrive, last, before)
+				after := m.minutesToReach(depart, last, arrive, last, before)
 				*sec = ceilSec(m.longest(depart, arrive, first, last, min(before, after), max(before, after)+1))
 				before = after
 			}
 		}
 		for i, b := range breaks {
 			// Nothing moves in a break: the way is from where the telescope was when it began.
-			whole := m.minutesToReach(depart[b.From], arrive, b.To, 0)
-			t.Sec[((t.Bins+i)*n+from)*n+to] = ceilSec(m.wayTo(depart[b.From], arrive, b.To+whole, b.To+whole+2))
+			whole := m.minutesToReach(depart, b.From, arrive, b.To, 0)
+			t.Sec[((t.Bins+i)*n+from)*n+to] = ceilSec(m.wayTo(depart, b.From, arrive, b.To+whole, b.To+whole+2))
 		}
 	}
 }
@@ -101,35 +90,81 @@ func (m *mover) leaves(from, bins int) []bool {
 
 // longest is the longest move for departures from minute first to minute last that arrive early to late whole
 // minutes later: the longest ways, on either axis, to where the target is at those minutes bound every move.
-func (m *mover) longest(depart, arrive []sky.Axes, first, last, early, late int) float64 {
-	var a, b float64
-	for d := first; d <= last; d++ {
-		p := &depart[d]
-		for at := d + early; at <= d+late; at++ {
-			q := &arrive[min(at, m.last)]
-			a, b = max(a, math.Abs(q.A-p.A)), max(b, math.Abs(q.B-p.B))
+// Where one axis takes longer whatever the other does meanwhile, only that one is looked at.
+func (m *mover) longest(depart, arrive *heldTrack, first, last, early, late int) float64 {
+	at := min(first+early, m.last)
+	departures, arrivals := float64(last-first), float64(last-first+late-early)
+	var least, most [2]float64
+	for axis := range least {
+		least[axis] = math.Abs(arrive.axes[axis][at] - depart.axes[axis][first])
+		most[axis] = least[axis] + departures*depart.stepDeg[axis] + arrivals*arrive.stepDeg[axis] + 1e-9 // rounding
+	}
+	switch {
+	case m.pace.Slower(0, least[0], most[1]):
+		return m.pace.MoveSec(m.longestWay(0, depart, arrive, first, last, early, late), 0)
+	case m.pace.Slower(1, least[1], most[0]):
+		return m.pace.MoveSec(0, m.longestWay(1, depart, arrive, first, last, early, late))
+	}
+	return m.pace.MoveSec(m.longestWay(0, depart, arrive, first, last, early, late), m.longestWay(1, depart, arrive, first, last, early, late))
+}
+
+// longestWay is the longest way on one axis, degrees. Where the target only goes one way meanwhile, and stays on one
+// side of the telescope, the longest is to where it is last, or first.
+func (m *mover) longestWay(axis int, depart, arrive *heldTrack, first, last, early, late int) float64 {
+	from, to := depart.axes[axis][first:last+1], arrive.axes[axis]
+	lo, hi := first+early, last+late
+	if hi > m.last {
+		way := 0.0
+		for i, p := range from {
+			for at := lo + i; at <= first+late+i; at++ {
+				way = max(way, math.Abs(to[min(at, m.last)]-p))
+			}
+		}
+		return way
+	}
+	if rises := arrive.rises[axis][lo] >= int32(hi); rises || arrive.falls[axis][lo] >= int32(hi) {
+		low, high := to[lo], to[hi]
+		if !rises {
+			low, high = high, low
+		}
+		room := float64(last-first)*depart.stepDeg[axis] + 1e-9
+		switch {
+		case low-from[0] > room && rises, from[0]-high > room && !rises:
+			early = late
+		case low-from[0] > room, from[0]-high > room:
+			late = early
 		}
 	}
-	return m.mount.MoveSec(sky.Axes{}, sky.Axes{A: a, B: b})
+	way := 0.0
+	for shift := early; shift <= late; shift++ {
+		on := to[first+shift:][:len(from)]
+		for i, p := range from {
+			if d := math.Abs(on[i] - p); d > way {
+				way = d
+			}
+		}
+	}
+	return way
 }
 
-// wayTo is the longest move to where the target is from minute first to minute last.
-func (m *mover) wayTo(p sky.Axes, arrive []sky.Axes, first, last int) float64 {
+// wayTo is the longest move, for a departure at a minute, to where the target is from minute first to minute last.
+func (m *mover) wayTo(depart *heldTrack, minute int, arrive *heldTrack, first, last int) float64 {
+	pa, pb := depart.axes[0][minute], depart.axes[1][minute]
 	var a, b float64
 	for at := first; at <= last; at++ {
-		q := &arrive[min(at, m.last)]
-		a, b = max(a, math.Abs(q.A-p.A)), max(b, math.Abs(q.B-p.B))
+		q := min(at, m.last)
+		a, b = max(a, math.Abs(arrive.axes[0][q]-pa)), max(b, math.Abs(arrive.axes[1][q]-pb))
 	}
-	return m.mount.MoveSec(sky.Axes{}, sky.Axes{A: a, B: b})
+	return m.pace.MoveSec(a, b)
 }
 
-// minutesToReach is how many whole minutes a move takes that departs at a minute: on arrival the target is
-// between where it is then and a minute later. The target goes on moving meanwhile, so it is asked again where
-// it will be until that changes the answer no more. The search begins at a guess.
-func (m *mover) minutesToReach(p sky.Axes, arrive []sky.Axes, at, guess int) int {
+// minutesToReach is how many whole minutes a move takes that departs at a minute, with the target where it is from
+// minute at on: on arrival the target is between where it is then and a minute later. The target goes on moving
+// meanwhile, so it is asked again where it will be until that changes the answer no more. The search begins at a guess.
+func (m *mover) minutesToReach(depart *heldTrack, minute int, arrive *heldTrack, at, guess int) int {
 	whole := guess
 	for range mostPasses {
-		next := int(m.wayTo(p, arrive, at+whole, at+whole+1) / 60)
+		next := int(m.wayTo(depart, minute, arrive, at+whole, at+whole+1) / 60)
 		if next == whole || next == whole-1 { // one less where the target comes towards the telescope
 			return next
 		}
@@ -155,4 +190,39 @@ func heldWithin(p place) []sky.Axes {
 		axes[m] = p.axes[min(max(m, p.within.From), p.within.To)]
 	}
 	return axes
+}
+
+// A heldTrack is where the telescope is left from or arrives at, by axis and minute.
+type heldTrack struct {
+	axes    [2][]float64
+	stepDeg [2]float64 // the longest way in a minute
+	rises   [2][]int32 // by minute: until when it does not fall
+	falls   [2][]int32 // by minute: until when it does not rise
+}
+
+func newHeldTrack(held []sky.Axes) heldTrack {
+	var h heldTrack
+	n := len(held)
+	for axis := range h.axes {
+		h.axes[axis], h.rises[axis], h.falls[axis] = make([]float64, n), make([]int32, n), make([]int32, n)
+	}
+	for m, at := range held {
+		h.axes[0][m], h.axes[1][m] = at.A, at.B
+	}
+	for axis, track := range h.axes {
+		rises, falls := h.rises[axis], h.falls[axis]
+		rises[n-1], falls[n-1] = int32(n-1), int32(n-1)
+		for m := n - 2; m >= 0; m-- {
+			step := track[m+1] - track[m]
+			h.stepDeg[axis] = max(h.stepDeg[axis], math.Abs(step))
+			rises[m], falls[m] = int32(m), int32(m)
+			if step >= 0 {
+				rises[m] = rises[m+1]
+			}
+			if step <= 0 {
+				falls[m] = falls[m+1]
+			}
+		}
+	}
+	return h
 }

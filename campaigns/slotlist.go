@@ -59,8 +59,9 @@ func (p *Prepared) slotRow(plan sched.Plan, i int) SlotRow {
 		Pinned: slot.Pinned, Note: slot.Note,
 	}
 	row.RADeg, row.DecDeg = ps.icrsAt(p.Instant(slot.Start))
-	if ps.phases != nil {
-		row.PhaseStart, row.PhaseEnd = &ps.phases[start], &ps.phases[end]
+	if ps.src.Orbit != nil {
+		from, to := ps.knowledge.phase(p.Instant(start)), ps.knowledge.phase(p.Instant(end))
+		row.PhaseStart, row.PhaseEnd = &from, &to
 	}
 	row.SNR, row.ToaUs = ps.expect(job.Receiver, start, end)
 	row.SNRScatter = ps.scatter(job.Receiver, start, end)

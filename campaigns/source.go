@@ -17,7 +17,6 @@ type preparedSource struct {
 	setups    []radiometer.Setup // by index in Problem.Receivers
 	effective [][]int32          // by receiver: hundredths of an effective minute from the start to each minute
 	weights   [][]float64        // by receiver: what each minute counts for, 0..1
-	phases    []float64          // orbital phase heard at each minute; nil without an orbit
 	eclipses  []eclipsed         // by receiver
 }
 
@@ -69,7 +68,7 @@ func (ps *preparedSource) icrsAt(t time.Time) (ra, dec float64) {
 	return math.Mod(ra+360, 360), dec
 }
 
-// listen works out what each receiver of the session hears of the source, and what its orbit does meanwhile.
+// listen works out what each receiver of the session hears of the source.
 func (ps *preparedSource) listen(p *Prepared) {
 	el := p.Tracks[p.sourceByName[ps.src.Name]].ElDeg
 	for _, rec := range p.Problem.Receivers {
@@ -84,12 +83,6 @@ func (ps *preparedSource) listen(p *Prepared) {
 		ps.setups = append(ps.setups, set)
 		ps.weights = append(ps.weights, weights)
 		ps.effective = append(ps.effective, cum)
-	}
-	if ps.src.Orbit != nil {
-		ps.phases = make([]float64, len(el))
-		for m := range ps.phases {
-			ps.phases[m] = ps.knowledge.phase(p.Instant(m))
-		}
 	}
 }
 
