@@ -15,7 +15,7 @@ func TestCeilingIsNeverBelowTheBestPlan(t *testing.T) {
 	for seed := range uint64(150) {
 		p := tiny(seed)
 		best := bruteForce(p)
-		tb := newTables(p)
+		tb := newTables(p, 1)
 		b := newBounder(tb, tb.minutePrices(), never)
 		r := rand.New(rand.NewPCG(seed, 5))
 		for range 4 {

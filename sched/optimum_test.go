@@ -108,7 +108,7 @@ func TestCeilingIsAboveThePlansOfOtherSeeds(t *testing.T) {
 			t.Fatalf("seed %d: %d ceilings, %v", seed, len(ceilings), err)
 		}
 		lowest := slices.Min(ceilings)
-		tb := newTables(p)
+		tb := newTables(p, 1)
 		for other := range uint64(3) {
 			l := newLane(tb, tb.minutePrices(), 100+other, never)
 			first := l.complete(tb.fitting(r.Plan))

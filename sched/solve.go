@@ -118,7 +118,7 @@ type search struct {
 }
 
 func newSearch(p *Problem, o Options, halt func() bool) *search {
-	t := newTables(p)
+	t := newTables(p, o.Workers)
 	t.labels = labelsFor(o)
 	s := &search{t: t, prices: t.minutePrices(), value: unreachable, notes: map[int]string{}}
 	s.bound = newBounder(t, s.prices, halt)

@@ -44,19 +44,26 @@ const maxSearched = 320
 // maxSlotsSearched is the most slots of one job that the search will plan.
 const maxSlotsSearched = 8
 
-func newTables(p *Problem) *tables {
+// newTables makes the tables of a problem on so many goroutines; they do not depend on their number.
+func newTables(p *Problem, workers int) *tables {
 	t := &tables{p: p, span: p.Minutes + 1, labels: mostLabels, breakTo: make([]bool, p.Minutes+1)}
 	t.cutWindows()
 	t.rows = make([]worthRows, len(p.Jobs))
 	t.best = make([]Micro, len(p.Jobs))
 	t.choose()
-	var memo termMemo
-	for j := range p.Jobs {
-		if t.chosen[j] {
-			t.rows[j] = t.worthRows(j, &memo)
-			t.chosen[j] = t.best[j] > 0 || p.Jobs[j].Must
-		}
+	var work []func()
+	for w := range max(1, workers) {
+		work = append(work, func() {
+			var memo termMemo
+			for j := w; j < len(p.Jobs); j += max(1, workers) {
+				if t.chosen[j] {
+					t.rows[j] = t.worthRows(j, &memo)
+					t.chosen[j] = t.best[j] > 0 || p.Jobs[j].Must
+				}
+			}
+		})
 	}
+	inParallel(workers, work)
 	t.layBits()
 	t.layBonus()
 	t.layChanges()
