@@ -29,9 +29,10 @@ func (m *model) receive(msg tea.Msg) tea.Cmd {
 		if m.world.work == msg.work {
 			m.receiveProgress(msg)
 		}
-		return listenCmd(msg.work)
+		return withAlso(listenCmd(msg.work), m.review(msg.work.desk))
 	case plannedMsg:
 		m.receivePlanned(msg)
+		return m.review(msg.work.desk)
 	case recordedMsg:
 		return m.receiveRecorded(msg)
 	case refreshedMsg:
@@ -84,12 +85,11 @@ func (m *model) receivePrepared(msg preparedMsg) tea.Cmd {
 	}
 	d.prepared, d.trouble = msg.prepared, ""
 	d.accounts = msg.prepared.Accounts
-	review := reviewCmd(m.world.folder, d.session)
 	if msg.err != nil {
 		m.warn("the saved plan could not be read: %v", msg.err)
 	}
 	if msg.saved == nil {
-		return tea.Batch(m.startPlanning(true, m.world.planFrom()), review)
+		return m.startPlanning(true, m.world.planFrom()) // the review waits until there is a plan to look at
 	}
 	d.state = m.bindSaved(d, msg.saved)
 	d.saved, d.onDisk = d.state, true
@@ -101,7 +101,17 @@ func (m *model) receivePrepared(msg preparedMsg) tea.Cmd {
 		m.tell("the saved plan of %s", msg.saved.MadeAt.UTC().Format("2006-01-02 15:04 UTC"))
 	}
 	m.offerDraft()
-	return review
+	return m.review(d)
+}
+
+// review lets the accounts of a desk be worked out, with when each source can next be observed, unless that was begun
+// already.
+func (m *model) review(d *desk) tea.Cmd {
+	if d.reviewing {
+		return nil
+	}
+	d.reviewing = true
+	return reviewCmd(m.world.folder, d.session)
 }
 
 // bindSaved finds a saved plan in the prepared session, and tells what it lost.

@@ -44,8 +44,9 @@ type desk struct {
 	prepared *campaigns.Prepared // its problem carries the bars and no pins; nil until prepared
 	trouble  string              // why it could not be prepared
 
-	accounts []campaigns.AccountRow // at the start of the session
-	reviewed bool                   // the accounts say when each source can next be observed
+	accounts  []campaigns.AccountRow // at the start of the session
+	reviewing bool                   // it has been begun to find out
+	reviewed  bool                   // the accounts say when each source can next be observed
 
 	state   snapshot // the plan as it stands
 	held    *heldEdit
