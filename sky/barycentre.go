@@ -1,8 +1,6 @@
 package sky
 
 import (
-	"fmt"
-	"math"
 	"time"
 )
 
@@ -18,8 +16,8 @@ func (f *Frame) barycentric(x float64) vec {
 	return r
 }
 
-// RoemerSec returns by how much earlier a signal from a target passes the Earth's centre than the barycentre of
-// the solar system, at the frame's instant, in seconds: within ±500.
+// RoemerSecAt returns by how much earlier a signal from a target passes the Earth's centre than the barycentre of
+// the solar system, at an instant within FrameReach of the frame's, in seconds: within ±500.
 //
 //	r · n / c
 //
@@ -28,35 +26,13 @@ func (f *Frame) barycentric(x float64) vec {
 // 10 ms in the Earth's place; 0.04 s in all, which is 1e−6 turns of a 0.5-day orbit
 // Source:   Edwards, Hobbs & Manchester 2006, MNRAS 372, 1549, section 2.3
 // Checked:  TestBarycentre (BAR-010 to BAR-017)
-func (f *Frame) RoemerSec(t Target) float64 { return f.RoemerSecAt(t, f.at) }
-
-// RoemerSecAt is RoemerSec at an instant within FrameReach of the frame's.
 func (f *Frame) RoemerSecAt(t Target, at time.Time) float64 {
 	return f.barycentric(f.days(at)).dot(t.direction(f.nodes[1].days)) * lightTimeAU
 }
 
 // BarycentricMJD returns the TDB date, as MJD, at which a signal that reaches the Earth's centre at a UTC instant
-// passes the barycentre of the solar system. Neglects what RoemerSec does.
+// passes the barycentre of the solar system. Neglects what RoemerSecAt does.
 func (f *Frame) BarycentricMJD(t Target, at time.Time) float64 {
 	mjd := MJD(at)
 	return mjd + (TTMinusUTCSec(at)+TDBMinusTTSec(mjd)+f.RoemerSecAt(t, at))/secondsPerDay
-}
-
-// ArrivalUTC returns when a signal that passes the barycentre of the solar system at a TDB date, given as MJD,
-// reaches the Earth's centre. It errs for dates outside 1972 to 2099. Neglects what RoemerSec does.
-func ArrivalUTC(t Target, barycentricMJD float64) (time.Time, error) {
-	if math.IsNaN(barycentricMJD) || math.IsInf(barycentricMJD, 0) {
-		return time.Time{}, fmt.Errorf("barycentric date MJD %g: not a number that can be a date", barycentricMJD)
-	}
-	at := TimeOfMJD(barycentricMJD)
-	f, err := NewFrame(at)
-	if err != nil {
-		return time.Time{}, err
-	}
-	// The Earth moves 30 km/s: each round leaves a ten-thousandth of what was wrong.
-	for range 4 {
-		off := (f.BarycentricMJD(t, at) - barycentricMJD) * secondsPerDay
-		at = at.Add(-time.Duration(math.Round(off*1e6)) * time.Microsecond)
-	}
-	return at, nil
 }

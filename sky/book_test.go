@@ -88,7 +88,7 @@ func TestBookHorizon(t *testing.T) {
 func TestBookSeparation(t *testing.T) {
 	arcturus := placeOfDate(15*(14+15/60.+39.7/3600), 19+10/60.+57/3600.)
 	spica := placeOfDate(15*(13+25/60.+11.6/3600), -(11 + 9/60. + 41/3600.))
-	facts{t}.is("AST-037", SeparationDeg(arcturus, spica))
+	facts{t}.is("AST-037", separationDeg(arcturus, spica))
 }
 
 // Ecliptic to equator and back is a turn about the first axis.

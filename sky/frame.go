@@ -346,9 +346,6 @@ func (f *Frame) RADec(p Place, at time.Time) (raDeg, decDeg float64) {
 	return mod(math.Atan2(v[1], v[0])*degPerRad, 360), math.Atan2(v[2], math.Hypot(v[0], v[1])) * degPerRad
 }
 
-// SeparationDeg returns the angle between two places of one frame at its instant, 0 to 180, exact at both ends.
-func SeparationDeg(a, b Place) float64 { return between(a.at, b.at) * degPerRad }
-
 // SeparationDeg returns the angle between two places of this frame at an instant near its own, 0 to 180.
 func (f *Frame) SeparationDeg(a, b Place, at time.Time) float64 {
 	x := f.days(at)

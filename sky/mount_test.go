@@ -130,30 +130,6 @@ func TestTurns(t *testing.T) {
 	})
 }
 
-func TestTurnsOfATrack(t *testing.T) {
-	m := Mount{Kind: AltAz, TravelDeg: [2]float64{-90, 300}}
-	track := []float64{240, 280, 320, 360, 320}
-	want := []TurnSpan{
-		{-1, [][2]float64{{0.75, 4}}},
-		{0, [][2]float64{{0, 1.5}}},
-	}
-	got := m.Turns(track)
-	if !slices.EqualFunc(got, want, func(a, b TurnSpan) bool { return a.Turn == b.Turn && slices.Equal(a.In, b.In) }) {
-		t.Errorf("turns %v, want %v", got, want)
-	}
-	if got := (Mount{Kind: Transit}).Turns(track); len(got) != 1 || got[0].In[0] != [2]float64{0, 4} {
-		t.Errorf("transit mount: %v", got)
-	}
-}
-
-func TestUnwrap(t *testing.T) {
-	track := []float64{350, 355, 2, 10, 358}
-	Unwrap(track)
-	if want := []float64{350, 355, 362, 370, 358}; !slices.Equal(track, want) {
-		t.Errorf("%v, want %v", track, want)
-	}
-}
-
 // A transit mount sees a source for the short time its hour angle is within limits.
 func TestTransitMount(t *testing.T) {
 	s, err := NewSite(-30, 20, 100, 0)
@@ -177,19 +153,6 @@ func TestTransitMount(t *testing.T) {
 	}
 	if w.OpensBy.String() != "hour angle limit -1°" || w.ClosesBy.String() != "hour angle limit 1°" {
 		t.Errorf("%v to %v", w.OpensBy, w.ClosesBy)
-	}
-}
-
-func TestIntersect(t *testing.T) {
-	at := func(min int) time.Time { return time.Date(2027, 1, 1, 0, min, 0, 0, time.UTC) }
-	a := []Window{{From: at(0), To: at(10)}, {From: at(20), To: at(30)}}
-	b := []Window{{From: at(5), To: at(25), OpensBy: Cause{AzimuthStop, 1}, ClosesBy: Cause{AzimuthStop, 2}}}
-	want := []Window{
-		{From: at(5), To: at(10), OpensBy: Cause{AzimuthStop, 1}},
-		{From: at(20), To: at(25), ClosesBy: Cause{AzimuthStop, 2}},
-	}
-	if got := Intersect(a, b); !slices.Equal(got, want) {
-		t.Errorf("%v, want %v", got, want)
 	}
 }
 

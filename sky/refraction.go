@@ -13,7 +13,7 @@ type Refraction struct {
 // NewRefraction returns the refraction of air at a site: pressure there (not reduced to sea level) in hPa,
 // 100 to 1100; temperature in °C, −80 to 60; relative humidity, 0 to 1. It holds for wavelengths over 0.1 mm.
 //
-//	A = γ (1 − β),  B = −γ (β − γ/2)
+//	A tan z + B tan³ z, z the zenith distance as seen;  A = γ (1 − β),  B = −γ (β − γ/2)
 //
 // Neglects: the changing of temperature with height beyond a standard lapse rate: about 1 arcsec above 20°
 // of elevation, 30 arcsec at 5°, worse below
@@ -40,27 +40,10 @@ func NewRefraction(pressureHPa, temperatureC, humidity float64) (*Refraction, er
 // lowest is the least sine of elevation the formula is used with, about 3°: below it would turn back.
 const lowest = 0.05
 
-// AtObservedDeg returns by how much the air has lifted a source that is seen at an elevation, in degrees.
+// lift returns by how much the air lifts a source that without it would stand at an elevation of which the sine is
+// given, in radians. One Newton step from A tan z + B tan³ z with the true zenith distance, good to 1 arcsec at 5°.
 //
-//	A tan z + B tan³ z,  z the zenith distance as seen
-//
-// Ends:     below 3° the value at 3°
-func (r *Refraction) AtObservedDeg(elDeg float64) float64 {
-	s, c := math.Sincos(elDeg * radPerDeg)
-	if s < lowest {
-		s, c = lowest, math.Sqrt(1-lowest*lowest)
-	}
-	t := math.Abs(c) / s
-	return (r.a + r.b*t*t) * t * degPerRad
-}
-
-// AtTrueDeg returns by how much the air lifts a source that without it would stand at an elevation, in degrees.
-// One Newton step from the formula with the true zenith distance, good to 1 arcsec at 5°.
-func (r *Refraction) AtTrueDeg(elDeg float64) float64 {
-	return r.lift(math.Sin(elDeg*radPerDeg)) * degPerRad
-}
-
-// lift is AtTrueDeg for the sine of an elevation, in radians.
+// Ends:     below 3° it goes by the formula at 3°
 func (r *Refraction) lift(sinEl float64) float64 {
 	s := max(sinEl, lowest)
 	c := math.Sqrt(max(0, 1-sinEl*sinEl))

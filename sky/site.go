@@ -160,11 +160,3 @@ func (s *Site) Track(f *Frame, p Place, from time.Time, step time.Duration, azDe
 		azDeg[i], elDeg[i] = positive(az)*degPerRad, el*degPerRad
 	}
 }
-
-// Unwrap makes a track of azimuths continuous in place: where it jumps by more than half a turn, as it does through
-// north, the rest is moved by whole turns. The first value stays.
-func Unwrap(azDeg []float64) {
-	for i := 1; i < len(azDeg); i++ {
-		azDeg[i] = azDeg[i-1] + half(azDeg[i]-azDeg[i-1], 360)
-	}
-}

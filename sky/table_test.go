@@ -106,3 +106,11 @@ func (e errs) judge(t *testing.T, what, unit string, most, median float64) {
 		t.Errorf("%s: most %.4g, median %.4g %s; promised %g and %g", what, worst, mid, unit, most, median)
 	}
 }
+
+// separationDeg is the angle between two places of one frame at its instant.
+func separationDeg(a, b Place) float64 { return between(a.at, b.at) * degPerRad }
+
+// liftedBy is by how much the air has lifted what is seen at an elevation, in degrees: the way back to where it stands.
+func liftedBy(air *Refraction, elDeg float64) float64 {
+	return elDeg - air.trueElevation(elDeg*radPerDeg)*degPerRad
+}

@@ -5,72 +5,9 @@ import (
 	"time"
 )
 
-// A TurnSpan is one way of counting a track's azimuth: the mount stands at the track's azimuth + 360·Turn. In
-// holds, as pairs of sample numbers (with fractions) in order, where that is within the travel.
-type TurnSpan struct {
-	Turn int
-	In   [][2]float64
-}
-
-// Turns returns in which turns, and where, a continuous track of azimuths (see Unwrap) lies within the mount's
-// travel, in order of the turn. Between samples the track is taken to be straight. Mounts without azimuth
-// travel have one turn, 0, that holds everything.
-func (m Mount) Turns(azTrackDeg []float64) []TurnSpan {
-	if len(azTrackDeg) == 0 {
-		return nil
-	}
-	last := float64(len(azTrackDeg) - 1)
-	if m.Kind != AltAz {
-		return []TurnSpan{{0, [][2]float64{{0, last}}}}
-	}
-	lo, hi := azTrackDeg[0], azTrackDeg[0]
-	for _, az := range azTrackDeg {
-		lo, hi = min(lo, az), max(hi, az)
-	}
-	var all []TurnSpan
-	first, end := m.turnsOf(lo, hi)
-	for k := first; k <= end; k++ {
-		a, b := m.TravelDeg[0]-360*float64(k), m.TravelDeg[1]-360*float64(k)
-		t := TurnSpan{Turn: k}
-		for i := range azTrackDeg {
-			from, to := azTrackDeg[i], azTrackDeg[min(i+1, len(azTrackDeg)-1)]
-			p, q, ok := within(from, to, a, b)
-			if !ok {
-				continue
-			}
-			p, q = float64(i)+p, float64(i)+q
-			if i == len(azTrackDeg)-1 {
-				p, q = last, last
-			}
-			if n := len(t.In); n > 0 && t.In[n-1][1] == p {
-				t.In[n-1][1] = q
-			} else {
-				t.In = append(t.In, [2]float64{p, q})
-			}
-		}
-		if len(t.In) > 0 {
-			all = append(all, t)
-		}
-	}
-	return all
-}
-
 // turnsOf returns the first and the last turn in which azimuths from lo to hi touch the travel.
 func (m Mount) turnsOf(lo, hi float64) (first, last int) {
 	return int(math.Ceil((m.TravelDeg[0] - hi) / 360)), int(math.Floor((m.TravelDeg[1] - lo) / 360))
-}
-
-// within returns which part of the straight line from one value to another lies in [a, b], as fractions.
-func within(from, to, a, b float64) (p, q float64, ok bool) {
-	if from == to {
-		return 0, 1, from >= a && from <= b
-	}
-	p, q = (a-from)/(to-from), (b-from)/(to-from)
-	if p > q {
-		p, q = q, p
-	}
-	p, q = max(p, 0), min(q, 1)
-	return p, q, p <= q
 }
 
 // A Turn is one way of counting azimuth while following a place: at the start of the interval the mount's azimuth
@@ -81,7 +18,7 @@ type Turn struct {
 }
 
 // Turns returns the turns in which a mount can follow a place of the frame f between two instants, and when the
-// track would meet a stop, exact as Windows are. Other limits do not count: see Intersect. Mounts without azimuth
+// track would meet a stop, exact as Windows are. Other limits do not count. Mounts without azimuth
 // travel have one turn, 0, that is open throughout.
 func (s *Site) Turns(m Mount, f *Frame, p Place, from, to time.Time) []Turn {
 	x0, x1 := f.days(from), f.days(to)
@@ -181,28 +118,4 @@ func (c *scan) azimuthPasses(track []azimuthAt, az float64) {
 			c.flips.set(c.atAzimuth(az*radPerDeg, track[i-1].x, track[i].x), above)
 		}
 	}
-}
-
-// Intersect returns what lies both in a and in b, each in time order and apart: a source's windows within its
-// limits and a turn's within the travel, for one. Where both end at once the cause in a stays.
-func Intersect(a, b []Window) []Window {
-	var both []Window
-	for i, j := 0, 0; i < len(a) && j < len(b); {
-		s, l := a[i], b[j]
-		if l.To.Before(s.To) {
-			j++
-		} else {
-			i++
-		}
-		if l.From.After(s.From) {
-			s.From, s.OpensBy = l.From, l.OpensBy
-		}
-		if l.To.Before(s.To) {
-			s.To, s.ClosesBy = l.To, l.ClosesBy
-		}
-		if s.From.Before(s.To) {
-			both = append(both, s)
-		}
-	}
-	return both
 }

@@ -85,7 +85,7 @@ func margins(s *Site, f *Frame, p Place, at time.Time, l Limits) map[CauseKind]f
 	look := s.Look(f, p, at)
 	el := look.ElDeg
 	if l.Refraction != nil {
-		el += l.Refraction.AtTrueDeg(el)
+		el += l.Refraction.lift(math.Sin(el*radPerDeg)) * degPerRad
 	}
 	m := map[CauseKind]float64{LowElevation: el - l.LowDeg, HorizonMask: el - l.Mask.At(look.AzDeg)}
 	if l.HighDeg != 0 {

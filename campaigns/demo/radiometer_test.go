@@ -6,13 +6,14 @@ import (
 	"testing"
 
 	"example.org/tallystick/campaigns"
+	"example.org/tallystick/sky"
 	"example.org/tallystick/sky/radiometer"
 )
 
 func setupOf(s *campaigns.Source, r campaigns.Receiver) radiometer.Setup {
 	sky408 := s.SkyK
 	if sky408 == 0 {
-		sky408 = radiometer.SkyAt408(radiometer.GalacticDeg(s.RADeg, s.DecDeg))
+		sky408 = radiometer.SkyAt408(sky.GalacticDeg(s.RADeg, s.DecDeg))
 	}
 	return radiometer.Setup{
 		Receiver: radiometer.Receiver{BandMHz: r.BandMHz, TsysK: r.TsysK, ZenithOpacity: r.ZenithOpacity,

@@ -12,7 +12,6 @@ import (
 
 	"example.org/tallystick/campaigns"
 	"example.org/tallystick/internal/outside"
-	"example.org/tallystick/sky/orbit"
 	"example.org/tallystick/sky/timing"
 )
 
@@ -297,16 +296,14 @@ func TestTimeScales(t *testing.T) {
 	const tdb0 = -6.55e-5 / 86400
 	got := tcb.epoch(d)
 	row.Check(got.value - tdb0)
-	if math.Abs(got.value-orbit.TDBFromTCB(d.value)) > 1e-11 {
-		t.Errorf("%s, want %.13f", got.text, orbit.TDBFromTCB(d.value))
-	}
 	file := "PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nF0 317.3789419337928734\nF1 -9.7e-16\nPEPOCH 59000\nPB 8.68661942255073\nA1 11.291197529\nTASC 59000\nUNITS "
+	const rate = 1 - 1.550519768e-8
 	s, plain := load(t, read(t, file+"TCB\n").Source()), load(t, read(t, file+"TDB\n").Source())
-	if got := s.Orbit.PeriodDays; math.Abs(got-orbit.PeriodTDBFromTCB(plain.Orbit.PeriodDays)) > 2e-15*got || got == plain.Orbit.PeriodDays {
+	if got := s.Orbit.PeriodDays; math.Abs(got-plain.Orbit.PeriodDays*rate) > 2e-15*got || got == plain.Orbit.PeriodDays {
 		t.Errorf("period %.17g", got)
 	}
 	// A frequency grows where a period shrinks: the number of turns stays the same.
-	if got := s.Spin.FrequencyHz; math.Abs(orbit.PeriodTDBFromTCB(got)-plain.Spin.FrequencyHz) > 1e-13 || got <= plain.Spin.FrequencyHz {
+	if got := s.Spin.FrequencyHz; math.Abs(got*rate-plain.Spin.FrequencyHz) > 1e-13 || got <= plain.Spin.FrequencyHz {
 		t.Errorf("frequency %.17g", got)
 	}
 	if ratio := s.Spin.DerivativeHzPerS/plain.Spin.DerivativeHzPerS - 1; math.Abs(ratio-2*1.550519768e-8) > 1e-14 {

@@ -91,12 +91,6 @@ func (o *Orbit) around(e Eclipse, half, fromMJD, toMJD float64) []Span {
 // Eclipsed reports whether the pulsar is hidden at an instant, orbit time.
 func (o Orbit) Eclipsed(e Eclipse, mjd float64) bool { return e.In(o.eclipsePhase(mjd)) }
 
-// Untimable reports whether the pulsar is hidden or inside the margin.
-func (o Orbit) Untimable(e Eclipse, mjd float64) bool {
-	p := o.eclipsePhase(mjd)
-	return e.In(p) || e.InMargin(p)
-}
-
 // eclipsePhase is the time from the nearest superior conjunction in periods, plus 0.25.
 func (o *Orbit) eclipsePhase(mjd float64) float64 {
 	t, ok := o.nearest(Superior, mjd)

@@ -49,7 +49,7 @@ func TestEclipseSpansAgainstScan(t *testing.T) {
 			if got, want := o.Eclipsed(e, at), inSpans(hidden, at); got != want && !edge(hidden, at) {
 				t.Fatalf("%.9f: eclipsed %v, spans %v", at, got, hidden)
 			}
-			if got, want := o.Untimable(e, at), inSpans(untimable, at); got != want && !edge(untimable, at) {
+			if got, want := e.In(o.eclipsePhase(at)) || e.InMargin(o.eclipsePhase(at)), inSpans(untimable, at); got != want && !edge(untimable, at) {
 				t.Fatalf("%.9f: untimable %v, spans %v", at, got, untimable)
 			}
 		}

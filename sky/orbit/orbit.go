@@ -222,16 +222,6 @@ func (o *Orbit) whenElapsed(turns float64) (mjd float64, ok bool) {
 	return mjd, math.Abs(o.elapsed(mjd)-turns) < 1e-6
 }
 
-// EpochAt returns the instant of the n-th node or periastron after the epoch (whichever the elements
-// are counted from), orbit time. The second result is false where the frequency series means nothing
-// any more.
-//
-//	T_n = T0 + n Pb + ½ n² Pb Ṗb
-//
-// Source:  Damour & Deruelle 1986; solved exactly rather than to second order
-// Checked: TestEpochToEpoch, against epochs published decades apart
-func (o Orbit) EpochAt(n float64) (mjd float64, ok bool) { return o.whenElapsed(n) }
-
 // meanAnomaly returns the mean anomaly in turns, whole turns kept.
 func (o *Orbit) meanAnomaly(mjd float64) float64 {
 	_, anomaly := o.Means(mjd)

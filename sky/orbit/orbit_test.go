@@ -28,7 +28,7 @@ func fromRow(t *testing.T, r outside.Row) Orbit {
 func TestEpochToEpoch(t *testing.T) {
 	for _, r := range outside.Rows(t, "orbits.csv", "ORB-020", "ORB-021", "ORB-023") {
 		o := fromRow(t, r)
-		got, ok := o.EpochAt(r.Num("N"))
+		got, ok := o.whenElapsed(r.Num("N"))
 		if !ok {
 			t.Fatalf("%s: no answer", r.ID)
 		}
@@ -44,7 +44,7 @@ func TestPeriastronAdvances(t *testing.T) {
 		}
 		o := fromRow(t, r)
 		// The nearest periastron, where the true and the mean advance agree.
-		at, _ := o.EpochAt(math.Round(o.elapsed(r.Num("t"))))
+		at, _ := o.whenElapsed(math.Round(o.elapsed(r.Num("t"))))
 		r.Check(o.PeriastronDegAt(at + 1e-9))
 	}
 }

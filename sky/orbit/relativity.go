@@ -110,20 +110,3 @@ func CompanionMsun(massFunctionMsun, pulsarMsun, sinI float64) float64 {
 	}
 	return (low + high) / 2
 }
-
-// TDBFromTCB changes an epoch from TCB to TDB.
-//
-//	TDB = TCB − L_B (TCB − 43144.0003725) + TDB0
-//
-// Given:   MJD
-// Returns: MJD; 21 s earlier in 2020
-// Source:  IAU 2006 resolution B3
-// Checked: TestTDBFromTCB
-func TDBFromTCB(mjd float64) float64 {
-	return mjd - tcbRate*(mjd-43144.0003725) - 6.55e-5/secPerDay
-}
-
-// PeriodTDBFromTCB changes a period, in any unit, from TCB to TDB; frequencies are divided instead.
-func PeriodTDBFromTCB(period float64) float64 { return period * (1 - tcbRate) }
-
-const tcbRate = 1.550519768e-8 // L_B

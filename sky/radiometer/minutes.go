@@ -65,13 +65,3 @@ func (s Setup) MinutesFor(toaUs, elevationDeg float64) (float64, error) {
 func hoursFor(aimUs, hourUs, floorUs float64) float64 {
 	return hourUs * hourUs / ((aimUs - floorUs) * (aimUs + floorUs))
 }
-
-// SecondsForSNR returns the time in which a signal-to-noise ratio is reached at an elevation, seconds:
-// infinite when the pulsar is not heard.
-func (s Setup) SecondsForSNR(snr, elevationDeg float64) float64 {
-	one := s.SNR(1.0/60, elevationDeg)
-	if !(one > 0) {
-		return math.Inf(1)
-	}
-	return (snr / one) * (snr / one)
-}

@@ -159,16 +159,6 @@ func TestMinutesForIsTheWayBack(t *testing.T) {
 	})
 }
 
-func TestSecondsForSNR(t *testing.T) {
-	s := example()
-	if got := s.SNR(s.SecondsForSNR(50, 40)/60, 40); math.Abs(got-50) > 1e-9 {
-		t.Errorf("got S/N %g, want 50", got)
-	}
-	if got := (Setup{}).SecondsForSNR(50, 40); !math.IsInf(got, 1) {
-		t.Errorf("a pulsar that is not heard needs %g s", got)
-	}
-}
-
 func TestUnknownWidth(t *testing.T) {
 	s := example()
 	s.Pulsar.WidthMs = 0
@@ -192,7 +182,7 @@ func TestNeverNaN(t *testing.T) {
 			t.Fatal("Check lets NaN through")
 		}
 		minutes, el := d("minutes"), d("elevation")
-		for _, v := range []float64{s.SNR(minutes, el), s.TOAErrorUs(minutes, el), s.EffectiveWeight(el)} {
+		for _, v := range []float64{s.SNR(minutes, el), s.TOAErrorUs(minutes, el), s.EffectiveWeights([]float64{el}, nil)[0]} {
 			if math.IsNaN(v) {
 				t.Fatalf("NaN from %+v, %g min at %g", s, minutes, el)
 			}

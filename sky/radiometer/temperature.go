@@ -21,23 +21,6 @@ func SkyAt408(longitudeDeg, latitudeDeg float64) float64 {
 	return 25 + 275/((1+square(l/42))*(1+square(latitudeDeg/3)))
 }
 
-// GalacticDeg returns Galactic longitude (0..360) and latitude of an ICRS direction, degrees.
-//
-//	sin b = sin δ_G sin δ + cos δ_G cos δ cos(α−α_G),  l = l_NCP − atan2(cos δ sin(α−α_G), …)
-//
-// Source:  the IAU 1958 system in ICRS: ESA 1997, The Hipparcos Catalogue, vol. 1, §1.5.3
-// Checked: TestGalactic
-func GalacticDeg(raDeg, decDeg float64) (longitudeDeg, latitudeDeg float64) {
-	const poleRA, poleDec, nodeLongitude = 192.85948, 27.12825, 122.93192
-	sinD, cosD := math.Sincos(decDeg * math.Pi / 180)
-	sinP, cosP := math.Sincos(poleDec * math.Pi / 180)
-	sinA, cosA := math.Sincos((raDeg - poleRA) * math.Pi / 180)
-	z := sinP*sinD + cosP*cosD*cosA
-	y, x := cosD*sinA, cosP*sinD-sinP*cosD*cosA
-	l := math.Mod(nodeLongitude-math.Atan2(y, x)*180/math.Pi+720, 360)
-	return l, math.Atan2(z, math.Hypot(x, y)) * 180 / math.Pi
-}
-
 // SkyK returns the sky temperature at a frequency from that at 408 MHz, with the cosmic background
 // added apart, K.
 //
@@ -85,22 +68,15 @@ func (s Setup) SystemK(elevationDeg float64) float64 {
 	return SystemK(r.TsysK, SkyK(s.Pulsar.Sky408K, r.CentreMHz()), r.ZenithOpacity, elevationDeg)
 }
 
-// EffectiveWeight returns what a minute at an elevation is worth in minutes at the zenith, 0..1: the
+// EffectiveWeights returns what a minute at each elevation of a track is worth in minutes at the zenith, 0..1: the
 // ratio of the times in which the same signal-to-noise ratio is reached. 0 at and below the horizon.
 //
 //	[T(90°)/T(el)]² e^(−2τ(X−1))
 //
+// Given:    dst, used for the result when it is long enough; it may be nil
+// Returns:  one weight for each elevation, in their order
 // Neglects: the change of the gain with elevation
 // Checked:  TestEffectiveWeight
-func (s Setup) EffectiveWeight(elevationDeg float64) float64 {
-	var one [1]float64
-	return s.EffectiveWeights([]float64{elevationDeg}, one[:])[0]
-}
-
-// EffectiveWeights is EffectiveWeight for a track, minute by minute.
-//
-// Given:   dst, used for the result when it is long enough; it may be nil
-// Returns: one weight for each elevation, in their order
 func (s Setup) EffectiveWeights(elevationDeg, dst []float64) []float64 {
 	if cap(dst) < len(elevationDeg) {
 		dst = make([]float64, len(elevationDeg))

@@ -46,25 +46,15 @@ func TestEffectiveWeight(t *testing.T) {
 	s := example()
 	last := 0.0
 	for el := 1.0; el <= 90; el++ {
-		w := s.EffectiveWeight(el)
+		w := s.EffectiveWeights([]float64{el}, nil)[0]
 		if want := square(s.SNR(1, el) / s.SNR(1, 90)); math.Abs(w-want) > 1e-12 || w < last || w > 1 {
 			t.Errorf("elevation %g: weight %g, squared ratio %g, before %g", el, w, want, last)
 		}
 		last = w
 	}
 	for _, el := range []float64{0, -10, math.NaN(), 180, 270} {
-		if w := s.EffectiveWeight(el); w != 0 {
+		if w := s.EffectiveWeights([]float64{el}, nil)[0]; w != 0 {
 			t.Errorf("elevation %g: weight %g, want 0", el, w)
-		}
-	}
-}
-
-func TestGalactic(t *testing.T) {
-	// The system's own definition (Hipparcos catalogue, §1.5.3): the pole, and the centre at 17h45m37.224s −28°56′10.23″.
-	for _, c := range []struct{ ra, dec, l, b float64 }{{266.40510, -28.936175, 0, 0}, {192.85948, 27.12825, 0, 90}} {
-		l, b := GalacticDeg(c.ra, c.dec)
-		if math.Abs(b-c.b) > 1e-4 || c.b == 0 && math.Abs(math.Remainder(l-c.l, 360)) > 1e-4 {
-			t.Errorf("%g %g: got %g %g, want %g %g", c.ra, c.dec, l, b, c.l, c.b)
 		}
 	}
 }
