@@ -19,7 +19,8 @@ type Receiver struct {
 	TsysK         float64    // at the zenith, with its atmosphere, without the sky behind
 	ZenithOpacity float64    // nepers; about 0.008 below 2 GHz
 	GainKPerJy    float64
-	Polarizations int // 1 or 2
+	GainCurve     [][2]float64 // elevation in degrees, rising, and factor of GainKPerJy there; nil: 1 at every elevation
+	Polarizations int          // 1 or 2
 }
 
 // CentreMHz is the middle of the band.
@@ -81,6 +82,7 @@ func (r Receiver) Check() error {
 		positive("bandwidth", r.BandwidthMHz()),
 		positive("system temperature", r.TsysK),
 		positive("gain", r.GainKPerJy),
+		checkGainCurve(r.GainCurve),
 		positive("polarizations", float64(r.Polarizations)),
 		notNegative("zenith opacity", r.ZenithOpacity),
 	)
@@ -131,7 +133,7 @@ func finite(name string, v float64) error {
 //
 //	S/N = S G √(n_p t B)/T · √((P−W)/W)
 //
-// with S the flux density behind the atmosphere at the middle of the band and T the system temperature
+// with S the flux density behind the atmosphere at the middle of the band, G the gain and T the system temperature
 // at that elevation, sky included.
 //
 // Neglects: losses of digitisation (a factor 1 to 1.5), smearing by dispersion, and scintillation
@@ -142,7 +144,7 @@ func (s Setup) SNR(minutes, elevationDeg float64) float64 {
 		return 0
 	}
 	flux := s.Pulsar.FluxAt(s.Receiver.CentreMHz()) * transmission(s.Receiver.ZenithOpacity, elevationDeg)
-	snr := SNR(flux, s.Receiver.GainKPerJy, s.SystemK(elevationDeg), s.Receiver.Polarizations,
+	snr := SNR(flux, s.Receiver.GainKPerJy*gainFactor(s.Receiver.GainCurve, elevationDeg), s.SystemK(elevationDeg), s.Receiver.Polarizations,
 		60*minutes, s.Receiver.BandwidthMHz(), s.Pulsar.PeriodS*1e3, s.Pulsar.EffectiveWidthMs())
 	if !(snr > 0) {
 		return 0 // also where absurd numbers have overflowed

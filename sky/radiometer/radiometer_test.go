@@ -175,11 +175,14 @@ func TestNeverNaN(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
 		d := func(name string) float64 { return any.Draw(t, name) }
 		s := Setup{
-			Receiver{[2]float64{d("f1"), d("f2")}, d("tsys"), d("tau"), d("gain"), rapid.IntRange(-1, 4).Draw(t, "pol")},
+			Receiver{[2]float64{d("f1"), d("f2")}, d("tsys"), d("tau"), d("gain"), nil, rapid.IntRange(-1, 4).Draw(t, "pol")},
 			Pulsar{d("flux"), d("at"), d("index"), d("period"), d("width"), d("jitter"), d("floor"), d("sky")},
 		}
 		if s.Check() == nil && (math.IsNaN(s.Pulsar.AtMHz) || math.IsNaN(s.Pulsar.SpectralIndex)) {
 			t.Fatal("Check lets NaN through")
+		}
+		if rapid.Bool().Draw(t, "curved") {
+			s.Receiver.GainCurve = [][2]float64{{d("e1"), d("g1")}, {d("e2"), d("g2")}}
 		}
 		minutes, el := d("minutes"), d("elevation")
 		for _, v := range []float64{s.SNR(minutes, el), s.TOAErrorUs(minutes, el), s.EffectiveWeights([]float64{el}, nil)[0]} {

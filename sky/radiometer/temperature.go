@@ -68,15 +68,16 @@ func (s Setup) SystemK(elevationDeg float64) float64 {
 	return SystemK(r.TsysK, SkyK(s.Pulsar.Sky408K, r.CentreMHz()), r.ZenithOpacity, elevationDeg)
 }
 
-// EffectiveWeights returns what a minute at each elevation of a track is worth in minutes at the zenith, 0..1: the
-// ratio of the times in which the same signal-to-noise ratio is reached. 0 at and below the horizon.
+// EffectiveWeights returns what a minute at each elevation of a track is worth in minutes at the zenith: the ratio of the
+// times in which the same signal-to-noise ratio is reached. It is 0 at and below the horizon, and at most 1 for a gain
+// that is the same everywhere; above 1 where the gain is that much better than at the zenith.
 //
-//	[T(90°)/T(el)]² e^(−2τ(X−1))
+//	[g(el)/g(90°) · T(90°)/T(el)]² e^(−2τ(X−1)),  g the gain
 //
 // Given:    dst, used for the result when it is long enough; it may be nil
 // Returns:  one weight for each elevation, in their order
-// Neglects: the change of the gain with elevation
-// Checked:  TestEffectiveWeight
+// Neglects: the ground that a deformed dish hears
+// Checked:  TestEffectiveWeight, TestGainCurveInEffectiveMinutes
 func (s Setup) EffectiveWeights(elevationDeg, dst []float64) []float64 {
 	if cap(dst) < len(elevationDeg) {
 		dst = make([]float64, len(elevationDeg))
@@ -88,7 +89,7 @@ func (s Setup) EffectiveWeights(elevationDeg, dst []float64) []float64 {
 		return dst
 	}
 	sky, zenith := SkyK(s.Pulsar.Sky408K, r.CentreMHz()), math.Exp(-r.ZenithOpacity)
-	best := zenith / (r.TsysK + sky*zenith)
+	best, atZenith := zenith/(r.TsysK+sky*zenith), gainFactor(r.GainCurve, 90)
 	for i, el := range elevationDeg {
 		if !(el > 0) || !(el < 180) {
 			continue
@@ -96,7 +97,8 @@ func (s Setup) EffectiveWeights(elevationDeg, dst []float64) []float64 {
 		through := transmission(r.ZenithOpacity, el)
 		ratio := through / (r.TsysK + sky*through + airK*(zenith-through)) / best
 		if weight := ratio * ratio; weight > 0 {
-			dst[i] = math.Min(1, weight)
+			gain := gainFactor(r.GainCurve, el) / atZenith
+			dst[i] = math.Min(1, weight) * gain * gain
 		}
 	}
 	return dst
