@@ -58,6 +58,7 @@ type Receiver struct {
 	TsysK         float64    // at the zenith, without the sky
 	ZenithOpacity float64    // nepers
 	GainKPerJy    float64
+	GainCurve     [][2]float64 // elevation, factor of GainKPerJy: linear between, flat outside; nil: 1 everywhere
 	Polarizations int
 	ChangeMin     float64 // time to bring it into the beam
 }

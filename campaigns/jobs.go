@@ -171,7 +171,8 @@ func (jb *jobBuilder) visit(aim *Aim, minutes float64) (wanted, least int32) {
 	if most == 0 {
 		most = 2 * minutes
 	}
-	jb.stretch(aim.MinFraction*minutes, most)
+	// Where the gain is better than at the zenith, a shorter slot brings the least that is of use.
+	jb.stretch(aim.MinFraction*minutes/jb.source.heaviest[jb.receiver], most)
 	return shares(minutes), shares(aim.MinFraction * minutes)
 }
 

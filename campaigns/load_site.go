@@ -108,20 +108,38 @@ func (t *table) zone(key string) *time.Location {
 // horizon reads the mask of azimuths and elevations, whose azimuths must rise.
 func (t *table) horizon(key string) [][2]float64 {
 	mask := t.pairs(key, below(0, 360), between(-10, 90), "azimuth and elevation in degrees")
-	if !t.good(key) {
+	if !t.good(key) || !t.rising(key, "azimuth", mask) {
 		return nil
 	}
-	for i := 1; i < len(mask); i++ {
-		switch before, here := mask[i-1][0], mask[i][0]; {
+	return mask
+}
+
+// rising says that the first numbers of pairs rise.
+func (t *table) rising(key, what string, pairs [][2]float64) bool {
+	for i := 1; i < len(pairs); i++ {
+		switch before, here := pairs[i-1][0], pairs[i][0]; {
 		case here == before:
-			t.complainAt(t.elementLine(key, i), key, fmt.Sprintf("azimuth %s twice", plainNumber(here)), "each azimuth once", "")
-			return nil
+			t.complainAt(t.elementLine(key, i), key, fmt.Sprintf("%s %s twice", what, plainNumber(here)), "each "+what+" once", "")
+			return false
 		case here < before:
-			t.complainAt(t.elementLine(key, i), key, fmt.Sprintf("azimuth %s after %s", plainNumber(here), plainNumber(before)), "azimuths in rising order", "")
-			return nil
+			t.complainAt(t.elementLine(key, i), key, fmt.Sprintf("%s %s after %s", what, plainNumber(here), plainNumber(before)), what+"s in rising order", "")
+			return false
 		}
 	}
-	return mask
+	return true
+}
+
+// gainCurve reads how the gain changes with elevation; nil where it is the same everywhere.
+func (t *table) gainCurve(key string) [][2]float64 {
+	curve := t.pairs(key, between(0, 90), above(0, 1.5), "elevation in degrees and factor of gain_k_per_jy")
+	switch {
+	case !t.has(key) || !t.good(key) || !t.rising(key, "elevation", curve):
+		return nil
+	case len(curve) < 2:
+		t.complain(key, fmt.Sprintf("%d of them", len(curve)), "at least two pairs: elevation in degrees and factor of gain_k_per_jy", "")
+		return nil
+	}
+	return curve
 }
 
 // readReceivers reads the front ends.
@@ -139,6 +157,7 @@ func (l *loader) readReceivers(top *table) {
 			TsysK:         t.number("tsys_k", above(0, 10000)),
 			ZenithOpacity: t.number("zenith_opacity", between(0, 5)),
 			GainKPerJy:    t.number("gain_k_per_jy", above(0, 1000)),
+			GainCurve:     t.gainCurve("gain_curve"),
 			Polarizations: t.count("polarizations", 1, 2, true, 1),
 			ChangeMin:     t.number("change_min", between(0, 1440)),
 		}

@@ -65,6 +65,7 @@ type SlotRow struct {
 	HAStartH, HAEndH       float64  // west positive
 	ParStartDeg, ParEndDeg float64  // parallactic angle
 	PhaseStart, PhaseEnd   *float64 // orbital phase from the ascending node, turns; nil without an orbit
+	ZenithMin              float64  // minutes at the zenith that would bring as much: air, sky and gain counted
 	SNR, ToaUs             float64
 	SNRScatter             float64 // share of itself by which the S/N scatters from visit to visit; 0: steady, or not known
 	Worth                  float64 // in units of worth

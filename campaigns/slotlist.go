@@ -63,7 +63,7 @@ func (p *Prepared) slotRow(plan sched.Plan, i int) SlotRow {
 		from, to := ps.knowledge.phase(p.Instant(start)), ps.knowledge.phase(p.Instant(end))
 		row.PhaseStart, row.PhaseEnd = &from, &to
 	}
-	row.SNR, row.ToaUs = ps.expect(job.Receiver, start, end)
+	row.ZenithMin, row.SNR, row.ToaUs = ps.expect(job.Receiver, start, end)
 	row.SNRScatter = ps.scatter(job.Receiver, start, end)
 	row.MoveSec, row.OverheadSec, row.WaitSec = p.before(plan, i)
 	return row

@@ -16,7 +16,8 @@ type preparedSource struct {
 	place     sky.Place
 	setups    []radiometer.Setup // by index in Problem.Receivers
 	effective [][]int32          // by receiver: hundredths of an effective minute from the start to each minute
-	weights   [][]float64        // by receiver: what each minute counts for, 0..1
+	weights   [][]float64        // by receiver: what each minute counts for, 1 at the zenith
+	heaviest  []float64          // by receiver: the most that a minute counts for, at least 1
 	eclipses  []eclipsed         // by receiver
 }
 
@@ -75,13 +76,15 @@ func (ps *preparedSource) listen(p *Prepared) {
 		set := ps.src.setup(p.Campaign.receiver(rec.Name, p.Site.Name))
 		weights := set.EffectiveWeights(el, nil)
 		cum := make([]int32, len(el))
-		sum := 0.0
+		sum, heaviest := 0.0, 1.0
 		for m := range el {
-			cum[m] = int32(sum)
+			cum[m] = int32(math.Min(sum, math.MaxInt32/4)) // a gain of next to nothing at the zenith
 			sum += weights[m] * sharesPerMinute
+			heaviest = math.Max(heaviest, weights[m])
 		}
 		ps.setups = append(ps.setups, set)
 		ps.weights = append(ps.weights, weights)
+		ps.heaviest = append(ps.heaviest, heaviest)
 		ps.effective = append(ps.effective, cum)
 	}
 }
@@ -89,7 +92,7 @@ func (ps *preparedSource) listen(p *Prepared) {
 func (r *Receiver) radiometer() radiometer.Receiver {
 	return radiometer.Receiver{
 		BandMHz: r.BandMHz, TsysK: r.TsysK, ZenithOpacity: r.ZenithOpacity,
-		GainKPerJy: r.GainKPerJy, Polarizations: r.Polarizations,
+		GainKPerJy: r.GainKPerJy, GainCurve: r.GainCurve, Polarizations: r.Polarizations,
 	}
 }
 
@@ -126,14 +129,15 @@ func (ps *preparedSource) scatter(receiver, start, end int) float64 {
 	return radiometer.ModulationIndex(scintles)
 }
 
-// expect is the S/N and TOA error of a slot; 0 where it is not known.
-func (ps *preparedSource) expect(receiver, start, end int) (snr, toaUs float64) {
-	set, minutes := &ps.setups[receiver], 0.0
+// expect is what a slot brings: the minutes at the zenith that would bring as much, and from them S/N and TOA error, 0
+// where these are not known.
+func (ps *preparedSource) expect(receiver, start, end int) (zenithMin, snr, toaUs float64) {
+	set := &ps.setups[receiver]
 	for m := start; m < end; m++ {
-		minutes += ps.weights[receiver][m]
+		zenithMin += ps.weights[receiver][m]
 	}
-	if minutes == 0 || set.Pulsar.PeriodS == 0 || set.Check() != nil {
-		return 0, 0
+	if zenithMin == 0 || set.Pulsar.PeriodS == 0 || set.Check() != nil {
+		return zenithMin, 0, 0
 	}
-	return set.SNR(minutes, 90), set.TOAErrorUs(minutes, 90)
+	return zenithMin, set.SNR(zenithMin, 90), set.TOAErrorUs(zenithMin, 90)
 }

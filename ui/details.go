@@ -3,6 +3,7 @@ package ui
 import (
 	"fmt"
 	"image"
+	"math"
 	"strings"
 
 	"example.org/tallystick/campaigns"
@@ -80,7 +81,7 @@ func slotLines(w *world, i int) []line {
 			add(" ", theme.Muted, "%s for %s: %s", t.Worth, t.Label, t.Why)
 		}
 	}
-	length := fmt.Sprintf("%d min on source, of use from %d to %d", slot.End-slot.Start, job.MinMin, job.MaxMin)
+	length := fmt.Sprintf("%d min on source%s, of use from %d to %d", slot.End-slot.Start, asGoodAs(row, &job), job.MinMin, job.MaxMin)
 	if row.Pinned {
 		length += "; pinned"
 	}
@@ -105,6 +106,16 @@ func slotLines(w *world, i int) []line {
 		add("note", theme.Plain, "%s", row.Note)
 	}
 	return lines
+}
+
+// asGoodAs says how many minutes at the zenith a slot's minutes are worth, where it matters: calibration counts minutes as
+// they pass.
+func asGoodAs(row *campaigns.SlotRow, job *sched.Job) string {
+	const tellable = 0.05
+	if minutes := row.End.Sub(row.Start).Minutes(); job.Must || !(math.Abs(row.ZenithMin-minutes) > tellable*minutes) {
+		return ""
+	}
+	return fmt.Sprintf(", as good as %.0f at the zenith", row.ZenithMin)
 }
 
 // waitSec is what is left before a slot after move and set-up: while the session is under way, of the time

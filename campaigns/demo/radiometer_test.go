@@ -17,7 +17,7 @@ func setupOf(s *campaigns.Source, r campaigns.Receiver) radiometer.Setup {
 	}
 	return radiometer.Setup{
 		Receiver: radiometer.Receiver{BandMHz: r.BandMHz, TsysK: r.TsysK, ZenithOpacity: r.ZenithOpacity,
-			GainKPerJy: r.GainKPerJy, Polarizations: r.Polarizations},
+			GainKPerJy: r.GainKPerJy, GainCurve: r.GainCurve, Polarizations: r.Polarizations},
 		Pulsar: radiometer.Pulsar{FluxMJy: s.Flux.MJy, AtMHz: s.Flux.AtMHz, SpectralIndex: s.Flux.SpectralIndex,
 			PeriodS: 1 / s.Spin.FrequencyHz, WidthMs: s.WidthMs, JitterUsPerHour: s.JitterUsPerHour, FloorUs: s.FloorUs,
 			Sky408K: sky408},
