@@ -2,6 +2,7 @@ package timing
 
 import (
 	"math"
+	"slices"
 	"testing"
 
 	"example.org/tallystick/sky/orbit"
@@ -150,6 +151,34 @@ func TestPartials(t *testing.T) {
 				}
 			}
 		})
+	}
+}
+
+// No parameter is left out: each is in the list of one form or the other, but for the total of the proper motion, whose place among
+// the two that it is made of is differentiated here.
+func TestPartialsLeaveNothingOut(t *testing.T) {
+	for p := range parameterCount {
+		if !slices.Contains(inNodeForm, p) && !slices.Contains(inPeriastronForm, p) && p != ProperMotion {
+			t.Errorf("%v is not compared with finite differences", p)
+		}
+	}
+	src := example()
+	geo, err := newGeometry(src, 57400)
+	if err != nil {
+		t.Fatal(err)
+	}
+	v, err := geo.vectorOf(ProperMotion)
+	if err != nil {
+		t.Fatal(err)
+	}
+	pm := src.PMMasPerYr
+	for col, total := range map[int]func(f float64) float64{
+		colPMRA:  func(f float64) float64 { return math.Hypot(pm[0]+f, pm[1]) },
+		colPMDec: func(f float64) float64 { return math.Hypot(pm[0], pm[1]+f) },
+	} {
+		if want := difference(total); math.Abs(v[col]-want) > 1e-6 {
+			t.Errorf("column %d: %g, want %g", col, v[col], want)
+		}
 	}
 }
 
