@@ -19,6 +19,7 @@ type Season struct {
 	Debts    []AccountRow      // every account at the end, worst first; nothing is said of when it can next be observed
 	Pressure []LSTPressure     // by site, in the order of Campaign.Sites
 	Sun      []SunSpan         // in order of their start
+	Repeats  []PhaseRepeat     // binaries of which the same parts are seen for months, the longest first
 	Unserved []string          // receivers that aims ask for and that no coming session mounts
 	Array    ArrayForecast     // what the planned hours buy for all pulsars together
 }
@@ -177,6 +178,9 @@ func (p *player) reckon() error {
 		return err
 	}
 	if err := p.forecastArray(start); err != nil {
+		return err
+	}
+	if err := p.findRepeats(); err != nil {
 		return err
 	}
 	return p.findSun()

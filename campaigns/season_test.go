@@ -12,6 +12,8 @@ import (
 	"time"
 
 	gocmp "github.com/google/go-cmp/cmp"
+
+	"example.org/tallystick/sky"
 )
 
 // coming opens the demonstration with so many of its coming sessions, the shortest, at its own present moment.
@@ -243,6 +245,49 @@ slot_overhead_min = 0
 	_, err = PlaySeason(context.Background(), c, nil, time.Date(2027, 1, 1, 0, 0, 0, 0, time.UTC), SeasonOptions{})
 	if err == nil || !strings.Contains(err.Error(), "no session is left") {
 		t.Errorf("without sessions: %v", err)
+	}
+}
+
+// The demonstration has a binary of about a sidereal day: at each transit the site meets it where it was the day before.
+func TestSeasonRepeats(t *testing.T) {
+	f, now := coming(t, 1)
+	s := play(t, f, now, SeasonOptions{})
+	if len(s.Repeats) != 1 {
+		t.Fatalf("repeats %+v", s.Repeats)
+	}
+	r := &s.Repeats[0]
+	src := &f.Campaign.Sources[slices.IndexFunc(f.Campaign.Sources, func(s Source) bool { return s.Name == r.Source })]
+	const sidereal = 0.99726957
+	step := sidereal/src.Orbit.PeriodDays - 1
+	if r.Parts != 1 || math.Abs(r.StepTurns-step) > 1e-9 {
+		t.Errorf("%+v, want a step of %g", r, step)
+	}
+	// In so many days the part that is seen moves over what is not.
+	if moved := r.Days / sidereal * step; math.Abs(moved-(1-r.PartTurns)) > 1e-9 || r.SeenShare() != r.PartTurns {
+		t.Errorf("moves by %g in %g d, %g is not seen", moved, r.Days, 1-r.PartTurns)
+	}
+	// What is up, minute by minute.
+	site := f.Campaign.site(r.Site)
+	where, err := site.onEarth()
+	if err != nil {
+		t.Fatal(err)
+	}
+	at := now.Add(s.To.Sub(now) / 2)
+	frame, err := sky.NewFrame(at)
+	if err != nil {
+		t.Fatal(err)
+	}
+	place := frame.Place(src.target())
+	limits := site.limits(src)
+	up := 0
+	for m := range 1436 {
+		look := where.Look(frame, place, at.Add(time.Duration(m-718)*time.Minute))
+		if look.ElDeg >= max(limits.LowDeg, limits.Mask.At(look.AzDeg)) && (limits.HighDeg == 0 || look.ElDeg <= limits.HighDeg) {
+			up++
+		}
+	}
+	if part := float64(up) / 1440 / src.Orbit.PeriodDays; math.Abs(part-r.PartTurns) > 0.01 {
+		t.Errorf("part of %.4f turns, minute by minute %.4f", r.PartTurns, part)
 	}
 }
 

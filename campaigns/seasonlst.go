@@ -6,7 +6,6 @@ import (
 	"time"
 
 	"example.org/tallystick/sched"
-	"example.org/tallystick/sky"
 )
 
 // An LSTPressure holds hours by the hour of local sidereal time of a site: 0 is from 0 h to 1 h.
@@ -213,21 +212,12 @@ func (p *player) ask(src *Source, site *Site, hours float64) error {
 	if hours == 0 {
 		return nil
 	}
-	where, err := site.onEarth()
+	windows, frame, where, err := p.transit(src, site)
 	if err != nil {
 		return err
 	}
-	middle := p.at.Add(p.season.To.Sub(p.at) / 2)
-	frame, err := sky.NewFrame(middle)
-	if err != nil {
-		return err
-	}
-	limits := site.limits(src)
-	limits.SunDeg = 0
 	d := demand{hours: hours}
 	total := 0.0
-	const turn = 23*time.Hour + 56*time.Minute
-	windows := where.Windows(frame, frame.Place(src.target()), middle.Add(-turn/2), middle.Add(turn/2), limits)
 	for _, w := range windows {
 		for t := w.From; t.Before(w.To); t = t.Add(lstStep) {
 			part := math.Min(1, w.To.Sub(t).Minutes()/lstStep.Minutes())

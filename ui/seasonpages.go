@@ -38,6 +38,9 @@ var seasonPages = [...]seasonPage{
 		{"source", 12, false, 0}, {"rcvr", 4, false, 2}, {"1 h, us", 8, true, 2}, {"floor", 5, true, 3}, {"up h", 5, true, 4}, {"least h", 7, true, 3},
 		{"planned h", 9, true, 0}, {"best h", 6, true, 0}, {"error, us", 9, true, 1}, {"at best", 8, true, 1},
 	}, "hours, and what they could buy", arrayPage},
+	{"Phases", []textColumn{
+		{"source", 12, false, 0}, {"site", 12, false, 3}, {"step, turns", 11, true, 2}, {"parts", 5, true, 1}, {"seen", 5, true, 0}, {"all seen after", 14, true, 0},
+	}, "the same phases for months", phasesPage},
 }
 
 func sessionsPage(s *campaigns.Season) seasonTable {
@@ -201,6 +204,27 @@ func sunPage(s *campaigns.Season) seasonTable {
 		return g.Source + ", near the Sun", []line{
 			{label: "not usable", text: fmt.Sprintf("%s to %s: nearer to the Sun than %.1f deg", g.From.UTC().Format("2006-01-02 15:04"), g.To.UTC().Format("2006-01-02 15:04 UTC"), g.LimitDeg)},
 			{label: "closest", text: fmt.Sprintf("%.1f deg on %s", g.ClosestDeg, g.ClosestAt.UTC().Format("2006-01-02 15:04 UTC"))},
+		}
+	}
+	return t
+}
+
+// phasesPage lists the orbits that keep step with the days.
+func phasesPage(s *campaigns.Season) seasonTable {
+	var t seasonTable
+	for i := range s.Repeats {
+		r := &s.Repeats[i]
+		t.cells = append(t.cells, []string{
+			r.Source, r.Site, fmt.Sprintf("%.4f", r.StepTurns), fmt.Sprint(r.Parts), fmt.Sprintf("%.0f %%", 100*r.SeenShare()), fmt.Sprintf("%.0f d", r.Days),
+		})
+		t.sources = append(t.sources, r.Source)
+	}
+	t.lines = func(i int) (string, []line) {
+		r := &s.Repeats[i]
+		return r.Source + ", in step with the days", []line{
+			{label: "step", text: fmt.Sprintf("from one transit over %s to the next the orbital phase steps by %.4f turns", r.Site, r.StepTurns)},
+			{label: "seen", text: fmt.Sprintf("%s of the orbit, %.3f turns wide, one a transit: %.0f %% of it", count(r.Parts, "part"), r.PartTurns, 100*r.SeenShare())},
+			{label: "all seen", text: fmt.Sprintf("after %.0f days; what lies between the parts must be planned for long before", r.Days)},
 		}
 	}
 	return t

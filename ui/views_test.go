@@ -193,3 +193,13 @@ func TestOrbitThatMeansNothing(t *testing.T) {
 		h.exact()
 	}
 }
+
+func TestPhasesPage(t *testing.T) {
+	p := phasesPage(&campaigns.Season{Repeats: []campaigns.PhaseRepeat{{Source: "J1", Site: "Hill", StepTurns: 0.5, Parts: 2, PartTurns: 0.125, Days: 400}}})
+	if got := strings.Join(p.cells[0], "|"); got != "J1|Hill|0.5000|2|25 %|400 d" || p.sources[0] != "J1" {
+		t.Errorf("%q of %v", got, p.sources)
+	}
+	if title, lines := p.lines(0); title != "J1, in step with the days" || !strings.Contains(lines[1].text, "2 parts of the orbit, 0.125 turns wide") {
+		t.Errorf("%s: %+v", title, lines)
+	}
+}

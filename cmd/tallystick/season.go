@@ -14,7 +14,7 @@ import (
 )
 
 // seasonTables are what a season comes to, each a table of its own in csv.
-var seasonTables = []string{"cadences", "sessions", "lst", "connect", "sun", "debts", "array"}
+var seasonTables = []string{"cadences", "sessions", "lst", "connect", "sun", "debts", "array", "repeats"}
 
 func (p *program) seasonCommand() *cobra.Command {
 	table := seasonTables[0]
@@ -29,6 +29,7 @@ func (p *program) seasonCommand() *cobra.Command {
 			"over the sidereal time in which it is up, and asked for. Measure and connect aims ask for none, and of aims that one slot can serve at once the largest counts.\n" +
 			"The array's table compares the hours planned on each pulsar with the division of as many in which one hour more is worth the " +
 			"same on every pulsar, above a least that keeps its count. It is advice for asking for time; no plan follows it.\n" +
+			"An orbit keeps step with the days when transits show the same parts of it, at most six, for two months or more.\n" +
 			"Columns of csv: " + seasonColumnWords("; ") + ".",
 		Example: "  tallystick season\n  tallystick season --table lst --format csv --out hours.csv",
 		Args:    noArgs,
@@ -68,6 +69,7 @@ var seasonColumns = map[string][]string{
 	"connect":  {"source", "limit_turns", "by_utc", "planned_utc", "lost", "by_at_end_utc"},
 	"sun":      {"source", "limit_deg", "from_utc", "to_utc", "closest_utc", "closest_deg"},
 	"debts":    {"source", "aim", "receivers", "debt_end", "last_utc", "due_utc", "flags"},
+	"repeats":  {"source", "site", "step_turns", "parts", "part_turns", "seen_share", "days"},
 	"array":    {"source", "site", "receiver", "hour_error_us", "floor_us", "up_h", "least_h", "planned_h", "best_h", "planned_us", "best_us", "left_out"},
 }
 
@@ -125,6 +127,14 @@ func seasonCSV(w io.Writer, s *campaigns.Season, table string) error {
 				r.Source, r.Aim, strings.Join(r.Receivers, "+"), fmt.Sprintf("%.4f", r.Debt), utc(r.Last), utc(r.Due), strings.Join(r.Flags, "; "),
 			})
 		}
+	case "repeats":
+		for i := range s.Repeats {
+			r := &s.Repeats[i]
+			out = append(out, []string{
+				r.Source, r.Site, fmt.Sprintf("%.5f", r.StepTurns), fmt.Sprint(r.Parts), fmt.Sprintf("%.4f", r.PartTurns),
+				fmt.Sprintf("%.4f", r.SeenShare()), fmt.Sprintf("%.0f", r.Days),
+			})
+		}
 	case "array":
 		out = append(out, arrayCells(&s.Array)...)
 	}
@@ -137,7 +147,7 @@ func seasonText(w io.Writer, d *desk, s *campaigns.Season) error {
 		s.From.UTC().Format("2006-01-02 15:04"), s.To.UTC().Format("2006-01-02 15:04"), count(len(s.Sessions), "session"))
 	b.WriteString(hanging("", words(title)))
 	for _, part := range []func(io.Writer, *campaigns.Season) error{
-		sessionsText, cadencesText, debtsText, connectsText, lstText, sunText, arrayText,
+		sessionsText, cadencesText, debtsText, connectsText, lstText, sunText, repeatsText, arrayText,
 	} {
 		b.WriteString("\n")
 		if err := part(&b, s); err != nil {
@@ -282,6 +292,28 @@ func sunText(w io.Writer, s *campaigns.Season) error {
 	return printTable(w, columns, rows)
 }
 
+// repeatsText tells of orbits that keep step with the days.
+func repeatsText(w io.Writer, s *campaigns.Season) error {
+	if len(s.Repeats) == 0 {
+		_, err := fmt.Fprintln(w, "No orbit keeps step with the days: all of each can be seen within two months.")
+		return err
+	}
+	fmt.Fprintln(w, "Orbits that keep step with the days: the same parts are up for months")
+	columns := []column{{"Source", 14, false}, {"Site", 14, false}, {"Step, turns", 11, true}, {"Parts", 5, true}, {"Seen", 5, true}, {"All seen after", 14, true}}
+	var rows [][]string
+	for i := range s.Repeats {
+		r := &s.Repeats[i]
+		rows = append(rows, []string{
+			words(r.Source), words(r.Site), fmt.Sprintf("%.4f", r.StepTurns), fmt.Sprint(r.Parts), fmt.Sprintf("%.0f %%", 100*r.SeenShare()), fmt.Sprintf("%.0f d", r.Days),
+		})
+	}
+	if err := printTable(w, columns, rows); err != nil {
+		return err
+	}
+	_, err := io.WriteString(w, "Step: of the orbital phase from transit to transit. Seen: of the orbit until\nthen.\n")
+	return err
+}
+
 type jsonSeason struct {
 	Format   int            `json:"format"`
 	Version  string         `json:"version"`
@@ -294,6 +326,7 @@ type jsonSeason struct {
 	LST      []jsonPressure `json:"lst"`
 	Sun      []jsonSun      `json:"sun"`
 	Debts    []jsonDebt     `json:"debts"`
+	Repeats  []jsonRepeat   `json:"repeats"`
 	Unserved []string       `json:"receivers_in_no_session"`
 	Array    jsonArray      `json:"array"`
 }
@@ -350,6 +383,16 @@ type jsonSun struct {
 	ClosestDeg float64 `json:"closest_deg"`
 }
 
+type jsonRepeat struct {
+	Source string  `json:"source"`
+	Site   string  `json:"site"`
+	Step   float64 `json:"step_turns"`
+	Parts  int     `json:"parts"`
+	Part   float64 `json:"part_turns"`
+	Seen   float64 `json:"seen_share"`
+	Days   float64 `json:"days"`
+}
+
 type jsonDebt struct {
 	Source string  `json:"source"`
 	Aim    string  `json:"aim"`
@@ -361,7 +404,7 @@ type jsonDebt struct {
 func seasonJSON(w io.Writer, d *desk, s *campaigns.Season) error {
 	out := jsonSeason{
 		Format: 1, Version: version(), Campaign: d.Campaign.Name, FromUTC: utc(s.From), ToUTC: utc(s.To), Sessions: []jsonPlayed{},
-		Cadences: []jsonCadence{}, Connect: []jsonConnect{}, LST: []jsonPressure{}, Sun: []jsonSun{}, Debts: []jsonDebt{},
+		Cadences: []jsonCadence{}, Connect: []jsonConnect{}, LST: []jsonPressure{}, Sun: []jsonSun{}, Repeats: []jsonRepeat{}, Debts: []jsonDebt{},
 		Unserved: append([]string{}, s.Unserved...), Array: arrayJSON(&s.Array),
 	}
 	for _, x := range s.Sessions {
@@ -386,6 +429,10 @@ func seasonJSON(w io.Writer, d *desk, s *campaigns.Season) error {
 	}
 	for _, g := range s.Sun {
 		out.Sun = append(out.Sun, jsonSun{g.Source, g.LimitDeg, utc(g.From), utc(g.To), utc(g.ClosestAt), round(g.ClosestDeg, 3)})
+	}
+	for i := range s.Repeats {
+		r := &s.Repeats[i]
+		out.Repeats = append(out.Repeats, jsonRepeat{r.Source, r.Site, round(r.StepTurns, 5), r.Parts, round(r.PartTurns, 4), round(r.SeenShare(), 4), round(r.Days, 0)})
 	}
 	for _, r := range s.Debts {
 		out.Debts = append(out.Debts, jsonDebt{r.Source, r.Aim, string(r.Kind), round(r.Debt, 4), r.Why})

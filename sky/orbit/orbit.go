@@ -295,9 +295,3 @@ func fraction(x float64) float64 {
 	}
 	return f
 }
-
-// TransitStepTurns returns by how much the orbital phase steps from one transit of the source over a
-// site to the next, 0 ≤ step < 1. Near 0, 1 or a simple fraction a site sees the same phases for months.
-func (o Orbit) TransitStepTurns() float64 { return fraction(siderealDayDays / o.PeriodDays) }
-
-const siderealDayDays = 0.99726957

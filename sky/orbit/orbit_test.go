@@ -126,13 +126,6 @@ func mustNewRapid(t *rapid.T, el Elements) Orbit {
 	return o
 }
 
-func TestTransitStep(t *testing.T) {
-	for _, r := range outside.Rows(t, "orbits.csv", "ORB-120", "ORB-121") {
-		o := mustNew(t, Elements{PeriodDays: r.Num("PB_d"), AscendingNodeMJD: 55000})
-		r.Check(o.TransitStepTurns())
-	}
-}
-
 func TestPhaseOfACircularOrbit(t *testing.T) {
 	o := mustNew(t, Elements{PeriodDays: 2, AscendingNodeMJD: 55000})
 	for _, c := range []struct{ mjd, phase float64 }{{55000, 0}, {55000.5, 0.25}, {55001.5, 0.75}, {54999.5, 0.75}, {55400.25, 0.125}} {
