@@ -6,6 +6,7 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
+	"regexp"
 	"strings"
 	"sync"
 	"syscall"
@@ -459,5 +460,36 @@ func TestStarter(t *testing.T) {
 	}
 	if text, _ := os.ReadFile(mine); string(text) != "mine" {
 		t.Error("overwritten")
+	}
+}
+
+// What the starter only shows, in comments, is as good as the rest: with it a campaign has every kind of aim, air and a gain curve.
+func TestWhatTheStarterShowsInComments(t *testing.T) {
+	dir := filepath.Join(t.TempDir(), "mine")
+	if err := WriteStarter(dir, utc(t, "2026-12-01T12:00:00Z")); err != nil {
+		t.Fatal(err)
+	}
+	file := filepath.Join(dir, CampaignFile)
+	text, err := os.ReadFile(file)
+	if err != nil {
+		t.Fatal(err)
+	}
+	shown := regexp.MustCompile(`(?m)^# (\[\[|[a-z_]+ = )`).ReplaceAll(text, []byte("$1"))
+	shown = regexp.MustCompile(`(?m)^include = .*$`).ReplaceAll(shown, nil) // there are no such files
+	if err := os.WriteFile(file, shown, 0o644); err != nil {
+		t.Fatal(err)
+	}
+	c := mustOpen(t, dir).Campaign
+	if c.Sites[0].Refraction == nil || len(c.Receivers[0].GainCurve) != 3 {
+		t.Errorf("air %v, gain curve %v", c.Sites[0].Refraction, c.Receivers[0].GainCurve)
+	}
+	kinds := map[AimKind]bool{}
+	for _, s := range c.Sources {
+		for _, a := range s.Aims {
+			kinds[a.Kind] = true
+		}
+	}
+	if len(kinds) != len(aimKinds) {
+		t.Errorf("kinds of aims shown: %v; there are %v", kinds, aimKinds)
 	}
 }
