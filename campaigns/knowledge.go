@@ -64,7 +64,8 @@ func (o *Orbit) einsteinSec() float64 {
 }
 
 // orbitSigmas are the errors of the orbit. One of an eclipsing system is let wander beyond its data; a decay that was
-// not measured is bounded by what proper motion at the distance of the parallax makes.
+// not measured is bounded by what proper motion at the distance of the parallax makes, and gravitational waves where both
+// masses are known.
 func (s *Source) orbitSigmas() orbit.Sigmas {
 	o := s.Orbit
 	out := orbit.Sigmas{
@@ -73,6 +74,11 @@ func (s *Source) orbitSigmas() orbit.Sigmas {
 	}
 	if s.ParallaxMas > 0 {
 		out.ProperMotionMasPerYr, out.DistanceKpc = math.Hypot(s.PMMasPerYr[0], s.PMMasPerYr[1]), 1/s.ParallaxMas
+	}
+	if of, err := orbit.New(o.elements()); err == nil {
+		if sizes := o.sizes(&of); sizes != nil {
+			out.RadiatedDecay = math.Abs(sizes.Decay)
+		}
 	}
 	if o.Eclipse != nil {
 		out.WanderSecPerYr = orbit.DefaultWanderSecPerYr

@@ -27,6 +27,8 @@ type OrbitView struct {
 	PeriastronTurns              *float64    // nil where the orbit is circular
 	EclipseTurns                 *[2]float64 // from, to, with the receiver of the site that loses most; from may be after to, across the node
 
+	Sizes *OrbitSizes // what relativity makes of it; nil where the size of the orbit is not known
+
 	Since   time.Time         // from when on observations are counted; zero: all of the logbook
 	Visits  int               // observations since then
 	Seen    [OrbitCells]int   // how many of them touched each part of the orbit
@@ -115,6 +117,7 @@ const circular = 1e-3
 func (v *OrbitView) place(k *knowledge, c *Campaign, site *Site) {
 	o := k.clock.orbit
 	now := k.clock.orbitMJD(v.At)
+	v.Sizes = k.source.Orbit.sizes(o)
 	if v.Void = !o.Meaningful(now); v.Void {
 		return
 	}

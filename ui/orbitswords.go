@@ -67,6 +67,12 @@ func orbitLines(w *world, g *theme.Glyphs, o *campaigns.OrbitView) []line {
 	}
 	add("orbit", theme.Plain, "period %s, eccentricity %s; phase %.3f now", periodWords(o.PeriodDays), eccentricityWords(o.Eccentricity), o.NowTurns)
 	add("points", theme.Plain, "%s", pointWords(o))
+	if o.Sizes != nil {
+		add("delays", theme.Plain, "%s", sizeWords(o.Sizes))
+		if s := o.Sizes; s.PulsarMsun > 0 {
+			add("relativity", theme.Plain, "%s", relativityWords(s))
+		}
+	}
 	return lines
 }
 
@@ -175,6 +181,25 @@ func trustWords(e *campaigns.ConjunctionRow) string {
 	default:
 		return fmt.Sprintf("; +/- %.2g min, %s", m, e.Trust())
 	}
+}
+
+// sizeWords says what there is to be seen of the Shapiro delay.
+func sizeWords(s *campaigns.OrbitSizes) string {
+	text := fmt.Sprintf("Shapiro delay of %.3g us from least to most, H3 %.3g us, third harmonic %.3g us; companion of %.3g Msun, sin i %.6g",
+		s.ShapiroUs, s.H3Us, s.ThirdUs, s.CompanionMsun, s.SinI)
+	if s.Assumed != "" {
+		text += ", with " + s.Assumed
+	}
+	return text
+}
+
+// relativityWords says what general relativity wants of the orbit with these masses.
+func relativityWords(s *campaigns.OrbitSizes) string {
+	text := fmt.Sprintf("wants a pulsar of %.3g Msun, advance %.3g deg/yr, decay %.2g", s.PulsarMsun, s.AdvanceDegPerYr, s.Decay)
+	if s.EinsteinUs >= 0.01 {
+		text += fmt.Sprintf(", Einstein delay %.3g us", s.EinsteinUs)
+	}
+	return text
 }
 
 func pointWords(o *campaigns.OrbitView) string {

@@ -34,13 +34,13 @@ var seasonPages = [...]seasonPage{
 	{"Owed", []textColumn{
 		{"debt", 5, true, 0}, {"source", 12, false, 0}, {"aim", 26, false, 1}, {"why", 30, false, 2},
 	}, "every account at the end, worst first", owedPage},
+	{"Phases", []textColumn{
+		{"source", 12, false, 0}, {"site", 12, false, 3}, {"step, turns", 11, true, 2}, {"parts", 5, true, 1}, {"seen", 5, true, 0}, {"all seen after", 14, true, 0},
+	}, "the same phases for months", phasesPage},
 	{"Array", []textColumn{
 		{"source", 12, false, 0}, {"rcvr", 4, false, 2}, {"1 h, us", 8, true, 2}, {"floor", 5, true, 3}, {"up h", 5, true, 4}, {"least h", 7, true, 3},
 		{"planned h", 9, true, 0}, {"best h", 6, true, 0}, {"error, us", 9, true, 1}, {"at best", 8, true, 1},
 	}, "hours, and what they could buy", arrayPage},
-	{"Phases", []textColumn{
-		{"source", 12, false, 0}, {"site", 12, false, 3}, {"step, turns", 11, true, 2}, {"parts", 5, true, 1}, {"seen", 5, true, 0}, {"all seen after", 14, true, 0},
-	}, "the same phases for months", phasesPage},
 }
 
 func sessionsPage(s *campaigns.Season) seasonTable {

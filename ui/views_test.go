@@ -76,7 +76,7 @@ func TestSeasonIsPlayedAside(t *testing.T) {
 		h.keys("right")
 		h.exact()
 	}
-	for range 4 {
+	for range 5 {
 		h.keys("right")
 	}
 	h.shows("Array")
@@ -87,7 +87,7 @@ func TestSeasonIsPlayedAside(t *testing.T) {
 	h.shows("4.00, 1.17   half the noise")
 	h.keys("esc", "down")
 	h.shows("J0231+1905, its hours")
-	for range len(seasonPages) - 4 {
+	for range len(seasonPages) - 5 {
 		h.keys("right")
 	}
 	h.keys("left", "/", "type:j2216", "enter", "enter")
@@ -201,5 +201,16 @@ func TestPhasesPage(t *testing.T) {
 	}
 	if title, lines := p.lines(0); title != "J1, in step with the days" || !strings.Contains(lines[1].text, "2 parts of the orbit, 0.125 turns wide") {
 		t.Errorf("%s: %+v", title, lines)
+	}
+}
+
+func TestOrbitSizesInWords(t *testing.T) {
+	s := &campaigns.OrbitSizes{CompanionMsun: 0.25, SinI: 0.999, ShapiroUs: 19.13, H3Us: 1.09, ThirdUs: 1.45, Assumed: "an assumed inclination of 60 deg"}
+	if got := sizeWords(s); got != "Shapiro delay of 19.1 us from least to most, H3 1.09 us, third harmonic 1.45 us; companion of 0.25 Msun, sin i 0.999, with an assumed inclination of 60 deg" {
+		t.Error(got)
+	}
+	s = &campaigns.OrbitSizes{PulsarMsun: 1.338, AdvanceDegPerYr: 16.9, Decay: -1.25e-12, EinsteinUs: 384}
+	if got := relativityWords(s); got != "wants a pulsar of 1.34 Msun, advance 16.9 deg/yr, decay -1.2e-12, Einstein delay 384 us" {
+		t.Error(got)
 	}
 }

@@ -6,6 +6,7 @@ import (
 	"slices"
 
 	"example.org/tallystick/sky/orbit"
+	"example.org/tallystick/sky/timing"
 )
 
 // pulsarMsun is what a pulsar is taken to weigh where its companion's mass is derived.
@@ -246,7 +247,7 @@ func (f *File) companion(b *binary, o orbit.Orbit) {
 		return
 	}
 	if stig, h3 := f.orthometric(), f.line("H3"); stig > 0 && h3 != nil {
-		if m := h3.Value / math.Pow(stig, 3) / orbit.SunSec; m > 0 && m <= 100 {
+		if m := timing.CompanionFromH3(h3.Value, stig); m > 0 && m <= 100 {
 			b.companion, b.companionNote = rounded(m, 6), "derived companion mass: H3/STIG^3, Freire & Wex 2010"
 			f.remark(0, "no M2: the companion mass, %s Msun, is derived from the Shapiro delay's H3", b.companion.text)
 			return
@@ -307,6 +308,6 @@ func (f *File) inclination(b *binary) {
 	case shapmax != nil:
 		set(-math.Expm1(-shapmax.Value), "from SHAPMAX "+shapmax.Text)
 	case stig > 0:
-		set(2*stig/(1+stig*stig), "from STIG or H4/H3, Freire & Wex 2010")
+		set(timing.SinIFromStig(stig), "from STIG or H4/H3, Freire & Wex 2010")
 	}
 }

@@ -15,8 +15,10 @@ type Sigmas struct {
 	DataStartMJD  float64 // span of the observations behind the ephemeris
 	DataFinishMJD float64
 
-	ProperMotionMasPerYr float64 // with DistanceKpc: bounds a decay that was not measured
+	// What a decay that was not measured may be.
+	ProperMotionMasPerYr float64 // with DistanceKpc
 	DistanceKpc          float64
+	RadiatedDecay        float64 // by gravitational waves, without its sign: see DecayGR
 
 	// WanderSecPerYr is added for orbits that wander irregularly, those of eclipsing systems, for every
 	// year beyond the data; DefaultWanderSecPerYr is common practice.
@@ -129,10 +131,10 @@ func (o *Orbit) decayError(s Sigmas, p *Prediction) float64 {
 		return 0
 	case s.ProperMotionMasPerYr > 0 && s.DistanceKpc > 0:
 		p.Cautions = append(p.Cautions, DecayBounded)
-		return KinematicDecay(o.PeriodDays, s.ProperMotionMasPerYr, s.DistanceKpc)
+		return KinematicDecay(o.PeriodDays, s.ProperMotionMasPerYr, s.DistanceKpc) + s.RadiatedDecay
 	}
 	p.Cautions = append(p.Cautions, DecayAbsent)
-	return 0
+	return s.RadiatedDecay
 }
 
 // KinematicDecay returns the apparent dPb/dt of an orbit whose system moves across the sky.
