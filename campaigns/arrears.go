@@ -143,9 +143,9 @@ func count(n int, thing string) string {
 // last is when a source was last observed with any of the receivers; zero if never.
 func (b *books) last(source string, receivers []string) time.Time {
 	var last time.Time
-	for _, v := range b.visits(source, receivers) {
-		if v.At.After(last) {
-			last = v.At
+	for _, e := range b.entries[source] {
+		if at := e.middle(); at.After(last) && slices.Contains(receivers, e.Receiver) {
+			last = at
 		}
 	}
 	return last

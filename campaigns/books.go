@@ -15,9 +15,9 @@ import (
 // that moment. Goroutines may ask them side by side.
 type books struct {
 	at           time.Time
-	now          time.Time          // sessions that end later are still to come; not after at
-	opened       time.Time          // when the logbook begins
-	entries      map[string][]Entry // what was done or partly done before the moment, by source, in time order
+	now          time.Time           // sessions that end later are still to come; not after at
+	opened       time.Time           // when the logbook begins
+	entries      map[string][]*Entry // what was done or partly done before the moment, by source, in time order
 	frames       *frames
 	campaign     *Campaign
 	known        sync.Mutex // guards what follows
@@ -47,12 +47,12 @@ func once[T any](b *books, known map[*Aim]T, aim *Aim, work func() (T, error)) (
 
 // open reads the logbook up to a moment. Lines that are later, or lost, pay nothing.
 func open(c *Campaign, log *Logbook, at time.Time) *books {
-	b := &books{at: at, now: at, opened: at, entries: map[string][]Entry{}, frames: newFrames(), campaign: c,
+	b := &books{at: at, now: at, opened: at, entries: map[string][]*Entry{}, frames: newFrames(), campaign: c,
 		cadences: map[*Aim]cadenceAccount{}, coverages: map[*Aim]coverage{}, passings: map[*Aim]passages{}, connections: map[*Aim]connection{}, measurements: map[*Aim]measurement{}}
 	if log == nil {
 		return b
 	}
-	for _, e := range log.Effective() {
+	for _, e := range log.effective() {
 		if !e.End.Before(at) && !e.Start.Before(at) {
 			continue
 		}

@@ -499,6 +499,16 @@ func parsePlain(s string) (float64, bool) {
 // Effective returns the entries that count, in order of their start: a later line with the same start,
 // site, source and receiver replaces the earlier one, which is how a slip is put right.
 func (l *Logbook) Effective() []Entry {
+	counting := l.effective()
+	out := make([]Entry, len(counting))
+	for i, e := range counting {
+		out[i] = *e
+	}
+	return out
+}
+
+// effective is Effective without a copy of the entries.
+func (l *Logbook) effective() []*Entry {
 	// Most logbooks are in order already, and few entries share their start.
 	type place struct {
 		start int64 // µs
@@ -512,7 +522,7 @@ func (l *Logbook) Effective() []Entry {
 	if !slices.IsSortedFunc(order, byStart) {
 		slices.SortFunc(order, byStart)
 	}
-	out := make([]Entry, 0, len(order))
+	out := make([]*Entry, 0, len(order))
 	for from := 0; from < len(order); {
 		to := from + 1
 		for to < len(order) && order[to].start == order[from].start {
@@ -520,7 +530,7 @@ func (l *Logbook) Effective() []Entry {
 		}
 		begun := len(out)
 		for _, p := range order[from:to] {
-			out = append(out, l.Entries[p.index])
+			out = append(out, &l.Entries[p.index])
 		}
 		out = append(out[:begun], lastOfEach(out[begun:])...)
 		from = to
@@ -530,11 +540,11 @@ func (l *Logbook) Effective() []Entry {
 
 // lastOfEach sorts entries of the same start by site, source and receiver, and keeps the last of those that
 // have the same.
-func lastOfEach(entries []Entry) []Entry {
+func lastOfEach(entries []*Entry) []*Entry {
 	if len(entries) == 1 {
 		return entries
 	}
-	what := func(a, b Entry) int {
+	what := func(a, b *Entry) int {
 		return cmp.Or(strings.Compare(a.Site, b.Site), strings.Compare(a.Source, b.Source), strings.Compare(a.Receiver, b.Receiver))
 	}
 	slices.SortStableFunc(entries, what)

@@ -29,6 +29,7 @@ type Prepared struct {
 	sources      []preparedSource // as Tracks
 	sourceByName map[string]int   // index into Campaign.Sources
 	places       []place          // as Problem.Slew counts them
+	takePart     []string         // see TakingPart
 }
 
 // PrepareOptions are what a session is prepared with beside the campaign.
@@ -37,6 +38,7 @@ type PrepareOptions struct {
 	GridMin int       // slot ends lie on multiples of this; 0 means 1
 	Bars    []string  // sources that the observer excludes from this session
 	FromMin int       // re-plan from this minute: what lies before it is past
+	Keep    []string  // of a campaign too large to plan whole, sources that take part in any case
 }
 
 // A Track is where a source stands at each minute of a session: Minutes+1 values in each slice.
@@ -133,6 +135,7 @@ func Prepare(c *Campaign, log *Logbook, s *Session, o PrepareOptions) (*Prepared
 	if p.Accounts, err = accountRows(c, books); err != nil {
 		return nil, err
 	}
+	p.crop(o.Keep)
 	p.Problem.Slew = slewTable(p.Site.mount(), p.places, minutes, p.Problem.Breaks)
 	return p, nil
 }

@@ -22,9 +22,10 @@ type Problem struct {
 	Receivers   []Receiver `json:"receivers"`
 	Breaks      []Span     `json:"breaks"` // in time order, apart from one another; nothing moves or observes in a break
 	Slew        SlewTable  `json:"slew"`
-	Jobs        []Job      `json:"jobs"`  // sorted by source, then receiver
-	Nodes       []Node     `json:"nodes"` // sorted by job, then place
-	Pins        []Slot     `json:"pins"`  // in time order; the planner keeps these as they are
+	Jobs        []Job      `json:"jobs"`              // sorted by source, then receiver
+	Nodes       []Node     `json:"nodes"`             // sorted by job, then place
+	Pins        []Slot     `json:"pins"`              // in time order; the planner keeps these as they are
+	Cropped     bool       `json:"cropped,omitempty"` // jobs that might have had a slot were left without nodes: no ceiling holds
 }
 
 // A Receiver is named by its index in Problem.Receivers.
@@ -62,14 +63,15 @@ type Job struct {
 
 // Facts are what the reason for leaving a job out is told from; they do not constrain the plan.
 type Facts struct {
-	UpMin     int     `json:"up_min"`      // longest stretch above elevation limits, mask and within the mount's travel, in minutes
-	SunMin    int     `json:"sun_min"`     // the longest that is left of it outside the Sun limit
-	SunDeg    float64 `json:"sun_deg"`     // least distance from the Sun in the session, degrees
-	SunLimit  float64 `json:"sun_limit"`   // the limit that holds, degrees
-	ClearMin  int     `json:"clear_min"`   // the longest that is left of that outside eclipses and breaks
-	HighestEl float64 `json:"highest_deg"` // greatest elevation in the session, degrees
-	Debt      float64 `json:"debt"`        // the greatest debt of its aims, cycles
-	DebtAim   string  `json:"debt_aim"`    // the aim that owes it
+	UpMin     int     `json:"up_min"`            // longest stretch above elevation limits, mask and within the mount's travel, in minutes
+	SunMin    int     `json:"sun_min"`           // the longest that is left of it outside the Sun limit
+	SunDeg    float64 `json:"sun_deg"`           // least distance from the Sun in the session, degrees
+	SunLimit  float64 `json:"sun_limit"`         // the limit that holds, degrees
+	ClearMin  int     `json:"clear_min"`         // the longest that is left of that outside eclipses and breaks
+	HighestEl float64 `json:"highest_deg"`       // greatest elevation in the session, degrees
+	Debt      float64 `json:"debt"`              // the greatest debt of its aims, cycles
+	DebtAim   string  `json:"debt_aim"`          // the aim that owes it
+	Crowded   bool    `json:"crowded,omitempty"` // it has no node because others of a huge campaign promised more
 }
 
 // A Node is a job on one wrap side of the mount, in one window of its limits: the cable has one state

@@ -38,15 +38,15 @@ type worthRows struct {
 // the last is set.
 type jobBits struct{ first, last int }
 
-// maxSearched bounds the search's memory: a session has room for far fewer slots than this.
-const maxSearched = 320
+// MostSearched is how many jobs the search considers. It bounds its memory: a session has room for far fewer slots.
+const MostSearched = 320
 
 // maxSlotsSearched is the most slots of one job that the search will plan.
 const maxSlotsSearched = 8
 
 // newTables makes the tables of a problem on so many goroutines; they do not depend on their number.
 func newTables(p *Problem, workers int) *tables {
-	t := &tables{p: p, span: p.Minutes + 1, labels: mostLabels, breakTo: make([]bool, p.Minutes+1)}
+	t := &tables{p: p, span: p.Minutes + 1, labels: mostLabels, cropped: p.Cropped, breakTo: make([]bool, p.Minutes+1)}
 	t.cutWindows()
 	t.rows = make([]worthRows, len(p.Jobs))
 	t.best = make([]Micro, len(p.Jobs))
@@ -120,11 +120,29 @@ func (p *Problem) cut(w Span) []Span {
 	return append(parts, w)
 }
 
-// choose picks the jobs that take part: all of a usual session, and of a huge one those whose whole
-// window would bring the most.
+// choose picks the jobs that take part: all of a usual session, and of a huge one the foremost.
 func (t *tables) choose() {
+	t.chosen = make([]bool, len(t.p.Jobs))
+	order := t.foremost()
+	if len(order) > MostSearched {
+		order = order[:MostSearched]
+		t.cropped = true
+	}
+	for _, j := range order {
+		t.chosen[j] = true
+	}
+}
+
+// Foremost returns the jobs that the search would consider, were there room for all: those that must be there first,
+// then those whose whole window would bring the most. Slews do not count, and may be missing.
+func Foremost(p *Problem) []int {
+	t := &tables{p: p, span: p.Minutes + 1}
+	t.cutWindows()
+	return t.foremost()
+}
+
+func (t *tables) foremost() []int {
 	p := t.p
-	t.chosen = make([]bool, len(p.Jobs))
 	most := make([]Micro, len(p.Jobs))
 	var order []int
 	for i, n := range p.Nodes {
@@ -137,19 +155,13 @@ func (t *tables) choose() {
 			order = append(order, j)
 		}
 	}
-	if len(order) > maxSearched {
-		sortByDesc(order, func(j int) Micro {
-			if p.Jobs[j].Must {
-				return math.MaxInt64
-			}
-			return most[j]
-		})
-		order = order[:maxSearched]
-		t.cropped = true
-	}
-	for _, j := range order {
-		t.chosen[j] = true
-	}
+	sortByDesc(order, func(j int) Micro {
+		if p.Jobs[j].Must {
+			return math.MaxInt64
+		}
+		return most[j]
+	})
+	return order
 }
 
 func (t *tables) worthRows(job int, memo *termMemo) worthRows {

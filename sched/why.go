@@ -14,6 +14,7 @@ const (
 	NotUp       ReasonKind = "not up"        // never long enough above its limits
 	SunTooClose ReasonKind = "sun too close" // the Sun limit leaves too little of it
 	Eclipsed    ReasonKind = "eclipsed"      // eclipses and breaks leave too little of it
+	Crowded     ReasonKind = "crowded"       // of a huge campaign others promise more, and only those are looked at
 	Past        ReasonKind = "past"          // its time in this session is over
 	TooLow      ReasonKind = "too low"       // so low or so short that its best slot reaches too little to be of use
 	NotDue      ReasonKind = "not due"       // its best slot is worth nothing to speak of
@@ -70,7 +71,7 @@ func Absent(p *Problem, plan Plan) []Reason {
 }
 
 // kinds are the reasons from the firmest to the one that comes nearest to a place in the plan.
-var kinds = []ReasonKind{Barred, NotUp, SunTooClose, Eclipsed, Past, TooLow, NotDue, NoRoom, Outranked, Free}
+var kinds = []ReasonKind{Barred, NotUp, SunTooClose, Eclipsed, Crowded, Past, TooLow, NotDue, NoRoom, Outranked, Free}
 
 func (r Reason) nearer(than Reason) bool {
 	a, b := slices.Index(kinds, r.Kind), slices.Index(kinds, than.Kind)
@@ -93,6 +94,8 @@ func (in *inserter) whyNot(job int) Reason {
 		return reason(SunTooClose, "%.1f° from the Sun, limit %.1f°: leaves %d of the %d min needed", f.SunDeg, f.SunLimit, f.SunMin, j.MinMin)
 	case longest < j.MinMin && f.ClearMin < j.MinMin:
 		return reason(Eclipsed, "eclipses and breaks leave %d of the %d min needed", f.ClearMin, j.MinMin)
+	case f.Crowded:
+		return reason(Crowded, "%d others promise more in this session, and no more are looked at in so large a campaign", MostSearched)
 	case longest < j.MinMin:
 		return reason(NotUp, "the mount can stay on it for %d of the %d min needed", longest, j.MinMin)
 	case later < j.MinMin:

@@ -48,14 +48,14 @@ func tickCmd() tea.Cmd {
 
 func prepareCmd(f *files, s *campaigns.Session, at time.Time) tea.Cmd {
 	return guarded(func() tea.Msg {
-		p, err := campaigns.Prepare(f.Campaign, f.book(), s, campaigns.PrepareOptions{At: at})
+		f.mu.Lock()
+		saved, unread := f.Plan(s.Name)
+		f.mu.Unlock()
+		p, err := campaigns.Prepare(f.Campaign, f.book(), s, campaigns.PrepareOptions{At: at, Keep: saved.Sources()})
 		if err != nil {
 			return preparedMsg{session: s.Name, err: err}
 		}
-		f.mu.Lock()
-		defer f.mu.Unlock()
-		saved, err := f.Plan(s.Name)
-		return preparedMsg{session: s.Name, prepared: p, saved: saved, err: err}
+		return preparedMsg{session: s.Name, prepared: p, saved: saved, err: unread}
 	})
 }
 

@@ -3,11 +3,13 @@ package ui
 import (
 	"fmt"
 	"math"
+	"slices"
 	"time"
 
 	tea "github.com/charmbracelet/bubbletea"
 
 	"example.org/tallystick/campaigns"
+	"example.org/tallystick/sched"
 )
 
 // written is an entry of this run, with the one that counted before it.
@@ -49,7 +51,7 @@ func (m *model) bookChanged(msg recordedMsg) tea.Cmd {
 	for _, s := range w.campaign.Sessions {
 		d, ok := w.desks[s.Name]
 		if ok && d.prepared != nil && d.countsOn(msg.entries) {
-			cmds = append(cmds, refreshCmd(w.folder, d.session, d.prepared.At, w.edition))
+			cmds = append(cmds, refreshCmd(w.folder, d.session, d.prepared.At, w.edition, d.prepared.TakingPart()))
 		}
 	}
 	return tea.Batch(cmds...)
@@ -66,9 +68,9 @@ func (d *desk) countsOn(entries []campaigns.Entry) bool {
 	return false
 }
 
-func refreshCmd(f *files, s *campaigns.Session, at time.Time, edition int) tea.Cmd {
+func refreshCmd(f *files, s *campaigns.Session, at time.Time, edition int, keep []string) tea.Cmd {
 	return guarded(func() tea.Msg {
-		p, err := campaigns.Prepare(f.Campaign, f.book(), s, campaigns.PrepareOptions{At: at})
+		p, err := campaigns.Prepare(f.Campaign, f.book(), s, campaigns.PrepareOptions{At: at, Keep: keep})
 		return refreshedMsg{s.Name, edition, p, err}
 	})
 }
@@ -85,7 +87,7 @@ func (m *model) receiveRefreshed(msg refreshedMsg) tea.Cmd {
 		m.warn("what is owed could not be worked out again: %v", msg.err)
 		return nil
 	}
-	if len(msg.prepared.Problem.Nodes) != len(d.prepared.Problem.Nodes) {
+	if !sameNodes(msg.prepared.Problem.Nodes, d.prepared.Problem.Nodes) {
 		m.warn("the session has changed: leave and open it again to see what is owed now")
 		return nil
 	}
@@ -95,6 +97,10 @@ func (m *model) receiveRefreshed(msg refreshedMsg) tea.Cmd {
 	d.prepared, d.accounts, d.reviewed, d.planned = msg.prepared, msg.prepared.Accounts, false, nil
 	d.changed()
 	return reviewCmd(w.folder, d.session)
+}
+
+func sameNodes(a, b []sched.Node) bool {
+	return slices.EqualFunc(a, b, func(a, b sched.Node) bool { return a.Job == b.Job && a.Place == b.Place && a.Turn == b.Turn })
 }
 
 // debtWords say what entries have done to the accounts of the source whose debt they change most.

@@ -59,7 +59,7 @@ func (p *program) sheet(d *desk, s *campaigns.Session) (*export.Sheet, error) {
 		}
 		return &made.sheet, nil
 	}
-	prepared, err := campaigns.Prepare(d.Campaign, d.Logbook, s, campaigns.PrepareOptions{At: d.at, GridMin: max(1, saved.GridMin), Bars: saved.Bars})
+	prepared, err := campaigns.Prepare(d.Campaign, d.Logbook, s, campaigns.PrepareOptions{At: d.at, GridMin: max(1, saved.GridMin), Bars: saved.Bars, Keep: saved.Sources()})
 	if err != nil {
 		return nil, err
 	}

@@ -148,7 +148,7 @@ func (p *program) prepare(d *desk, s *campaigns.Session) (*campaigns.Prepared, *
 	if err != nil {
 		return nil, nil, err
 	}
-	options := campaigns.PrepareOptions{At: d.at, GridMin: p.flags.grid}
+	options := campaigns.PrepareOptions{At: d.at, GridMin: p.flags.grid, Keep: saved.Sources()}
 	if saved != nil {
 		options.Bars = saved.Bars
 	}
