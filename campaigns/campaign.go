@@ -78,6 +78,7 @@ type Source struct {
 	Scintillation    *Scintillation
 	WidthMs          float64 // W50 of the profile; 0 when not known
 	JitterUsPerHour  float64 // TOA error from pulse jitter after one hour
+	JitterFraction   float64 // in its place where it was not measured: that of a single pulse over the pulse width; about 1/3
 	FloorUs          float64 // TOA error that no amount of time goes below
 	SkyK             float64 // sky temperature at 408 MHz; 0: from the model
 	SunLimitDeg      float64 // stricter than the site's; 0: the site's

@@ -38,6 +38,7 @@ func (l *loader) source(t *table) Source {
 		Scintillation:    t.scintillation(),
 		WidthMs:          t.numberOr("width_ms", above(0, 100000), 0),
 		JitterUsPerHour:  t.numberOr("jitter_us_per_hour", between(0, 1e6), 0),
+		JitterFraction:   t.numberOr("jitter_fraction", between(0, 1), 0),
 		FloorUs:          t.numberOr("floor_us", between(0, 1e6), 0),
 		SkyK:             t.numberOr("sky_k", above(0, 1e6), 0),
 		SunLimitDeg:      t.numberOr("sun_limit_deg", between(0, 90), 0),
@@ -49,6 +50,9 @@ func (l *loader) source(t *table) Source {
 	l.stricterThanSites(t, s)
 	if s.Spin != nil && s.WidthMs > 0 && t.good("spin", "width_ms") && s.WidthMs*s.Spin.FrequencyHz >= 1000 {
 		t.complain("width_ms", plainNumber(s.WidthMs), fmt.Sprintf("a width below the period, %.6g ms", 1000/s.Spin.FrequencyHz), "")
+	}
+	if s.JitterUsPerHour > 0 && s.JitterFraction > 0 && t.good("jitter_us_per_hour", "jitter_fraction") {
+		t.complain("jitter_fraction", plainNumber(s.JitterFraction), "jitter_us_per_hour or jitter_fraction, not both", "")
 	}
 	s.Aims = l.aims(t, &s)
 	t.done(nil)

@@ -95,8 +95,10 @@ type countPart struct {
 	keys       string // that state its errors
 }
 
+const position = "position" // the part of that name
+
 var countParts = []countPart{
-	{"position", []timing.Parameter{timing.RightAscension, timing.Declination}, "sigma_position_mas"},
+	{position, []timing.Parameter{timing.RightAscension, timing.Declination}, "sigma_position_mas"},
 	{"orbit", []timing.Parameter{
 		timing.AscendingNode, timing.Periastron, timing.OrbitalPeriod, timing.SemimajorAxis, timing.OrbitalDecay, timing.AdvanceOfPeriastron, timing.EinsteinDelay,
 	}, "sigma_epoch_days, sigma_period_days, sigma_semimajor_ls"},
@@ -200,10 +202,26 @@ func (k *knowledge) mostOf(c connection, src timing.Source, priors []timing.Prio
 			if unstated {
 				return fmt.Sprintf("the %s's, whose error is not given (%s)", part.name, part.keys), nil
 			}
-			return fmt.Sprintf("the %s's error", part.name), nil
+			what := fmt.Sprintf("the %s's error", part.name)
+			if part.name == position {
+				what += fmt.Sprintf(", which swings the phase by up to %.2g turns in a year", annualSwing(src, priors))
+			}
+			return what, nil
 		}
 	}
 	return "", nil
+}
+
+// annualSwing is how far the larger error of a position moves the pulse phase to either side in a year, in turns, where the
+// Earth's orbit is seen to move it most.
+func annualSwing(src timing.Source, priors []timing.Prior) float64 {
+	largest := 0.0
+	for _, p := range priors {
+		if p.Parameter == timing.RightAscension || p.Parameter == timing.Declination {
+			largest = math.Max(largest, p.Sigma)
+		}
+	}
+	return timing.PositionAmplitudeTurns(src.FrequencyHz, 0, largest/1000, 0)
 }
 
 // noSession is how far ahead the next session is taken to be when none is listed.

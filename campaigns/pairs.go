@@ -24,20 +24,22 @@ func (c *Campaign) betterPair(src *Source, aim *Aim) string {
 				names, sets = append(names, r.Name), append(sets, src.setup(r))
 			}
 		}
-		own, best, which := math.Inf(1), math.Inf(1), ""
+		own, best := pairMerit{us: math.Inf(1)}, pairMerit{us: math.Inf(1)}
+		which := ""
 		for a := range sets {
 			for b := a + 1; b < len(sets); b++ {
-				errorUs := pairErrorUs(&sets[a], &sets[b], aim)
+				merit := meritOfPair(&sets[a], &sets[b], aim)
 				if aim.wants(names[a]) && aim.wants(names[b]) {
-					own = errorUs
+					own = merit
 				}
-				if errorUs < best {
-					best, which = errorUs, names[a]+"+"+names[b]
+				if merit.us < best.us {
+					best, which = merit, names[a]+"+"+names[b]
 				}
 			}
 		}
-		if !math.IsInf(own, 1) && best < worthSaying*own {
-			return fmt.Sprintf("%s would be better: %.2g µs free of dispersion instead of %.2g", which, best, own)
+		if !math.IsInf(own.us, 1) && best.us < worthSaying*own.us {
+			return fmt.Sprintf("%s would be better: %.2g µs free of dispersion instead of %.2g, DM to %.2g pc/cm3 instead of %.2g",
+				which, best.us, own.us, best.dm, own.dm)
 		}
 	}
 	return ""
@@ -50,9 +52,16 @@ func (b *books) tellPair(row *AccountRow, src *Source, aim *Aim) {
 	}
 }
 
-// pairErrorUs is the error of the arrival time at infinite frequency from a visit with each of two receivers.
-func pairErrorUs(a, b *radiometer.Setup, aim *Aim) float64 {
-	return radiometer.PairErrorUs(a.Receiver.CentreMHz(), visitErrorUs(a, aim), b.Receiver.CentreMHz(), visitErrorUs(b, aim))
+// A pairMerit is what a visit with each of two receivers gives: the error of the arrival time at infinite frequency, by which
+// pairs are ranked, and of the dispersion measure.
+type pairMerit struct {
+	us float64 // µs
+	dm float64 // pc/cm³
+}
+
+func meritOfPair(a, b *radiometer.Setup, aim *Aim) pairMerit {
+	fa, fb, ea, eb := a.Receiver.CentreMHz(), b.Receiver.CentreMHz(), visitErrorUs(a, aim), visitErrorUs(b, aim)
+	return pairMerit{us: radiometer.PairErrorUs(fa, ea, fb, eb), dm: radiometer.PairDMError(fa, ea, fb, eb)}
 }
 
 // visitErrorUs is what a visit gives: the wanted error, where that is what is asked for and can be had.

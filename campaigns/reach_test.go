@@ -4,6 +4,7 @@ import (
 	"math"
 	"strings"
 	"testing"
+	"testing/fstest"
 	"time"
 )
 
@@ -100,7 +101,7 @@ func TestScintillationIsTold(t *testing.T) {
 func TestTheBetterPairIsNamed(t *testing.T) {
 	aim := Aim{Kind: Cadence, Receivers: []string{"L", "S"}, Minutes: 30, MinFraction: 0.6, EveryDays: 14, PairDays: 2}
 	row, _ := arrearsOf(t, pulsarIn(aim))
-	if len(row.Flags) != 1 || !strings.HasPrefix(row.Flags[0], "P+L would be better: ") {
+	if len(row.Flags) != 1 || !strings.HasPrefix(row.Flags[0], "P+L would be better: ") || !strings.Contains(row.Flags[0], ", DM to ") {
 		t.Errorf("%q", row.Flags)
 	}
 	aim.Receivers = []string{"P", "L"}
@@ -146,5 +147,20 @@ func TestPairsNearTheSun(t *testing.T) {
 		if !strings.Contains(n.Why, "from the Sun") {
 			t.Errorf("near the Sun: %q", n.Why)
 		}
+	}
+}
+
+// The jitter of a pulsar that was never measured follows from its width and the number of pulses (RAD-052): one or the other is said.
+func TestJitterFraction(t *testing.T) {
+	const spin = "spin = { frequency_hz = 187.44, epoch_mjd = 60800, sigma_frequency_hz = 5e-12 }\n"
+	with := func(line string) string { return strings.Replace(starterText, spin, spin+line, 1) }
+	if s := loadStarter(t, with("jitter_fraction = 0.33\n")).Sources[1]; s.JitterFraction != 0.33 {
+		t.Fatalf("%+v", s)
+	} else if got, want := s.pulsar(0, 90).JitterUsPerHour, 0.33*200/math.Sqrt(3600*187.44); math.Abs(got/want-1) > 1e-12 {
+		t.Errorf("%g µs in an hour, want %g", got, want)
+	}
+	text := strings.NewReplacer("NIGHT", "night", "START", "2027-01-01T19:00:00Z", "END", "2027-01-02T03:00:00Z").Replace(with("jitter_fraction = 0.33\njitter_us_per_hour = 0.1\n"))
+	if _, err := LoadFS(fstest.MapFS{CampaignFile: {Data: []byte(text)}}, ""); err == nil || !strings.Contains(err.Error(), "not both") {
+		t.Errorf("both: %v", err)
 	}
 }

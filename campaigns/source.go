@@ -107,6 +107,9 @@ func (s *Source) pulsar(lDeg, bDeg float64) radiometer.Pulsar {
 	}
 	if s.Spin != nil {
 		p.PeriodS = 1 / s.Spin.FrequencyHz
+		if s.JitterFraction > 0 {
+			p.JitterUsPerHour = radiometer.JitterUs(1e3*p.EffectiveWidthMs(), s.JitterFraction, p.PeriodS, 3600)
+		}
 	}
 	return p
 }

@@ -8,6 +8,8 @@ import (
 
 	"example.org/tallystick/campaigns"
 	"example.org/tallystick/sched"
+	"example.org/tallystick/sky"
+	"example.org/tallystick/sky/radiometer"
 	"example.org/tallystick/ui/cell"
 	"example.org/tallystick/ui/theme"
 )
@@ -74,7 +76,7 @@ func slotLines(w *world, i int) []line {
 	for _, b := range row.Breaches {
 		add("! limit", theme.Broken, "%s", b)
 	}
-	add("points", theme.Plain, "el %.1f to %.1f, az %.1f to %.1f deg, cable turn %d", row.ElStartDeg, row.ElEndDeg, row.AzStartDeg, row.AzEndDeg, row.Turn)
+	add("points", theme.Plain, "el %.1f to %.1f, az %.1f to %.1f deg, cable turn %d%s", row.ElStartDeg, row.ElEndDeg, row.AzStartDeg, row.AzEndDeg, row.Turn, airWords(row))
 	add("expects", theme.Plain, "%s", expects(row)+worthWords(row.Worth, why.Terms))
 	for _, t := range why.Terms {
 		if t.Worth > 0 {
@@ -101,11 +103,39 @@ func slotLines(w *world, i int) []line {
 	if row.PhaseStart != nil && row.PhaseEnd != nil {
 		add("phase", theme.Plain, "orbit %.3f to %.3f turns from the ascending node", *row.PhaseStart, *row.PhaseEnd)
 	}
-	add("Sun", theme.Plain, "never closer than %.0f deg; limit %.0f", d.prepared.Track(r.problem.Nodes[slot.Node].Job).SunDeg, job.Facts.SunLimit)
+	sunDeg := d.prepared.Track(r.problem.Nodes[slot.Node].Job).SunDeg
+	add("Sun", theme.Plain, "never closer than %.0f deg; limit %.0f%s", sunDeg, job.Facts.SunLimit, windWords(w, row, sunDeg))
 	if row.Note != "" {
 		add("note", theme.Plain, "%s", row.Note)
 	}
 	return lines
+}
+
+// airWords says how much air is in the line of sight, where it is worth a word: from half as much again as overhead.
+func airWords(row *campaigns.SlotRow) string {
+	a, b := sky.AirMass(row.ElStartDeg), sky.AirMass(row.ElEndDeg)
+	if max(a, b) < 1.5 {
+		return ""
+	}
+	return fmt.Sprintf(", air %.1f to %.1f times that overhead", a, b)
+}
+
+// windWords says by how much the solar wind delays a slot's pulses in the middle of its band where the Sun is nearest, and
+// whether that is to be trusted.
+func windWords(w *world, row *campaigns.SlotRow, sunDeg float64) string {
+	for i := range w.campaign.Receivers {
+		r := &w.campaign.Receivers[i]
+		if r.Name != row.Receiver || r.Site != w.desk.prepared.Site.Name || !(sunDeg > 0) {
+			continue
+		}
+		mhz := (r.BandMHz[0] + r.BandMHz[1]) / 2
+		text := fmt.Sprintf("; the solar wind delays by %.2g us at %.0f MHz", 1e6*radiometer.DispersionSec(radiometer.SolarWindDM(radiometer.WindDensity, sunDeg), mhz), mhz)
+		if sunDeg < radiometer.WindUnreliableDeg {
+			text += ", as a mean: it may differ by as much, and timing is flagged"
+		}
+		return text
+	}
+	return ""
 }
 
 // asGoodAs says how many minutes at the zenith a slot's minutes are worth, where it matters: calibration counts minutes as

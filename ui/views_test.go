@@ -214,3 +214,20 @@ func TestOrbitSizesInWords(t *testing.T) {
 		t.Error(got)
 	}
 }
+
+func TestAirAndWindInWords(t *testing.T) {
+	if got := airWords(&campaigns.SlotRow{ElStartDeg: 10, ElEndDeg: 30}); got != ", air 5.6 to 2.0 times that overhead" {
+		t.Error(got)
+	}
+	if got := airWords(&campaigns.SlotRow{ElStartDeg: 60, ElEndDeg: 70}); got != "" {
+		t.Error(got)
+	}
+	h := drawn(t)
+	row := &h.world.desk.read().rows[0]
+	if got := windWords(&h.world, row, 30); !strings.HasPrefix(got, "; the solar wind delays by ") || strings.Contains(got, "flagged") {
+		t.Error(got)
+	}
+	if got := windWords(&h.world, row, 10); !strings.Contains(got, "timing is flagged") {
+		t.Error(got)
+	}
+}

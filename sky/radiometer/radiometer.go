@@ -173,8 +173,8 @@ func SNR(fluxMJy, gainKPerJy, tsysK float64, polarizations int, seconds, bandwid
 //
 //	σ² = (W/(S/N))² + jitter² + floor²
 //
-// The radiometer's part is the plain W/(S/N). Matching a template to a Gaussian pulse reaches 0.60 of
-// it (MatchedTOAErrorUs); the plain rule is kept because real profiles and receivers lose as much.
+// The radiometer's part is the plain W/(S/N). Matching a template to a Gaussian pulse reaches 0.60 FWHM/(S/N)
+// by the Cramér–Rao bound; the plain rule is kept because real profiles and receivers lose as much.
 //
 // Source:  Lorimer & Kramer 2005; jitter ∝ t^(−1/2), Parthasarathy et al. 2021, MNRAS 502, 407
 // Checked: TestTOAError, TestPublishedObservations
@@ -193,20 +193,6 @@ func (s Setup) hourErrorUs(elevationDeg float64) float64 {
 		return math.Inf(1)
 	}
 	return math.Hypot(1e3*s.Pulsar.EffectiveWidthMs()/snr, s.Pulsar.JitterUsPerHour)
-}
-
-// MatchedTOAErrorUs returns the error that matching a template to a Gaussian pulse reaches, µs.
-//
-//	σ = √2 w/(S/N),  w = FWHM/√(8 ln 2):  0.60 FWHM/(S/N)
-//
-// Given:   the full width at half maximum, µs, and the matched signal-to-noise ratio
-// Source:  the Cramér–Rao bound for a Gaussian pulse
-// Checked: TestMatchedTOAError
-func MatchedTOAErrorUs(fwhmUs, snr float64) float64 {
-	if !(snr > 0) {
-		return math.Inf(1)
-	}
-	return math.Sqrt2 * fwhmUs / math.Sqrt(8*math.Ln2) / snr
 }
 
 // JitterUs returns the arrival-time error from the variation of the pulses themselves after some

@@ -66,12 +66,6 @@ func TestFluxAt(t *testing.T) {
 	}
 }
 
-func TestMatchedTOAError(t *testing.T) {
-	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-030") {
-		r.Check(MatchedTOAErrorUs(r.Num("FWHM_us"), r.Num("SN_matched")))
-	}
-}
-
 func TestJitter(t *testing.T) {
 	// A pulsar of so much flux that nothing but jitter is left.
 	for _, r := range outside.Rows(t, "radiometer.csv", "RAD-050", "RAD-051") {
