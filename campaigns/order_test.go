@@ -10,7 +10,8 @@ import (
 	"github.com/google/go-cmp/cmp"
 )
 
-// Sources may stand in the campaign's files in any order, and lines in the logbook: the plan is the same.
+// Sources may stand in the campaign's files in any order, and lines in the logbook: the plan is the same, and so is
+// what a saved ceiling is known by.
 func TestTheOrderOfTheFilesChangesNoPlan(t *testing.T) {
 	f, now := openDemo(t)
 	p, _ := firstSession()
@@ -30,6 +31,9 @@ func TestTheOrderOfTheFilesChangesNoPlan(t *testing.T) {
 	}
 	if d := cmp.Diff(want, rowsPlanned(t, again)); d != "" {
 		t.Error(d)
+	}
+	if p.ground() != again.ground() {
+		t.Error("the problem has another fingerprint")
 	}
 }
 

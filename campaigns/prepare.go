@@ -30,6 +30,7 @@ type Prepared struct {
 	sourceByName map[string]int   // index into Campaign.Sources
 	places       []place          // as Problem.Slew counts them
 	takePart     []string         // see TakingPart
+	digest       *groundOnce
 }
 
 // PrepareOptions are what a session is prepared with beside the campaign.
@@ -98,7 +99,7 @@ type AccountRow struct {
 // start of the session; log lines after that do not count. It errs where the session's date is outside those
 // that places on the sky are worked out for.
 func Prepare(c *Campaign, log *Logbook, s *Session, o PrepareOptions) (*Prepared, error) {
-	p := &Prepared{Campaign: c, Session: s, At: o.At, sourceByName: map[string]int{}}
+	p := &Prepared{Campaign: c, Session: s, At: o.At, sourceByName: map[string]int{}, digest: new(groundOnce)}
 	p.Site = c.site(s.Site)
 	minutes := int(s.End.Sub(s.Start) / time.Minute)
 	middle := s.Start.Add(s.End.Sub(s.Start) / 2)

@@ -243,7 +243,7 @@ func TestASavedPlanBindsToWhatItWas(t *testing.T) {
 	p, plan := firstSession()
 	plan = plan.Clone()
 	plan.Slots[2].Pinned, plan.Slots[2].Note = true, "windy"
-	saved := p.Saved(plan, sched.Result{}, "test")
+	saved := p.Saved(plan, sched.Bound{}, "test")
 	again, lost := p.Bind(saved)
 	if len(lost) > 0 {
 		t.Errorf("lost: %v", lost)

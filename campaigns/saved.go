@@ -25,6 +25,9 @@ type SavedPlan struct {
 	Bars     []string  // sources that are excluded from the session
 	Accepted []string  // broken limits that were kept deliberately, in words
 	Slots    []SavedSlot
+
+	ProvedFor  string    // the fingerprint of all that the ceiling was proved for; "" in older files
+	ProvedFrom time.Time // what stood before it was settled; zero: nothing was
 }
 
 // A SavedSlot is time on source.
@@ -85,6 +88,13 @@ func (p *SavedPlan) encode() []byte {
 	fmt.Fprintf(&b, "grid_min = %d\n", p.GridMin)
 	fmt.Fprintf(&b, "worth = %s\n", tomlNumber(p.Worth))
 	fmt.Fprintf(&b, "ceiling = %s\n", tomlNumber(p.Ceiling))
+	if p.ProvedFor != "" {
+		b.WriteString("# The ceiling is proved for exactly one problem, of which this is the fingerprint: campaign, logbook, pins and bars.\n")
+		fmt.Fprintf(&b, "proved_for = %s\n", tomlText(p.ProvedFor))
+		if !p.ProvedFrom.IsZero() {
+			fmt.Fprintf(&b, "proved_from = %s\n", p.ProvedFrom.UTC().Truncate(time.Minute).Format(time.RFC3339))
+		}
+	}
 	fmt.Fprintf(&b, "bars = %s\n", tomlTexts(p.Bars))
 	fmt.Fprintf(&b, "accepted = %s\n", tomlTexts(p.Accepted))
 	for _, s := range p.Slots {
@@ -119,6 +129,11 @@ func decodePlan(text, name string) (*SavedPlan, Complaints) {
 		Ceiling:  top.numberOr("ceiling", between(0, 1e9), 0),
 		Bars:     top.texts("bars", false),
 		Accepted: top.texts("accepted", false),
+
+		ProvedFor: top.text("proved_for", false),
+	}
+	if _, ok := top.keys["proved_from"]; ok {
+		p.ProvedFrom = top.minute("proved_from")
 	}
 	for _, t := range top.tables("slot") {
 		s := SavedSlot{

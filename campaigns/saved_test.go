@@ -22,6 +22,12 @@ func TestSavedPlanRoundTrip(t *testing.T) {
 			Ceiling: rapid.Float64Range(0, 1e6).Draw(t, "ceiling"), Bars: rapid.SliceOfDistinct(any, func(s string) string { return s }).Draw(t, "bars"),
 			Accepted: rapid.SliceOfDistinct(any, func(s string) string { return s }).Draw(t, "accepted"),
 		}
+		if rapid.Bool().Draw(t, "proved") {
+			p.ProvedFor = any.Draw(t, "for")
+			if p.ProvedFor != "" && rapid.Bool().Draw(t, "settled") {
+				p.ProvedFrom = minute.Draw(t, "from")
+			}
+		}
 		start := minute.Draw(t, "start")
 		for range rapid.IntRange(0, 4).Draw(t, "slots") {
 			end := start.Add(time.Duration(rapid.IntRange(1, 600).Draw(t, "length")) * time.Minute)

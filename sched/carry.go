@@ -287,7 +287,7 @@ func (p *Problem) mostFrom(from, to int) (most Micro, apart int, must bool) {
 }
 
 func sameSession(a, b *Problem) bool {
-	return a.Start.Equal(b.Start) && a.Minutes == b.Minutes && a.OverheadSec == b.OverheadSec &&
+	return !a.Cropped && !b.Cropped && a.Start.Equal(b.Start) && a.Minutes == b.Minutes && a.OverheadSec == b.OverheadSec &&
 		slices.Equal(a.Receivers, b.Receivers) && slices.Equal(a.Breaks, b.Breaks) && len(a.Jobs) == len(b.Jobs) &&
 		a.Slew.Places == b.Slew.Places && a.Slew.BinMin == b.Slew.BinMin && a.Slew.Bins == b.Slew.Bins && alike(a.Slew.Sec, b.Slew.Sec)
 }

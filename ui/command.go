@@ -70,19 +70,13 @@ func reviewCmd(f *files, s *campaigns.Session) tea.Cmd {
 // planCmd plans around the pins of a plan and around what has begun before a minute. Progress goes to
 // work.reports, which it closes.
 func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapshot, minute int, first bool, rounds int) tea.Cmd {
-	q := startingAt(p, minute)
-	proved := &bound{bars: from.bars}
-	for _, s := range from.plan.Slots {
-		switch {
-		case s.Pinned:
-			proved.pins = append(proved.pins, s)
-		case s.Start < minute: // not pinned by the observer, but no longer to be changed
-			proved.begun = append(proved.begun, s)
-			s.Pinned = true
-		default:
-			continue
+	q := around(p, from.plan, minute)
+	var begun []sched.Slot
+	for i, s := range q.Pins {
+		if !s.Pinned { // not pinned by the observer, but no longer to be changed
+			begun = append(begun, s)
+			q.Pins[i].Pinned = true
 		}
-		q.Pins = append(q.Pins, s)
 	}
 	warm := from.plan.Clone()
 	return guarded(func() tea.Msg {
@@ -99,12 +93,12 @@ func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapsho
 		r, err := sched.Solve(ctx, q, o)
 		for i, s := range r.Plan.Slots {
 			s.Pinned = false
-			if slices.Contains(proved.begun, s) {
+			if slices.Contains(begun, s) {
 				r.Plan.Slots[i] = s
 			}
 		}
-		proved.result = r
-		return plannedMsg{work: work, result: r, first: first, proved: proved, err: err}
+		proved, _ := sched.BoundOf(q, r)
+		return plannedMsg{work: work, result: r, first: first, bars: from.bars, proved: proved, err: err}
 	})
 }
 
@@ -138,12 +132,12 @@ func saveCmd(f *files, d *desk, s snapshot, plan *campaigns.SavedPlan, over, lea
 	})
 }
 
-func exportCmd(c *Config, format, path string, p *campaigns.Prepared, plan sched.Plan, over bool) tea.Cmd {
+func exportCmd(c *Config, format, path string, p *campaigns.Prepared, plan sched.Plan, proved sched.Bound, over bool) tea.Cmd {
 	return guarded(func() tea.Msg {
 		if _, err := os.Lstat(path); err == nil && !over {
 			return exportedMsg{format: format, path: path, exists: true}
 		}
-		note, err := c.Export(format, path, p, plan)
+		note, err := c.Export(format, path, p, plan, proved)
 		return exportedMsg{format: format, path: path, note: note, err: err}
 	})
 }

@@ -89,7 +89,7 @@ func (m *model) draftOf(d *desk) draft {
 	s := d.shown()
 	return draft{
 		Key: m.campaignKey(), Session: d.session.Name, Run: m.run, KeptAt: m.machine().UTC(),
-		Plan: d.preparedWith(s.bars).Saved(s.plan, d.provenFor(s), m.cfg.Version),
+		Plan: d.preparedWith(s.bars).Saved(s.plan, m.world.provenFor(d, s), m.cfg.Version),
 	}
 }
 

@@ -450,7 +450,7 @@ func TestRandomKeys(t *testing.T) {
 	var out bytes.Buffer
 	once.cfg.Out = &out
 	ready := preparedMsg{session: once.world.desk.session.Name, prepared: once.world.desk.prepared}
-	ready.saved = ready.prepared.Saved(once.plan().plan, sched.Result{}, "test")
+	ready.saved = ready.prepared.Saved(once.plan().plan, sched.Bound{}, "test")
 	rapid.Check(t, func(rt *rapid.T) {
 		h := &harness{model: newModel(once.cfg, once.st), t: t}
 		h.rounds = 1

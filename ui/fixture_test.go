@@ -84,7 +84,7 @@ func open(t testing.TB, f *campaigns.Folder, change ...func(*Config)) *harness {
 	t.Helper()
 	c := Config{
 		Folder: f, Now: func() time.Time { return evening }, Version: "test", Out: io.Discard,
-		Export: func(format, path string, p *campaigns.Prepared, plan sched.Plan) (string, error) {
+		Export: func(format, path string, p *campaigns.Prepared, plan sched.Plan, _ sched.Bound) (string, error) {
 			return "wrote " + path + " as " + format, os.WriteFile(path, []byte(format), 0o644)
 		},
 	}
@@ -150,7 +150,8 @@ func (h *harness) ready() {
 	p := *made.prepared
 	p.Campaign, p.Session = h.world.campaign, s
 	_, _ = h.Update(preparedMsg{session: s.Name, prepared: &p})
-	h.send(plannedMsg{work: h.world.work, result: made.result, first: true, proved: &bound{result: made.result}})
+	proved, _ := sched.BoundOf(made.prepared.Problem, made.result)
+	h.send(plannedMsg{work: h.world.work, result: made.result, first: true, proved: proved})
 	h.run(reviewCmd(h.world.folder, s))
 }
 

@@ -61,7 +61,9 @@ const safety = "This list is advice. The program moves nothing. The observatory'
 var words = map[string][]line{
 	slateTitle: {
 		{label: "worth", text: "what the planner adds up; 1 is one observation that is exactly due, of a source of priority 1"},
-		{label: "ceiling", text: "no plan of this session with these pins and bars can be worth more: that is proved"},
+		{label: "ceiling", text: "no plan of this session with these pins and bars can be worth more: that is proved, and carried over edits and saving as long as it follows"},
+		{label: "at most", text: "no plan within the limits (or with all that must be in) can be worth more; the plan shown is none of them, so that it may be"},
+		{label: "as from", text: "only for plans that keep what stands before that time"},
 		{label: "within", text: "how far from the ceiling the plan can be at most; a better plan may not exist at all"},
 		{label: "slot", text: "time on source with one receiver, after move and set-up; its number counts in order of time"},
 		{label: "P", text: "pinned: fixed by the observer; re-planning leaves it alone"},

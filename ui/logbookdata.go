@@ -94,7 +94,8 @@ func (m *model) receiveRefreshed(msg refreshedMsg) tea.Cmd {
 	if w.work != nil && w.work.desk == d {
 		m.stopPlanning() // it works with the old worths
 	}
-	d.prepared, d.accounts, d.reviewed, d.planned = msg.prepared, msg.prepared.Accounts, false, nil
+	d.prepared, d.accounts, d.reviewed, d.planned = msg.prepared, msg.prepared.Accounts, false, false
+	d.proveAnew(msg.prepared.Problem)
 	d.changed()
 	return reviewCmd(w.folder, d.session)
 }

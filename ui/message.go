@@ -39,8 +39,9 @@ type progressMsg struct {
 type plannedMsg struct {
 	work   *planning
 	result sched.Result
-	first  bool // the session's first plan, which is not an edit
-	proved *bound
+	first  bool        // the session's first plan, which is not an edit
+	bars   []string    // that it was planned with
+	proved sched.Bound // meaningful if the result has a ceiling
 	err    error
 }
 

@@ -29,7 +29,9 @@ func TestMain(m *testing.M) {
 	f, err := campaigns.Open(dir)
 	if err == nil {
 		err = Run(Config{Folder: f, Now: func() time.Time { return evening }, Mouse: true,
-			Export: func(string, string, *campaigns.Prepared, sched.Plan) (string, error) { panic("the export fails") }})
+			Export: func(string, string, *campaigns.Prepared, sched.Plan, sched.Bound) (string, error) {
+				panic("the export fails")
+			}})
 	}
 	fmt.Println("ended:", err)
 	os.Exit(3)

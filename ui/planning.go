@@ -17,12 +17,16 @@ func (m *model) startPlanning(first bool, from int) tea.Cmd {
 	work := &planning{desk: d, edition: d.edition, first: first, cancel: cancel, reports: make(chan sched.Result, 4)}
 	m.world.work = work
 	p := d.preparedWith(d.state.bars).Problem
+	work.problem = around(p, d.state.plan, from)
 	return tea.Batch(planCmd(ctx, work, p, d.state, from, first, m.rounds), listenCmd(work))
 }
 
 func (m *model) stopPlanning() {
-	if m.world.work != nil {
-		m.world.work.cancel()
+	if w := m.world.work; w != nil {
+		w.cancel()
+		if b, ok := sched.BoundOf(w.problem, w.reached); ok {
+			w.desk.prove(b) // what it has proved so far stays proved
+		}
 		m.world.work = nil
 	}
 }
@@ -67,8 +71,11 @@ func (m *model) receivePlanned(msg plannedMsg) {
 		m.warn("no plan: %v", msg.err)
 		return
 	}
-	to := snapshot{msg.result.Plan, msg.proved.bars}
-	d.planned = msg.proved
+	to := snapshot{msg.result.Plan, msg.bars}
+	d.planned = true
+	if msg.proved.Of != nil {
+		d.prove(msg.proved)
+	}
 	if msg.first {
 		d.state, d.saved = to, to
 		d.base, d.baseIs = to, "the plan as it was first made"

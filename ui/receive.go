@@ -8,7 +8,6 @@ import (
 	tea "github.com/charmbracelet/bubbletea"
 
 	"example.org/tallystick/campaigns"
-	"example.org/tallystick/sched"
 )
 
 // receive takes the answers of commands.
@@ -98,7 +97,11 @@ func (m *model) receivePrepared(msg preparedMsg) tea.Cmd {
 	d.choose(0)
 	m.takeUpClock(d)
 	if m.world.say.text == "" {
-		m.tell("the saved plan of %s", msg.saved.MadeAt.UTC().Format("2006-01-02 15:04 UTC"))
+		text := "the saved plan of " + msg.saved.MadeAt.UTC().Format("2006-01-02 15:04 UTC")
+		if msg.saved.HasProof() && len(d.proofs) == 0 {
+			text += "; " + campaigns.ProofLost
+		}
+		m.tell("%s", text)
 	}
 	m.offerDraft()
 	return m.review(d)
@@ -124,9 +127,11 @@ func (m *model) bindSaved(d *desk, s *campaigns.SavedPlan) snapshot {
 		}
 		m.warn("left out of the saved plan: %s%s", lost[0], more)
 	}
+	if b, ok := d.prepared.Proved(s, plan); ok {
+		d.prove(b)
+	}
 	bars := slices.Clone(s.Bars)
 	slices.Sort(bars)
-	d.planned = nil // what was proved when it was saved, was proved for the accounts of then
 	return snapshot{plan, bars}
 }
 
@@ -167,18 +172,11 @@ func (m *model) goToSession(name string) tea.Cmd {
 	if w.desk.prepared == nil {
 		return prepareCmd(w.folder, s, w.now)
 	}
-	if d := w.desk; d.planned == nil && !d.onDisk && len(d.past) == 0 {
+	if d := w.desk; !d.planned && !d.onDisk && len(d.past) == 0 {
 		return m.startPlanning(true, w.planFrom())
 	}
 	m.offerDraft()
 	return nil
-}
-
-func (d *desk) provenFor(s snapshot) sched.Result {
-	if d.planned.holds(s) {
-		return d.planned.result
-	}
-	return sched.Result{}
 }
 
 func (m *model) save(d *desk, over bool) tea.Cmd {
@@ -188,7 +186,7 @@ func (m *model) save(d *desk, over bool) tea.Cmd {
 
 func (m *model) saveOne(d *desk, over, leave bool) tea.Cmd {
 	s := d.state
-	plan := d.preparedWith(s.bars).Saved(s.plan, d.provenFor(s), m.cfg.Version)
+	plan := d.preparedWith(s.bars).Saved(s.plan, m.world.provenFor(d, s), m.cfg.Version)
 	if d.held == nil {
 		plan.Accepted = d.read().accepted()
 	}
@@ -231,7 +229,7 @@ func (m *model) receiveSaved(msg savedMsg) tea.Cmd {
 
 func (m *model) export(path, format string, over bool) tea.Cmd {
 	d := m.world.desk
-	return exportCmd(&m.cfg, format, path, d.preparedWith(d.state.bars), d.state.plan.Clone(), over)
+	return exportCmd(&m.cfg, format, path, d.preparedWith(d.state.bars), d.state.plan.Clone(), m.world.provenFor(d, d.state), over)
 }
 
 func (m *model) receiveExported(msg exportedMsg) {

@@ -38,8 +38,9 @@ type Config struct {
 	In      io.Reader
 	Out     io.Writer
 
-	// Export writes the slot list of a plan to a file and says what it wrote, in one line.
-	Export func(format, path string, p *campaigns.Prepared, plan sched.Plan) (string, error)
+	// Export writes the slot list of a plan to a file, with its ceiling if it is a bound of a problem, and says what it
+	// wrote, in one line.
+	Export func(format, path string, p *campaigns.Prepared, plan sched.Plan, proved sched.Bound) (string, error)
 	// Formats are the formats that Export knows; nil: text and csv.
 	Formats []string
 }

@@ -165,7 +165,7 @@ func (m *model) drawWorth(c *cell.Canvas) {
 		worth += ", was " + d.prepared.Problem.PlanWorth(d.state.plan).String()
 	}
 	put(worth, theme.Strong)
-	put(m.distance(d, r), theme.Plain)
+	put(m.world.distance(d, r), theme.Plain)
 	if n := len(r.verdict.Breaches); n > 0 {
 		put(fmt.Sprintf("! %s broken", count(n, "limit")), theme.Broken)
 	}
@@ -195,24 +195,6 @@ func pinned(r *reading) int {
 		}
 	}
 	return n
-}
-
-// distance says how far the plan is from the best there can be, as far as that was proved.
-func (m *model) distance(d *desk, r *reading) string {
-	switch {
-	case len(r.verdict.Breaches) > 0:
-		return "no ceiling" // it holds for plans within the limits
-	case !d.planned.holds(snapshot{r.plan, r.bars}):
-		if d.planned != nil && d.planned.result.HasCeiling {
-			return "ceiling out of date: R plans again"
-		}
-		return "no ceiling yet"
-	}
-	ceiling := d.planned.result.Ceiling
-	if r.verdict.Worth >= ceiling {
-		return fmt.Sprintf("ceiling %s: none can be better", ceiling)
-	}
-	return fmt.Sprintf("ceiling %s, within %.1f %%", ceiling, 100*float64(ceiling-r.verdict.Worth)/float64(ceiling))
 }
 
 // drawHeld writes at the bottom of a canvas what an edit breaks, in full where that takes no more than

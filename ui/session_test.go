@@ -10,8 +10,6 @@ import (
 	"time"
 
 	tea "github.com/charmbracelet/bubbletea"
-
-	"example.org/tallystick/sched"
 )
 
 // With the session under way, planning again leaves alone what has begun, and puts nothing into the
@@ -67,33 +65,6 @@ func TestAnEditOvertakesPlanning(t *testing.T) {
 	h.run(cmd)
 	if !h.plan().equal(edited) {
 		t.Error("an answer to an older plan wiped out an edit")
-	}
-}
-
-func TestCeilingOnlyWhereItHolds(t *testing.T) {
-	h := start(t, openCampaign(t))
-	plan := h.plan().plan
-	pinnedFirst := plan.Clone()
-	pinnedFirst.Slots[0].Pinned = true
-	proved := sched.Result{HasCeiling: true, Ceiling: 1}
-	for _, c := range []struct {
-		name string
-		b    *bound
-		s    snapshot
-		want bool
-	}{
-		{"free", &bound{result: proved}, snapshot{plan: plan}, true},
-		{"more pins and bars", &bound{result: proved}, snapshot{pinnedFirst, []string{"X"}}, true},
-		{"the pin is there", &bound{result: proved, pins: pinnedFirst.Slots[:1]}, snapshot{plan: pinnedFirst}, true},
-		{"the pin was lifted", &bound{result: proved, pins: pinnedFirst.Slots[:1]}, snapshot{plan: plan}, false},
-		{"what had begun is there", &bound{result: proved, begun: plan.Slots[:1]}, snapshot{plan: plan}, true},
-		{"what had begun is gone", &bound{result: proved, begun: plan.Slots[:1]}, snapshot{plan: sched.Plan{Slots: plan.Slots[1:]}}, false},
-		{"the bar was lifted", &bound{result: proved, bars: []string{"X"}}, snapshot{plan: plan}, false},
-		{"nothing proved", nil, snapshot{plan: plan}, false},
-	} {
-		if got := c.b.holds(c.s); got != c.want {
-			t.Errorf("%s: %v", c.name, got)
-		}
 	}
 }
 

@@ -53,9 +53,10 @@ type desk struct {
 	past    []step // what undo goes back to, the last step last
 	future  []step // what redo goes on to, the next step last
 	saved   snapshot
-	onDisk  bool // saved is the plan in the campaign's folder, not one that was just made
-	planned *bound
-	edition int // counts changes of state, so that an answer to an older one can be told
+	onDisk  bool          // saved is the plan in the campaign's folder, not one that was just made
+	planned bool          // planning has come to an end since the session was prepared
+	proofs  []sched.Bound // the ceilings that may still serve, the first proved first
+	edition int           // counts changes of state, so that an answer to an older one can be told
 
 	base       snapshot  // the plan as it was last planned, or read
 	baseBefore *snapshot // what stood when it was last planned again
@@ -95,49 +96,13 @@ type heldEdit struct {
 	breaches []string
 }
 
-// A bound is what a planning run proved, and what it was proved for: plans with these bars and pins,
-// and with what had begun. More bars and pins leave it true; fewer do not.
-type bound struct {
-	result sched.Result
-	bars   []string
-	pins   []sched.Slot // the observer's
-	begun  []sched.Slot
-}
-
-// holds reports whether what was proved is true of every plan with the bars and pins of this one.
-func (b *bound) holds(s snapshot) bool {
-	if b == nil || !b.result.HasCeiling {
-		return false
-	}
-	has := func(want sched.Slot, pinned bool) bool {
-		return slices.ContainsFunc(s.plan.Slots, func(is sched.Slot) bool {
-			return is.Node == want.Node && is.Start == want.Start && is.End == want.End && (is.Pinned || !pinned)
-		})
-	}
-	for _, pin := range b.pins {
-		if !has(pin, true) {
-			return false
-		}
-	}
-	for _, slot := range b.begun {
-		if !has(slot, false) {
-			return false
-		}
-	}
-	for _, bar := range b.bars {
-		if !slices.Contains(s.bars, bar) {
-			return false
-		}
-	}
-	return true
-}
-
 // planning is a plan being made.
 type planning struct {
 	desk    *desk
 	first   bool // the session's first plan, which is no edit
 	edition int
 	cancel  context.CancelFunc
+	problem *sched.Problem
 	reached sched.Result
 	reports chan sched.Result
 }
@@ -153,6 +118,10 @@ type reading struct {
 	whyFrom  int                   // the minute that why holds for
 	leftOut  []sched.Reason
 	leftFrom int // the minute that leftOut holds for
+
+	ceiling      string // ceiling and distance in words
+	ceilingAt    int    // the minute before which nothing can be changed that they hold for
+	ceilingKnown bool
 }
 
 // shown is the plan on the screen: the one that is held, if any.

@@ -65,9 +65,14 @@ func (p *program) sheet(d *desk, s *campaigns.Session) (*export.Sheet, error) {
 	}
 	plan, lost := prepared.Bind(saved)
 	p.sayLost(lost)
-	sheet := export.New(prepared, plan, export.Origin{
-		MadeAt: saved.MadeAt, Version: version(), Saved: true, Entries: len(d.Logbook.Entries),
-		// Its ceiling was proved for the campaign as it was then; what another source is owed may have risen since.
-	})
+	origin := export.Origin{MadeAt: saved.MadeAt, Version: version(), Saved: true, Entries: len(d.Logbook.Entries)}
+	// Its ceiling was proved for the campaign as it was then; what another source is owed may have risen since.
+	switch proved, ok := prepared.Proved(saved, plan); {
+	case ok && proved.Holds(plan):
+		origin.Ceiling, origin.HasCeiling = proved.Ceiling, true
+	case saved.HasProof():
+		p.say(campaigns.ProofLost)
+	}
+	sheet := export.New(prepared, plan, origin)
 	return &sheet, nil
 }

@@ -191,7 +191,8 @@ func (p *program) sayLost(lost []string) {
 }
 
 func (p *program) savePlan(d *desk, made *madePlan) error {
-	if err := d.SavePlan(made.prepared.Saved(made.result.Plan, made.result, version())); err != nil {
+	proved, _ := sched.BoundOf(made.prepared.Problem, made.result)
+	if err := d.SavePlan(made.prepared.Saved(made.result.Plan, proved, version())); err != nil {
 		return fmt.Errorf("the plan was not saved: %w", err)
 	}
 	p.say("saved with the campaign as the plan of session %s", made.sheet.Session.Name)

@@ -39,8 +39,9 @@ func (p *program) screen() error {
 }
 
 // exportPlan writes a plan that the screen holds.
-func (d *desk) exportPlan(format, path string, prepared *campaigns.Prepared, plan sched.Plan) (string, error) {
-	sheet := export.New(prepared, plan, export.Origin{MadeAt: prepared.At, Version: version(), Entries: len(d.Logbook.Entries)})
+func (d *desk) exportPlan(format, path string, prepared *campaigns.Prepared, plan sched.Plan, proved sched.Bound) (string, error) {
+	sheet := export.New(prepared, plan, export.Origin{MadeAt: prepared.At, Version: version(), Entries: len(d.Logbook.Entries),
+		Ceiling: proved.Ceiling, HasCeiling: proved.Of != nil})
 	var b bytes.Buffer
 	if err := export.Write(&b, format, sheet); err != nil {
 		return "", err
