@@ -59,6 +59,7 @@ type Receiver struct {
 	ZenithOpacity float64    // nepers
 	GainKPerJy    float64
 	GainCurve     [][2]float64 // elevation, factor of GainKPerJy: linear between, flat outside; nil: 1 everywhere
+	ChannelMHz    float64      // width of a channel within which dispersion is not taken out; 0: it is taken out everywhere
 	Polarizations int
 	ChangeMin     float64 // time to bring it into the beam
 }

@@ -158,10 +158,14 @@ func (l *loader) readReceivers(top *table) {
 			ZenithOpacity: t.number("zenith_opacity", between(0, 5)),
 			GainKPerJy:    t.number("gain_k_per_jy", above(0, 1000)),
 			GainCurve:     t.gainCurve("gain_curve"),
+			ChannelMHz:    t.numberOr("channel_mhz", between(0, 1e4), 0),
 			Polarizations: t.count("polarizations", 1, 2, true, 1),
 			ChangeMin:     t.number("change_min", between(0, 1440)),
 		}
 		l.once(t, "receiver", r.Name)
+		if width := r.BandMHz[1] - r.BandMHz[0]; t.good("band_mhz", "channel_mhz") && r.ChannelMHz > width {
+			t.complain("channel_mhz", plainNumber(r.ChannelMHz), "at most the width of the band, "+plainNumber(width), "")
+		}
 		t.done(nil)
 		l.campaign.Receivers = append(l.campaign.Receivers, r)
 	}

@@ -164,3 +164,21 @@ func TestJitterFraction(t *testing.T) {
 		t.Errorf("both: %v", err)
 	}
 }
+
+// A receiver with channels hears less of a dispersed pulsar, and one whose channels are wider than its band is refused.
+func TestChannelsSmear(t *testing.T) {
+	aim := Aim{Kind: Cadence, Receivers: []string{"P"}, Minutes: 30, MinFraction: 0.6, EveryDays: 14, PairDays: 2}
+	c := pulsarIn(aim)
+	c.Sources[0].DMPcPerCm3 = 30
+	sharp := c.Sources[0].setup(&c.Receivers[0])
+	c.Receivers[0].ChannelMHz = 0.5
+	smeared := c.Sources[0].setup(&c.Receivers[0])
+	if a, b := sharp.TOAErrorUs(30, 90), smeared.TOAErrorUs(30, 90); !(b > 2*a) {
+		t.Errorf("sharp %g µs, smeared %g", a, b)
+	}
+	text := strings.NewReplacer("NIGHT", "night", "START", "2027-01-01T19:00:00Z", "END", "2027-01-02T03:00:00Z",
+		"gain_k_per_jy = 0.5\n", "gain_k_per_jy = 0.5\nchannel_mhz = 400\n").Replace(starterText)
+	if _, err := LoadFS(fstest.MapFS{CampaignFile: {Data: []byte(text)}}, ""); err == nil || !strings.Contains(err.Error(), "at most the width of the band, 260") {
+		t.Errorf("too wide: %v", err)
+	}
+}

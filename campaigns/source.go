@@ -92,13 +92,13 @@ func (ps *preparedSource) listen(p *Prepared) {
 func (r *Receiver) radiometer() radiometer.Receiver {
 	return radiometer.Receiver{
 		BandMHz: r.BandMHz, TsysK: r.TsysK, ZenithOpacity: r.ZenithOpacity,
-		GainKPerJy: r.GainKPerJy, GainCurve: r.GainCurve, Polarizations: r.Polarizations,
+		GainKPerJy: r.GainKPerJy, GainCurve: r.GainCurve, Polarizations: r.Polarizations, ChannelMHz: r.ChannelMHz,
 	}
 }
 
 // pulsar is what decides how well a source can be timed, given its Galactic direction.
 func (s *Source) pulsar(lDeg, bDeg float64) radiometer.Pulsar {
-	p := radiometer.Pulsar{WidthMs: s.WidthMs, JitterUsPerHour: s.JitterUsPerHour, FloorUs: s.FloorUs, Sky408K: s.SkyK}
+	p := radiometer.Pulsar{WidthMs: s.WidthMs, JitterUsPerHour: s.JitterUsPerHour, FloorUs: s.FloorUs, Sky408K: s.SkyK, DMPcPerCm3: s.DMPcPerCm3}
 	if p.Sky408K == 0 {
 		p.Sky408K = radiometer.SkyAt408(lDeg, bDeg)
 	}

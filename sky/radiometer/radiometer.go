@@ -21,6 +21,7 @@ type Receiver struct {
 	GainKPerJy    float64
 	GainCurve     [][2]float64 // elevation in degrees, rising, and factor of GainKPerJy there; nil: 1 at every elevation
 	Polarizations int          // 1 or 2
+	ChannelMHz    float64      // width of a channel within which dispersion is not taken out; 0: it is taken out everywhere
 }
 
 // CentreMHz is the middle of the band.
@@ -39,6 +40,7 @@ type Pulsar struct {
 	JitterUsPerHour float64 // arrival-time error from the pulses' own variation after one hour
 	FloorUs         float64 // arrival-time error that no amount of time goes below
 	Sky408K         float64 // sky temperature at 408 MHz in its direction: SkyAt408, or measured
+	DMPcPerCm3      float64 // smears the pulse across the receiver's channels
 }
 
 // usualDuty stands in for an unknown pulse width: published survey limits assume 5 % of the period.
@@ -73,7 +75,13 @@ type Setup struct {
 
 // Check reports everything that keeps a Setup from being used, joined. A Setup that fails it still
 // answers, as if the pulsar were not heard.
-func (s Setup) Check() error { return errors.Join(s.Receiver.Check(), s.Pulsar.Check()) }
+func (s Setup) Check() error {
+	var smeared error
+	if w := s.WidthMs(); s.Pulsar.PeriodS > 0 && w >= s.Pulsar.PeriodS*1e3 && s.Pulsar.EffectiveWidthMs() < s.Pulsar.PeriodS*1e3 {
+		smeared = fmt.Errorf("pulse: found smeared over %.3g ms by dispersion in channels of %g MHz; accepted below the period, %g ms", w, s.Receiver.ChannelMHz, s.Pulsar.PeriodS*1e3)
+	}
+	return errors.Join(s.Receiver.Check(), s.Pulsar.Check(), smeared)
+}
 
 // Check reports everything that keeps a receiver from being used, joined.
 func (r Receiver) Check() error {
@@ -83,6 +91,7 @@ func (r Receiver) Check() error {
 		positive("system temperature", r.TsysK),
 		positive("gain", r.GainKPerJy),
 		checkGainCurve(r.GainCurve),
+		notNegative("width of a channel", r.ChannelMHz),
 		positive("polarizations", float64(r.Polarizations)),
 		notNegative("zenith opacity", r.ZenithOpacity),
 	)
@@ -103,6 +112,7 @@ func (p Pulsar) Check() error {
 		wide,
 		notNegative("jitter", p.JitterUsPerHour),
 		notNegative("floor", p.FloorUs),
+		notNegative("dispersion measure", p.DMPcPerCm3),
 		notNegative("sky temperature", p.Sky408K),
 	)
 }
@@ -136,7 +146,7 @@ func finite(name string, v float64) error {
 // with S the flux density behind the atmosphere at the middle of the band, G the gain and T the system temperature
 // at that elevation, sky included.
 //
-// Neglects: losses of digitisation (a factor 1 to 1.5), smearing by dispersion, and scintillation
+// Neglects: losses of digitisation (a factor 1 to 1.5), scattering, and scintillation
 // Source:   Lorimer & Kramer 2005, Handbook of Pulsar Astronomy
 // Checked:  TestSNR, TestPublishedObservations
 func (s Setup) SNR(minutes, elevationDeg float64) float64 {
@@ -145,7 +155,7 @@ func (s Setup) SNR(minutes, elevationDeg float64) float64 {
 	}
 	flux := s.Pulsar.FluxAt(s.Receiver.CentreMHz()) * transmission(s.Receiver.ZenithOpacity, elevationDeg)
 	snr := SNR(flux, s.Receiver.GainKPerJy*gainFactor(s.Receiver.GainCurve, elevationDeg), s.SystemK(elevationDeg), s.Receiver.Polarizations,
-		60*minutes, s.Receiver.BandwidthMHz(), s.Pulsar.PeriodS*1e3, s.Pulsar.EffectiveWidthMs())
+		60*minutes, s.Receiver.BandwidthMHz(), s.Pulsar.PeriodS*1e3, s.WidthMs())
 	if !(snr > 0) {
 		return 0 // also where absurd numbers have overflowed
 	}
@@ -166,6 +176,21 @@ func SNR(fluxMJy, gainKPerJy, tsysK float64, polarizations int, seconds, bandwid
 		return 0
 	}
 	return fluxMJy * 1e-3 * gainKPerJy * math.Sqrt(samples) / tsysK * math.Sqrt((periodMs-widthMs)/widthMs)
+}
+
+// WidthMs returns the width of the pulse as the receiver sees it, in the middle of its band, ms.
+//
+//	W² = W_pulse² + t_channel²
+//
+// Neglects: scattering, and that of the band's lower edge, where channels smear more
+// Source:   Lorimer & Kramer 2005, Handbook of Pulsar Astronomy
+// Checked:  TestSmearedWidth
+func (s Setup) WidthMs() float64 {
+	smeared := ChannelSmearingUs(s.Pulsar.DMPcPerCm3, s.Receiver.ChannelMHz, s.Receiver.CentreMHz())
+	if !(smeared > 0) {
+		return s.Pulsar.EffectiveWidthMs()
+	}
+	return math.Hypot(s.Pulsar.EffectiveWidthMs(), smeared/1e3)
 }
 
 // TOAErrorUs returns the expected error of an arrival time after some minutes at an elevation, µs:
@@ -192,7 +217,7 @@ func (s Setup) hourErrorUs(elevationDeg float64) float64 {
 	if !(snr > 0) {
 		return math.Inf(1)
 	}
-	return math.Hypot(1e3*s.Pulsar.EffectiveWidthMs()/snr, s.Pulsar.JitterUsPerHour)
+	return math.Hypot(1e3*s.WidthMs()/snr, s.Pulsar.JitterUsPerHour)
 }
 
 // JitterUs returns the arrival-time error from the variation of the pulses themselves after some

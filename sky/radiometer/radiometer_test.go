@@ -169,8 +169,8 @@ func TestNeverNaN(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
 		d := func(name string) float64 { return any.Draw(t, name) }
 		s := Setup{
-			Receiver{[2]float64{d("f1"), d("f2")}, d("tsys"), d("tau"), d("gain"), nil, rapid.IntRange(-1, 4).Draw(t, "pol")},
-			Pulsar{d("flux"), d("at"), d("index"), d("period"), d("width"), d("jitter"), d("floor"), d("sky")},
+			Receiver{[2]float64{d("f1"), d("f2")}, d("tsys"), d("tau"), d("gain"), nil, rapid.IntRange(-1, 4).Draw(t, "pol"), d("channel")},
+			Pulsar{d("flux"), d("at"), d("index"), d("period"), d("width"), d("jitter"), d("floor"), d("sky"), d("dm")},
 		}
 		if s.Check() == nil && (math.IsNaN(s.Pulsar.AtMHz) || math.IsNaN(s.Pulsar.SpectralIndex)) {
 			t.Fatal("Check lets NaN through")
@@ -188,4 +188,25 @@ func TestNeverNaN(t *testing.T) {
 			t.Fatal("NaN minutes")
 		}
 	})
+}
+
+// A pulse of 0.12 ms is smeared by 8.3 µs × 50 × 2/0.4³ across a channel of 2 MHz at 400 MHz, far beyond its own width.
+func TestSmearedWidth(t *testing.T) {
+	s := example()
+	s.Receiver.BandMHz, s.Receiver.ChannelMHz, s.Pulsar.DMPcPerCm3, s.Pulsar.PeriodS = [2]float64{380, 420}, 2, 50, 0.5
+	if got, want := s.WidthMs(), math.Hypot(0.12, 12.96875); math.Abs(got-want) > 1e-9 {
+		t.Errorf("%g ms, want %g", got, want)
+	}
+	sharp := s
+	sharp.Receiver.ChannelMHz = 0
+	if sharp.WidthMs() != 0.12 || sharp.TOAErrorUs(30, 60) > 0.1*s.TOAErrorUs(30, 60) || sharp.SNR(30, 60) <= s.SNR(30, 60) {
+		t.Errorf("smeared: %g µs, sharp: %g", s.TOAErrorUs(30, 60), sharp.TOAErrorUs(30, 60))
+	}
+	s.Pulsar.PeriodS = 0.01 // smeared beyond the period: nothing is heard
+	if err := s.Check(); err == nil || !strings.Contains(err.Error(), "smeared over 13 ms") {
+		t.Error(err)
+	}
+	if s.SNR(30, 60) != 0 || !math.IsInf(s.TOAErrorUs(30, 60), 1) {
+		t.Error("a pulse that fills its period is heard")
+	}
 }
