@@ -29,10 +29,3 @@ func (f *Frame) barycentric(x float64) vec {
 func (f *Frame) RoemerSecAt(t Target, at time.Time) float64 {
 	return f.barycentric(f.days(at)).dot(t.direction(f.nodes[1].days)) * lightTimeAU
 }
-
-// BarycentricMJD returns the TDB date, as MJD, at which a signal that reaches the Earth's centre at a UTC instant
-// passes the barycentre of the solar system. Neglects what RoemerSecAt does.
-func (f *Frame) BarycentricMJD(t Target, at time.Time) float64 {
-	mjd := MJD(at)
-	return mjd + (TTMinusUTCSec(at)+TDBMinusTTSec(mjd)+f.RoemerSecAt(t, at))/secondsPerDay
-}

@@ -340,12 +340,6 @@ func bend(p, earth vec) vec {
 	return p.times(1-k*pe).plus(k/r, earth)
 }
 
-// RADec returns a place's right ascension (0 to 360) and declination in degrees, true equator and equinox of date.
-func (f *Frame) RADec(p Place, at time.Time) (raDeg, decDeg float64) {
-	v := p.vector(f.days(at))
-	return mod(math.Atan2(v[1], v[0])*degPerRad, 360), math.Atan2(v[2], math.Hypot(v[0], v[1])) * degPerRad
-}
-
 // SeparationDeg returns the angle between two places of this frame at an instant near its own, 0 to 180.
 func (f *Frame) SeparationDeg(a, b Place, at time.Time) float64 {
 	x := f.days(at)

@@ -153,7 +153,7 @@ func TestTrapTransitDay(t *testing.T) {
 	s := trapSite(t, 40, 0)
 	f := mustFrame(t, day.Add(12*time.Hour))
 	p := f.Place(Target{RADeg: 359.2, DecDeg: 20})
-	ra, dec := f.RADec(p, day)
+	ra, dec := f.raDec(p, day)
 	a, d := unit.RAFromDeg(ra), unit.AngleFromDeg(dec)
 	_, transit, _, err := rise.Times(globe.Coord{Lat: unit.AngleFromDeg(40)}, unit.Time(69.2), 0, sidereal.Apparent0UT(MJD(day)+mjdOffset),
 		[]unit.RA{a, a, a}, []unit.Angle{d, d, d})

@@ -35,7 +35,7 @@ func TestAzEl(t *testing.T) {
 			direction = append(direction, err)
 			hourAngle = append(hourAngle, math.Abs(math.Remainder(look.HourAngleDeg-r.number("ha_deg"), 360))*cosDec*arcsecPerDeg)
 			parallactic = append(parallactic, math.Abs(math.Remainder(look.ParallacticDeg-r.number("pa_deg"), 360))*min(cosEl, cosDec)*arcsecPerDeg)
-			_, dec := f.RADec(f.Place(target), at)
+			_, dec := f.raDec(f.Place(target), at)
 			declination = append(declination, math.Abs(dec-r.number("dec_app_deg"))*arcsecPerDeg)
 		}
 	}
@@ -55,7 +55,7 @@ func TestSun(t *testing.T) {
 		site := r.site()
 		for _, off := range []time.Duration{0, -12 * time.Hour, 12 * time.Hour} {
 			f := mustFrame(t, at.Add(off))
-			ra, dec := f.RADec(f.Sun(), at)
+			ra, dec := f.raDec(f.Sun(), at)
 			place = append(place, between(direction2(ra, dec), direction2(r.number("sun_ra_app_deg"), r.number("sun_dec_app_deg")))*degPerRad*arcsecPerDeg)
 			look := site.Look(f, f.Sun(), at)
 			azel = append(azel, between(direction2(look.AzDeg, look.ElDeg), direction2(r.number("sun_az_topo_deg"), r.number("sun_el_topo_deg")))*degPerRad*arcsecPerDeg)

@@ -3,6 +3,7 @@ package sky
 import (
 	"bufio"
 	"encoding/csv"
+	"math"
 	"os"
 	"path/filepath"
 	"slices"
@@ -113,4 +114,17 @@ func separationDeg(a, b Place) float64 { return between(a.at, b.at) * degPerRad 
 // liftedBy is by how much the air has lifted what is seen at an elevation, in degrees: the way back to where it stands.
 func liftedBy(air *Refraction, elDeg float64) float64 {
 	return elDeg - air.trueElevation(elDeg*radPerDeg)*degPerRad
+}
+
+// raDec returns a place's right ascension (0 to 360) and declination in degrees, true equator and equinox of date.
+func (f *Frame) raDec(p Place, at time.Time) (raDeg, decDeg float64) {
+	v := p.vector(f.days(at))
+	return mod(math.Atan2(v[1], v[0])*degPerRad, 360), math.Atan2(v[2], math.Hypot(v[0], v[1])) * degPerRad
+}
+
+// barycentricMJD returns the TDB date, as MJD, at which a signal that reaches the Earth's centre at a UTC instant passes the
+// barycentre of the solar system.
+func (f *Frame) barycentricMJD(t Target, at time.Time) float64 {
+	mjd := MJD(at)
+	return mjd + (TTMinusUTCSec(at)+TDBMinusTTSec(mjd)+f.RoemerSecAt(t, at))/secondsPerDay
 }

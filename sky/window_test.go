@@ -36,7 +36,7 @@ func drawTarget(t *rapid.T, s *Site, f *Frame) Target {
 	case 1:
 		return Target{RADeg: rapid.Float64Range(0, 359.9).Draw(t, "ra"), DecDeg: rapid.SampledFrom([]float64{-90, 90, -89.99, 89.9}).Draw(t, "polar dec")}
 	case 2:
-		ra, dec := f.RADec(f.Sun(), f.At())
+		ra, dec := f.raDec(f.Sun(), f.At())
 		return Target{RADeg: mod(ra+rapid.Float64Range(-8, 8).Draw(t, "ra off Sun"), 360), DecDeg: dec + rapid.Float64Range(-8, 8).Draw(t, "dec off Sun")}
 	}
 	return Target{RADeg: rapid.Float64Range(0, 359.9).Draw(t, "ra"), DecDeg: rapid.Float64Range(-90, 90).Draw(t, "dec"),
@@ -365,7 +365,7 @@ func TestClosestSun(t *testing.T) {
 		from := drawInstant(t)
 		to := from.Add(time.Duration(rapid.IntRange(1, 2*86400).Draw(t, "length")) * time.Second)
 		f := mustFrameOf(t, from.Add(to.Sub(from)/2))
-		ra, dec := f.RADec(f.Sun(), f.At())
+		ra, dec := f.raDec(f.Sun(), f.At())
 		p := f.Place(Target{RADeg: mod(ra+rapid.Float64Range(-180, 180).Draw(t, "ra off Sun"), 360), DecDeg: dec + rapid.Float64Range(-60, 60).Draw(t, "dec off Sun")})
 		least, at := f.ClosestSunDeg(p, from, to)
 		if got := f.SunDeg(p, at); math.Abs(got-least) > 1e-9 || at.Before(from) || at.After(to) {
