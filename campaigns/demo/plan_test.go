@@ -95,7 +95,13 @@ func TestTheNewOneIsPlannedBeforeItsCountIsLost(t *testing.T) {
 
 // The eclipsing one is observed between its eclipses, in a slot that one of them bounds or that lies clear of them.
 func TestTheEclipsingOneIsPlannedOutsideEclipse(t *testing.T) {
-	p, plan := planned(t, 6)
+	for _, session := range []int{0, 6} {
+		isOutsideEclipse(t, session)
+	}
+}
+
+func isOutsideEclipse(t *testing.T, session int) {
+	p, plan := planned(t, session)
 	row, slot, ok := slotOf(p, plan, "J0454+4741", "L")
 	if !ok {
 		t.Fatal("it is not in the plan")

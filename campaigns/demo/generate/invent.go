@@ -15,6 +15,7 @@ type sketch struct {
 	raH      float64
 	decDeg   float64
 	priority float64
+	raised   float64 // the priority it has now, if that is another than it had until now
 
 	periodS   float64
 	slowdown  float64 // dP/dt, s/s

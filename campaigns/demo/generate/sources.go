@@ -199,7 +199,7 @@ var sketches = []sketch{
 	// binaries
 	{chapter: "binaries", role: "An hour and a half around a wisp of a companion, whose wind hides the pulsar for a sixth of every orbit.\n" +
 		"Egress trails: the eclipse is centred a little after superior conjunction.",
-		raH: 4.92, decDeg: 47.6, priority: 2, periodS: 0.00198, slowdown: 1.1e-20, dm: 39, mjy: 0.9, index: -2.0, duty: 0.055, pmMas: 6,
+		raH: 4.92, decDeg: 47.6, priority: 2, raised: 5, periodS: 0.00198, slowdown: 1.1e-20, dm: 39, mjy: 0.9, index: -2.0, duty: 0.055, pmMas: 6,
 		orbit: &orbitSketch{periodDays: 0.0638, m1: 1.5, m2: 0.024, sinI: 0.93, sigmaPeriod: 1e-10, sigmaEpoch: 1e-6,
 			eclipse: &eclipse{0.065, 0.258, 0.02}},
 		aims: []aim{single(14, 30, "L"), coverage(12, 3, "2026-01-01").noted("the eclipsed bins can never be filled")}},

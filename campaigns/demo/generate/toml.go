@@ -97,7 +97,11 @@ func (p *page) source(s source) {
 	if s.parallax > 0 {
 		p.set("parallax_mas", plain(s.parallax), "")
 	}
-	p.set("priority", plain(s.priority), "")
+	if s.raised > 0 {
+		p.set("priority", plain(s.raised), "was "+plain(s.priority)+" until November")
+	} else {
+		p.set("priority", plain(s.priority), "")
+	}
 	if s.periodS > 0 {
 		p.set("spin", s.spinText(), "")
 		p.set("dm_pc_per_cm3", plain(s.dm), "")
