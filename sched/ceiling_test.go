@@ -15,8 +15,9 @@ func TestCeilingIsNeverBelowTheBestPlan(t *testing.T) {
 	for seed := range uint64(150) {
 		p := tiny(seed)
 		best := bruteForce(p)
-		tb := newTables(p, 1)
-		b := newBounder(tb, tb.minutePrices(), never)
+		tb := newTables(p, nil, 1)
+		prices, _ := tb.minutePrices()
+		b := newBounder(tb, prices, never)
 		r := rand.New(rand.NewPCG(seed, 5))
 		for range 4 {
 			plain, _ := b.swept(p.GridMin)

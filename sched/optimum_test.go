@@ -108,9 +108,11 @@ func TestCeilingIsAboveThePlansOfOtherSeeds(t *testing.T) {
 			t.Fatalf("seed %d: %d ceilings, %v", seed, len(ceilings), err)
 		}
 		lowest := slices.Min(ceilings)
-		tb := newTables(p, 1)
+		tb := newTables(p, nil, 1)
+		prices, perMin := tb.minutePrices()
+		tb.layPull(perMin)
 		for other := range uint64(3) {
-			l := newLane(tb, tb.minutePrices(), 100+other, never)
+			l := newLane(tb, prices, 100+other, never)
 			first := l.complete(tb.fitting(r.Plan))
 			l.start(first, tb.value(first))
 			for range 2 {

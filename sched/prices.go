@@ -22,9 +22,9 @@ func sortByDesc(order []int, key func(int) Micro) {
 //	bound(λ) = λ T + Σ_j max(0, max over slots of worth − λ (length + overhead))
 //
 // which is convex in λ, so thirds of the interval find its least.
-func (t *tables) minutePrices() []Micro {
+func (t *tables) minutePrices() (prices []Micro, perMin Micro) {
 	p := t.p
-	overhead := ceilMin(p.OverheadSec) + 2 // and a short slew
+	overhead := t.slotOverhead()
 	byLength := make([][]Micro, len(p.Jobs))
 	var most Micro
 	for j := range p.Jobs {
@@ -35,17 +35,10 @@ func (t *tables) minutePrices() []Micro {
 			}
 		}
 	}
-	price := func(j int, perMin Micro) Micro {
-		var best Micro
-		for k, w := range byLength[j] {
-			best = max(best, w-perMin*Micro(k+p.Jobs[j].MinMin+overhead))
-		}
-		return best
-	}
 	bound := func(perMin Micro) Micro {
 		sum := perMin * Micro(p.Minutes-max(0, p.FromMin))
 		for j := range p.Jobs {
-			sum += price(j, perMin)
+			sum += t.minutePrice(j, byLength[j], perMin)
 		}
 		return sum
 	}
@@ -58,12 +51,23 @@ func (t *tables) minutePrices() []Micro {
 			low += third
 		}
 	}
-	prices := make([]Micro, len(p.Jobs))
+	prices = make([]Micro, len(p.Jobs))
 	for j := range prices {
-		prices[j] = price(j, low)
+		prices[j] = t.minutePrice(j, byLength[j], low)
 	}
-	return prices
+	return prices, low
 }
+
+// minutePrice is what is left of the worth of the job's best slot when minutes cost so much; best is by length.
+func (t *tables) minutePrice(job int, best []Micro, perMin Micro) (price Micro) {
+	for k, w := range best {
+		price = max(price, w-perMin*Micro(k+t.p.Jobs[job].MinMin+t.slotOverhead()))
+	}
+	return price
+}
+
+// slotOverhead is what a slot takes beside its own minutes: the overhead and a short slew.
+func (t *tables) slotOverhead() int { return ceilMin(t.p.OverheadSec) + 2 }
 
 // bestByLength returns the worth of the job's best slot of each length from MinMin on.
 func (t *tables) bestByLength(job int) []Micro {
@@ -89,4 +93,20 @@ func (t *tables) bestByLength(job int) []Micro {
 		}
 	}
 	return best
+}
+
+// layPull says how much the jobs are worth by the minute where a minute is worth perMin.
+func (t *tables) layPull(perMin Micro) {
+	t.pull = make([]float64, len(t.p.Jobs))
+	for j := range t.p.Jobs {
+		if !t.chosen[j] {
+			continue
+		}
+		for k, w := range t.bestByLength(j) {
+			t.pull[j] = max(t.pull[j], float64(w)/float64(k+t.p.Jobs[j].MinMin+t.slotOverhead())/max(1, float64(perMin)))
+		}
+		if t.p.Jobs[j].Must {
+			t.pull[j] = 1e9
+		}
+	}
 }

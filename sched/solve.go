@@ -12,6 +12,7 @@ type Options struct {
 	Rounds   int          // rounds of search after the first plan, at most; 0 is no limit but Work, below 0 none
 	Work     int          // no round begins once this much has been done, in steps of the search; 0 is the default where Rounds is 0 too
 	Warm     *Plan        // a plan to start from: its slots are kept where they still fit
+	Learned  *Learned     // what an earlier search left to this one; of no effect if that was of another session
 	Workers  int          // goroutines; the plan does not depend on their number; 0 is 1
 	Progress func(Result) // called after the first plan and after every round, by the caller's goroutine
 }
@@ -20,16 +21,17 @@ type Options struct {
 type Result struct {
 	Plan       Plan
 	Worth      Micro
-	Ceiling    Micro // no plan with the same grid and rules is worth more, if it has all musts that this one has
-	HasCeiling bool  // a ceiling has been proved; there is none otherwise
-	Rounds     int   // rounds of search done
-	Work       int   // steps of the search done
-	Proven     bool  // the plan reaches the ceiling
+	Ceiling    Micro    // no plan with the same grid and rules is worth more, if it has all musts that this one has
+	HasCeiling bool     // a ceiling has been proved; there is none otherwise
+	Rounds     int      // rounds of search done
+	Work       int      // steps of the search done
+	Proven     bool     // the plan reaches the ceiling
+	Learned    *Learned // what planning again after an edit can start from
 }
 
 const (
-	defaultWork = 5 * StepsPerSecond / 2 // brings the demonstration's ten hours within 1 % of the ceiling
-	lanes       = 2                      // searches side by side: fixed, so that the number of workers changes nothing
+	defaultWork = 3 * StepsPerSecond // brings the demonstration's ten hours within 1 % of the ceiling
+	lanes       = 2                  // searches side by side: fixed, so that the number of workers changes nothing
 )
 
 // StepsPerSecond is about how many steps of the search one core of a laptop makes in a second. Work is
@@ -107,6 +109,7 @@ func (p *Problem) checkPinsMeet() error {
 type search struct {
 	t      *tables
 	prices []Micro  // of jobs: shared by all lanes
+	perMin Micro    // what a minute is worth
 	bound  *bounder // nil if no ceiling can be proved
 	lanes  []*lane
 	best   []Slot
@@ -118,10 +121,21 @@ type search struct {
 }
 
 func newSearch(p *Problem, o Options, halt func() bool) *search {
-	t := newTables(p, o.Workers)
+	s := &search{value: unreachable, notes: map[int]string{}}
+	if l := o.Learned; l.serves(p) {
+		s.t = newTables(p, l.tables, o.Workers)
+		s.prices, s.perMin = s.t.pricesFrom(l), l.perMin
+	} else {
+		s.t = newTables(p, nil, o.Workers)
+		s.prices, s.perMin = s.t.minutePrices()
+	}
+	t := s.t
+	t.layPull(s.perMin)
 	t.labels = labelsFor(o)
-	s := &search{t: t, prices: t.minutePrices(), value: unreachable, notes: map[int]string{}}
 	s.bound = newBounder(t, s.prices, halt)
+	if s.bound != nil && o.Learned.serves(p) {
+		s.bound.take(o.Learned)
+	}
 	for i := range lanes {
 		s.lanes = append(s.lanes, newLane(t, s.prices, uint64(i), halt))
 	}
@@ -146,31 +160,29 @@ func (s *search) offer(slots []Slot) {
 	}
 }
 
-// priceScales are the shares of the prices at which the first plans are made. The paths of the sweep
+// firstScales are the shares of the prices at which the lanes make their first plans. The paths of the sweep
 // keep only their best past, so that the price at which jobs are best not taken too soon has to be tried.
 // Of pairs from 0.6 to 1 these two brought the most on the benchmark set.
-var priceScales = []float64{1, 0.6}
+var firstScales = [lanes]float64{0.6, 1}
 
-// first makes plans from nothing, or of the warm plan, and keeps the best.
+// first makes plans from nothing and of the warm plan, polishes them and keeps the best.
 func (s *search) first(workers int) {
-	plans := make([][]Slot, len(priceScales))
 	var work []func()
 	for i, l := range s.lanes {
 		work = append(work, func() {
-			if s.warm != nil {
+			if s.warm != nil && i == 0 {
 				l.start(s.best, s.value)
-				l.polish(3+2*i, 0.5)
-				plans[i] = l.best
-				return
+			} else {
+				plan := l.fromNothing(firstScales[i])
+				l.start(plan, s.t.value(plan))
 			}
-			for k := i; k < len(plans); k += lanes {
-				plans[k] = l.fromNothing(priceScales[k])
-			}
+			l.polish(3, 0.5)
+			l.polish(2, 0.5)
 		})
 	}
 	inParallel(workers, work)
-	for _, plan := range plans {
-		s.offer(plan)
+	for _, l := range s.lanes {
+		s.offer(l.best)
 	}
 	for _, l := range s.lanes {
 		l.start(s.best, s.value)
@@ -186,6 +198,10 @@ func (s *search) first(workers int) {
 func (s *search) round(workers int) {
 	heat := 1 - float64(s.rounds%8)/8
 	s.rounds++
+	if s.warm != nil && s.rounds <= repairs {
+		s.repair(heat, workers)
+		return
+	}
 	var work []func()
 	var route []Slot
 	budget := 0
@@ -212,6 +228,39 @@ func (s *search) round(workers int) {
 	if s.bound != nil {
 		s.bound.conclude(worth)
 	}
+	s.gather()
+	if s.bound != nil {
+		for j, price := range s.bound.prices.center {
+			s.prices[j] = Micro(price)
+		}
+	}
+	s.countWork()
+}
+
+// A plan that was edited is mended before anything is proved of it: so many rounds, each of so many steps in every lane.
+const (
+	repairs    = 2
+	repairWork = StepsPerSecond / 100
+)
+
+func (s *search) repair(heat float64, workers int) {
+	var work []func()
+	for i, l := range s.lanes {
+		work = append(work, func() {
+			if i == 0 {
+				l.start(s.best, s.value)
+				l.polish(2+3*s.rounds, 0.5) // an edit may have made room for a long slot
+			}
+			l.replan(heat, repairWork)
+		})
+	}
+	inParallel(workers, work)
+	s.gather()
+	s.countWork()
+}
+
+// gather takes the best plan of all lanes and gives it to the one that is furthest behind.
+func (s *search) gather() {
 	worst := s.lanes[0]
 	for _, l := range s.lanes {
 		if l.bestValue > s.value {
@@ -222,12 +271,6 @@ func (s *search) round(workers int) {
 		}
 	}
 	worst.start(s.best, s.value)
-	if s.bound != nil {
-		for j, price := range s.bound.prices.center {
-			s.prices[j] = Micro(price)
-		}
-	}
-	s.countWork()
 }
 
 // countWork adds up what was done since it was last called.
@@ -278,7 +321,7 @@ func (s *search) result() Result {
 		}
 	}
 	plan := Plan{Slots: slots}
-	r := Result{Plan: plan, Worth: s.t.p.PlanWorth(plan), Rounds: s.rounds, Work: s.work, Proven: s.proven()}
+	r := Result{Plan: plan, Worth: s.t.p.PlanWorth(plan), Rounds: s.rounds, Work: s.work, Proven: s.proven(), Learned: s.learned()}
 	if s.bound != nil && s.bound.valid {
 		r.Ceiling, r.HasCeiling = s.bound.ceiling, true
 	}

@@ -23,6 +23,7 @@ type sweeper struct {
 
 	targets []target // by falling latest start
 	next    int      // index of the slot after the gap among them, or None
+	picky   float64  // jobs that pull less are left out; see tables.pull
 	relaxed bool     // jobs may come again, though not at once
 	grid    int      // ends lie on multiples of this
 	ready   []Micro  // target·wide + minute − from: best value when ready by then
@@ -191,7 +192,7 @@ func (s *sweeper) pickTargets(g gap, to int, used []uint64, adjust []Micro) {
 	bit := 0
 	for i := range p.Nodes {
 		job := p.Nodes[i].Job
-		if !t.chosen[job] || t.spent(used, job) {
+		if !t.chosen[job] || t.spent(used, job) || s.picky > 0 && t.pull[job] < s.picky {
 			continue
 		}
 		last := None

@@ -25,6 +25,7 @@ type tables struct {
 	bonus   []Micro     // by job: what its first slot gains in the search beyond its worth
 	best    []Micro     // by job: the worth of its best slot
 	chosen  []bool      // by job: takes part in the search
+	pull    []float64   // by job: the most that its slots are worth by the minute, over what a minute is worth
 	cropped bool        // jobs or slots were left out that might have been in the best plan
 }
 
@@ -44,8 +45,9 @@ const MostSearched = 320
 // maxSlotsSearched is the most slots of one job that the search will plan.
 const maxSlotsSearched = 8
 
-// newTables makes the tables of a problem on so many goroutines; they do not depend on their number.
-func newTables(p *Problem, workers int) *tables {
+// newTables makes the tables of a problem on so many goroutines; they do not depend on their number. What an edit
+// has left as it was is taken over from the older tables, if there are any.
+func newTables(p *Problem, old *tables, workers int) *tables {
 	t := &tables{p: p, span: p.Minutes + 1, labels: mostLabels, cropped: p.Cropped, breakTo: make([]bool, p.Minutes+1)}
 	t.cutWindows()
 	t.rows = make([]worthRows, len(p.Jobs))
@@ -57,8 +59,7 @@ func newTables(p *Problem, workers int) *tables {
 			var memo termMemo
 			for j := w; j < len(p.Jobs); j += max(1, workers) {
 				if t.chosen[j] {
-					t.rows[j] = t.worthRows(j, &memo)
-					t.chosen[j] = t.best[j] > 0 || p.Jobs[j].Must
+					t.layRows(j, old, &memo)
 				}
 			}
 		})
@@ -162,6 +163,16 @@ func (t *tables) foremost() []int {
 		return most[j]
 	})
 	return order
+}
+
+// layRows works out what the slots of a job are worth, or takes it over, and leaves the job out if it has none of any use.
+func (t *tables) layRows(job int, old *tables, memo *termMemo) {
+	if t.keepsRows(old, job) {
+		t.rows[job], t.best[job] = old.rows[job], old.best[job]
+	} else {
+		t.rows[job] = t.worthRows(job, memo)
+	}
+	t.chosen[job] = t.best[job] > 0 || t.p.Jobs[job].Must && len(t.rows[job].worth) > 0
 }
 
 func (t *tables) worthRows(job int, memo *termMemo) worthRows {
