@@ -27,7 +27,15 @@ func (m *model) stopPlanning() {
 		if b, ok := sched.BoundOf(w.problem, w.reached); ok {
 			w.desk.prove(b) // what it has proved so far stays proved
 		}
+		w.desk.learn(w.reached)
 		m.world.work = nil
+	}
+}
+
+// learn keeps what the next planning of the session can start from.
+func (d *desk) learn(r sched.Result) {
+	if r.Learned != nil {
+		d.learned = r.Learned
 	}
 }
 
@@ -73,6 +81,7 @@ func (m *model) receivePlanned(msg plannedMsg) {
 	}
 	to := snapshot{msg.result.Plan, msg.bars}
 	d.planned = true
+	d.learn(msg.result)
 	if msg.proved.Of != nil {
 		d.prove(msg.proved)
 	}

@@ -53,10 +53,11 @@ type desk struct {
 	past    []step // what undo goes back to, the last step last
 	future  []step // what redo goes on to, the next step last
 	saved   snapshot
-	onDisk  bool          // saved is the plan in the campaign's folder, not one that was just made
-	planned bool          // planning has come to an end since the session was prepared
-	proofs  []sched.Bound // the ceilings that may still serve, the first proved first
-	edition int           // counts changes of state, so that an answer to an older one can be told
+	onDisk  bool           // saved is the plan in the campaign's folder, not one that was just made
+	planned bool           // planning has come to an end since the session was prepared
+	learned *sched.Learned // by the last planning run
+	proofs  []sched.Bound  // the ceilings that may still serve, the first proved first
+	edition int            // counts changes of state, so that an answer to an older one can be told
 
 	base       snapshot  // the plan as it was last planned, or read
 	baseBefore *snapshot // what stood when it was last planned again
