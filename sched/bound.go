@@ -16,13 +16,15 @@ type Bound struct {
 // BoundOf returns what was proved of a problem by solving it; false if that is nothing.
 func BoundOf(p *Problem, r Result) (Bound, bool) {
 	// The search proves of all plans what it proves while its own lacks a job that must be there.
-	inBreak := func(s Slot) bool {
-		return slices.ContainsFunc(p.Breaks, func(b Span) bool { return s.Start < b.To && s.End > b.From })
-	}
-	if !r.HasCeiling || slices.ContainsFunc(p.Pins, inBreak) { // around such a pin the search does not see every plan
+	if !r.HasCeiling {
 		return Bound{}, false
 	}
 	return Bound{Of: p, Ceiling: r.Ceiling, Complete: p.completeWith(r.Plan), ways: newWays(&p.Slew)}, true
+}
+
+// inBreak tells whether the slot overlaps a break.
+func (p *Problem) inBreak(s Slot) bool {
+	return slices.ContainsFunc(p.Breaks, func(b Span) bool { return s.Start < b.To && s.End > b.From })
 }
 
 // completeWith tells whether the plan has a slot of every job that must be there and is not barred.

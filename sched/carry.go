@@ -178,10 +178,8 @@ func (c *carrying) soonest(before, pin *Slot) (int, bool) {
 	if pin.End%p.GridMin != 0 || job.Barred {
 		return 0, false
 	}
-	for _, b := range p.Breaks {
-		if pin.Start < b.To && pin.End > b.From {
-			return 0, false
-		}
+	if p.inBreak(*pin) {
+		return 0, false
 	}
 	start := max(pin.Start, pin.End-job.MaxMin, c.readyAfter(before, pin))
 	for _, w := range p.Nodes[pin.Node].Open {
@@ -211,10 +209,8 @@ func (c *carrying) takeOut(i int) bool {
 	case !w.direct(p, p.Nodes[pin.Node].Place, pin.Start, pin.Start, spent):
 		return false
 	}
-	for _, b := range p.Breaks {
-		if pin.Start < b.To && pin.End > b.From {
-			return false
-		}
+	if p.inBreak(*pin) {
+		return false
 	}
 	c.more += p.JobWorth(job, pin.Start, pin.End)
 	c.begins, c.ends = min(c.begins, pin.Start), min(c.ends, pin.End)

@@ -41,12 +41,12 @@ type bounder struct {
 }
 
 // newBounder starts at the given prices. It is nil where no ceiling can be proved: when jobs or slots
-// had to be left out of the search.
+// had to be left out of the search, or a pin stands in a break, around which the search does not see every plan.
 func newBounder(t *tables, prices []Micro, halt func() bool) *bounder {
-	if t.cropped {
+	p := t.p
+	if t.cropped || slices.ContainsFunc(p.Pins, p.inBreak) {
 		return nil
 	}
-	p := t.p
 	b := &bounder{
 		t: t, sweep: newSweeper(t), router: newRouter(t, halt), used: make([]uint64, t.words), spread: t.setupSpread(),
 		adjust: make([]Micro, len(p.Jobs)), coarse: p.GridMin * max(1, coarseMin/p.GridMin),

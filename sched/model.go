@@ -175,7 +175,7 @@ func (m *Model) addJobs(pinnedSlots map[int]int) {
 	for i := range m.p.Jobs {
 		j := &m.p.Jobs[i]
 		left := j.MaxSlots - pinnedSlots[i]
-		if j.Barred || left < 1 || !possible[i] || m.best[i] <= 0 && !j.Must {
+		if j.Barred || left < 1 || !possible[i] {
 			continue
 		}
 		m.jobs[i] = m.addRow(row{name: fmt.Sprintf("job_%d", i), limit: left})

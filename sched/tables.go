@@ -135,7 +135,7 @@ func (t *tables) choose() {
 }
 
 // Foremost returns the jobs that the search would consider, were there room for all: those that must be there first,
-// then those whose whole window would bring the most. Slews do not count, and may be missing.
+// then those whose whole window would bring the most; those that can have no slot are none of them. Slews do not count, and may be missing.
 func Foremost(p *Problem) []int {
 	t := &tables{p: p, span: p.Minutes + 1}
 	t.cutWindows()
@@ -145,14 +145,16 @@ func Foremost(p *Problem) []int {
 func (t *tables) foremost() []int {
 	p := t.p
 	most := make([]Micro, len(p.Jobs))
+	possible := make([]bool, len(p.Jobs))
 	var order []int
 	for i, n := range p.Nodes {
 		for _, w := range t.windows[i] {
+			possible[n.Job] = true
 			most[n.Job] = max(most[n.Job], p.JobWorth(n.Job, w.From, w.To))
 		}
 	}
 	for j := range p.Jobs {
-		if !p.Jobs[j].Barred && (most[j] > 0 || p.Jobs[j].Must) {
+		if !p.Jobs[j].Barred && possible[j] {
 			order = append(order, j)
 		}
 	}
@@ -165,14 +167,15 @@ func (t *tables) foremost() []int {
 	return order
 }
 
-// layRows works out what the slots of a job are worth, or takes it over, and leaves the job out if it has none of any use.
+// layRows works out what the slots of a job are worth, or takes it over, and leaves the job out if it can have none. One
+// whose slots are worth nothing stays: a slot of it may bring the next receiver into the beam before a break.
 func (t *tables) layRows(job int, old *tables, memo *termMemo) {
 	if t.keepsRows(old, job) {
 		t.rows[job], t.best[job] = old.rows[job], old.best[job]
 	} else {
 		t.rows[job] = t.worthRows(job, memo)
 	}
-	t.chosen[job] = t.best[job] > 0 || t.p.Jobs[job].Must && len(t.rows[job].worth) > 0
+	t.chosen[job] = len(t.rows[job].worth) > 0
 }
 
 func (t *tables) worthRows(job int, memo *termMemo) worthRows {
