@@ -26,6 +26,9 @@ func TestWhatIsAcceptedHasAccounts(t *testing.T) {
 		}
 		b.WriteString(acceptedHead)
 		put("width_ms", 0.01, 4)
+		if strings.Contains(b.String(), "width_ms") && rapid.Bool().Draw(t, "template") {
+			b.WriteString("template = \"gaussian\"\n")
+		}
 		put("floor_us", 0.01, 10)
 		put("parallax_mas", 0.01, 100)
 		if rapid.Bool().Draw(t, "position error") {

@@ -78,6 +78,7 @@ type Source struct {
 	Flux             *Flux
 	Scintillation    *Scintillation
 	WidthMs          float64 // W50 of the profile; 0 when not known
+	Template         string  // GaussianTemplate, or empty: expected TOA errors by the plain rule W/(S/N)
 	JitterUsPerHour  float64 // TOA error from pulse jitter after one hour
 	JitterFraction   float64 // in its place where it was not measured: that of a single pulse over the pulse width; about 1/3
 	FloorUs          float64 // TOA error that no amount of time goes below
@@ -89,6 +90,10 @@ type Source struct {
 	File             string // where it stands: for messages
 	Line             int
 }
+
+// GaussianTemplate is the Template of a source whose pulse is taken for a Gaussian and timed with the template that matches
+// it: its expected TOA errors are the least that noise allows.
+const GaussianTemplate = "gaussian"
 
 // Spin is the rotation ephemeris.
 type Spin struct {

@@ -37,6 +37,7 @@ func (l *loader) source(t *table) Source {
 		Flux:             t.flux(),
 		Scintillation:    t.scintillation(),
 		WidthMs:          t.numberOr("width_ms", above(0, 100000), 0),
+		Template:         t.template(),
 		JitterUsPerHour:  t.numberOr("jitter_us_per_hour", between(0, 1e6), 0),
 		JitterFraction:   t.numberOr("jitter_fraction", between(0, 1), 0),
 		FloorUs:          t.numberOr("floor_us", between(0, 1e6), 0),
@@ -51,12 +52,29 @@ func (l *loader) source(t *table) Source {
 	if s.Spin != nil && s.WidthMs > 0 && t.good("spin", "width_ms") && s.WidthMs*s.Spin.FrequencyHz >= 1000 {
 		t.complain("width_ms", plainNumber(s.WidthMs), fmt.Sprintf("a width below the period, %.6g ms", 1000/s.Spin.FrequencyHz), "")
 	}
+	if s.Template != "" && s.WidthMs == 0 && t.without("width_ms") {
+		t.complain("template", "no width_ms in the source", "template only with width_ms, the full width of the pulse at half its height", "")
+	}
 	if s.JitterUsPerHour > 0 && s.JitterFraction > 0 && t.good("jitter_us_per_hour", "jitter_fraction") {
 		t.complain("jitter_fraction", plainNumber(s.JitterFraction), "jitter_us_per_hour or jitter_fraction, not both", "")
 	}
 	s.Aims = l.aims(t, &s)
 	t.done(nil)
 	return s
+}
+
+// template reads which template a source is timed with; it is empty where none is named.
+func (t *table) template() string {
+	const key, accepted = "template", GaussianTemplate + ", or no such key: TOA errors are then W/(S/N)"
+	v, ok := t.ask(key, false, accepted)
+	if !ok {
+		return ""
+	}
+	if word, _ := v.(string); word != GaussianTemplate {
+		t.complain(key, describe(v), accepted, didYouMean(word, []string{GaussianTemplate}))
+		return ""
+	}
+	return GaussianTemplate
 }
 
 // stricterThanSites refuses a Sun limit that is laxer than that of every site, since it would never count.

@@ -70,6 +70,7 @@ type SlotRow struct {
 	PhaseStart, PhaseEnd   *float64 // orbital phase from the ascending node, turns; nil without an orbit
 	ZenithMin              float64  // minutes at the zenith that would bring as much: air, sky and gain counted
 	SNR, ToaUs             float64
+	ToaRule                string  // by which rule the noise counts in ToaUs, in words: "W/(S/N)"; beside it count jitter and floor
 	SNRScatter             float64 // share of itself by which the S/N scatters from visit to visit; 0: steady, or not known
 	Worth                  float64 // in units of worth
 	Pinned                 bool

@@ -6,6 +6,8 @@ import (
 	"testing"
 	"testing/fstest"
 	"time"
+
+	"example.org/tallystick/sched"
 )
 
 // pulsarIn is a campaign with three receivers and one pulsar, whose aim is given.
@@ -180,5 +182,57 @@ func TestChannelsSmear(t *testing.T) {
 		"gain_k_per_jy = 0.5\n", "gain_k_per_jy = 0.5\nchannel_mhz = 400\n").Replace(starterText)
 	if _, err := LoadFS(fstest.MapFS{CampaignFile: {Data: []byte(text)}}, ""); err == nil || !strings.Contains(err.Error(), "at most the width of the band, 260") {
 		t.Errorf("too wide: %v", err)
+	}
+}
+
+// A source that is timed with a Gaussian's template: smaller errors, fewer minutes, heavier visits, and the slot says by which rule.
+func TestGaussianTemplate(t *testing.T) {
+	const width = "width_ms = 0.2                     # full width of the pulse at half its height\n"
+	if !strings.Contains(starterText, width+"# template = \"gaussian\"") {
+		t.Fatal("the starter campaign does not show the key")
+	}
+	src := loadStarter(t, strings.Replace(starterText, width+"# template", width+"template", 1)).Sources[1]
+	if src.Template != GaussianTemplate || !src.pulsar(0, 90).GaussianPulse || loadStarter(t, starterText).Sources[1].Template != "" {
+		t.Fatalf("%+v", src)
+	}
+	const share = 0.73685 * 0.73685 // of the minutes, by noise alone
+	aim := Aim{Kind: Cadence, Receivers: []string{"L"}, ToaUs: 0.5, MinFraction: 0.6, EveryDays: 14, PairDays: 2}
+	plain, matched := pulsarIn(aim), pulsarIn(aim)
+	matched.Sources[0].Template = GaussianTemplate
+	_, before := arrearsOf(t, plain)
+	_, after := arrearsOf(t, matched)
+	a, b := before.Problem.Jobs[0].Terms[0].Wanted, after.Problem.Jobs[0].Terms[0].Wanted
+	if got := float64(b) / float64(a); math.Abs(got/share-1) > 0.01 {
+		t.Errorf("%d minutes wanted, %d with the template: %.4f", a, b, got)
+	}
+	for _, c := range []struct {
+		prepared *Prepared
+		rule     string
+		factor   float64
+	}{{before, "W/(S/N)", 1}, {after, "a matched Gaussian template, 0.74 W/(S/N)", 0.73685}} {
+		row := c.prepared.slotRow(sched.Plan{Slots: []sched.Slot{{Node: 0, Start: 60, End: 90}}}, 0)
+		if want := c.factor * 100 / row.SNR; row.ToaRule != c.rule || math.Abs(row.ToaUs/want-1) > 1e-4 {
+			t.Errorf("TOA error %g µs by %q, want %g", row.ToaUs, row.ToaRule, want)
+		}
+	}
+	// A visit of the same length goes into the timing model with the smaller error.
+	errorOfMinute := func(template string) float64 {
+		c := pulsarIn(Aim{Kind: Measure, Receivers: []string{"L"}, Minutes: 30, MinFraction: 0.6, Parameter: "position", GoalPercent: 1})
+		c.Sources[0].Template, c.Sources[0].SigmaPositionMas = template, [2]float64{5, 6}
+		_, p := arrearsOf(t, c)
+		b, ps := open(c, nil, p.Session.Start), &p.sources[0]
+		m, err := b.measured(ps.knowledge, &c.Sources[0].Aims[0])
+		if err != nil {
+			t.Fatal(err)
+		}
+		jb := jobBuilder{prepared: p, books: b, source: ps, receiver: p.Problem.Jobs[0].Receiver, job: &p.Problem.Jobs[0]}
+		v, err := jb.visits(m, 30)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return v.length[60].SigmaUs
+	}
+	if got := errorOfMinute(GaussianTemplate) / errorOfMinute(""); math.Abs(got-0.73685) > 1e-5 {
+		t.Errorf("in the timing model the error is %.5f of the plain rule's", got)
 	}
 }

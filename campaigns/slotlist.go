@@ -64,6 +64,7 @@ func (p *Prepared) slotRow(plan sched.Plan, i int) SlotRow {
 		row.PhaseStart, row.PhaseEnd = &from, &to
 	}
 	row.ZenithMin, row.SNR, row.ToaUs = ps.expect(job.Receiver, start, end)
+	row.ToaRule = ps.src.toaRule()
 	row.SNRScatter = ps.scatter(job.Receiver, start, end)
 	row.MoveSec, row.OverheadSec, row.WaitSec = p.before(plan, i)
 	return row

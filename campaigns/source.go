@@ -1,6 +1,7 @@
 package campaigns
 
 import (
+	"fmt"
 	"math"
 	"time"
 
@@ -98,7 +99,10 @@ func (r *Receiver) radiometer() radiometer.Receiver {
 
 // pulsar is what decides how well a source can be timed, given its Galactic direction.
 func (s *Source) pulsar(lDeg, bDeg float64) radiometer.Pulsar {
-	p := radiometer.Pulsar{WidthMs: s.WidthMs, JitterUsPerHour: s.JitterUsPerHour, FloorUs: s.FloorUs, Sky408K: s.SkyK, DMPcPerCm3: s.DMPcPerCm3}
+	p := radiometer.Pulsar{
+		WidthMs: s.WidthMs, JitterUsPerHour: s.JitterUsPerHour, FloorUs: s.FloorUs, Sky408K: s.SkyK, DMPcPerCm3: s.DMPcPerCm3,
+		GaussianPulse: s.Template == GaussianTemplate,
+	}
 	if p.Sky408K == 0 {
 		p.Sky408K = radiometer.SkyAt408(lDeg, bDeg)
 	}
@@ -119,6 +123,14 @@ func (s *Source) pulsar(lDeg, bDeg float64) radiometer.Pulsar {
 func (ps *preparedSource) minutesFor(receiver int, toaUs float64) (minutes float64, ok bool) {
 	minutes, err := ps.setups[receiver].MinutesFor(toaUs, 90)
 	return minutes, err == nil
+}
+
+// toaRule says by which rule the noise counts in a source's TOA errors.
+func (s *Source) toaRule() string {
+	if s.Template == GaussianTemplate {
+		return fmt.Sprintf("a matched Gaussian template, %.2f W/(S/N)", radiometer.GaussianPulseFactor())
+	}
+	return "W/(S/N)"
 }
 
 // scatter is by which share of itself a slot's S/N scatters from visit to visit through scintillation; 0 for a steady

@@ -98,6 +98,9 @@ func slotLines(w *world, i int) []line {
 	if why.NextBest != "" {
 		add("instead", theme.Plain, "%s", why.NextBest)
 	}
+	if row.ToaUs > 0 {
+		add("TOA error", theme.Plain, "%s", toaWords(row))
+	}
 	add("sky", theme.Plain, "LST %s to %s, HA %s to %s, parallactic angle %.0f to %.0f deg",
 		hours(row.LSTStartH), hours(row.LSTEndH), signedHours(row.HAStartH), signedHours(row.HAEndH), row.ParStartDeg, row.ParEndDeg)
 	if row.PhaseStart != nil && row.PhaseEnd != nil {
@@ -173,6 +176,11 @@ func expects(row *campaigns.SlotRow) string {
 		return snr + "; "
 	}
 	return fmt.Sprintf("%s, TOA error %s us; ", snr, number(row.ToaUs))
+}
+
+// toaWords says what a slot's TOA error is made of, and by which rule.
+func toaWords(row *campaigns.SlotRow) string {
+	return fmt.Sprintf("noise by %s, jitter and floor where known", row.ToaRule)
 }
 
 // worthWords adds a slot's worth up, aims of one kind together.

@@ -78,7 +78,7 @@ var words = map[string][]line{
 		{label: "turn", text: "turn of the cable: the mount's azimuth is the compass azimuth plus 360 degrees for each turn"},
 		{label: "HA", text: "hour angle in hours and minutes; west, after transit, is positive"},
 		{label: "phase", text: "orbital phase in turns from the ascending node"},
-		{label: "TOA", text: "the expected error of the time of arrival, in microseconds"},
+		{label: "TOA", text: "the expected error of the time of arrival, in microseconds: of noise, jitter and floor"},
 		{label: "move", text: "slew or receiver change before the slot, whichever takes longer"},
 	},
 	arrearsTitle: {

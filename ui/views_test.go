@@ -231,3 +231,26 @@ func TestAirAndWindInWords(t *testing.T) {
 		t.Error(got)
 	}
 }
+
+func TestDetailsSayByWhichRule(t *testing.T) {
+	h := drawn(t)
+	rule := func() string {
+		for _, l := range slotLines(&h.world, 0) {
+			if l.label == "TOA error" {
+				return l.text
+			}
+		}
+		return ""
+	}
+	if got := rule(); got != "noise by W/(S/N), jitter and floor where known" {
+		t.Errorf("%q", got)
+	}
+	row := &h.world.desk.read().rows[0]
+	row.ToaRule = "a matched Gaussian template, 0.74 W/(S/N)"
+	if got := rule(); !strings.HasPrefix(got, "noise by a matched Gaussian template, 0.74 W/(S/N), ") {
+		t.Errorf("%q", got)
+	}
+	if row.ToaUs = 0; rule() != "" {
+		t.Errorf("no TOA error, and its rule is told: %q", rule())
+	}
+}

@@ -41,6 +41,7 @@ type Pulsar struct {
 	FloorUs         float64 // arrival-time error that no amount of time goes below
 	Sky408K         float64 // sky temperature at 408 MHz in its direction: SkyAt408, or measured
 	DMPcPerCm3      float64 // smears the pulse across the receiver's channels
+	GaussianPulse   bool    // timed with the matched template of a Gaussian of that width; false: by the plain W/(S/N)
 }
 
 // usualDuty stands in for an unknown pulse width: published survey limits assume 5 % of the period.
@@ -196,13 +197,13 @@ func (s Setup) WidthMs() float64 {
 // TOAErrorUs returns the expected error of an arrival time after some minutes at an elevation, µs:
 // infinite when the pulsar is not heard.
 //
-//	σ² = (W/(S/N))² + jitter² + floor²
+//	σ² = noise² + jitter² + floor²
 //
-// The radiometer's part is the plain W/(S/N). Matching a template to a Gaussian pulse reaches 0.60 FWHM/(S/N)
-// by the Cramér–Rao bound; the plain rule is kept because real profiles and receivers lose as much.
+// The noise is the plain W/(S/N), as much as real profiles and receivers reach; of a GaussianPulse it is the least that
+// a matched template reaches, GaussianErrorUs.
 //
 // Source:  Lorimer & Kramer 2005; jitter ∝ t^(−1/2), Parthasarathy et al. 2021, MNRAS 502, 407
-// Checked: TestTOAError, TestPublishedObservations
+// Checked: TestTOAError, TestTOAErrorOfGaussianPulse, TestPublishedObservations
 func (s Setup) TOAErrorUs(minutes, elevationDeg float64) float64 {
 	hour := s.hourErrorUs(elevationDeg)
 	if !(minutes > 0) || math.IsInf(hour, 1) {
@@ -211,13 +212,48 @@ func (s Setup) TOAErrorUs(minutes, elevationDeg float64) float64 {
 	return math.Hypot(hour*math.Sqrt(60/minutes), s.Pulsar.FloorUs)
 }
 
+// noiseUs is the part of an arrival time's error that a signal-to-noise ratio leaves.
+func (s Setup) noiseUs(snr float64) float64 {
+	if s.Pulsar.GaussianPulse {
+		return GaussianErrorUs(1e3*s.WidthMs(), gaussianGain*snr)
+	}
+	return 1e3 * s.WidthMs() / snr
+}
+
+// GaussianErrorUs returns the error of the arrival time of a Gaussian pulse that is timed with its matched template, µs:
+// the Cramér–Rao bound, below which no method goes.
+//
+//	√2 w/(S/N) = 0.6006 FWHM/(S/N),  for the pulse exp(−t²/2w²)
+//
+// Given:    the full width at half height, µs; the S/N of the matched template, which is the pulse's height over the
+// height's error
+// Neglects: what a template that does not fit costs
+// Source:   Cramér–Rao bound, Rao 1945, Bull. Calcutta Math. Soc. 37, 81; for pulsars Taylor 1992, Phil. Trans. R. Soc. A 341, 117
+// Checked:  TestGaussianError (RAD-030), TestGaussianErrorIsTheBound
+func GaussianErrorUs(fwhmUs, matchedSNR float64) float64 {
+	w := fwhmUs / (2 * math.Sqrt(2*math.Ln2))
+	return math.Sqrt2 * w / matchedSNR
+}
+
+// gaussianGain is the S/N of a matched template over that of the radiometer equation, (2 ln 2/π)^(1/4). The equation counts
+// a rectangle of the pulse's width and of all its energy; a Gaussian as wide at half height is lower and has wings.
+//
+// Checked: TestGaussianErrorIsTheBound
+var gaussianGain = math.Pow(2*math.Ln2/math.Pi, 0.25)
+
+// GaussianPulseFactor is what multiplies W/(S/N) in the errors of a GaussianPulse: 0.737, the bound's 0.6006 for an S/N
+// that is 0.815 of the radiometer equation's.
+//
+// Checked: TestTOAErrorOfGaussianPulse
+func GaussianPulseFactor() float64 { return GaussianErrorUs(1, gaussianGain) }
+
 // hourErrorUs is the part of the error that shrinks with time, after one hour: radiometer and jitter.
 func (s Setup) hourErrorUs(elevationDeg float64) float64 {
 	snr := s.SNR(60, elevationDeg)
 	if !(snr > 0) {
 		return math.Inf(1)
 	}
-	return math.Hypot(1e3*s.WidthMs()/snr, s.Pulsar.JitterUsPerHour)
+	return math.Hypot(s.noiseUs(snr), s.Pulsar.JitterUsPerHour)
 }
 
 // JitterUs returns the arrival-time error from the variation of the pulses themselves after some

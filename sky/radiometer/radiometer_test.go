@@ -170,7 +170,7 @@ func TestNeverNaN(t *testing.T) {
 		d := func(name string) float64 { return any.Draw(t, name) }
 		s := Setup{
 			Receiver{[2]float64{d("f1"), d("f2")}, d("tsys"), d("tau"), d("gain"), nil, rapid.IntRange(-1, 4).Draw(t, "pol"), d("channel")},
-			Pulsar{d("flux"), d("at"), d("index"), d("period"), d("width"), d("jitter"), d("floor"), d("sky"), d("dm")},
+			Pulsar{d("flux"), d("at"), d("index"), d("period"), d("width"), d("jitter"), d("floor"), d("sky"), d("dm"), rapid.Bool().Draw(t, "gaussian")},
 		}
 		if s.Check() == nil && (math.IsNaN(s.Pulsar.AtMHz) || math.IsNaN(s.Pulsar.SpectralIndex)) {
 			t.Fatal("Check lets NaN through")

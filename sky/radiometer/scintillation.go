@@ -72,7 +72,7 @@ func (s Setup) ChanceOfTOA(toaUs, minutes, elevationDeg float64, sc Scintillatio
 	if !(snr > 0) {
 		return 0
 	}
-	noise := 1e3 * s.WidthMs() / snr
+	noise := s.noiseUs(snr)
 	left := square(toaUs) - square(s.Pulsar.FloorUs) - square(s.Pulsar.JitterUsPerHour)*60/minutes
 	if !(left > 0) {
 		return 0
