@@ -8,7 +8,7 @@ import "slices"
 type Bound struct {
 	Of       *Problem // with its pins, bars and time past
 	Ceiling  Micro
-	Complete bool // it bounds only plans that have a slot of every job that must be there and is not barred
+	Complete bool // it bounds only plans that have a slot of every job that must be there and can be
 
 	ways *ways // of the problem's slews; made when they are asked for
 }
@@ -27,17 +27,26 @@ func (p *Problem) inBreak(s Slot) bool {
 	return slices.ContainsFunc(p.Breaks, func(b Span) bool { return s.Start < b.To && s.End > b.From })
 }
 
-// completeWith tells whether the plan has a slot of every job that must be there and is not barred.
+// completeWith tells whether the plan has a slot of every job that must be there and can be.
 func (p *Problem) completeWith(plan Plan) bool {
 	for j := range p.Jobs {
-		if p.Jobs[j].mustBe() && !slices.ContainsFunc(plan.Slots, func(s Slot) bool { return p.Nodes[s.Node].Job == j }) {
+		if p.mustHave(j) && !slices.ContainsFunc(plan.Slots, func(s Slot) bool { return p.Nodes[s.Node].Job == j }) {
 			return false
 		}
 	}
 	return true
 }
 
-func (j *Job) mustBe() bool { return j.Must && !j.Barred }
+// mustHave tells whether a plan must have a slot of the job: one that is barred, or for which there is no room in time
+// to come, is not asked for, neither here nor by the search.
+func (p *Problem) mustHave(job int) bool {
+	j := &p.Jobs[job]
+	return j.Must && !j.Barred && slices.ContainsFunc(p.Nodes, func(n Node) bool {
+		return n.Job == job && slices.ContainsFunc(n.Open, func(w Window) bool {
+			return slices.ContainsFunc(p.cut(w.Span), func(s Span) bool { return s.To-s.To%p.GridMin-s.From >= j.MinMin })
+		})
+	})
+}
 
 // Holds tells whether the plan is among those that are bounded. Which slots are pins is the problem's to say.
 func (b Bound) Holds(plan Plan) bool {

@@ -11,8 +11,8 @@ import "slices"
 // taken out: a pin that breaks a limit, the slots of a job that is no longer barred or may have more than before.
 // A pin that only begins too soon gives up its first minutes instead.
 //
-// It is false where nothing follows: when a pin or a job that must be there is given up, a window opens, or
-// the setups are others.
+// It is false where nothing follows: when a pin is given up, or a job that must be there, by a bar or because no time
+// is left for it; when a window opens; when the setups are others.
 func CarryCeiling(was Bound, now *Problem) (Bound, bool) {
 	old := was.Of
 	if !sameSession(old, now) || now.GridMin%old.GridMin != 0 || now.FromMin < old.FromMin || !nodesWithin(now, old) {
@@ -40,7 +40,7 @@ func (c *carrying) jobs() bool {
 	for j := range c.now.Jobs {
 		old, job := &c.old.Jobs[j], &c.now.Jobs[j]
 		if old.Source != job.Source || old.Receiver != job.Receiver || job.MinMin < old.MinMin || job.MaxMin > old.MaxMin ||
-			c.was.Complete && old.mustBe() && !job.mustBe() {
+			c.was.Complete && c.pinCount[j] == 0 && c.old.mustHave(j) && !c.now.mustHave(j) {
 			return false
 		}
 		free := 0 // slots that it may have beside its pins
@@ -195,7 +195,7 @@ func (c *carrying) soonest(before, pin *Slot) (int, bool) {
 func (c *carrying) takeOut(i int) bool {
 	p, pin := c.now, &c.now.Pins[i]
 	job := p.Nodes[pin.Node].Job
-	if c.was.Complete && c.old.Jobs[job].mustBe() {
+	if c.was.Complete && c.old.mustHave(job) {
 		return false
 	}
 	spent := 60*(pin.End-pin.Start) + p.OverheadSec

@@ -23,10 +23,11 @@ func bestAround(p *Problem, complete bool) Micro {
 	extend = func(from, end int, fixed bool, next int, sum Micro) {
 		until := p.Minutes
 		if next == len(p.Pins) {
-			lacks := func(j Job) bool {
-				return j.mustBe() && count[slices.IndexFunc(p.Jobs, func(o Job) bool { return o.Source == j.Source })] == 0
+			lacks := false
+			for j := range p.Jobs {
+				lacks = lacks || p.mustHave(j) && count[j] == 0
 			}
-			if !complete || !slices.ContainsFunc(p.Jobs, lacks) {
+			if !complete || !lacks {
 				best = max(best, sum)
 			}
 		} else {
