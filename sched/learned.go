@@ -16,7 +16,7 @@ type Learned struct {
 
 // serves tells whether the problem is the one that was learned from but for edits.
 func (l *Learned) serves(p *Problem) bool {
-	return l != nil && sameSession(l.tables.p, p) && l.tables.p.GridMin == p.GridMin
+	return l != nil && sameSession(l.tables.p, p) && l.tables.p.GridMin == p.GridMin && len(l.tables.p.Nodes) == len(p.Nodes)
 }
 
 // sameWorth tells whether the slots of both jobs are worth the same and are as long.

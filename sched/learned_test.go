@@ -163,3 +163,15 @@ func TestLearnedOfAStoppedSearch(t *testing.T) {
 		t.Errorf("worth %v, anew %v", again.Worth, fresh.Worth)
 	}
 }
+
+// A session with other nodes is another session, even where jobs and slews are as many as before.
+func TestLearnedOfOtherNodes(t *testing.T) {
+	p := generate(small.with(7))
+	fewer := *p
+	fewer.Nodes = p.Nodes[:len(p.Nodes)-1]
+	before := solve(t, &fewer, Options{Rounds: 2})
+	plain, foreign := solve(t, p, Options{Rounds: 2}), solve(t, p, Options{Rounds: 2, Learned: before.Learned})
+	if !slices.Equal(plain.Plan.Slots, foreign.Plan.Slots) || plain.Ceiling != foreign.Ceiling {
+		t.Error("what was learned of another session made a difference")
+	}
+}
