@@ -2,7 +2,10 @@ package orbit
 
 import "math"
 
-const siderealDayDays = 0.99726957
+const (
+	siderealDayDays = 0.99726957
+	siderealDayOff  = 5e-9 // at most: what is rounded off
+)
 
 // TransitStepTurns returns by how much the orbital phase steps from one transit of the source over a
 // site to the next, 0 ≤ step < 1. Near 0, 1 or a simple fraction a site sees the same phases for months.
@@ -21,6 +24,9 @@ const mostParts = 6
 //
 //	days = n d (1/n − part)/|n s − round(n s)|,  s the step of the phase, d the sidereal day
 //
+// The rest is taken for no smaller than what is rounded off of the day in n of them: that of an orbit of exactly one
+// sidereal day is not known better.
+//
 // Given:    partTurns, what is seen of the orbit at one transit
 // Returns:  the n of at most 6, without an orbit or more in n days none, for which that takes longest;
 // 0 and 0 where the parts leave nothing between them
@@ -33,7 +39,7 @@ func (o Orbit) TransitRepeat(partTurns float64) (parts int, days float64) {
 		if gap <= 0 || float64(n)*siderealDayDays/o.PeriodDays < 0.5 {
 			continue
 		}
-		rest := math.Abs(float64(n)*step - math.Round(float64(n)*step))
+		rest := max(math.Abs(float64(n)*step-math.Round(float64(n)*step)), float64(n)*siderealDayOff/o.PeriodDays)
 		if d := float64(n) * siderealDayDays * gap / rest; d > days {
 			parts, days = n, d
 		}

@@ -66,4 +66,8 @@ func TestTransitRepeat(t *testing.T) {
 	if parts, days := o.TransitRepeat(1.5); parts != 0 || days != 0 {
 		t.Errorf("an orbit shorter than a transit is seen whole, and not in %d parts for %g d", parts, days)
 	}
+	o = mustNew(t, Elements{PeriodDays: siderealDayDays, AscendingNodeMJD: 55000})
+	if parts, days := o.TransitRepeat(0.3); parts != 1 || math.IsInf(days, 0) || days < 1e6 {
+		t.Errorf("an orbit of a sidereal day is seen in %d parts for %g d", parts, days)
+	}
 }
