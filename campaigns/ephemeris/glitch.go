@@ -165,11 +165,10 @@ func (f *File) spinAt(s *rotation, at decimal, scale timeScale) rotation {
 	term := new(big.Float).Copy(dt)
 	frequency.Add(frequency, new(big.Float).Mul(derivative, term))
 	for n := 2; n < 20; n++ {
-		l := f.line(fmt.Sprintf("F%d", n))
-		if l == nil {
-			break
+		c := bigOf("0")
+		if l := f.line(fmt.Sprintf("F%d", n)); l != nil {
+			c = scale.length(l.exact, -n-1).big()
 		}
-		c := scale.length(l.exact, -n-1).big()
 		derivative.Add(derivative, new(big.Float).Mul(c, term))
 		term.Mul(term, dt)
 		term.Quo(term, new(big.Float).SetInt64(int64(n)))

@@ -126,3 +126,15 @@ func TestGlitchKeepsDigits(t *testing.T) {
 		t.Errorf("the sum is not to the last digit:\n%s", entry)
 	}
 }
+
+// A higher derivative counts on the way to another date even where the one below it is not in the file.
+func TestGlitchWithoutTheSecondDerivative(t *testing.T) {
+	s, _ := importedSpin(t, "PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nUNITS TDB\nPEPOCH 50000\nF0 2\nF1 -1e-12\nF3 6e-27\nGLEP_1 50100\nGLF0_1 1e-6")
+	dt := 100. * secPerDay
+	if want := 2 + 1e-6 - 1e-12*dt + 1e-27*dt*dt*dt; math.Abs(s.Spin.FrequencyHz-want) > 1e-13 {
+		t.Errorf("frequency %.15g, want %.15g", s.Spin.FrequencyHz, want)
+	}
+	if want := -1e-12 + 3e-27*dt*dt; math.Abs(s.Spin.DerivativeHzPerS/want-1) > 1e-9 {
+		t.Errorf("derivative %.12g, want %.12g", s.Spin.DerivativeHzPerS, want)
+	}
+}
