@@ -1,5 +1,7 @@
 package sched
 
+import "slices"
+
 // A bundle looks for the prices of the lowest bound. The bound is a convex function of the prices, the
 // largest of one linear function for each route: worth + Σ price × (slots a job may have − slots it has).
 // The bundle keeps those met so far and goes to where the largest of them is least, held back from the
@@ -27,10 +29,11 @@ type bundle struct {
 
 // A cut is the linear function of one set of routes, one for each gap.
 type cut struct {
-	value float64   // at prices of zero
-	slope []float64 // by job
-	share float64   // in the last trial
-	route []Slot
+	value   float64   // at prices of zero
+	slope   []float64 // by job
+	share   float64   // in the last trial
+	route   []Slot
+	lowered bool // its route is none any more
 }
 
 const maxCuts = 60
@@ -44,17 +47,14 @@ func newBundle(low, high, center []float64) *bundle {
 // progress. best is the worth of the best plan.
 func (b *bundle) add(c cut, height, best float64) {
 	first := b.spring == 0
+	b.correct(height)
 	if len(b.cuts) >= maxCuts {
 		b.drop()
 	}
 	b.cuts = append(b.cuts, c)
 	if first {
 		b.recentre(height)
-		square := 1.0
-		for _, g := range c.slope {
-			square += float64(g * g)
-		}
-		b.spring = square / max(1, height-best)
+		b.spring = c.spring(height - best)
 		return
 	}
 	hoped := max(1, b.height-b.model)
@@ -70,6 +70,45 @@ func (b *bundle) add(c cut, height, best float64) {
 	if b.nulls++; b.nulls >= 2 {
 		b.spring = min(max(fit, b.spring), 2*b.spring)
 	}
+}
+
+// correct lowers further what cuts that are no longer true say of the trial, where the bound is height.
+func (b *bundle) correct(height float64) {
+	for i := range b.cuts {
+		if c := &b.cuts[i]; c.lowered {
+			c.value -= max(0, c.at(b.trial)-height)
+		}
+	}
+}
+
+// dropLowered forgets the cuts that are no longer true, when it is they that promise nothing, and begins with a spring as at
+// first. It is false if there are none.
+func (b *bundle) dropLowered(best float64) bool {
+	if !slices.ContainsFunc(b.cuts, func(c cut) bool { return c.lowered }) {
+		return false
+	}
+	newest := b.cuts[len(b.cuts)-1] // is never one of them
+	b.cuts = slices.DeleteFunc(b.cuts, func(c cut) bool { return c.lowered })
+	b.spring, b.nulls = newest.spring(b.height-best), 0
+	return true
+}
+
+// spring is such that a step along the cut's slope would gain what is to be gained.
+func (c *cut) spring(gain float64) float64 {
+	square := 1.0
+	for _, g := range c.slope {
+		square += float64(g * g)
+	}
+	return square / max(1, gain)
+}
+
+// at returns the cut's value at these prices.
+func (c *cut) at(prices []float64) float64 {
+	v := c.value
+	for j, g := range c.slope {
+		v += float64(g * prices[j])
+	}
+	return v
 }
 
 // restart forgets everything but the prices to begin at.
@@ -138,6 +177,12 @@ func (b *bundle) next(best float64) {
 	for j := range b.trial {
 		b.trial[j] = float64(Micro(b.trial[j])) // the bound is taken at whole prices
 	}
+	b.predict()
+}
+
+// predict sets model to what the cuts say of the trial.
+func (b *bundle) predict() {
+	b.grad = grow(b.grad, len(b.cuts))
 	high, _ := b.slopes()
 	b.model = b.grad[high]
 }
@@ -153,10 +198,7 @@ func (b *bundle) place() {
 func (b *bundle) slopes() (high, low int) {
 	low = None
 	for i := range b.cuts {
-		v := b.cuts[i].value
-		for j, g := range b.cuts[i].slope {
-			v += float64(g * b.trial[j])
-		}
+		v := b.cuts[i].at(b.trial)
 		b.grad[i] = v
 		if v > b.grad[high] {
 			high = i

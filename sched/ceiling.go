@@ -30,9 +30,11 @@ type bounder struct {
 	stage    stage
 	rounds   int
 	proof    proof
-	steps    int  // in this stage
-	coarse   int  // the grid on which prices are learned first
-	changed  bool // the bound at the centre has to be taken anew
+	steps    int     // in this stage
+	coarse   int     // the grid on which prices are learned first
+	least    float64 // the worth of the best plan
+	aimed    bool    // the trial is set
+	changed  bool    // the bound at the centre has to be taken anew
 	bitsUsed int
 	ceiling  Micro // the lowest bound on the true grid
 	valid    bool

@@ -26,6 +26,7 @@ const (
 
 // advance lowers the ceiling by a round of work; best is the worth of the best plan.
 func (b *bounder) advance(best Micro) {
+	b.least = float64(best)
 	b.work = 0
 	b.rounds++
 	if b.stage != sweeping {
@@ -84,18 +85,30 @@ func (b *bounder) sweepOn(best Micro) {
 	b.lower(bound)
 }
 
-// step takes the bound by routes with memory at the next prices. It is false when no route is better than
-// the best plan.
-func (b *bounder) step(grid int, best Micro) bool {
+// aim sets the trial to the next prices, or back to the best so far if what routes remember has changed.
+func (b *bounder) aim(best Micro) {
+	b.aimed = true
 	if !b.changed {
 		b.prices.next(float64(best))
 		if b.prices.height-b.prices.model < settled*(b.prices.height-float64(best)) {
 			b.changed = b.rememberShares()
+			if !b.changed && b.prices.dropLowered(float64(best)) {
+				b.prices.next(float64(best))
+			}
 		}
 	}
 	if b.changed {
 		copy(b.prices.trial, b.prices.center)
 	}
+}
+
+// step takes the bound by routes with memory at the next prices. It is false when no route is better than
+// the best plan.
+func (b *bounder) step(grid int, best Micro) bool {
+	if !b.aimed {
+		b.aim(best)
+	}
+	b.aimed = false
 	b.steps++
 	bound, route := b.routed(grid, best)
 	if b.router.halted {
@@ -123,7 +136,7 @@ func (b *bounder) learnFrom(route []Slot) {
 	const widest = 128
 	b.route = route
 	cyclic, more := b.remember(route)
-	b.forgetCuts()
+	b.lowerCuts()
 	if cyclic && !more && b.router.width < widest {
 		b.router.width *= 2
 	}

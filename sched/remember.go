@@ -46,17 +46,20 @@ func (b *bounder) rememberShares() (more bool) {
 		}
 	}
 	if more {
-		b.forgetCuts()
+		b.lowerCuts()
 	}
 	return more
 }
 
-// forgetCuts drops the cuts of routes that are none any more, but for the newest, which says where the
-// trial was.
-func (b *bounder) forgetCuts() {
-	for i := len(b.prices.cuts) - 2; i >= 0; i-- {
-		if !b.router.allows(b.prices.cuts[i].route) {
-			b.prices.forget(i)
+// lowerCuts lowers the cuts of routes that are none any more, once, by all that the best bound lies above the best plan. They
+// are no longer true, but still tell which jobs are asked for too often; the bound itself never comes from a cut. The
+// newest waits for the next one: it says where the trial was.
+func (b *bounder) lowerCuts() {
+	for i := range max(0, len(b.prices.cuts)-1) {
+		c := &b.prices.cuts[i]
+		if !c.lowered && !b.router.allows(c.route) {
+			c.lowered = true
+			c.value -= max(0, b.prices.height-b.least)
 		}
 	}
 }

@@ -60,6 +60,20 @@ type routeLabel struct {
 	end    int32 // of an ended label
 }
 
+// A waiting label is ready for a target: what is looked up of it again and again, side by side.
+type waiting struct {
+	value  Micro
+	memory memory
+	start  int32
+	id     int32
+}
+
+// A way leads from the end of a slot to being ready for a target.
+type way struct {
+	target, at int32
+	index      int32 // target·wide + at − from
+}
+
 // A router finds the best route through a session at given prices, from pin to pin.
 type router struct {
 	t      *tables
@@ -86,10 +100,11 @@ type router struct {
 	s      *sweeper
 	rest   *completion
 	bucket []int32     // target·wide + minute − from: first label that is ready there, or None
-	live   [][]int32   // by target: labels that are ready, in time order
+	live   [][]waiting // by target: labels that are ready, in time order
 	taken  []int32     // by target: buckets before this minute are in live
 	parked [][]int32   // by target: the ended labels to go on from after a break
 	job    []jobMemory // by target
+	ways   []way       // out of the slot that is being left
 	front  []routeLabel
 	atPin  []routeLabel // labels that reach the pin after the gap
 }
@@ -254,19 +269,29 @@ func (r *router) endSlots(l, e int) {
 	least := r.least - rest - a.adjust
 	r.front = r.front[:0]
 	width := r.room()
-	for _, id := range r.live[l] {
-		at := r.labels.at(id)
-		start := max(int(at.start), low)
-		v := at.value + row[high-start]
+	live := r.live[l]
+	for i := range live {
+		start := max(int(live[i].start), low)
+		v := live[i].value + row[high-start]
 		if v <= least {
 			continue
 		}
-		r.front = offer(r.front, routeLabel{value: v, memory: at.memory, came: at.came, next: None, node: int32(a.node), start: int32(start), end: int32(e)}, width)
+		came := r.labels.at(live[i].id).came
+		r.front = offer(r.front, routeLabel{value: v, memory: live[i].memory, came: came, next: None, node: int32(a.node), start: int32(start), end: int32(e)}, width)
 	}
-	r.work += 2 * len(r.live[l])
-	if len(r.front) > 0 {
-		r.aliveEnd[a.node*s.t.span+e] = true
+	r.work += len(live)
+	if len(r.front) == 0 {
+		return
 	}
+	r.aliveEnd[a.node*s.t.span+e] = true
+	p := s.t.p
+	until, next := s.from+s.wide, int(s.t.after[e])
+	rest = unreachable
+	if next < len(p.Breaks) {
+		until = min(until, p.Breaks[next].From)
+		rest = r.rest.parked[next*len(s.targets)+l]
+	}
+	r.reach(l, p.slewBin(e), e, until)
 	for _, label := range r.front {
 		label.value += a.adjust
 		label.memory = label.memory.with(r.job[l])
@@ -274,7 +299,10 @@ func (r *router) endSlots(l, e int) {
 		if s.next == None && label.value > r.best {
 			r.best, r.last = label.value, id
 		}
-		r.leave(l, id, e)
+		if rest > unreachable/2 && label.value+rest > r.least {
+			r.park(l, id)
+		}
+		r.depart(id)
 	}
 }
 
@@ -323,51 +351,38 @@ func (r *router) take(l, high, low int) {
 	arrivals:
 		for id := r.bucket[l*s.wide+m-s.from]; id != None; id = r.labels.at(id).next {
 			label := r.labels.at(id)
-			for _, other := range live {
-				if r.labels.at(other).value >= label.value && r.labels.at(other).memory.within(label.memory) {
+			for i := range live {
+				if live[i].value >= label.value && live[i].memory.within(label.memory) {
 					continue arrivals
 				}
 			}
-			live = append(live, id)
+			live = append(live, waiting{label.value, label.memory, label.start, id})
 		}
 	}
 	r.taken[l] = max(r.taken[l], int32(high+1))
 	stale := 0
-	for stale < len(live) && int(r.labels.at(live[stale]).start) <= low {
+	for stale < len(live) && int(live[stale].start) <= low {
 		stale++
 	}
 	if stale > r.width {
-		live = r.thin(live, stale)
+		live = thin(live, stale)
 	}
 	r.live[l] = live
 }
 
 // thin drops those of the first labels that a later one of them dominates.
-func (r *router) thin(live []int32, stale int) []int32 {
+func thin(live []waiting, stale int) []waiting {
 	kept := live[:0]
 next:
-	for i, id := range live[:stale] {
+	for i, label := range live[:stale] {
 		for _, other := range live[i+1 : stale] {
-			if r.labels.at(other).value >= r.labels.at(id).value && r.labels.at(other).memory.within(r.labels.at(id).memory) {
+			if other.value >= label.value && other.memory.within(label.memory) {
 				continue next
 			}
 		}
-		kept = append(kept, id)
+		kept = append(kept, label)
 	}
 	return append(kept, live[stale:]...)
-}
-
-// leave makes targets ready after the ended label, before the next break, and keeps it for after that.
-func (r *router) leave(l int, id int32, e int) {
-	s, p := r.s, r.s.t.p
-	until := s.from + s.wide
-	if b := int(s.t.after[e]); b < len(p.Breaks) {
-		until = min(until, p.Breaks[b].From)
-		if v := r.rest.parked[b*len(s.targets)+l]; v > unreachable/2 && r.labels.at(id).value+v > r.least {
-			r.park(l, id)
-		}
-	}
-	r.depart(l, p.slewBin(e), id, e, until)
 }
 
 // park keeps the ended label among the front of its target's, to go on from after the next break.
@@ -409,39 +424,52 @@ func (r *router) leaveBreak(b, to int) {
 		until = min(until, p.Breaks[b+1].From+1)
 	}
 	for l := range s.targets {
+		if len(r.parked[l]) > 0 {
+			r.reach(l, p.Slew.Bins+b, p.Breaks[b].To, until)
+		}
 		for _, id := range r.parked[l] {
-			r.depart(l, p.Slew.Bins+b, id, p.Breaks[b].To, until)
+			r.depart(id)
 		}
 	}
 }
 
-// depart makes targets ready after target l is left at minute free, in a bin of the slew table, before
-// minute until.
-func (r *router) depart(l, bin int, id int32, free, until int) {
+// reach finds the ways out of target l when it is left at minute free, in a bin of the slew table, to other targets
+// before minute until.
+func (r *router) reach(l, bin, free, until int) {
 	s, p := r.s, r.s.t.p
 	row := p.Slew.Sec[(bin*p.Slew.Places+int(s.places[l]))*p.Slew.Places:][:p.Slew.Places]
 	n := len(s.places)
 	lasts := s.lasts[:n]
 	change := s.change[p.Jobs[s.targets[l].job].Receiver][:n]
 	overhead := uint32(p.OverheadSec + 59)
-	from := *r.labels.at(id)
-	from.came = id
-	worth := r.least - from.value
-	base, wide := -s.from, s.wide
+	r.ways = r.ways[:0]
+	base := -s.from
 	for k, place := range s.places {
 		last := int(lasts[k])
 		if last < free {
 			break
 		}
 		sec := uint32(max(int32(row[place]), change[k])) + overhead
-		if at := free + int(sec/60); at <= last && at < until {
-			if r.rest.come[base+at] > worth && !from.memory.full(r.job[k]) && !s.repeats(l, k) {
-				r.arrive(k, at, from)
-			}
+		if at := free + int(sec/60); at <= last && at < until && r.rest.come[base+at] > unreachable/2 && !s.repeats(l, k) {
+			r.ways = append(r.ways, way{int32(k), int32(at), int32(base + at)})
 		}
-		base += wide
+		base += s.wide
 	}
-	r.work += 2 * n
+	r.work += n
+}
+
+// depart makes targets ready by the ways out of the ended label's slot.
+func (r *router) depart(id int32) {
+	from := *r.labels.at(id)
+	from.came = id
+	worth := r.least - from.value
+	for i := range r.ways {
+		w := &r.ways[i]
+		if r.rest.come[w.index] > worth && !from.memory.full(r.job[w.target]) {
+			r.arrive(int(w.target), int(w.at), from)
+		}
+	}
+	r.work += len(r.ways)
 }
 
 // arrive adds a label that is ready for target k, unless one that is ready at the same minute dominates it.

@@ -30,8 +30,8 @@ type Result struct {
 }
 
 const (
-	defaultWork = 3 * StepsPerSecond // brings the demonstration's ten hours within 1 % of the ceiling
-	lanes       = 2                  // searches side by side: fixed, so that the number of workers changes nothing
+	defaultWork = 5 * StepsPerSecond / 2 // brings the demonstration's ten hours within 1 % of the ceiling
+	lanes       = 2                      // searches side by side: fixed, so that the number of workers changes nothing
 )
 
 // StepsPerSecond is about how many steps of the search one core of a laptop makes in a second. Work is
@@ -207,8 +207,8 @@ func (s *search) round(workers int) {
 	budget := 0
 	worth := s.t.p.PlanWorth(Plan{Slots: s.best})
 	if s.bound != nil {
-		route, budget = s.bound.route, s.bound.work/(2*lanes)
-		s.bound.prepare()
+		route, budget = s.bound.route, s.bound.work/(3*lanes)
+		s.bound.prepare(worth)
 		work = append(work, func() { s.bound.advance(worth) })
 		if s.bound.proof.ready {
 			work = append(work, func() { s.bound.proof.take(s.bound, worth) })
