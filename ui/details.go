@@ -134,7 +134,7 @@ func windWords(w *world, row *campaigns.SlotRow, sunDeg float64) string {
 		mhz := (r.BandMHz[0] + r.BandMHz[1]) / 2
 		text := fmt.Sprintf("; the solar wind delays by %.2g us at %.0f MHz", 1e6*radiometer.DispersionSec(radiometer.SolarWindDM(radiometer.WindDensity, sunDeg), mhz), mhz)
 		if sunDeg < radiometer.WindUnreliableDeg {
-			text += ", as a mean: it may differ by as much, and timing is flagged"
+			text += fmt.Sprintf(", as a mean: fits of it were left with up to %.2g us, and timing is flagged", radiometer.WindResidualUs(mhz))
 		}
 		return text
 	}

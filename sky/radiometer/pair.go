@@ -58,11 +58,20 @@ func PairErrorUs(f1MHz, s1Us, f2MHz, s2Us float64) float64 {
 const WindDensity = 7.9
 
 // WindUnreliableDeg is the elongation within which the solar wind's structure leaves as much as its smooth part takes away:
-// timing there is flagged.
+// timing there is flagged. What it leaves is WindResidualUs.
 //
 // Source:  Tiburzi et al. 2019, MNRAS 487, 394: residuals of up to 0.3 µs at 1400 MHz
 // Checked: TestSolarWindIsUnreliable (DIS-070)
 const WindUnreliableDeg = 20
+
+// WindResidualUs returns how far arrival times within WindUnreliableDeg of the Sun may be off once the mean solar wind is
+// taken out, µs: the largest scatter that published fits of a spherical wind were left with.
+//
+//	0.3 µs (1400 MHz/f)²
+//
+// Source:  Tiburzi et al. 2019, MNRAS 487, 394
+// Checked: TestSolarWindIsUnreliable (DIS-070)
+func WindResidualUs(mhz float64) float64 { return 0.3 * square(1400/mhz) }
 
 // SolarWindDM returns the dispersion measure of the solar wind, pc/cm³.
 //

@@ -79,7 +79,10 @@ func TestSolarWindIsUnreliable(t *testing.T) {
 		explained := func(deg float64) float64 {
 			return 1e6 * DispersionSec(SolarWindDM(WindDensity, deg), r.Num("f_MHz"))
 		}
-		r.Asserted() // what the published fits left, beside which the flag must stand
+		r.Check(WindResidualUs(r.Num("f_MHz")))
+		if half := WindResidualUs(r.Num("f_MHz") / 2); math.Abs(half/r.Want()-4) > 1e-12 {
+			t.Errorf("%s: at half the frequency %g µs", r.ID, half)
+		}
 		if at := explained(WindUnreliableDeg); at < r.Want() || at > 3*r.Want() {
 			t.Errorf("%s: %.2f µs explained, %.2f left", r.ID, at, r.Want())
 		}

@@ -27,9 +27,10 @@ func phaseModel(t *testing.T, params string, days []float64, turns float64) *Mod
 }
 
 // A position error of an arcsecond or ten, once a short fit has absorbed phase and frequency, or the derivative too: by the
-// worst season the error reaches a quarter of a turn as A (ωt)²/2 or A (ωt)³/6 says (PHA-011, -012, -014, -015). The rows
-// stop at that term of the series, so the model is up to a seventh slower for the longest of them, where ωt is above 1.
+// worst season the error reaches a quarter of a turn as A (ωt)²/2 or A (ωt)³/6 says (PHA-011, -012, -014, -015). Deadlines
+// come from the whole model, and no other function of the program knows the rows' formula.
 func TestPositionErrorGrows(t *testing.T) {
+	within := map[string]float64{"PHA-011": 0.015, "PHA-012": 0.008, "PHA-014": 0.002, "PHA-015": 0.02}
 	for _, r := range outside.Rows(t, "phase_connection.csv", "PHA-011", "PHA-012", "PHA-014", "PHA-015") {
 		// A short fit: long enough to tell phase and frequency well, too short to tell the position.
 		span, turns := r.Want()/100, 2.5e-4
@@ -50,11 +51,8 @@ func TestPositionErrorGrows(t *testing.T) {
 				worst = math.Min(worst, d.MJD-start-day)
 			}
 		}
-		r.Asserted() // the row is the first term of a series of which the model has all
-		wt := 2 * math.Pi * r.Want() / daysPerYear
-		if slow := worst/r.Want() - 1; slow < -0.03 || slow > 0.02+0.12*wt*wt {
-			t.Errorf("%s: %.2f d, the row says %.2f", r.ID, worst, r.Want())
-		}
+		r.CheckWider(within[r.ID], "the row is the first term of a series on a circular orbit of the Earth; the model has the whole"+
+			" wave, the Earth's true orbit, which is 1.7 % nearer and 3.4 % faster at perihelion, and a fit that is not infinitely short", worst)
 	}
 }
 
