@@ -84,11 +84,17 @@ var tinyEdits = map[string]func(r *rand.Rand, p *Problem, plan Plan){
 	},
 	"window": func(r *rand.Rand, p *Problem, _ Plan) {
 		n := &p.Nodes[r.IntN(len(p.Nodes))]
+		if len(n.Open) == 0 {
+			return
+		}
 		w := n.Open[0]
 		w.To = w.From + (w.To-w.From)/2
 		n.Open = []Window{w}
 	},
-	"past": func(r *rand.Rand, p *Problem, _ Plan) { p.FromMin += 1 + r.IntN(4) },
+	"closed": func(r *rand.Rand, p *Problem, _ Plan) { p.Nodes[r.IntN(len(p.Nodes))].Open = nil },
+	"must":   func(r *rand.Rand, p *Problem, _ Plan) { j := &p.Jobs[r.IntN(len(p.Jobs))]; j.Must = !j.Must },
+	"later":  func(r *rand.Rand, p *Problem, _ Plan) { p.FromMin += r.IntN(p.Minutes) },
+	"past":   func(r *rand.Rand, p *Problem, _ Plan) { p.FromMin += 1 + r.IntN(4) },
 	"begun": func(r *rand.Rand, p *Problem, plan Plan) {
 		p.FromMin += r.IntN(10)
 		for _, s := range plan.Slots {
