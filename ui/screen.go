@@ -227,7 +227,7 @@ func (m *model) drawMessage(c *cell.Canvas) {
 		}
 		c.Put(1, h-1, cell.Fit(text+"; Esc stops it", w-1), theme.Now)
 	case m.world.season.run != nil:
-		c.Put(1, 0, cell.Fit(m.world.season.run.words(), w-1), theme.Now)
+		c.Put(1, h-1, cell.Fit(m.world.season.run.words(), w-1), theme.Now)
 	default:
 		lines := cell.Wrap(oneCell.Replace(m.world.say.text), w-2)
 		if len(lines) > most {

@@ -217,11 +217,15 @@ func (v *season) read(w *world) (string, []line) {
 }
 
 // tabs are the pages' names in the head, and the cells they take.
-func (v *season) tabs(*world, int) []image.Rectangle {
-	x := 0
+// On a narrow screen no blank stands behind a name, so that there is room for what the page is about.
+func (v *season) tabs(_ *world, width int) []image.Rectangle {
+	x, blanks := 0, 2
+	if width < wideTitle {
+		blanks = 1
+	}
 	var at []image.Rectangle
 	for i := range seasonPages {
-		n := cell.Width(seasonPages[i].name) + 2
+		n := cell.Width(seasonPages[i].name) + blanks
 		at = append(at, image.Rect(x, 0, x+n, 1))
 		x += n
 	}
@@ -280,7 +284,11 @@ func (v *season) drawUnplayed(w *world, c *cell.Canvas) {
 	ink := theme.Plain
 	switch {
 	case w.season.run != nil:
-		text = "The season is being played: see the line below. Everything else can be used meanwhile."
+		text = "The season is being played" // the line below may be taken by planning
+		if r := w.season.run.reached; r.all > 0 {
+			text += fmt.Sprintf(": session %d of %d", r.done+1, r.all)
+		}
+		text += ". Everything else can be used meanwhile."
 	case w.season.trouble != "":
 		text, ink = w.season.trouble, theme.Overdue
 	case coming == 0:
@@ -295,9 +303,10 @@ func (v *season) drawHead(w *world, c *cell.Canvas, g *theme.Glyphs) {
 	cw, _ := c.Size()
 	for i, r := range v.tabs(w, cw) {
 		if i == v.at {
-			c.Put(r.Min.X, 0, g.Mark+seasonPages[i].name+" ", theme.Chosen)
+			c.Fill(r, " ", theme.Chosen)
+			c.Put(r.Min.X, 0, g.Mark+seasonPages[i].name, theme.Chosen)
 		} else {
-			c.Put(r.Min.X, 0, " "+seasonPages[i].name+" ", theme.Muted)
+			c.Put(r.Min.X, 0, " "+seasonPages[i].name, theme.Muted)
 		}
 	}
 	x := v.tabs(w, cw)[len(seasonPages)-1].Max.X + 1
@@ -317,7 +326,7 @@ func (v *season) drawHead(w *world, c *cell.Canvas, g *theme.Glyphs) {
 		return
 	}
 	if w.season.edition != w.edition {
-		text, ink = "out of date: P plays again", theme.Overdue
+		text, ink = "out of date: P plays anew", theme.Overdue
 		if over := x + cell.Width(text) - cw; over > 0 { // it matters more than the names of the last pages
 			x = max(x-over, 1)
 			c.Put(x-1, 0, " ", theme.Plain)

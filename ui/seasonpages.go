@@ -21,26 +21,26 @@ var seasonPages = [...]seasonPage{
 	{"Cadences", []textColumn{
 		{"season", 6, false, 0}, {"source", 12, false, 0}, {"aim", 20, false, 2}, {"up", 3, true, 2}, {"due", 3, true, 0}, {"planned", 7, true, 0}, {"overdue d", 9, true, 3},
 		{"debt", 5, true, 1}, {"worst", 5, true, 4}, {"at end", 6, true, 1},
-	}, "missed first; visits due and planned", cadencesPage},
+	}, "visits due, missed first", cadencesPage},
 	{"Hours", []textColumn{
 		{"LST", 5, false, 0}, {"wanted", 6, true, 0}, {"granted", 7, true, 0}, {"planned", 7, true, 2}, {"ask for", 7, true, 0}, {"", 12, false, 1},
 	}, "hours by sidereal time", hoursPage},
 	{"Connect", []textColumn{
 		{"source", 12, false, 0}, {"observe by", 10, false, 0}, {"planned", 10, false, 1}, {"count", 7, false, 0}, {"then by", 14, false, 3},
-	}, "counts of turns and their dates", connectPage},
+	}, "dates that counts hang on", connectPage},
 	{"Sun", []textColumn{
 		{"source", 12, false, 0}, {"from", 10, false, 0}, {"to", 10, false, 0}, {"closest", 10, false, 2}, {"deg", 5, true, 1}, {"limit", 5, true, 1},
 	}, "too close to the Sun", sunPage},
 	{"Owed", []textColumn{
 		{"debt", 5, true, 0}, {"source", 12, false, 0}, {"aim", 26, false, 1}, {"why", 30, false, 2},
-	}, "every account at the end, worst first", owedPage},
+	}, "debts at the end", owedPage},
 	{"Phases", []textColumn{
 		{"source", 12, false, 0}, {"site", 12, false, 3}, {"step, turns", 11, true, 2}, {"parts", 5, true, 1}, {"seen", 5, true, 0}, {"all seen after", 14, true, 0},
-	}, "the same phases for months", phasesPage},
+	}, "orbits in step with days", phasesPage},
 	{"Array", []textColumn{
 		{"source", 12, false, 0}, {"rcvr", 4, false, 2}, {"1 h, us", 8, true, 2}, {"floor", 5, true, 3}, {"up h", 5, true, 4}, {"least h", 7, true, 3},
 		{"planned h", 9, true, 0}, {"best h", 6, true, 0}, {"error, us", 9, true, 1}, {"at best", 8, true, 1},
-	}, "hours, and what they could buy", arrayPage},
+	}, "what other hours buy", arrayPage},
 }
 
 func sessionsPage(s *campaigns.Season) seasonTable {

@@ -64,7 +64,12 @@ func TestSeasonIsPlayedAside(t *testing.T) {
 	h.shows("P plays the season")
 	cmd := h.apply(action{verb: playSeason})
 	h.shows("playing the season; Esc stops it")
-	h.keys("1", "down", "4") // everything else can be used meanwhile
+	if lines := strings.Split(h.screen(), "\n"); !strings.Contains(lines[len(lines)-2], "playing the season") || !strings.HasPrefix(lines[2], "sess") {
+		t.Errorf("how far it is stands over the calendar, not above the keys:\n%s", h.screen())
+	}
+	h.world.season.run.reached = seasonReport{done: 1, all: 2, session: "2026-12-09 night"}
+	h.shows("The season is being played: session 2 of 2.") // also while the line below tells of planning
+	h.keys("1", "down", "4")                               // everything else can be used meanwhile
 	h.run(cmd)
 	h.shows("the season is played")
 	h.shows("2026-12-09 night")
@@ -98,10 +103,24 @@ func TestSeasonIsPlayedAside(t *testing.T) {
 	h.shows("J1347-4410")
 	// What is recorded makes it out of date.
 	h.keys("5", "d", "enter", "4")
-	h.shows("out of date: P plays again")
+	h.shows("out of date: P plays anew")
 	h.keys("P")
 	if strings.Contains(h.screen(), "out of date") {
 		t.Error("played again, and still out of date")
+	}
+}
+
+// On 80 columns, the least that a terminal has by custom, every page says what it is about; on 60 every name is whole.
+func TestSeasonPagesFitTheHead(t *testing.T) {
+	h := start(t, openCampaign(t))
+	h.keys("4", "P")
+	for i := range seasonPages {
+		h.size(80, 24)
+		h.shows(seasonPages[i].about)
+		h.shows(seasonPages[len(seasonPages)-1].name)
+		h.size(60, 20)
+		h.shows(seasonPages[len(seasonPages)-1].name)
+		h.keys("right")
 	}
 }
 
