@@ -23,7 +23,7 @@ func (f *Frame) barycentric(x float64) vec {
 //
 // Given:    r from the barycentre to the Earth's centre, n the unit vector to the target
 // Neglects: the site's place on the Earth (21 ms), parallax (1 ms at 1 kpc), the Sun's Shapiro delay (0.1 ms),
-// 10 ms in the Earth's place; 0.04 s in all, which is 1e−6 turns of a 0.5-day orbit
+// 1 ms in the Earth's place; 0.03 s in all, which is 1e−6 turns of a 0.5-day orbit
 // Source:   Edwards, Hobbs & Manchester 2006, MNRAS 372, 1549, section 2.3
 // Checked:  TestBarycentre (BAR-010 to BAR-017)
 func (f *Frame) RoemerSecAt(t Target, at time.Time) float64 {

@@ -155,8 +155,8 @@ func TestDayFractions(t *testing.T) {
 	f.is("AST-079", f.input("AST-079", "tai_frac")+ttMinusTAI/secondsPerDay)
 }
 
-// What the library has for the rest of the book's examples. Of it this package uses the nutation and the
-// aberration alone; the other rows say that the library is the one that the notes in meeus.go speak of.
+// What the library has for the rest of the book's examples. Of it this package uses the nutation
+// alone; the other rows say that the library is the one that the notes in meeus.go speak of.
 func TestBookLibrary(t *testing.T) {
 	f := facts{t}
 	// 22.a: mean obliquity of 1980; this package has that of 2006 (AST-066), 0.04 arcsec less.

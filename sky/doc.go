@@ -25,7 +25,7 @@
 //	azimuth × cos el, elevation     0.05 arcsec, median 0.01
 //	hour angle, parallactic angle   0.2 arcsec (scaled by cos dec, by the smaller of cos el and cos dec)
 //	rise, set, crossings of limits  the same events; within 0.05 s + 0.05 arcsec / elevation rate
-//	place of the Sun, elongation    1 arcsec
+//	place of the Sun                0.2 arcsec; elongation 1 arcsec
 //	sidereal time                   0.002 s
 //	radio refraction                0.01 arcsec against its formula; the air itself differs by more
 //	barycentric light time          0.05 s

@@ -54,12 +54,14 @@ func newNode(jd float64) node {
 	trueObliquity := obliquity + eps
 	nutation := chain(aboutX(-trueObliquity), aboutZ(-psi), aboutX(obliquity))
 	mean := precession.after(&bias)
+	earth, earthVelocity := earthFromSun(jd)
+	wobble, wobbleVelocity := sunFromBarycentre(jd, earth, earthVelocity)
 
 	return node{
 		rotation: nutation.after(&mean),
-		velocity: earthVelocity(jd),
-		earth:    mean.applyBack(earthFromSun(jd, obliquity)),
-		wobble:   sunFromBarycentre(jd),
+		velocity: earthVelocity.plus(1, wobbleVelocity).times(lightTimeAU / (10 * daysPerCentury * secondsPerDay)),
+		earth:    earth,
+		wobble:   wobble,
 		equinox:  precessionInRA(t) + equationOfEquinoxes(psi, trueObliquity, t),
 		days:     daysSinceJ2000(jd),
 	}

@@ -1,15 +1,9 @@
 package sky
 
-import (
-	"math"
+import "github.com/soniakeys/meeus/v3/nutation"
 
-	"github.com/soniakeys/meeus/v3/apparent"
-	"github.com/soniakeys/meeus/v3/nutation"
-	"github.com/soniakeys/unit"
-)
-
-// This file is the only one that knows the library, and it takes from it only series that were
-// measured to be right: nutation and the Earth's velocity. What is left out, and why:
+// This file is the only one that knows the library, and it takes from it only a series that was
+// measured to be right: nutation. What is left out, and why:
 //
 //   - precession and obliquity are those of 1976 and 1980, a third of an arcsecond out in a century
 //   - longitude is positive west and azimuth from the south there; here nothing of it is passed on
@@ -20,7 +14,7 @@ import (
 //   - sidereal.Apparent0UT is right only at 0h; deltat is out by seconds today
 //   - rise puts a transit on the wrong day and has one error for "always up" and "never up"
 //   - refraction is optical
-//   - the full solar theory wants data files at run time
+//   - the full solar theory wants data files at run time; sky/generate makes tables of it
 
 // nutationOf returns the nutation in longitude and in obliquity, in radians.
 //
@@ -31,18 +25,4 @@ import (
 func nutationOf(jd float64) (psi, eps float64) {
 	p, e := nutation.Nutation(jd)
 	return p.Rad(), e.Rad()
-}
-
-// earthVelocity returns the Earth's barycentric velocity in units of the speed of light, on the axes of J2000.0.
-//
-// The library gives only what the velocity does to a place, so two places are asked for: at
-// α = 0, δ = 0 the shifts are Y and Z, at α = 90° the shift in right ascension is −X.
-//
-// Given:    jd, Julian day of TT
-// Source:   Ron & Vondrák 1986, by way of Meeus, eq. 23.4 and table 23.A
-// Checked:  TestEarthVelocity (against the change of the Earth's place), TestAzEl
-func earthVelocity(jd float64) vec {
-	y, z := apparent.AberrationRonVondrak(0, 0, jd)
-	x, _ := apparent.AberrationRonVondrak(unit.RA(math.Pi/2), 0, jd)
-	return vec{-x.Rad(), y.Rad(), z.Rad()}
 }

@@ -63,9 +63,9 @@ func TestSun(t *testing.T) {
 			separation = append(separation, math.Abs(f.SunDeg(p, at)-r.number("sep_deg"))*arcsecPerDeg)
 		}
 	}
-	place.judge(t, "Sun", "arcsec", 1, 0.3)
-	azel.judge(t, "Sun from a site", "arcsec", 1, 0.3)
-	separation.judge(t, "angle from the Sun", "arcsec", 1, 0.3)
+	place.judge(t, "Sun", "arcsec", 0.2, 0.1)
+	azel.judge(t, "Sun from a site", "arcsec", 0.2, 0.1)
+	separation.judge(t, "angle from the Sun", "arcsec", 1, 0.1)
 }
 
 func TestSidereal(t *testing.T) {

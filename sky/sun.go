@@ -35,9 +35,8 @@ func SunGaps(t Target, limitDeg float64, from, to time.Time) ([]SunGap, error) {
 	cosLimit := math.Cos(limitDeg * radPerDeg)
 	toward := func(x float64) float64 { // cosine of the elongation
 		jd := start + x
-		century := (jd - mjdOffset - j2000MJD) / daysPerCentury
-		precession := precessionMatrix(century)
-		sun := precession.applyBack(earthFromSun(jd, meanObliquity(century))).unit().times(-1)
+		earth, _ := earthFromSun(jd)
+		sun := earth.unit().times(-1)
 		return sun.dot(t.direction(jd - mjdOffset - j2000MJD))
 	}
 	near := func(x float64) (v, d float64) {

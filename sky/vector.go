@@ -46,11 +46,6 @@ type mat [3]vec
 
 func (m *mat) apply(a vec) vec { return vec{m[0].dot(a), m[1].dot(a), m[2].dot(a)} }
 
-// applyBack applies the inverse rotation.
-func (m *mat) applyBack(a vec) vec {
-	return vec{}.plus(a[0], m[0]).plus(a[1], m[1]).plus(a[2], m[2])
-}
-
 // after returns the rotation that does n first and then m.
 func (m *mat) after(n *mat) mat {
 	var p mat

@@ -19,6 +19,7 @@ var arrows = map[string][]string{
 	"sched":            {},
 	"sky":              {"github.com/soniakeys/meeus/*", "github.com/soniakeys/unit"},
 	"sky/array":        {},
+	"sky/generate":     {},
 	"sky/orbit":        {"github.com/soniakeys/meeus/*", module + "/sky"},
 	"sky/radiometer":   {module + "/sky"},
 	"sky/timing":       {module + "/sky", module + "/sky/orbit"},
