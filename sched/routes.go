@@ -209,7 +209,7 @@ func (r *router) enter(g gap, from routeLabel) {
 // as the screen's, must stay small beside what else an observer runs, and loses nothing by it; a long one needs them.
 const (
 	mostLabels = 1_500_000
-	fewLabels  = 500_000
+	fewLabels  = 300_000
 	longWork   = 2 * defaultWork
 )
 

@@ -5,7 +5,6 @@ import (
 	"errors"
 	"fmt"
 	"os"
-	"runtime"
 	"slices"
 	"sync"
 	"time"
@@ -81,7 +80,7 @@ func planCmd(ctx context.Context, work *planning, p *sched.Problem, from snapsho
 	warm, learned := from.plan.Clone(), work.desk.learned
 	return guarded(func() tea.Msg {
 		defer close(work.reports)
-		o := sched.Options{Rounds: rounds, Learned: learned, Workers: runtime.GOMAXPROCS(0), Progress: func(r sched.Result) {
+		o := sched.Options{Rounds: rounds, Learned: learned, Workers: planners(), Progress: func(r sched.Result) {
 			select {
 			case work.reports <- r:
 			default: // the screen is behind; the next report says more

@@ -11,6 +11,7 @@ import (
 	"io"
 	"os"
 	"os/signal"
+	"runtime"
 	"runtime/debug"
 	"strings"
 	"sync/atomic"
@@ -93,6 +94,17 @@ func staySmall(c *campaigns.Campaign) {
 	}
 }
 
+// oneMoreCore lets keys be answered while planning keeps every core busy: the system then shares the cores out among
+// threads at once, where Go's scheduler would let a key wait for its next turn.
+func oneMoreCore() (restore func()) {
+	cores := runtime.GOMAXPROCS(0)
+	runtime.GOMAXPROCS(cores + 1)
+	return func() { runtime.GOMAXPROCS(cores) }
+}
+
+// planners is how many goroutines plan at once.
+func planners() int { return max(1, runtime.GOMAXPROCS(0)-1) }
+
 // Run shows the interface until the user leaves it.
 func Run(c Config) error {
 	if c.In == nil {
@@ -116,6 +128,7 @@ func Run(c Config) error {
 	}
 	m := newModel(c, st)
 	staySmall(c.Folder.Campaign)
+	defer oneMoreCore()()
 
 	options := []tea.ProgramOption{tea.WithAltScreen(), tea.WithInput(c.In), tea.WithOutput(c.Out), tea.WithoutSignalHandler(), tea.WithFPS(framesPerSecond)}
 	if c.Mouse {
