@@ -96,30 +96,35 @@ func (w *world) provenFor(d *desk, s snapshot) sched.Bound {
 func (w *world) distance(d *desk, r *reading) string {
 	settled := w.settled(d)
 	if !r.ceilingKnown || r.ceilingAt != settled {
-		r.ceiling, r.ceilingKnown, r.ceilingAt = d.distanceWords(r, settled), true, settled
+		r.ceiling, r.ceilingFound = d.distanceWords(r, settled)
+		r.ceilingKnown, r.ceilingAt = true, settled
+	}
+	if !r.ceilingFound && w.work != nil && w.work.desk == d {
+		return "ceiling being sought"
 	}
 	return r.ceiling
 }
 
-func (d *desk) distanceWords(r *reading, settled int) string {
+// distanceWords is false where no ceiling follows.
+func (d *desk) distanceWords(r *reading, settled int) (words string, found bool) {
 	b, ok := d.ceilingOf(r.problem, r.plan, settled)
 	worth := r.verdict.Worth
 	switch {
 	case !ok && len(d.proofs) > 0:
-		return "ceiling out of date: R plans again"
+		return "ceiling out of date: R plans again", false
 	case !ok:
-		return "no ceiling yet"
+		return "no ceiling yet", false
 	case b.Holds(r.plan):
 		text := fmt.Sprintf("ceiling %s", b.Ceiling)
 		if b.Of.FromMin > settled {
 			text += " as from " + clock(d.prepared.Instant(b.Of.FromMin))
 		}
 		if worth >= b.Ceiling {
-			return text + ": none can be better"
+			return text + ": none can be better", true
 		}
-		return fmt.Sprintf("%s, within %.1f %%", text, 100*float64(b.Ceiling-worth)/float64(b.Ceiling))
+		return fmt.Sprintf("%s, within %.1f %%", text, 100*float64(b.Ceiling-worth)/float64(b.Ceiling)), true
 	case len(r.verdict.Breaches) > 0:
-		return fmt.Sprintf("within the limits: %s at most", b.Ceiling)
+		return fmt.Sprintf("within the limits: %s at most", b.Ceiling), true
 	}
-	return fmt.Sprintf("if complete: %s at most", b.Ceiling)
+	return fmt.Sprintf("if complete: %s at most", b.Ceiling), true
 }

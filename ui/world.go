@@ -123,6 +123,7 @@ type reading struct {
 	ceiling      string // ceiling and distance in words
 	ceilingAt    int    // the minute before which nothing can be changed that they hold for
 	ceilingKnown bool
+	ceilingFound bool // they tell a ceiling
 }
 
 // shown is the plan on the screen: the one that is held, if any.
