@@ -70,6 +70,9 @@ func TestALargeCampaignIsCroppedToWhatTheSearchLooksAt(t *testing.T) {
 		t.Fatalf("cropped: %t, with %d places", cropped.Problem.Cropped, len(cropped.places))
 	}
 
+	if raced {
+		return // the search itself is raced elsewhere
+	}
 	plan := func(p *Prepared) (slots []string) {
 		r, err := sched.Solve(context.Background(), p.Problem, sched.Options{Rounds: -1})
 		if err != nil {

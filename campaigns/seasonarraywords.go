@@ -16,12 +16,12 @@ func (f *ArrayForecast) SumWords() string {
 		f.Planned.SumPerUs2, f.Best.SumPerUs2, times(f.Best.SumPerUs2, f.Planned.SumPerUs2), 100*f.HourMore)
 }
 
-// PairWords does so for the pairs, by which a background is told from everything else.
+// PairWords does so for the pairs, by which a background of gravitational waves is told from everything else.
 func (f *ArrayForecast) PairWords() string {
 	if f.Pairs == 0 {
-		return "no two sources are planned: there is no pair to look for a background with"
+		return "no two sources are planned: there is no pair to look for a background of gravitational waves with"
 	}
-	text := fmt.Sprintf("merit for a weak background %.4g per µs^2 as planned, %.4g at best: %s", f.Planned.PairPerUs2, f.Best.PairPerUs2,
+	text := fmt.Sprintf("merit for a weak background of gravitational waves %.4g per µs^2 as planned, %.4g at best: %s", f.Planned.PairPerUs2, f.Best.PairPerUs2,
 		times(f.Best.PairPerUs2, f.Planned.PairPerUs2))
 	if f.Best.PairPerUs2 < f.Planned.PairPerUs2 {
 		text += ", so that for pairs the plan is better"

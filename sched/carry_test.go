@@ -189,7 +189,7 @@ func TestCarriedCeilingHolds(t *testing.T) {
 	kinds := tinyKinds()
 	carried, breaks := map[string]int{}, map[string]int{}
 	problems := uint64(6000)
-	if testing.Short() {
+	if testing.Short() || raced {
 		problems = 500
 	}
 	for seed := range problems {

@@ -10,7 +10,7 @@ import (
 // Nothing that a problem is made of can change without its fingerprint.
 func TestFingerprintSeesEverything(t *testing.T) {
 	whole := func() *Bound {
-		p := generate(medium.with(1))
+		p := generate(instance{sources: 6, minutes: 120, grid: 1, receivers: 2, breaks: 1, calibrators: 1, long: 1, seed: 1})
 		p.Pins = []Slot{{Node: 1, Start: 3, End: 9, Note: "n"}}
 		return &Bound{Of: p, Ceiling: Unit}
 	}

@@ -28,9 +28,9 @@ func (p *program) seasonCommand() *cobra.Command {
 			"set-up and without slews, put where time is granted while the source is within limits; what finds no room is spread evenly " +
 			"over the sidereal time in which it is up, and asked for. Measure and connect aims ask for none, and of aims that one slot can serve at once the largest counts.\n" +
 			"The array's table compares the hours planned on each pulsar with the division of as many in which one hour more is worth the " +
-			"same on every pulsar, above a least that keeps its count. It is advice for asking for time; no plan follows it.\n" +
+			"same on every pulsar; each keeps at least what its cadences and its count of turns need, where the hours cover that. It is advice for asking for time; no plan follows it.\n" +
 			"An orbit keeps step with the days when transits show the same parts of it, at most six, for two months or more.\n" +
-			"Columns of csv: " + seasonColumnWords("; ") + ".",
+			"Columns of csv:\n" + seasonColumnWords("\n"),
 		Example: "  tallystick season\n  tallystick season --table lst --format csv --out hours.csv",
 		Args:    noArgs,
 		RunE: func(*cobra.Command, []string) error {

@@ -1,0 +1,5 @@
+//go:build !race
+
+package campaigns
+
+const raced = false
