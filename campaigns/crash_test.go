@@ -11,7 +11,7 @@ import (
 	"testing"
 	"time"
 
-	"example.org/tallystick/internal/outside"
+	"example.org/tallystick/sky/outside"
 )
 
 // The test program is also the program that is killed: with this variable it saves into the folder that it

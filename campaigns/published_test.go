@@ -5,8 +5,8 @@ import (
 	"testing"
 	"time"
 
-	"example.org/tallystick/internal/outside"
 	"example.org/tallystick/sky"
+	"example.org/tallystick/sky/outside"
 )
 
 // A publishedConjunction is one of a published orbit, at the clock of an observatory in the middle of the Earth, by

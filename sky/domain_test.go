@@ -7,7 +7,7 @@ import (
 	"testing"
 	"time"
 
-	"example.org/tallystick/internal/outside"
+	"example.org/tallystick/sky/outside"
 )
 
 func TestMain(m *testing.M) {

@@ -7,7 +7,7 @@ import (
 	"testing"
 
 	"example.org/tallystick/campaigns"
-	"example.org/tallystick/internal/outside"
+	"example.org/tallystick/sky/outside"
 )
 
 func TestRecoveryLeft(t *testing.T) {

@@ -11,7 +11,7 @@ import (
 	"github.com/BurntSushi/toml"
 
 	"example.org/tallystick/campaigns"
-	"example.org/tallystick/internal/outside"
+	"example.org/tallystick/sky/outside"
 	"example.org/tallystick/sky/timing"
 )
 

@@ -6,7 +6,7 @@ import (
 	"strings"
 	"testing"
 
-	"example.org/tallystick/internal/outside"
+	"example.org/tallystick/sky/outside"
 )
 
 func TestMain(m *testing.M) { outside.Main(m, nil) }

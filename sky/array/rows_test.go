@@ -4,7 +4,7 @@ import (
 	"math"
 	"testing"
 
-	"example.org/tallystick/internal/outside"
+	"example.org/tallystick/sky/outside"
 )
 
 func TestMain(m *testing.M) { outside.Main(m, nil) }

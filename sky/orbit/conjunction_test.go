@@ -6,7 +6,7 @@ import (
 
 	"pgregory.net/rapid"
 
-	"example.org/tallystick/internal/outside"
+	"example.org/tallystick/sky/outside"
 )
 
 func TestConjunctions(t *testing.T) {

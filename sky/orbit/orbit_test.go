@@ -7,7 +7,7 @@ import (
 
 	"pgregory.net/rapid"
 
-	"example.org/tallystick/internal/outside"
+	"example.org/tallystick/sky/outside"
 )
 
 func fromRow(t *testing.T, r outside.Row) Orbit {

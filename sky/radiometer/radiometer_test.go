@@ -8,7 +8,7 @@ import (
 
 	"pgregory.net/rapid"
 
-	"example.org/tallystick/internal/outside"
+	"example.org/tallystick/sky/outside"
 )
 
 func rowSNR(r outside.Row, seconds float64) float64 {

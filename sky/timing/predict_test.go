@@ -5,8 +5,8 @@ import (
 	"strings"
 	"testing"
 
-	"example.org/tallystick/internal/outside"
 	"example.org/tallystick/sky/orbit"
+	"example.org/tallystick/sky/outside"
 )
 
 const start = 57000.0

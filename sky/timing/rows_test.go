@@ -3,7 +3,7 @@ package timing
 import (
 	"testing"
 
-	"example.org/tallystick/internal/outside"
+	"example.org/tallystick/sky/outside"
 )
 
 func TestMain(m *testing.M) { outside.Main(m, nil) }

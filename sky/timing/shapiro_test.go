@@ -5,8 +5,8 @@ import (
 	"strings"
 	"testing"
 
-	"example.org/tallystick/internal/outside"
 	"example.org/tallystick/sky/orbit"
+	"example.org/tallystick/sky/outside"
 )
 
 // shapiroSource is a circular binary of which only the orbit's own parameters and the Shapiro delay are free.
