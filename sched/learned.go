@@ -59,12 +59,13 @@ func (t *tables) pricesFrom(l *Learned) []Micro {
 	return prices
 }
 
-// take starts from what was learned: the prices are good enough for routes with memory from the beginning.
+// take starts from what was learned: the prices are good enough for routes with memory from the beginning. Of a job
+// that may have more slots than then nothing is kept in mind: as many as there were then would seem to be all.
 func (b *bounder) take(l *Learned) {
 	copy(b.router.keep, l.keep)
 	for j, m := range l.jobs {
-		if left := b.t.left(b.used, j); m.slots > 0 && b.t.chosen[j] {
-			b.router.jobs[j] = jobMemory{first: m.first, slots: min(m.slots, left)}
+		if left := b.t.left(b.used, j); b.t.chosen[j] && left <= m.slots {
+			b.router.jobs[j] = jobMemory{first: m.first, slots: left}
 		}
 	}
 	b.bitsUsed = l.bits

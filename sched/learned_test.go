@@ -178,3 +178,28 @@ func TestLearnedOfOtherNodes(t *testing.T) {
 		t.Error("what was learned of another session made a difference")
 	}
 }
+
+// A job that may have more slots than when it was last planned is not held to what routes remembered of it then.
+func TestLearnedMemoriesDoNotForbidMoreSlots(t *testing.T) {
+	remembered := 0
+	for seed := range uint64(40) {
+		p := generate(instance{sources: 10, minutes: 240, grid: 5, receivers: 1, seed: seed})
+		before := solve(t, p, Options{Rounds: 12})
+		more := *p
+		more.Jobs = slices.Clone(p.Jobs)
+		for j := range more.Jobs {
+			if before.Learned.jobs[j].slots > 0 {
+				more.Jobs[j].MaxSlots = 3
+				remembered++
+			}
+		}
+		fresh := solve(t, &more, Options{})
+		after := solve(t, &more, Options{Learned: before.Learned})
+		if after.HasCeiling && after.Ceiling < fresh.Worth {
+			t.Errorf("seed %d: ceiling %v by what was learned, a plan worth %v", seed, after.Ceiling, fresh.Worth)
+		}
+	}
+	if remembered == 0 {
+		t.Error("nothing was remembered")
+	}
+}
