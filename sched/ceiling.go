@@ -57,7 +57,7 @@ func newBounder(t *tables, prices []Micro, halt func() bool) *bounder {
 	b.begin = make([]float64, len(p.Jobs))
 	for j := range prices {
 		high[j] = float64(t.best[j]) // at which nobody takes it
-		b.begin[j] = min(float64(Micro(0.9*float64(prices[j]))), high[j])
+		b.begin[j] = max(0, min(float64(Micro(0.9*float64(prices[j]))), high[j])) // below zero only where force allows it
 	}
 	b.prices = newBundle(low, high, slices.Clone(b.begin))
 	g := gap{prev: None, next: None}

@@ -203,3 +203,36 @@ func TestLearnedMemoriesDoNotForbidMoreSlots(t *testing.T) {
 		t.Error("nothing was remembered")
 	}
 }
+
+// A price below zero is learned for a job that costs worth and must be there. When it need not be there any more, plans without
+// it are bounded too.
+func TestLearnedPricesOfAMustGoWithIt(t *testing.T) {
+	below := 0
+	for seed := range uint64(40) {
+		p := generate(instance{sources: 10, minutes: 240, grid: 5, receivers: 1, calibrators: 3, seed: seed})
+		for j := range p.Jobs {
+			if p.Jobs[j].Must {
+				p.Jobs[j].Terms[0].Scale = Unit / 1000
+			}
+		}
+		before := solve(t, p, Options{Rounds: 12})
+		for _, price := range before.Learned.prices {
+			if price < 0 {
+				below++
+			}
+		}
+		free := *p
+		free.Jobs = slices.Clone(p.Jobs)
+		for j := range free.Jobs {
+			free.Jobs[j].Must = false
+		}
+		fresh := solve(t, &free, Options{})
+		after := solve(t, &free, Options{Learned: before.Learned, Rounds: 3})
+		if after.HasCeiling && after.Ceiling < fresh.Worth {
+			t.Errorf("seed %d: ceiling %v by what was learned, a plan worth %v", seed, after.Ceiling, fresh.Worth)
+		}
+	}
+	if below == 0 {
+		t.Error("no price is below zero")
+	}
+}
