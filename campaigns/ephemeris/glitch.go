@@ -176,10 +176,28 @@ func (f *File) spinAt(s *rotation, at decimal, scale timeScale) rotation {
 	}
 	moved.frequency, moved.derivative = s.frequency.inDigits(frequency), s.derivative.inDigits(derivative)
 	seconds, _ := dt.Float64()
-	if s.sigmaFrequency > 0 {
-		moved.sigmaFrequency = math.Hypot(s.sigmaFrequency, s.sigmaDerivative*seconds)
-	}
+	moved.sigmaFrequency = f.sigmaAfter(s, seconds)
 	return moved
+}
+
+// sigmaAfter is the error of the frequency so many seconds from the spin's epoch: 0, not known, if a term that counts has none.
+func (f *File) sigmaAfter(s *rotation, seconds float64) float64 {
+	known := s.sigmaFrequency
+	if known == 0 || s.derivative.value != 0 && s.sigmaDerivative == 0 {
+		return 0
+	}
+	known = math.Hypot(known, s.sigmaDerivative*seconds)
+	factor := seconds
+	for n := 2; n < 20; n++ {
+		factor *= seconds / float64(n)
+		if l := f.line(fmt.Sprintf("F%d", n)); l != nil && l.Value != 0 {
+			if l.Sigma == 0 {
+				return 0
+			}
+			known = math.Hypot(known, l.Sigma*factor)
+		}
+	}
+	return known
 }
 
 // add adds a glitch to a spin that is of a date after it, and returns what is worth saying.

@@ -119,6 +119,22 @@ func TestGlitchErrors(t *testing.T) {
 	}
 }
 
+// Every term on the way to another date has its part in the error, and one without an error leaves it unknown.
+func TestErrorsOnTheWayPastAGlitch(t *testing.T) {
+	const head = "PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nUNITS TDB\nPEPOCH 50000\nF0 2 1 3e-10\nGLEP_1 50100\nGLF0_1 1e-6 1 4e-10\n"
+	dt := 100. * secPerDay
+	s, _ := importedSpin(t, head+"F1 -1e-11 1 1e-18\nF2 1e-22 1 1e-24")
+	want := math.Sqrt(9e-20 + 16e-20 + 1e-36*dt*dt + 1e-48*dt*dt*dt*dt/4)
+	if math.Abs(s.Spin.SigmaFrequencyHz/want-1) > 1e-12 {
+		t.Errorf("error %g, want %g", s.Spin.SigmaFrequencyHz, want)
+	}
+	for _, terms := range []string{"F1 -1e-11", "F1 -1e-11 1 1e-18\nF2 1e-22"} {
+		if s, _ := importedSpin(t, head+terms); s.Spin.SigmaFrequencyHz != 0 {
+			t.Errorf("%q leaves an error of %g", terms, s.Spin.SigmaFrequencyHz)
+		}
+	}
+}
+
 // No digit of F0 is lost on the way to another date.
 func TestGlitchKeepsDigits(t *testing.T) {
 	f := read(t, "PSR A\nRAJ 1:2:3\nDECJ 4:5:6\nUNITS TDB\nPEPOCH 50000\nF0 317.3789419337928734\nGLEP_1 50100\nGLF0_1 1e-9")
