@@ -76,7 +76,7 @@ func TestWhatLimitsTheCount(t *testing.T) {
 	s, at := counted()
 	s.SigmaPositionMas = [2]float64{20000, 20000}
 	c := connectionOf(t, s, at)
-	if c.predicted < 0.25*c.limit || !strings.HasSuffix(c.why(), "turns in a year") || !strings.Contains(c.why(), "most of it is the position's error, which swings the phase by up to ") {
+	if c.predicted < 0.25*c.limit || !strings.Contains(c.why(), "most of it is the position's error, which swings the phase by up to ") || !strings.Contains(c.why(), " turns in a year: what a fit of phase and frequency leaves of that comes to ") {
 		t.Errorf("20 arcsec: %+v, %s", c, c.why())
 	}
 	s.SigmaPositionMas = [2]float64{}

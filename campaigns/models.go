@@ -204,12 +204,21 @@ func (k *knowledge) mostOf(c connection, src timing.Source, priors []timing.Prio
 			}
 			what := fmt.Sprintf("the %s's error", part.name)
 			if part.name == position {
-				what += fmt.Sprintf(", which swings the phase by up to %.2g turns in a year", annualSwing(src, priors))
+				what += swingWords(annualSwing(src, priors), c.limit)
 			}
 			return what, nil
 		}
 	}
 	return "", nil
+}
+
+// swingWords says what a position's error does to the count, and how soon after a short fit where that is within two months.
+func swingWords(turns, limit float64) string {
+	words := fmt.Sprintf(", which swings the phase by up to %.2g turns in a year", turns)
+	if days := timing.SwingDays(turns, limit, 2); days < 58 {
+		words += fmt.Sprintf(": what a fit of phase and frequency leaves of that comes to %g turns in %.0f d at worst", limit, days)
+	}
+	return words
 }
 
 // annualSwing is how far the larger error of a position moves the pulse phase to either side in a year, in turns, where the

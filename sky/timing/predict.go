@@ -66,6 +66,24 @@ func (m *Model) Deadline(limitTurns, fromMJD, mhz float64) Deadline {
 	return Deadline{MJD: low, Never: true}
 }
 
+// SwingDays returns in how many days the annual wave that a position error leaves in the pulse phase reaches a limit in its
+// worst season, once a fit has absorbed the first terms of its series: 2 are phase and F0, 3 are F1 as well.
+//
+//	A (ω t)^n / n! = limit,  ω = 2π a year
+//
+// Given:   the wave's amplitude A and the limit, turns above 0; how many terms are absorbed, 1 or more
+// Returns: days from the middle of a short fit; the next term of the series counts for more than a tenth beyond 58 d (ω t = 1)
+// Source:  the Taylor series of a sine
+// Checked: TestSwingDays (PHA-011, -012, -014, -015), TestPositionErrorGrows against the whole model
+func SwingDays(amplitudeTurns, limitTurns float64, absorbed int) float64 {
+	const daysPerYear = 365.25
+	x := limitTurns / amplitudeTurns
+	for n := 2; n <= absorbed; n++ {
+		x *= float64(n)
+	}
+	return math.Pow(x, 1/float64(absorbed)) * daysPerYear / turn
+}
+
 // PositionAmplitudeTurns returns the amplitude of the annual wave in pulse phase that an error of position
 // makes, for explanations.
 //
