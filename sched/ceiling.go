@@ -56,7 +56,7 @@ func newBounder(t *tables, prices []Micro, halt func() bool) *bounder {
 	low, high := make([]float64, len(p.Jobs)), make([]float64, len(p.Jobs))
 	b.begin = make([]float64, len(p.Jobs))
 	for j := range prices {
-		high[j] = float64(t.best[j]) // at which nobody takes it
+		high[j] = float64(t.best[j])                                              // at which nobody takes it
 		b.begin[j] = max(0, min(float64(Micro(0.9*float64(prices[j]))), high[j])) // below zero only where force allows it
 	}
 	b.prices = newBundle(low, high, slices.Clone(b.begin))
